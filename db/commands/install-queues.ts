@@ -1,0 +1,51 @@
+import { sql, type Kysely } from 'kysely'
+import PgBoss from 'pg-boss'
+import type { DB } from '@/db/tables'
+import { queueNames } from '@/lib/jobs/queues'
+
+/**
+ * Makes the job queue's schema and queues as owner, and lets the app work in them: the app itself
+ * creates nothing, so it runs the queue with `migrate: false`.
+ */
+export async function installQueues(db: Kysely<DB>): Promise<void> {
+  await db.connection().execute(async (connection) => {
+    // Two installations at once would both find nothing and both create it.
+    await sql`select pg_advisory_lock(hashtext('evenlot.queues'))`.execute(connection)
+    try {
+      await install(connection)
+      await grant(connection)
+    } finally {
+      await sql`select pg_advisory_unlock(hashtext('evenlot.queues'))`.execute(connection)
+    }
+  })
+}
+
+async function install(db: Kysely<DB>): Promise<void> {
+  // The queue's statements carry their own begin and commit, and so go to the driver as they are.
+  const executeSql = async (text: string, values: unknown[] = []) => {
+    const query = values.length > 0 ? boundQuery(text, values) : sql.raw(text)
+    return { rows: [...(await query.execute(db)).rows] }
+  }
+  const boss = new PgBoss({ db: { executeSql }, migrate: true, supervise: false, schedule: false })
+  await boss.start()
+  try {
+    const existing = new Set((await boss.getQueues()).map(({ name }) => name))
+    for (const name of queueNames) if (!existing.has(name)) await boss.createQueue(name)
+  } finally {
+    await boss.stop({ graceful: false })
+  }
+}
+
+async function grant(db: Kysely<DB>): Promise<void> {
+  await sql`grant usage on schema pgboss to app`.execute(db)
+  await sql`grant select, insert, update, delete on all tables in schema pgboss to app`.execute(db)
+}
+
+/** A statement with $1, $2, … and its values, in Kysely's form. */
+function boundQuery(text: string, values: unknown[]) {
+  const parts = text.split(/\$(\d+)/)
+  const fragments = parts.map((part, index) =>
+    index % 2 === 0 ? sql.raw(part) : sql`${values[Number(part) - 1]}`,
+  )
+  return sql`${sql.join(fragments, sql``)}`
+}
