@@ -1,0 +1,172 @@
+import { fUpperTail } from '@/lib/statistics/distributions/f'
+import type { NestedLayout, Stratum } from '@/lib/statistics/nested-layout'
+import { NotComputable } from '@/lib/statistics/not-computable'
+
+/**
+ * Nested analysis of variance for any depth and any imbalance.
+ *
+ * Sequential sums of squares, outermost level first; the expected mean squares
+ * are those of random effects nested in one another, so the components follow
+ * from a triangular system solved from the residual upwards. A negative
+ * component keeps its raw value beside the 0 that is reported.
+ *
+ * Sources: ISO 5725-3; Searle, Casella & McCulloch 1992, Variance Components.
+ */
+export type AnovaRow = {
+  source: string
+  df: number
+  ss: number
+  ms: number
+  /** Coefficient of each component in this row's expected mean square, by source. */
+  ems: Record<string, number>
+}
+
+export type VarianceComponent = { source: string; raw: number; variance: number }
+
+export type NestedAnova = { rows: readonly AnovaRow[]; components: readonly VarianceComponent[] }
+
+export type NestedTest = {
+  denominator: { ms: number; df: number; kind: 'exact' | 'Satterthwaite'; weights: Record<string, number> }
+  f: number
+  pValue: number
+}
+
+/**
+ * @throws {NotComputable} `too-few-results` when nothing is left to compare.
+ */
+export function nestedAnova(layout: NestedLayout): NestedAnova {
+  if (layout.strata.length === 0) {
+    throw new NotComputable('too-few-results', 'an analysis of variance needs two results')
+  }
+  const rows = anovaRows(layout)
+  return { rows, components: varianceComponents(rows) }
+}
+
+/**
+ * The weights w for which Σ w_l E[MS_l] is the wanted combination of variance
+ * components. The system is triangular: an outer component appears in no mean
+ * square further in, so the outermost weight is settled first.
+ */
+export function weightsFor(rows: readonly AnovaRow[], wanted: Record<string, number>): number[] {
+  const weights: number[] = []
+  rows.forEach((row, level) => {
+    let remaining = wanted[row.source] ?? 0
+    for (let above = 0; above < level; above += 1)
+      remaining -= weights[above]! * rows[above]!.ems[row.source]!
+    const weight = remaining / row.ems[row.source]!
+    weights.push(settle(weight))
+  })
+  return weights
+}
+
+/**
+ * F test of one level against the combination of lower mean squares that has
+ * the same expectation when the level's own component is 0.
+ *
+ * @throws {NotComputable} `residual` has no test; `no-denominator` when the
+ *   combination is not positive.
+ */
+export function nestedTest(rows: readonly AnovaRow[], source: string): NestedTest {
+  const level = rows.findIndex((row) => row.source === source)
+  const tested = rows[level]!
+  const below = rows.slice(level + 1)
+  if (below.length === 0) throw new NotComputable('residual', 'the residual is tested against nothing')
+
+  const underNoEffect = Object.fromEntries(below.map((row) => [row.source, tested.ems[row.source]!]))
+  const weights = weightsFor(below, underNoEffect)
+  let ms = 0
+  let spread = 0
+  below.forEach((row, index) => {
+    const part = weights[index]! * row.ms
+    ms += part
+    spread += part ** 2 / row.df
+  })
+  if (!(ms > 0)) {
+    throw new NotComputable('no-denominator', 'the mean square to test against is not positive')
+  }
+
+  const used = weights.filter((weight) => weight !== 0)
+  const exact = used.length === 1 && used[0] === 1
+  const df = exact ? below[weights.indexOf(1)]!.df : ms ** 2 / spread
+  const f = tested.ms / ms
+  return {
+    denominator: {
+      ms,
+      df,
+      kind: exact ? 'exact' : 'Satterthwaite',
+      weights: Object.fromEntries(below.map((row, index) => [row.source, weights[index]!])),
+    },
+    f,
+    pValue: fUpperTail(f, tested.df, df),
+  }
+}
+
+function anovaRows(layout: NestedLayout): AnovaRow[] {
+  const { strata } = layout
+  const sums = strata.map((inner) => strata.map((outer) => sizeSum(outer, inner)))
+  const wholeSums = strata.map((inner) => sizeSumOfWhole(inner, layout.deviations.length))
+
+  return strata.map((stratum, level) => {
+    const above = level === 0 ? undefined : strata[level - 1]!
+    const df = stratum.size.length - (above?.size.length ?? 1)
+    const ss = betweenSumOfSquares(layout, stratum, above)
+    const ems: Record<string, number> = {}
+    strata.forEach((component, inner) => {
+      const outside = above === undefined ? wholeSums[inner]! : sums[inner]![level - 1]!
+      ems[component.source] =
+        inner < level ? 0 : inner === strata.length - 1 ? 1 : (sums[inner]![level]! - outside) / df
+    })
+    return { source: stratum.source, df, ss, ms: ss / df, ems }
+  })
+}
+
+/** Σ over outer groups g of (1/N_g) Σ over its inner groups d of N_d². */
+function sizeSum(outer: Stratum, inner: Stratum): number {
+  let sum = 0
+  inner.size.forEach((size, group) => {
+    sum += size ** 2 / outer.size[outer.groupOf[inner.firstMember[group]!]!]!
+  })
+  return sum
+}
+
+function sizeSumOfWhole(inner: Stratum, results: number): number {
+  let sum = 0
+  for (const size of inner.size) sum += size ** 2
+  return sum / results
+}
+
+function betweenSumOfSquares(layout: NestedLayout, stratum: Stratum, above: Stratum | undefined): number {
+  let ss = 0
+  let largest = 0
+  stratum.mean.forEach((mean, group) => {
+    const parent =
+      above === undefined ? layout.mean : above.mean[above.groupOf[stratum.firstMember[group]!]!]!
+    ss += stratum.size[group]! * (mean - parent) ** 2
+    largest = Math.max(largest, Math.abs(mean), Math.abs(parent))
+  })
+  // Means that are equal as fractions can differ in their last bit. What is
+  // left of such a difference is no scatter, and must not pass for some.
+  const rounding = layout.deviations.length * (4 * Number.EPSILON * largest) ** 2
+  return ss <= rounding ? 0 : ss
+}
+
+function varianceComponents(rows: readonly AnovaRow[]): VarianceComponent[] {
+  const raw: Record<string, number> = {}
+  for (let level = rows.length - 1; level >= 0; level -= 1) {
+    const row = rows[level]!
+    let rest = row.ms
+    for (let inner = level + 1; inner < rows.length; inner += 1) {
+      const source = rows[inner]!.source
+      rest -= row.ems[source]! * raw[source]!
+    }
+    raw[row.source] = rest / row.ems[row.source]!
+  }
+  return rows.map(({ source }) => ({ source, raw: raw[source]!, variance: Math.max(0, raw[source]!) }))
+}
+
+/** A weight that is 0 or 1 but for its last bits is 0 or 1: balance must be recognised as such. */
+function settle(weight: number): number {
+  if (Math.abs(weight) < 1e-12) return 0
+  if (Math.abs(weight - 1) < 1e-12) return 1
+  return weight
+}
