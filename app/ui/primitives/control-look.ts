@@ -1,0 +1,5 @@
+/** The dress that text inputs, areas and selects share. */
+export const controlLook =
+  'block w-full rounded border border-edge bg-sheet px-2.5 text-ink placeholder:text-ink-soft ' +
+  'aria-[invalid=true]:border-2 aria-[invalid=true]:border-madder ' +
+  'disabled:bg-paper disabled:text-ink-soft read-only:bg-paper'
