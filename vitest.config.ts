@@ -2,7 +2,9 @@ import { fileURLToPath } from 'node:url'
 import { defineConfig } from 'vitest/config'
 
 // Tests in these folders, and no others, have a database; all the rest start in a moment.
-const WITH_DATABASE = ['auth', 'commands', 'db', 'jobs', 'use-cases', 'api'].map((folder) => `tests/${folder}/**/*.test.ts`)
+const WITH_DATABASE = ['auth', 'commands', 'db', 'jobs', 'use-cases', 'api'].map(
+  (folder) => `tests/${folder}/**/*.test.ts`,
+)
 
 const shared = {
   setupFiles: ['tests/support/silent-console.ts'],

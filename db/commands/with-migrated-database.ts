@@ -4,23 +4,17 @@ import { prepareDatabase } from '@/lib/commands/cluster-roles'
 import { openThrowAwayCluster } from '@/lib/commands/private-cluster'
 import { migrateDatabase } from './migrate-database'
 
-interface Migrated {
-  ownerUrl: string
-  port: number
-  adminPassword: string
-}
-
 const DATABASE = 'evenlot'
 
 /** Runs the work against a throw-away database that holds the latest migration and nothing else. */
-export async function withMigratedDatabase<T>(work: (database: Migrated) => Promise<T>): Promise<T> {
+export async function withMigratedDatabase<T>(work: (ownerUrl: string) => Promise<T>): Promise<T> {
   const root = fileURLToPath(new URL('../..', import.meta.url))
   const cluster = await openThrowAwayCluster({ root, say: console.log })
   try {
     await asClusterAdmin(cluster.access, (client) => prepareDatabase(client, DATABASE))
     const ownerUrl = clusterUrl(cluster.access, 'owner', DATABASE)
     await migrateDatabase(ownerUrl)
-    return await work({ ownerUrl, port: cluster.access.port, adminPassword: cluster.access.passwords.cluster_admin })
+    return await work(ownerUrl)
   } finally {
     await cluster.stop()
   }

@@ -1,4 +1,13 @@
-import { appendFileSync, chownSync, existsSync, mkdirSync, readFileSync, renameSync, rmSync, writeFileSync } from 'node:fs'
+import {
+  appendFileSync,
+  chownSync,
+  existsSync,
+  mkdirSync,
+  readFileSync,
+  renameSync,
+  rmSync,
+  writeFileSync,
+} from 'node:fs'
 import { clearStalePid, clusterIsRunning } from './cluster-process'
 import { runProgram, type Account } from './run-program'
 
@@ -30,7 +39,9 @@ export async function createServerFolder(server: Server, adminPassword: string):
     const format = ['--encoding=UTF8', '--locale=C.UTF-8', '--data-checksums']
     const entry = ['--username=cluster_admin', '--auth=scram-sha-256', `--pwfile=${passwordFile}`]
     const speed = throwAway ? ['--no-sync'] : []
-    await runProgram(`${programs}/initdb`, ['-D', `${folder}/data.new`, ...format, ...entry, ...speed], { account })
+    await runProgram(`${programs}/initdb`, ['-D', `${folder}/data.new`, ...format, ...entry, ...speed], {
+      account,
+    })
   } finally {
     rmSync(passwordFile, { force: true })
   }
@@ -49,7 +60,9 @@ export async function startServer(server: Server, port: number): Promise<void> {
   const log = `${folder}/log/postgresql.log`
   try {
     const where = ['-D', `${folder}/data`, '-l', log]
-    await runProgram(`${programs}/pg_ctl`, ['start', '--wait', '--timeout=120', '--silent', ...where], { account })
+    await runProgram(`${programs}/pg_ctl`, ['start', '--wait', '--timeout=120', '--silent', ...where], {
+      account,
+    })
   } catch (failure) {
     const lines = existsSync(log) ? readFileSync(log, 'utf8').trimEnd().split('\n').slice(-12) : []
     throw new Error(`PostgreSQL did not start. Its last words:\n${lines.join('\n')}`, { cause: failure })

@@ -11,7 +11,9 @@ export async function ensureDebianPackages(packages: string[], say: (line: strin
 
   const command = `apt-get install -y --no-install-recommends ${missing.join(' ')}`
   if (process.getuid?.() !== 0) {
-    throw new Error(`These Debian packages are missing: ${missing.join(', ')}. An administrator must run: ${command}`)
+    throw new Error(
+      `These Debian packages are missing: ${missing.join(', ')}. An administrator must run: ${command}`,
+    )
   }
   say(`Installing ${missing.join(', ')} from Debian's packages`)
   await withoutDefaultCluster(missing, async () => {

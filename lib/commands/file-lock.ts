@@ -14,7 +14,10 @@ export async function holdLock(path: string): Promise<() => Promise<void>> {
     detached: true,
   })
   const ended = once(holder, 'exit')
-  const outcome = await Promise.race([once(holder.stdout, 'data').then(() => 'held'), ended.then(() => 'ended')])
+  const outcome = await Promise.race([
+    once(holder.stdout, 'data').then(() => 'held'),
+    ended.then(() => 'ended'),
+  ])
   if (outcome !== 'held') throw new Error(`The lock ${path} could not be taken.`)
   return async () => {
     holder.stdin.end()

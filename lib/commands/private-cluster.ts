@@ -46,7 +46,8 @@ export async function openPrivateCluster({ root, say }: Options): Promise<Privat
     return {
       access,
       isNew,
-      stop: () => locked(folder, async () => (leave(), others(folder).length === 0 && (await stopServer(server)))),
+      stop: () =>
+        locked(folder, async () => (leave(), others(folder).length === 0 && (await stopServer(server)))),
     }
   })
 }

@@ -2,7 +2,7 @@ import { spawn, type SpawnOptions } from 'node:child_process'
 
 interface Options {
   cwd?: string
-  env?: NodeJS.ProcessEnv
+  env?: Record<string, string>
   account?: Account
 }
 

@@ -22,7 +22,8 @@ export interface TestDatabase {
 /** A migrated database of the test file's own, cloned in a fraction of a second. */
 export async function createTestDatabase(): Promise<TestDatabase> {
   const access = inject('testCluster') as ClusterAccess | undefined
-  if (!access) throw new Error('No cluster here: only tests of the project "database" (vitest.config.ts) have one.')
+  if (!access)
+    throw new Error('No cluster here: only tests of the project "database" (vitest.config.ts) have one.')
   const name = `test_${randomBytes(6).toString('hex')}`
   await cloneMigratedDatabase(access, name)
 
