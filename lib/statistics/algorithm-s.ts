@@ -1,0 +1,57 @@
+import { chiSquaredLowerTail, chiSquaredQuantileUpper } from '@/lib/statistics/distributions/chi-squared'
+import { median } from '@/lib/statistics/median'
+import { NotComputable } from '@/lib/statistics/not-computable'
+
+/**
+ * Algorithm S: robust pooled standard deviation of cells.
+ *
+ * Standard deviations above η w are drawn in to it. For cells of one size this
+ * is the standard's algorithm; the form for unequal sizes, in which each cell
+ * counts by its degrees of freedom, is our own and marked `generalised`. The
+ * constants are exact, not the rounded ones of the printed table.
+ *
+ * @throws {NotComputable} `no-replication` without a cell of two results;
+ *   `majority-zero` when the median standard deviation is 0.
+ *
+ * Source: ISO 13528, Annex C.4; ISO 5725-5.
+ */
+export type AlgorithmS = { sd: number; generalised: boolean; iterations: number }
+
+const TOLERANCE = 1e-13
+const MOST_ITERATIONS = 10_000
+const CLIPPED_SHARE = 0.1
+
+export function algorithmS(cells: readonly { sd: number; df: number }[]): AlgorithmS {
+  const replicated = cells.filter(({ df }) => df >= 1)
+  if (replicated.length === 0) {
+    throw new NotComputable('no-replication', 'no cell holds two results')
+  }
+  const start = median(replicated.map(({ sd }) => sd))
+  if (start === 0) {
+    throw new NotComputable('majority-zero', 'the median of the cell standard deviations is 0')
+  }
+
+  const constants = new Map([...new Set(replicated.map(({ df }) => df))].map((df) => [df, constantsFor(df)]))
+  const terms = replicated.map(({ sd, df }) => ({ variance: sd ** 2, df, ...constants.get(df)! }))
+  const divisor = terms.reduce((sum, { df, expectedShare }) => sum + df * expectedShare, 0)
+
+  let variance = start ** 2
+  for (let iterations = 1; iterations <= MOST_ITERATIONS; iterations += 1) {
+    const limit = variance
+    const sum = terms.reduce((total, term) => total + term.df * Math.min(term.variance, term.limitSquared * limit), 0)
+    variance = sum / divisor
+    if (Math.abs(variance - limit) <= TOLERANCE * variance) {
+      return { sd: Math.sqrt(variance), generalised: constants.size > 1, iterations }
+    }
+  }
+  throw new NotComputable('no-convergence', 'Algorithm S did not settle')
+}
+
+/** η² for the degrees of freedom, and ξ⁻², the share of the variance that clipping leaves in normal data. */
+function constantsFor(df: number): { limitSquared: number; expectedShare: number } {
+  const limitSquared = chiSquaredQuantileUpper(CLIPPED_SHARE, df) / df
+  return {
+    limitSquared,
+    expectedShare: chiSquaredLowerTail(df * limitSquared, df + 2) + CLIPPED_SHARE * limitSquared,
+  }
+}

@@ -1,0 +1,7 @@
+/** The middle value, or the mean of the two middle ones. Needs at least one value. */
+export function median(values: readonly number[]): number {
+  if (values.length === 0) throw new RangeError('median requires at least one value')
+  const sorted = [...values].sort((one, other) => one - other)
+  const middle = Math.floor(sorted.length / 2)
+  return sorted.length % 2 === 1 ? sorted[middle]! : (sorted[middle - 1]! + sorted[middle]!) / 2
+}
