@@ -1,0 +1,71 @@
+import { chiSquaredQuantileUpper } from '@/lib/statistics/distributions/chi-squared'
+import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
+import { NotComputable } from '@/lib/statistics/not-computable'
+
+/**
+ * Check before shipping: do the units of a material differ by more than the
+ * study can bear?
+ *
+ * `units[i][j]` is portion j of unit i, as a deviation from any origin.
+ *
+ * Source: ISO 13528, Annex B; Fearn & Thompson 2001 for the expanded criterion.
+ */
+export type HomogeneityFigures = {
+  portions: number
+  sx: number
+  sw: number
+  ssSquaredRaw: number
+  ss: number
+  f1: number
+  f2: number
+}
+
+/** @throws {NotComputable} `too-few-units` below 2; `unequal-portions`; `no-replication`. */
+export function homogeneityFigures(units: readonly (readonly number[])[]): HomogeneityFigures {
+  const g = units.length
+  if (g < 2) throw new NotComputable('too-few-units', 'two units are needed')
+  const n = units[0]!.length
+  if (units.some((unit) => unit.length !== n)) {
+    throw new NotComputable('unequal-portions', 'every unit must have the same number of test portions')
+  }
+  if (n < 2) throw new NotComputable('no-replication', 'every unit needs two test portions')
+
+  const means = units.map((unit) => unit.reduce((sum, value) => sum + value, 0) / n)
+  const centre = means.reduce((sum, value) => sum + value, 0) / g
+  const between = means.reduce((sum, value) => sum + (value - centre) ** 2, 0) / (g - 1)
+  let within = 0
+  units.forEach((unit, index) => {
+    for (const value of unit) within += (value - means[index]!) ** 2
+  })
+  within /= g * (n - 1)
+  const ssSquaredRaw = between - within / n
+  return {
+    portions: n,
+    sx: Math.sqrt(between),
+    sw: Math.sqrt(within),
+    ssSquaredRaw,
+    ss: Math.sqrt(Math.max(0, ssSquaredRaw)),
+    f1: chiSquaredQuantileUpper(0.05, g - 1) / (g - 1),
+    f2: (fQuantileUpper(0.05, g - 1, g * (n - 1)) - 1) / n,
+  }
+}
+
+/** The three criteria against a target standard deviation written down before the check. */
+export function homogeneityVerdict(
+  figures: HomogeneityFigures,
+  target: number,
+): { basic: boolean; expanded: boolean; checkPrecise: boolean } {
+  const allowed = (0.3 * target) ** 2
+  return {
+    basic: figures.ss <= 0.3 * target,
+    expanded: figures.ss ** 2 <= figures.f1 * allowed + figures.f2 * figures.sw ** 2,
+    checkPrecise: figures.sw < 0.5 * target,
+  }
+}
+
+/** @throws {NotComputable} `no-scatter` when the portions of a unit never differ. */
+export function homogeneityPValue(figures: HomogeneityFigures, units: number): number {
+  if (figures.sw === 0) throw new NotComputable('no-scatter', 'the portions of a unit do not differ')
+  const f = (figures.portions * figures.sx ** 2) / figures.sw ** 2
+  return fUpperTail(f, units - 1, units * (figures.portions - 1))
+}

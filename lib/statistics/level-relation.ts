@@ -1,0 +1,141 @@
+import { NotComputable } from '@/lib/statistics/not-computable'
+
+/**
+ * Precision as a function of level: how a standard deviation s grows with the
+ * mean m over the materials of one measurand.
+ *
+ * Three forms are fitted: s = b m, s = a + b m and log s = c + d log m
+ * (logarithms to base 10). The second is weighted by 1/s² at first and then by
+ * 1/ŝ² of the fit before: the standard's third fit and the one it settles at.
+ *
+ * Source: ISO 5725-2, 7.5.
+ */
+export type LevelPoint = { material: string; mean: number; sd: number }
+
+export type FittedForm<Coefficients> = Coefficients & {
+  /** Mean squared departure of ln s from the form, per degree of freedom. */
+  q: number
+}
+
+export type Proportional = FittedForm<{ b: number }>
+export type Linear = FittedForm<{ a: number; b: number }>
+export type Power = FittedForm<{ c: number; d: number }>
+
+export type FormName = 'proportional' | 'linear' | 'power'
+
+/** @throws {NotComputable} `too-few-materials` below 2 with m > 0. */
+export function proportionalRelation(points: readonly LevelPoint[]): { b: number } {
+  const usable = points.filter(({ mean }) => mean > 0)
+  requireMaterials(usable, 2)
+  return { b: usable.reduce((sum, { mean, sd }) => sum + sd / mean, 0) / usable.length }
+}
+
+/** @throws {NotComputable} `too-few-materials` below 3 with s > 0; `one-level`; `negative-fit`. */
+export function linearRelation(points: readonly LevelPoint[]): {
+  third: { a: number; b: number }
+  converged: { a: number; b: number }
+} {
+  const usable = points.filter(({ sd }) => sd > 0)
+  requireMaterials(usable, 3)
+  let line = weightedLine(
+    usable,
+    usable.map(({ sd }) => sd),
+  )
+  let third = line
+  for (let fit = 2; fit <= MOST_FITS; fit += 1) {
+    const { a, b } = line
+    const fitted = usable.map(({ mean }) => a + b * mean)
+    if (fitted.some((value) => value <= 0)) {
+      throw new NotComputable('negative-fit', 'the straight line gives a standard deviation that is not above 0')
+    }
+    const next = weightedLine(usable, fitted)
+    const moved = usable.map(({ mean }, index) => Math.abs(next.a + next.b * mean - fitted[index]!) / fitted[index]!)
+    line = next
+    if (fit === 3) third = line
+    if (fit >= 3 && Math.max(...moved) < FIT_TOLERANCE) return { third, converged: line }
+  }
+  throw new NotComputable('no-convergence', 'the weighted fits did not settle')
+}
+
+/** @throws {NotComputable} `too-few-materials` below 3 with s > 0 and m > 0; `one-level`. */
+export function powerRelation(points: readonly LevelPoint[]): { c: number; d: number } {
+  const usable = points.filter(({ mean, sd }) => sd > 0 && mean > 0)
+  requireMaterials(usable, 3)
+  const logarithms = usable.map(({ material, mean, sd }) => ({
+    material,
+    mean: Math.log10(mean),
+    sd: Math.log10(sd),
+  }))
+  const { a, b } = weightedLine(
+    logarithms,
+    logarithms.map(() => 1),
+  )
+  return { c: a, d: b }
+}
+
+/**
+ * How well a form fits, comparable between forms.
+ *
+ * @throws {NotComputable} `too-few-materials` without a degree of freedom;
+ *   `negative-fit`, which disqualifies the form.
+ */
+export function relationQuality(
+  points: readonly LevelPoint[],
+  fitted: (mean: number) => number,
+  coefficients: number,
+): number {
+  const usable = points.filter(({ sd }) => sd > 0)
+  requireMaterials(usable, coefficients + 1)
+  let sum = 0
+  for (const { mean, sd } of usable) {
+    const value = fitted(mean)
+    if (!(value > 0)) {
+      throw new NotComputable('negative-fit', 'the form gives a standard deviation that is not above 0')
+    }
+    sum += Math.log(sd / value) ** 2
+  }
+  return sum / (usable.length - coefficients)
+}
+
+/**
+ * The form with the smallest q; of those within a tenth of it, the simplest.
+ * A person chooses; this only proposes.
+ */
+export function proposedForm(qualities: Readonly<Record<FormName, number | null>>): FormName | null {
+  const known = SIMPLEST_FIRST.filter((form) => qualities[form] !== null)
+  if (known.length === 0) return null
+  const smallest = Math.min(...known.map((form) => qualities[form]!))
+  return known.find((form) => qualities[form]! <= smallest * 1.1)!
+}
+
+/** The materials that some form had to do without. */
+export function materialsLeftOut(points: readonly LevelPoint[]): string[] {
+  return points.filter(({ mean, sd }) => !(mean > 0) || !(sd > 0)).map(({ material }) => material)
+}
+
+const MOST_FITS = 10_000
+const FIT_TOLERANCE = 1e-13
+const SIMPLEST_FIRST: readonly FormName[] = ['proportional', 'linear', 'power']
+
+function requireMaterials(points: readonly LevelPoint[], least: number): void {
+  if (points.length < least) {
+    throw new NotComputable('too-few-materials', `this form needs ${least} materials it can use`)
+  }
+}
+
+/** Least squares of s on m with weights 1/spread²; centred, so that no digits are lost at high levels. */
+function weightedLine(points: readonly LevelPoint[], spreads: readonly number[]): { a: number; b: number } {
+  const weights = spreads.map((spread) => 1 / spread ** 2)
+  const total = weights.reduce((sum, weight) => sum + weight, 0)
+  const centre = points.reduce((sum, { mean }, index) => sum + weights[index]! * mean, 0) / total
+  const height = points.reduce((sum, { sd }, index) => sum + weights[index]! * sd, 0) / total
+  let products = 0
+  let squares = 0
+  points.forEach(({ mean, sd }, index) => {
+    products += weights[index]! * (mean - centre) * (sd - height)
+    squares += weights[index]! * (mean - centre) ** 2
+  })
+  if (!(squares > 0)) throw new NotComputable('one-level', 'all materials lie at one level')
+  const b = products / squares
+  return { a: height - b * centre, b }
+}

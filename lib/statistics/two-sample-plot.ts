@@ -1,0 +1,99 @@
+import { fQuantileUpper } from '@/lib/statistics/distributions/f'
+import { NotComputable } from '@/lib/statistics/not-computable'
+
+/**
+ * The figures behind the two-sample plot: the laboratories' cell means on two
+ * materials, their covariance, and each one's distance from the centre.
+ *
+ * Values may be deviations from any origin per material. Order is irrelevant.
+ *
+ * Source: Youden 1959; for the ellipse see `predictionFactor`.
+ */
+export type PlotPoint = { x: number; y: number }
+
+export type PlotSpread = {
+  mean: [number, number]
+  sd: [number, number]
+  covariance: number
+}
+
+/** @throws {NotComputable} `too-few-laboratories` below 2. */
+export function plotSpread(points: readonly PlotPoint[]): PlotSpread {
+  const count = points.length
+  if (count < 2) throw new NotComputable('too-few-laboratories', 'two laboratories must have both materials')
+  const mean: [number, number] = [0, 0]
+  for (const { x, y } of points) {
+    mean[0] += x / count
+    mean[1] += y / count
+  }
+  let xx = 0
+  let yy = 0
+  let xy = 0
+  for (const { x, y } of points) {
+    xx += (x - mean[0]) ** 2
+    yy += (y - mean[1]) ** 2
+    xy += (x - mean[0]) * (y - mean[1])
+  }
+  const df = count - 1
+  return { mean, sd: [Math.sqrt(xx / df), Math.sqrt(yy / df)], covariance: xy / df }
+}
+
+/** @throws {NotComputable} `no-scatter` when one material's means are all equal. */
+export function correlation({ sd, covariance }: PlotSpread): number {
+  if (sd[0] === 0 || sd[1] === 0) throw new NotComputable('no-scatter', 'the cell means of a material are all equal')
+  return Math.min(1, Math.max(-1, covariance / (sd[0] * sd[1])))
+}
+
+/**
+ * Squared Mahalanobis distance within which a further laboratory of the same
+ * population lies with 95 %. The plotted laboratories shaped the ellipse
+ * themselves, so it is not for flagging them: see `ownPValue`.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 4.
+ */
+export function predictionFactor(laboratories: number): number {
+  const p = laboratories
+  if (p < 4) throw new NotComputable('too-few-laboratories', 'the ellipse needs four laboratories')
+  return ((2 * (p ** 2 - 1)) / (p * (p - 2))) * fQuantileUpper(0.05, 2, p - 2)
+}
+
+/** Half-lengths of the ellipse, major first, and the direction of the major axis in (−π/2, π/2]. */
+export function ellipse(spread: PlotSpread, factor: number): { semiAxes: [number, number]; angle: number } {
+  const { large, small, angle } = principalAxes(spread)
+  return { semiAxes: [Math.sqrt(factor * large), Math.sqrt(factor * Math.max(0, small))], angle }
+}
+
+/** @throws {NotComputable} `on-a-line` when the points do not spread in two directions. */
+export function squaredDistance(spread: PlotSpread, point: PlotPoint): number {
+  const variances = [spread.sd[0] ** 2, spread.sd[1] ** 2] as const
+  const determinant = variances[0] * variances[1] - spread.covariance ** 2
+  if (!(determinant > variances[0] * variances[1] * 1e-14)) {
+    throw new NotComputable('on-a-line', 'the laboratories lie on one line')
+  }
+  const x = point.x - spread.mean[0]
+  const y = point.y - spread.mean[1]
+  return (variances[1] * x ** 2 - 2 * spread.covariance * x * y + variances[0] * y ** 2) / determinant
+}
+
+/**
+ * Chance of so great a distance for one of the plotted laboratories, which has
+ * itself a share in the centre and the covariance.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 4.
+ */
+export function ownPValue(distance2: number, laboratories: number): number {
+  if (laboratories < 4) throw new NotComputable('too-few-laboratories', 'a p-value needs four laboratories')
+  const share = (distance2 * laboratories) / (laboratories - 1) ** 2
+  return Math.max(0, 1 - share) ** ((laboratories - 3) / 2)
+}
+
+function principalAxes({ sd, covariance }: PlotSpread): { large: number; small: number; angle: number } {
+  const [xx, yy] = [sd[0] ** 2, sd[1] ** 2]
+  const middle = (xx + yy) / 2
+  const reach = Math.hypot((xx - yy) / 2, covariance)
+  const half = Math.atan2(2 * covariance, xx - yy) / 2
+  const large = middle + reach
+  // The small one by division: as a difference it would lose its digits when the ellipse is thin.
+  const small = large === 0 ? 0 : (xx * yy - covariance ** 2) / large
+  return { large, small, angle: half <= -Math.PI / 2 ? half + Math.PI : half }
+}
