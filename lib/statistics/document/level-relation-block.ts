@@ -1,0 +1,84 @@
+import type { LevelRelation, MaterialAnalysis, RelationForms } from '@/lib/statistics/analysis-document'
+import { required, withReasons } from '@/lib/statistics/document/attempt'
+import {
+  type LevelPoint,
+  linearRelation,
+  materialsLeftOut,
+  powerRelation,
+  proportionalRelation,
+  proposedForm,
+  relationQuality,
+} from '@/lib/statistics/level-relation'
+
+export function levelRelationBlock(materials: readonly MaterialAnalysis[]): LevelRelation {
+  return {
+    repeatability: forms(levelPoints(materials, ({ repeatability }) => repeatability.sd)),
+    reproducibility: forms(levelPoints(materials, ({ reproducibility }) => reproducibility.sd)),
+  }
+}
+
+function levelPoints(
+  materials: readonly MaterialAnalysis[],
+  sdOf: (material: MaterialAnalysis) => number | null,
+): LevelPoint[] {
+  return materials.flatMap((one) => {
+    const sd = sdOf(one)
+    return one.mean === null || sd === null ? [] : [{ material: one.material, mean: one.mean, sd }]
+  })
+}
+
+const NOT_FITTED = 'the form could not be fitted'
+
+function forms(points: readonly LevelPoint[]): RelationForms {
+  const proportional = withReasons((attempt) => {
+    const fit = attempt('b', () => proportionalRelation(points))
+    const q = attempt('q', () => {
+      const { b } = required(fit, NOT_FITTED)
+      return relationQuality(
+        points.filter(({ mean }) => mean > 0),
+        (mean) => b * mean,
+        1,
+      )
+    })
+    return { b: fit?.b ?? null, q }
+  })
+  const line = { found: null as ReturnType<typeof linearRelation> | null }
+  const linear = withReasons((attempt) => {
+    line.found = attempt('b', () => linearRelation(points))
+    const third = line.found?.third ?? null
+    const q = attempt('q', () => {
+      const { a, b } = required(third, NOT_FITTED)
+      return relationQuality(points, (mean) => a + b * mean, 2)
+    })
+    return { a: third?.a ?? null, b: third?.b ?? null, q }
+  })
+  const linearConverged = withReasons((attempt) => {
+    const fit = attempt('b', () => required(line.found, NOT_FITTED).converged)
+    return { a: fit?.a ?? null, b: fit?.b ?? null }
+  })
+  const power = withReasons((attempt) => {
+    const fit = attempt('d', () => powerRelation(points))
+    const q = attempt('q', () => {
+      const { c, d } = required(fit, NOT_FITTED)
+      return relationQuality(
+        points.filter(({ mean }) => mean > 0),
+        (mean) => 10 ** c * mean ** d,
+        2,
+      )
+    })
+    return { c: fit?.c ?? null, d: fit?.d ?? null, q }
+  })
+  return withReasons((attempt) => ({
+    proportional,
+    linear,
+    linearConverged,
+    power,
+    proposed: attempt('proposed', () =>
+      required(
+        proposedForm({ proportional: proportional.q, linear: linear.q, power: power.q }),
+        'no form could be compared',
+      ),
+    ),
+    leftOut: materialsLeftOut(points),
+  }))
+}

@@ -1,0 +1,75 @@
+import { algorithmA } from '@/lib/statistics/algorithm-a'
+import { algorithmS } from '@/lib/statistics/algorithm-s'
+import type { RobustBlock } from '@/lib/statistics/analysis-document'
+import { required, withReasons } from '@/lib/statistics/document/attempt'
+import { hampelLocation, type IntegerCells, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+
+/** What the robust estimates are made from: one entry a laboratory, all in the same order. */
+export type RobustInput = {
+  cellMeans: readonly number[]
+  cellSpreads: readonly { sd: number; df: number }[]
+  integers: IntegerCells
+  /** The value of one unit of `integers`. */
+  step: number
+  harmonicCellSize: number
+  restore: (deviation: number) => number
+}
+
+export function robustBlock(input: RobustInput): RobustBlock {
+  const a = algorithmABlock(input)
+  const s = withReasons((attempt) => {
+    const found = attempt('sd', () => algorithmS(input.cellSpreads))
+    return { sd: found?.sd ?? null, generalised: found?.generalised ?? null }
+  })
+  return {
+    algorithmA: a,
+    algorithmS: s,
+    qHampel: withReasons((attempt) => {
+      const sd = attempt('sd', () => qOfCellMeans(input.integers, input.step))
+      const mean = attempt('mean', () =>
+        hampelLocation(input.cellMeans, required(sd, 'the spread of the Q method could not be computed')),
+      )
+      return { mean: mean === null ? null : input.restore(mean), sd }
+    }),
+    reproducibility: robustReproducibility(a.sd, s.sd, input.harmonicCellSize),
+    qMethod: {
+      reproducibility: withReasons((attempt) => ({
+        sd: attempt('sd', () => qReproducibility(input.integers, input.step)),
+      })),
+      repeatability: withReasons((attempt) => ({
+        sd: attempt('sd', () => qRepeatability(input.integers, input.step)),
+      })),
+    },
+  }
+}
+
+function algorithmABlock({ cellMeans, restore }: RobustInput): RobustBlock['algorithmA'] {
+  return withReasons((attempt) => {
+    const found = attempt('sd', () => algorithmA(cellMeans))
+    return {
+      mean: found === null ? null : restore(found.mean),
+      sd: found?.sd ?? null,
+      meanStandardError: found?.meanStandardError ?? null,
+    }
+  })
+}
+
+/**
+ * The spread of unweighted cell means holds the within part divided by the
+ * harmonic mean of the cell sizes; the ordinary n̄ would leave too much.
+ */
+function robustReproducibility(
+  meansSd: number | null,
+  pooledSd: number | null,
+  harmonicCellSize: number,
+): RobustBlock['reproducibility'] {
+  const words = 'it needs Algorithm A and Algorithm S'
+  const between = (): number => {
+    const variance = required(meansSd, words) ** 2 - required(pooledSd, words) ** 2 / harmonicCellSize
+    return Math.max(0, variance)
+  }
+  return withReasons((attempt) => ({
+    sd: attempt('sd', () => Math.sqrt(between() + required(pooledSd, words) ** 2)),
+    betweenLaboratory: withReasons((inner) => ({ sd: inner('sd', () => Math.sqrt(between())) })),
+  }))
+}
