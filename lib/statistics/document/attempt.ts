@@ -19,7 +19,11 @@ export function withReasons<Block extends object>(build: (attempt: Attempt) => B
       return null
     }
   })
-  return Object.keys(reasons).length === 0 ? block : { ...block, reasons }
+  const first = Object.values(reasons)[0]
+  if (first === undefined) return block
+  // One computation often gives several keys; they are missing for one reason.
+  for (const [key, value] of Object.entries(block)) if (value === null) reasons[key] ??= first
+  return { ...block, reasons }
 }
 
 /** For a quantity whose absence is known beforehand. */

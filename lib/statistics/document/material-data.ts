@@ -1,0 +1,91 @@
+import type { AnalysisResult } from '@/lib/statistics/analysis-input'
+import type { CensoredBlock } from '@/lib/statistics/analysis-document'
+import { centreExactly, type Decimal, parseDecimal, subtractDecimals, toCommonScale } from '@/lib/statistics/decimal'
+
+/** The results of one laboratory for one material that carry a number and take part. */
+export type MaterialCell = {
+  laboratory: string
+  results: readonly AnalysisResult[]
+  /** Differences from the material's offset. */
+  deviations: Float64Array
+  /** The same results as whole numbers of the material's finest decimal. */
+  integers: readonly bigint[]
+}
+
+export type MaterialData = {
+  material: string
+  measurand: string | null
+  /** In the order in which laboratories appear in the input. */
+  cells: readonly MaterialCell[]
+  /** The value of one unit of the integers. */
+  step: number
+  restore: (deviation: number) => number
+  /** The difference of another value of this material, an accepted reference say, from the offset. */
+  deviationOf: (text: string) => number
+  censored: CensoredBlock
+  /** Bounds of the cells that hold a censored result, as deviations: the mean lies below `below` or above `above`. */
+  bounds: readonly { below: number | null; above: number | null }[]
+  /** Share of the cells with data that a censored result took out. */
+  censoredShare: number
+}
+
+/**
+ * Sorts the results of one material into cells.
+ *
+ * A cell that holds a censored result takes no part: no number is put in the
+ * place of one that is not known.
+ */
+export function materialData(one: {
+  material: string
+  measurand: string | null
+  results: readonly AnalysisResult[]
+}): MaterialData {
+  const taking = one.results.filter(({ excluded, text }) => !excluded && text !== '')
+  const decimals = taking.map(({ text }) => parseDecimal(text))
+  const { units, scale } = toCommonScale(decimals.length === 0 ? [parseDecimal('0')] : decimals)
+  const centred = centreExactly(decimals.length === 0 ? ['0'] : taking.map(({ text }) => text))
+
+  const positions = new Map<string, number[]>()
+  taking.forEach(({ laboratory }, position) => {
+    const known = positions.get(laboratory)
+    if (known === undefined) positions.set(laboratory, [position])
+    else known.push(position)
+  })
+
+  const cells: MaterialCell[] = []
+  const censoredCells: CensoredBlock['cells'] = []
+  const bounds: { below: number | null; above: number | null }[] = []
+  for (const [laboratory, members] of positions) {
+    const results = members.map((position) => taking[position]!)
+    const deviations = Float64Array.from(members, (position) => centred.deviations[position]!)
+    const below = results.filter(({ censored }) => censored === '<').length
+    const above = results.filter(({ censored }) => censored === '>').length
+    if (below + above === 0) {
+      cells.push({ laboratory, results, deviations, integers: members.map((position) => units[position]!) })
+      continue
+    }
+    censoredCells.push({ laboratory, below, above, quantified: results.length - below - above })
+    const limit = deviations.reduce((sum, value) => sum + value, 0) / deviations.length
+    bounds.push({ below: above === 0 ? limit : null, above: below === 0 ? limit : null })
+  }
+
+  return {
+    material: one.material,
+    measurand: one.measurand,
+    cells,
+    step: Number(`1e${-scale}`),
+    restore: centred.restore,
+    deviationOf: (text) => differenceAsNumber(parseDecimal(text), centred.offset),
+    censored: {
+      results: taking.filter(({ censored }) => censored !== null).length,
+      cells: censoredCells,
+    },
+    bounds,
+    censoredShare: positions.size === 0 ? 0 : censoredCells.length / positions.size,
+  }
+}
+
+function differenceAsNumber(value: Decimal, offset: Decimal): number {
+  const { units, scale } = subtractDecimals(value, offset)
+  return Number(`${units}e${-scale}`)
+}
