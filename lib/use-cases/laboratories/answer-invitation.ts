@@ -1,5 +1,5 @@
 import { findInvitation, findInvitedStudy, insertInvitationAnswer, insertParticipant, listCodes } from '@/db/queries/laboratories'
-import { upsertPerson } from '@/db/queries/people'
+import { upsertPerson } from '@/db/queries/upsert-person'
 import { lockStudy } from '@/db/queries/studies'
 import type { AnonymousContext } from '@/lib/context'
 import { NotFound, Refusal } from '@/lib/domain/errors'

@@ -1,6 +1,6 @@
 import { readClock } from '@/db/queries/clock'
 import { listInvitations, readKey, type InvitationRecord } from '@/db/queries/laboratories'
-import { listMailStates, type MailState } from '@/db/queries/mail'
+import { listMailStates, type MailState } from '@/db/queries/mail-states'
 import { findStudyFor, type StudyRecord } from '@/db/queries/studies'
 import type { Context } from '@/lib/context'
 import { NotFound } from '@/lib/domain/errors'
