@@ -10,15 +10,16 @@ if (!relayPort || !smtpPort || !webPort || !folder) {
 }
 
 mkdirSync(`${folder}/messages`, { recursive: true })
-const mailbox = await startMailbox({
-  smtpPort: Number(smtpPort),
-  webPort: Number(webPort),
-  folder: `${folder}/messages`,
-})
+// The relay first: once the mailbox answers, all of the service does.
 const relay = await startMailRelay({
   port: Number(relayPort),
   mailboxPort: Number(smtpPort),
   refusedFile: `${folder}/refused.json`,
+})
+const mailbox = await startMailbox({
+  smtpPort: Number(smtpPort),
+  webPort: Number(webPort),
+  folder: `${folder}/messages`,
 })
 
 for (const signal of ['SIGINT', 'SIGTERM'] as const) {

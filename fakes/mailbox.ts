@@ -8,7 +8,11 @@ interface Options {
 }
 
 /** The mailbox of everyone in the demonstration and the tests, read in a browser on loopback. */
-export async function startMailbox({ smtpPort, webPort, folder }: Options): Promise<{ close(): Promise<void> }> {
+export async function startMailbox({
+  smtpPort,
+  webPort,
+  folder,
+}: Options): Promise<{ close(): Promise<void> }> {
   const mailbox = new MailDev({
     smtp: smtpPort,
     web: webPort,

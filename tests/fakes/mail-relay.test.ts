@@ -27,7 +27,12 @@ afterAll(async () => {
 
 function send(to: string) {
   const transport = createTransport({ host: '127.0.0.1', port: relay.port, ignoreTLS: true })
-  return transport.sendMail({ from: 'studies@evenlot.example', to, subject: `For ${to}`, text: 'Grüße, 5 µm' })
+  return transport.sendMail({
+    from: 'studies@evenlot.example',
+    to,
+    subject: `For ${to}`,
+    text: 'Grüße, 5 µm',
+  })
 }
 
 async function subjects(): Promise<string[]> {

@@ -1,0 +1,35 @@
+import { migrateDatabase } from '@/db/commands/migrate-database'
+import { readStartConfig } from '@/lib/config'
+import { Children } from './children'
+import { ensureBuild } from './product-build'
+import { startProduct } from './product-processes'
+import { nextStopSignal, runUntilStopped } from './run-until-stopped'
+
+/** Runs the product for real: no demonstration, no fakes, no person but those its administrator makes. */
+export async function startOnOutsideServices(root: string): Promise<number> {
+  const { databaseOwnerUrl, ...config } = readStartConfig(process.env)
+  const stopRequested = nextStopSignal()
+  const say = (line: string) => console.log(line)
+
+  await ensureBuild(root, say)
+  const ran = await migrateDatabase(databaseOwnerUrl)
+  if (ran.length > 0) say(`Migrated: ${ran.join(', ')}`)
+
+  const children = new Children()
+  try {
+    const env = {
+      DATABASE_URL: config.databaseUrl,
+      DATABASE_READER_URL: config.databaseReaderUrl,
+      BASE_URL: config.baseUrl,
+      AUTH_SECRET: config.authSecret,
+      SMTP_URL: config.smtpUrl,
+      MAIL_FROM: config.mailFrom,
+    }
+    await startProduct({ root, children, env, port: config.port })
+    say(`Evenlot answers on 127.0.0.1:${config.port} for ${config.baseUrl}.`)
+    say('The first administrator is made with: npm run create-administrator -- name@organisation.example')
+    return await runUntilStopped(children, stopRequested)
+  } finally {
+    await children.stopAll()
+  }
+}
