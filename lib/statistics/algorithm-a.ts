@@ -33,14 +33,14 @@ const MOST_ITERATIONS = 10_000
 
 export function algorithmA(values: readonly number[]): AlgorithmA {
   const count = values.length
-  if (count < 3) throw new NotComputable('too-few-laboratories', 'Algorithm A needs three laboratories')
+  if (count < 3) throw new NotComputable('too-few-laboratories', 'Algorithm A needs three laboratories.')
 
   let mean = median(values)
   const centre = mean
   let sd = MAD_FACTOR * median(values.map((value) => Math.abs(value - centre)))
   const largest = Math.max(...values.map((value) => Math.abs(value)))
   if (sd <= 8 * Number.EPSILON * largest) {
-    throw new NotComputable('majority-equal', 'more than half of the cell means are equal')
+    throw new NotComputable('majority-equal', 'More than half of the cell means are equal.')
   }
 
   for (let iterations = 1; iterations <= MOST_ITERATIONS; iterations += 1) {
@@ -50,10 +50,11 @@ export function algorithmA(values: readonly number[]): AlgorithmA {
     const nextMean = drawnIn.reduce((sum, value) => sum + value, 0) / count
     const squares = drawnIn.reduce((sum, value) => sum + (value - nextMean) ** 2, 0)
     const nextSd = SPREAD_FACTOR * Math.sqrt(squares / (count - 1))
-    const still = Math.abs(nextMean - mean) <= TOLERANCE * nextSd && Math.abs(nextSd - sd) <= TOLERANCE * nextSd
+    const still =
+      Math.abs(nextMean - mean) <= TOLERANCE * nextSd && Math.abs(nextSd - sd) <= TOLERANCE * nextSd
     mean = nextMean
     sd = nextSd
     if (still) return { mean, sd, meanStandardError: (1.25 * sd) / Math.sqrt(count), iterations }
   }
-  throw new NotComputable('no-convergence', 'Algorithm A did not settle')
+  throw new NotComputable('no-convergence', 'Algorithm A did not settle.')
 }

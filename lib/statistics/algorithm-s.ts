@@ -24,11 +24,11 @@ const CLIPPED_SHARE = 0.1
 export function algorithmS(cells: readonly { sd: number; df: number }[]): AlgorithmS {
   const replicated = cells.filter(({ df }) => df >= 1)
   if (replicated.length === 0) {
-    throw new NotComputable('no-replication', 'no cell holds two results')
+    throw new NotComputable('no-replication', 'No cell holds two results.')
   }
   const start = median(replicated.map(({ sd }) => sd))
   if (start === 0) {
-    throw new NotComputable('majority-zero', 'the median of the cell standard deviations is 0')
+    throw new NotComputable('majority-zero', 'The median of the cell standard deviations is 0.')
   }
 
   const constants = new Map([...new Set(replicated.map(({ df }) => df))].map((df) => [df, constantsFor(df)]))
@@ -38,13 +38,16 @@ export function algorithmS(cells: readonly { sd: number; df: number }[]): Algori
   let variance = start ** 2
   for (let iterations = 1; iterations <= MOST_ITERATIONS; iterations += 1) {
     const limit = variance
-    const sum = terms.reduce((total, term) => total + term.df * Math.min(term.variance, term.limitSquared * limit), 0)
+    const sum = terms.reduce(
+      (total, term) => total + term.df * Math.min(term.variance, term.limitSquared * limit),
+      0,
+    )
     variance = sum / divisor
     if (Math.abs(variance - limit) <= TOLERANCE * variance) {
       return { sd: Math.sqrt(variance), generalised: constants.size > 1, iterations }
     }
   }
-  throw new NotComputable('no-convergence', 'Algorithm S did not settle')
+  throw new NotComputable('no-convergence', 'Algorithm S did not settle.')
 }
 
 /** η² for the degrees of freedom, and ξ⁻², the share of the variance that clipping leaves in normal data. */

@@ -12,7 +12,7 @@ export function censoredMedian(
   means: readonly number[],
   bounds: readonly { below: number | null; above: number | null }[],
 ): number {
-  if (means.length + bounds.length === 0) throw new NotComputable('no-results', 'there is no result')
+  if (means.length + bounds.length === 0) throw new NotComputable('no-results', 'There is no result.')
   const standing = bounds.map(({ below, above }) => below ?? above ?? notClear())
   const ranked = [...means, ...standing].sort((one, other) => one - other)
   const lowerMiddle = ranked[Math.ceil(ranked.length / 2) - 1]!
@@ -25,5 +25,8 @@ export function censoredMedian(
 }
 
 function notClear(): never {
-  throw new NotComputable('median-not-clear', 'the median does not lie clear of the limits of the censored results')
+  throw new NotComputable(
+    'median-not-clear',
+    'The median does not lie clear of the limits of the censored results.',
+  )
 }

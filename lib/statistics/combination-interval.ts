@@ -64,7 +64,7 @@ export function satterthwaiteInterval(terms: readonly WeightedMeanSquare[]): Sat
     spread += (weight * ms) ** 2 / df
   }
   if (!(estimate > 0)) {
-    throw new NotComputable('not-positive', 'the estimated variance is not above 0')
+    throw new NotComputable('not-positive', 'The estimated variance is not above 0.')
   }
   const df = estimate ** 2 / spread
   return {

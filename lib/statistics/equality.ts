@@ -21,9 +21,13 @@ export function referenceCurve(one: { variance: number; df: number; n: number })
 }
 
 /** @throws {NotComputable} `too-few-laboratories` below 2; `no-scatter` when the scale is 0. */
-export function averageRange(averages: readonly number[], curve: ReferenceCurve): { range: number; pValue: number } {
-  if (averages.length < 2) throw new NotComputable('too-few-laboratories', 'two laboratories are needed')
-  if (curve.scale === 0) throw new NotComputable('no-scatter', 'the results inside the laboratories do not differ')
+export function averageRange(
+  averages: readonly number[],
+  curve: ReferenceCurve,
+): { range: number; pValue: number } {
+  if (averages.length < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
+  if (curve.scale === 0)
+    throw new NotComputable('no-scatter', 'The results inside the laboratories do not differ.')
   const range = (Math.max(...averages) - Math.min(...averages)) / curve.scale
   return { range, pValue: studentizedRangeUpperTail(range, averages.length, curve.df) }
 }

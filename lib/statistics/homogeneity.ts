@@ -23,12 +23,12 @@ export type HomogeneityFigures = {
 /** @throws {NotComputable} `too-few-units` below 2; `unequal-portions`; `no-replication`. */
 export function homogeneityFigures(units: readonly (readonly number[])[]): HomogeneityFigures {
   const g = units.length
-  if (g < 2) throw new NotComputable('too-few-units', 'two units are needed')
+  if (g < 2) throw new NotComputable('too-few-units', 'Two units are needed.')
   const n = units[0]!.length
   if (units.some((unit) => unit.length !== n)) {
-    throw new NotComputable('unequal-portions', 'every unit must have the same number of test portions')
+    throw new NotComputable('unequal-portions', 'Every unit must have the same number of test portions.')
   }
-  if (n < 2) throw new NotComputable('no-replication', 'every unit needs two test portions')
+  if (n < 2) throw new NotComputable('no-replication', 'Every unit needs two test portions.')
 
   const means = units.map((unit) => unit.reduce((sum, value) => sum + value, 0) / n)
   const centre = means.reduce((sum, value) => sum + value, 0) / g
@@ -65,7 +65,7 @@ export function homogeneityVerdict(
 
 /** @throws {NotComputable} `no-scatter` when the portions of a unit never differ. */
 export function homogeneityPValue(figures: HomogeneityFigures, units: number): number {
-  if (figures.sw === 0) throw new NotComputable('no-scatter', 'the portions of a unit do not differ')
+  if (figures.sw === 0) throw new NotComputable('no-scatter', 'The portions of a unit do not differ.')
   const f = (figures.portions * figures.sx ** 2) / figures.sw ** 2
   return fUpperTail(f, units - 1, units * (figures.portions - 1))
 }

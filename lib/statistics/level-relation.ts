@@ -46,15 +46,20 @@ export function linearRelation(points: readonly LevelPoint[]): {
     const { a, b } = line
     const fitted = usable.map(({ mean }) => a + b * mean)
     if (fitted.some((value) => value <= 0)) {
-      throw new NotComputable('negative-fit', 'the straight line gives a standard deviation that is not above 0')
+      throw new NotComputable(
+        'negative-fit',
+        'The straight line gives a standard deviation that is not above 0.',
+      )
     }
     const next = weightedLine(usable, fitted)
-    const moved = usable.map(({ mean }, index) => Math.abs(next.a + next.b * mean - fitted[index]!) / fitted[index]!)
+    const moved = usable.map(
+      ({ mean }, index) => Math.abs(next.a + next.b * mean - fitted[index]!) / fitted[index]!,
+    )
     line = next
     if (fit === 3) third = line
     if (fit >= 3 && Math.max(...moved) < FIT_TOLERANCE) return { third, converged: line }
   }
-  throw new NotComputable('no-convergence', 'the weighted fits did not settle')
+  throw new NotComputable('no-convergence', 'The weighted fits did not settle.')
 }
 
 /** @throws {NotComputable} `too-few-materials` below 3 with s > 0 and m > 0; `one-level`. */
@@ -90,7 +95,7 @@ export function relationQuality(
   for (const { mean, sd } of usable) {
     const value = fitted(mean)
     if (!(value > 0)) {
-      throw new NotComputable('negative-fit', 'the form gives a standard deviation that is not above 0')
+      throw new NotComputable('negative-fit', 'The form gives a standard deviation that is not above 0.')
     }
     sum += Math.log(sd / value) ** 2
   }
@@ -119,7 +124,7 @@ const SIMPLEST_FIRST: readonly FormName[] = ['proportional', 'linear', 'power']
 
 function requireMaterials(points: readonly LevelPoint[], least: number): void {
   if (points.length < least) {
-    throw new NotComputable('too-few-materials', `this form needs ${least} materials it can use`)
+    throw new NotComputable('too-few-materials', `This form needs ${least} materials it can use.`)
   }
 }
 
@@ -135,7 +140,7 @@ function weightedLine(points: readonly LevelPoint[], spreads: readonly number[])
     products += weights[index]! * (mean - centre) * (sd - height)
     squares += weights[index]! * (mean - centre) ** 2
   })
-  if (!(squares > 0)) throw new NotComputable('one-level', 'all materials lie at one level')
+  if (!(squares > 0)) throw new NotComputable('one-level', 'All materials lie at one level.')
   const b = products / squares
   return { a: height - b * centre, b }
 }

@@ -32,13 +32,19 @@ export type NestedTest = {
 }
 
 /**
- * @throws {NotComputable} `too-few-results` when nothing is left to compare.
+ * @throws {NotComputable} `too-few-results` when nothing is left to compare; `out-of-range`.
  */
 export function nestedAnova(layout: NestedLayout): NestedAnova {
   if (layout.strata.length === 0) {
-    throw new NotComputable('too-few-results', 'an analysis of variance needs two results')
+    throw new NotComputable('too-few-results', 'An analysis of variance needs two results.')
   }
   const rows = anovaRows(layout)
+  if (!rows.every(({ ss }) => ss === 0 || (ss > 1e-300 && ss < 1e300))) {
+    throw new NotComputable(
+      'out-of-range',
+      'The results are too large or too small to be squared; change their unit.',
+    )
+  }
   return { rows, components: varianceComponents(rows) }
 }
 
@@ -70,7 +76,7 @@ export function nestedTest(rows: readonly AnovaRow[], source: string): NestedTes
   const level = rows.findIndex((row) => row.source === source)
   const tested = rows[level]!
   const below = rows.slice(level + 1)
-  if (below.length === 0) throw new NotComputable('residual', 'the residual is tested against nothing')
+  if (below.length === 0) throw new NotComputable('residual', 'The residual is tested against nothing.')
 
   const underNoEffect = Object.fromEntries(below.map((row) => [row.source, tested.ems[row.source]!]))
   const weights = weightsFor(below, underNoEffect)
@@ -82,7 +88,7 @@ export function nestedTest(rows: readonly AnovaRow[], source: string): NestedTes
     spread += part ** 2 / row.df
   })
   if (!(ms > 0)) {
-    throw new NotComputable('no-denominator', 'the mean square to test against is not positive')
+    throw new NotComputable('no-denominator', 'The mean square to test against is not positive.')
   }
 
   const used = weights.filter((weight) => weight !== 0)

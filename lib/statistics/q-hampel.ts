@@ -26,9 +26,12 @@ export type DecimalStep = number
  * @throws {NotComputable} `too-few-laboratories` below 3; `all-equal`.
  */
 export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
-  if (cells.length < 3) throw new NotComputable('too-few-laboratories', 'the Q method needs three laboratories')
+  if (cells.length < 3)
+    throw new NotComputable('too-few-laboratories', 'The Q method needs three laboratories.')
   const multiple = cells.reduce((common, cell) => leastCommonMultiple(common, BigInt(cell.length)), 1n)
-  const means = cells.map((cell) => cell.reduce((sum, one) => sum + one, 0n) * (multiple / BigInt(cell.length)))
+  const means = cells.map(
+    (cell) => cell.reduce((sum, one) => sum + one, 0n) * (multiple / BigInt(cell.length)),
+  )
   const differences: WeightedDifference[] = []
   const weight = 2 / (cells.length * (cells.length - 1))
   means.forEach((one, index) => {
@@ -47,7 +50,7 @@ export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
  */
 export function qReproducibility(cells: IntegerCells, step: DecimalStep): number {
   const count = cells.length
-  if (count < 2) throw new NotComputable('too-few-laboratories', 'two laboratories are needed')
+  if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
   const differences: WeightedDifference[] = []
   cells.forEach((cell, index) => {
     for (const other of cells.slice(index + 1)) {
@@ -66,7 +69,7 @@ export function qReproducibility(cells: IntegerCells, step: DecimalStep): number
  */
 export function qRepeatability(cells: IntegerCells, step: DecimalStep): number {
   const replicated = cells.filter((cell) => cell.length >= 2)
-  if (replicated.length === 0) throw new NotComputable('no-replication', 'no cell holds two results')
+  if (replicated.length === 0) throw new NotComputable('no-replication', 'No cell holds two results.')
   const differences: WeightedDifference[] = []
   for (const cell of replicated) {
     const weight = 2 / (replicated.length * cell.length * (cell.length - 1))
@@ -124,7 +127,7 @@ const WITHIN: Reading = { share: 0.5, probability: 0.75, probabilityOfTies: 0.25
 
 function spreadFrom(differences: readonly WeightedDifference[], reading: Reading): number {
   const steps = cumulate(differences)
-  if (steps.at(-1)!.size === 0n) throw new NotComputable('all-equal', 'all the values are equal')
+  if (steps.at(-1)!.size === 0n) throw new NotComputable('all-equal', 'All the values are equal.')
   const ties = steps[0]!.size === 0n ? steps[0]!.cumulated : 0
   const target = reading.share + (1 - reading.share) * ties
   const normal = Math.SQRT2 * normalQuantile(reading.probability + reading.probabilityOfTies * ties)
@@ -135,7 +138,8 @@ function spreadFrom(differences: readonly WeightedDifference[], reading: Reading
   for (const { size, cumulated } of steps) {
     const share = size === 0n ? 0 : (beforeCumulated + cumulated) / 2
     if (share >= target) {
-      const reached = beforeSize + ((Number(size) - beforeSize) * (target - beforeShare)) / (share - beforeShare)
+      const reached =
+        beforeSize + ((Number(size) - beforeSize) * (target - beforeShare)) / (share - beforeShare)
       return reached / normal
     }
     beforeSize = Number(size)
@@ -144,11 +148,13 @@ function spreadFrom(differences: readonly WeightedDifference[], reading: Reading
   }
   // The polygon ends half a step short of 1; with nearly all differences equal
   // to 0 the target lies above its end.
-  throw new NotComputable('all-equal', 'too many of the values are equal')
+  throw new NotComputable('all-equal', 'Too many of the values are equal.')
 }
 
 function cumulate(differences: readonly WeightedDifference[]): { size: bigint; cumulated: number }[] {
-  const sorted = [...differences].sort((one, other) => (one.size < other.size ? -1 : one.size > other.size ? 1 : 0))
+  const sorted = [...differences].sort((one, other) =>
+    one.size < other.size ? -1 : one.size > other.size ? 1 : 0,
+  )
   const steps: { size: bigint; cumulated: number }[] = []
   let cumulated = 0
   for (const { size, weight } of sorted) {

@@ -35,12 +35,12 @@ const MOST_STEPS = 200
 export function fitReml(layout: NestedLayout, startRatios: readonly number[]): RemlFit {
   const { strata } = layout
   const residual = strata.at(-1)
-  if (residual === undefined) throw new NotComputable('too-few-results', 'two results are needed')
+  if (residual === undefined) throw new NotComputable('too-few-results', 'Two results are needed.')
   const within = withinSumOfSquares(layout)
   if (within === 0) {
     throw new NotComputable(
       'no-residual',
-      'the innermost results do not differ, so the likelihood has no maximum',
+      'The innermost results do not differ, so the likelihood has no maximum.',
     )
   }
 

@@ -57,7 +57,8 @@ function finerPlace(...figures: readonly (number | null)[]): number | null {
 }
 
 function rounded(figure: number | null, place: number | null): string {
-  if (figure === null) throw new NotComputable('nothing-to-round', 'the figure itself could not be computed')
-  if (place === null) throw new NotComputable('no-place', 'no standard deviation above 0 sets the last digit')
+  if (figure === null) throw new NotComputable('nothing-to-round', 'The figure itself could not be computed.')
+  if (place === null)
+    throw new NotComputable('no-place', 'No standard deviation above 0 sets the last digit.')
   return roundHalfEvenAtPlace(figure, place)
 }

@@ -19,8 +19,8 @@ export function biasInterval(one: {
   varianceOfMean: number
   referenceUncertainty: number
 }): BiasInterval {
-  if (one.laboratories < 2) throw new NotComputable('too-few-laboratories', 'two laboratories are needed')
-  if (one.varianceOfMean === 0) throw new NotComputable('no-scatter', 'the results do not differ at all')
+  if (one.laboratories < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
+  if (one.varianceOfMean === 0) throw new NotComputable('no-scatter', 'The results do not differ at all.')
   const together = one.varianceOfMean + one.referenceUncertainty ** 2
   const df = ((one.laboratories - 1) * together ** 2) / one.varianceOfMean ** 2
   const half = tQuantileUpper(0.025, df) * Math.sqrt(together)

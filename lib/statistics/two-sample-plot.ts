@@ -20,7 +20,7 @@ export type PlotSpread = {
 /** @throws {NotComputable} `too-few-laboratories` below 2. */
 export function plotSpread(points: readonly PlotPoint[]): PlotSpread {
   const count = points.length
-  if (count < 2) throw new NotComputable('too-few-laboratories', 'two laboratories must have both materials')
+  if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories must have both materials.')
   const mean: [number, number] = [0, 0]
   for (const { x, y } of points) {
     mean[0] += x / count
@@ -40,7 +40,8 @@ export function plotSpread(points: readonly PlotPoint[]): PlotSpread {
 
 /** @throws {NotComputable} `no-scatter` when one material's means are all equal. */
 export function correlation({ sd, covariance }: PlotSpread): number {
-  if (sd[0] === 0 || sd[1] === 0) throw new NotComputable('no-scatter', 'the cell means of a material are all equal')
+  if (sd[0] === 0 || sd[1] === 0)
+    throw new NotComputable('no-scatter', 'The cell means of a material are all equal.')
   return Math.min(1, Math.max(-1, covariance / (sd[0] * sd[1])))
 }
 
@@ -53,7 +54,7 @@ export function correlation({ sd, covariance }: PlotSpread): number {
  */
 export function predictionFactor(laboratories: number): number {
   const p = laboratories
-  if (p < 4) throw new NotComputable('too-few-laboratories', 'the ellipse needs four laboratories')
+  if (p < 4) throw new NotComputable('too-few-laboratories', 'The ellipse needs four laboratories.')
   return ((2 * (p ** 2 - 1)) / (p * (p - 2))) * fQuantileUpper(0.05, 2, p - 2)
 }
 
@@ -68,7 +69,7 @@ export function squaredDistance(spread: PlotSpread, point: PlotPoint): number {
   const variances = [spread.sd[0] ** 2, spread.sd[1] ** 2] as const
   const determinant = variances[0] * variances[1] - spread.covariance ** 2
   if (!(determinant > variances[0] * variances[1] * 1e-14)) {
-    throw new NotComputable('on-a-line', 'the laboratories lie on one line')
+    throw new NotComputable('on-a-line', 'The laboratories lie on one line.')
   }
   const x = point.x - spread.mean[0]
   const y = point.y - spread.mean[1]
@@ -82,7 +83,7 @@ export function squaredDistance(spread: PlotSpread, point: PlotPoint): number {
  * @throws {NotComputable} `too-few-laboratories` below 4.
  */
 export function ownPValue(distance2: number, laboratories: number): number {
-  if (laboratories < 4) throw new NotComputable('too-few-laboratories', 'a p-value needs four laboratories')
+  if (laboratories < 4) throw new NotComputable('too-few-laboratories', 'A p-value needs four laboratories.')
   const share = (distance2 * laboratories) / (laboratories - 1) ** 2
   return Math.max(0, 1 - share) ** ((laboratories - 3) / 2)
 }

@@ -30,12 +30,25 @@ describe('parseDecimal', () => {
     expect(parseDecimal(text)).toEqual({ units, scale })
   })
 
-  it.each(['', '.', '-', '1,5', '1.2.3', ' 1', '1 ', '0x10', '1e', 'e5', 'NaN', 'Infinity', '1_0', '--1', '<0.5'])(
-    'refuses "%s"',
-    (text) => {
-      expect(() => parseDecimal(text)).toThrow(RangeError)
-    },
-  )
+  it.each([
+    '',
+    '.',
+    '-',
+    '1,5',
+    '1.2.3',
+    ' 1',
+    '1 ',
+    '0x10',
+    '1e',
+    'e5',
+    'NaN',
+    'Infinity',
+    '1_0',
+    '--1',
+    '<0.5',
+  ])('refuses "%s"', (text) => {
+    expect(() => parseDecimal(text)).toThrow(RangeError)
+  })
 
   it('refuses a number whose digits would fill the memory', () => {
     expect(() => parseDecimal('1e999999999')).toThrow(RangeError)
@@ -77,7 +90,11 @@ describe('differences and order of decimals', () => {
 
 describe('centreExactly', () => {
   it('leaves no trace of an offset of a million million', () => {
-    const { offset, deviations, restore } = centreExactly(['1000000000000.4', '1000000000000.3', '1000000000000.5'])
+    const { offset, deviations, restore } = centreExactly([
+      '1000000000000.4',
+      '1000000000000.3',
+      '1000000000000.5',
+    ])
     expect([...deviations]).toEqual([0, -0.1, 0.1])
     expect(decimalToText(offset)).toBe('1000000000000.4')
     expect(restore(0.1)).toBe(1000000000000.5)
@@ -97,7 +114,10 @@ describe('centreExactly', () => {
   })
 
   it('gives the double nearest to the exact difference, by the quick way and the slow', () => {
-    const decimal = fc.tuple(fc.bigInt({ min: -(10n ** 17n), max: 10n ** 17n }), fc.integer({ min: -3, max: 24 }))
+    const decimal = fc.tuple(
+      fc.bigInt({ min: -(10n ** 17n), max: 10n ** 17n }),
+      fc.integer({ min: -3, max: 24 }),
+    )
     fc.assert(
       fc.property(fc.array(decimal, { minLength: 1, maxLength: 12 }), (values) => {
         const texts = values.map(([units, scale]) => decimalToText({ units, scale }))
@@ -151,10 +171,14 @@ describe('roundHalfEvenAtPlace', () => {
 
   it('lies within half a unit of what it rounds', () => {
     fc.assert(
-      fc.property(fc.double({ min: -1e6, max: 1e6, noNaN: true }), fc.integer({ min: -6, max: 3 }), (x, place) => {
-        const rounded = Number(roundHalfEvenAtPlace(x, place))
-        expect(Math.abs(rounded - x)).toBeLessThanOrEqual(0.5 * 10 ** place * (1 + 1e-9))
-      }),
+      fc.property(
+        fc.double({ min: -1e6, max: 1e6, noNaN: true }),
+        fc.integer({ min: -6, max: 3 }),
+        (x, place) => {
+          const rounded = Number(roundHalfEvenAtPlace(x, place))
+          expect(Math.abs(rounded - x)).toBeLessThanOrEqual(0.5 * 10 ** place * (1 + 1e-9))
+        },
+      ),
       { seed },
     )
   })

@@ -4,6 +4,8 @@ import type { Reasons } from '@/lib/statistics/analysis-document'
 /** Computes one quantity of a block, or leaves `null` and notes the reason under its key. */
 export type Attempt = <Value>(key: string, compute: () => Value) => Value | null
 
+const OUT_OF_RANGE = 'The results are too large or too small to be squared; change their unit.'
+
 /**
  * Builds one block of the analysis document. This is the one place where a
  * statistic that does not exist turns into `null` and words.
@@ -19,6 +21,11 @@ export function withReasons<Block extends object>(build: (attempt: Attempt) => B
       return null
     }
   })
+  for (const [key, value] of Object.entries(block)) {
+    if (typeof value !== 'number' || Number.isFinite(value)) continue
+    reasons[key] = OUT_OF_RANGE
+    Object.assign(block, { [key]: null })
+  }
   const first = Object.values(reasons)[0]
   if (first === undefined) return block
   // One computation often gives several keys; they are missing for one reason.
@@ -34,4 +41,20 @@ export function notComputable(reason: string, words: string): never {
 /** The value, or the failure that explains why another quantity that needs it is missing too. */
 export function required<Value>(value: Value | null, words: string): Value {
   return value ?? notComputable('needs-another', words)
+}
+
+/** Computes at most once; every later call gives the same value, or the same failure. */
+export function once<Value>(compute: () => Value): () => Value {
+  let outcome: { value: Value } | { failure: unknown } | undefined
+  return () => {
+    if (outcome === undefined) {
+      try {
+        outcome = { value: compute() }
+      } catch (failure) {
+        outcome = { failure }
+      }
+    }
+    if ('failure' in outcome) throw outcome.failure
+    return outcome.value
+  }
 }

@@ -27,7 +27,7 @@ function levelPoints(
   })
 }
 
-const NOT_FITTED = 'the form could not be fitted'
+const NOT_FITTED = 'The form could not be fitted.'
 
 function forms(points: readonly LevelPoint[]): RelationForms {
   const proportional = withReasons((attempt) => {
@@ -76,7 +76,7 @@ function forms(points: readonly LevelPoint[]): RelationForms {
     proposed: attempt('proposed', () =>
       required(
         proposedForm({ proportional: proportional.q, linear: linear.q, power: power.q }),
-        'no form could be compared',
+        'No form could be compared.',
       ),
     ),
     leftOut: materialsLeftOut(points),

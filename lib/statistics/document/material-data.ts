@@ -1,6 +1,12 @@
 import type { AnalysisResult } from '@/lib/statistics/analysis-input'
 import type { CensoredBlock } from '@/lib/statistics/analysis-document'
-import { centreExactly, type Decimal, parseDecimal, subtractDecimals, toCommonScale } from '@/lib/statistics/decimal'
+import {
+  centreExactly,
+  type Decimal,
+  parseDecimal,
+  subtractDecimals,
+  toCommonScale,
+} from '@/lib/statistics/decimal'
 
 /** The results of one laboratory for one material that carry a number and take part. */
 export type MaterialCell = {

@@ -2,7 +2,13 @@ import { algorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
 import type { RobustBlock } from '@/lib/statistics/analysis-document'
 import { required, withReasons } from '@/lib/statistics/document/attempt'
-import { hampelLocation, type IntegerCells, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+import {
+  hampelLocation,
+  type IntegerCells,
+  qOfCellMeans,
+  qRepeatability,
+  qReproducibility,
+} from '@/lib/statistics/q-hampel'
 
 /** What the robust estimates are made from: one entry a laboratory, all in the same order. */
 export type RobustInput = {
@@ -27,7 +33,7 @@ export function robustBlock(input: RobustInput): RobustBlock {
     qHampel: withReasons((attempt) => {
       const sd = attempt('sd', () => qOfCellMeans(input.integers, input.step))
       const mean = attempt('mean', () =>
-        hampelLocation(input.cellMeans, required(sd, 'the spread of the Q method could not be computed')),
+        hampelLocation(input.cellMeans, required(sd, 'The spread of the Q method could not be computed.')),
       )
       return { mean: mean === null ? null : input.restore(mean), sd }
     }),
@@ -63,7 +69,7 @@ function robustReproducibility(
   pooledSd: number | null,
   harmonicCellSize: number,
 ): RobustBlock['reproducibility'] {
-  const words = 'it needs Algorithm A and Algorithm S'
+  const words = 'It needs Algorithm A and Algorithm S.'
   const between = (): number => {
     const variance = required(meansSd, words) ** 2 - required(pooledSd, words) ** 2 / harmonicCellSize
     return Math.max(0, variance)

@@ -1,0 +1,12 @@
+/**
+ * A power of two near the largest of the values, 1 when all are 0.
+ *
+ * Divided by it (exactly, as only the exponent changes) values of 1e-300 or 1e300 can be squared like any others.
+ */
+export function binaryScale(values: Iterable<number>): number {
+  let largest = 0
+  for (const value of values) largest = Math.max(largest, Math.abs(value))
+  if (largest === 0) return 1
+  // Held short of the ends of the exponent's range, so that dividing by it cannot overflow either.
+  return 2 ** Math.max(-1000, Math.min(1000, Math.floor(Math.log2(largest))))
+}

@@ -1,0 +1,68 @@
+import { binaryScale } from '@/lib/statistics/binary-scale'
+
+/** The results of one laboratory for one material, already centred exactly on the material's offset. */
+export interface Cell {
+  readonly laboratory: string
+  readonly deviations: readonly number[] | Float64Array
+}
+
+/**
+ * What the one-way statistics need of a cell, in the unit of its results.
+ *
+ * In a nested layout `mean` is the mean of all the laboratory's results, `sd` the pooled innermost standard deviation and
+ * `df` its degrees of freedom, which is then less than n - 1.
+ */
+export interface CellSummary {
+  readonly laboratory: string
+  readonly n: number
+  readonly mean: number
+  /** Absent where df is 0: a single result has no scatter. */
+  readonly sd: number | undefined
+  readonly df: number
+}
+
+/** A summary that has a standard deviation. */
+export interface ReplicatedCell extends CellSummary {
+  readonly sd: number
+}
+
+/**
+ * Number, mean and standard deviation of each cell, in the order given; cells without a result are left out.
+ *
+ * Each cell is centred once more on its first result, so that equal results have exactly no scatter, and the sum of
+ * squares is corrected for what rounding left in the mean.
+ *
+ * @throws {RangeError} when a deviation is no finite number.
+ */
+export function summariseCells(cells: readonly Cell[]): CellSummary[] {
+  return cells.filter((cell) => cell.deviations.length > 0).map(summarise)
+}
+
+/** The cells that have a standard deviation of their own. */
+export function replicatedCells(summaries: readonly CellSummary[]): ReplicatedCell[] {
+  return summaries.filter((cell): cell is ReplicatedCell => cell.df >= 1 && cell.sd !== undefined)
+}
+
+function summarise({ laboratory, deviations }: Cell): CellSummary {
+  const n = deviations.length
+  const first = deviations[0] as number
+  const shifted = Float64Array.from(deviations, (deviation) => deviation - first)
+  if (!shifted.every(Number.isFinite))
+    throw new RangeError(`a deviation of ${laboratory} is no finite number`)
+
+  const scale = binaryScale(shifted)
+  let sum = 0
+  for (const value of shifted) sum += value / scale
+  const middle = sum / n
+
+  let squares = 0
+  let left = 0
+  for (const value of shifted) {
+    const residual = value / scale - middle
+    squares += residual * residual
+    left += residual
+  }
+  const mean = first + (middle + left / n) * scale
+  const sd = n < 2 ? undefined : Math.sqrt(Math.max(0, squares - (left * left) / n) / (n - 1)) * scale
+  return { laboratory, n, mean, sd, df: n - 1 }
+}

@@ -1,0 +1,152 @@
+import type {
+  CochranBlock,
+  ConsistencyCriticalValues,
+  CriticalBlock,
+  GeneralisedCochranBlock,
+  NestingLevelBlock,
+  OutlierLevel,
+  Reasons,
+} from '@/lib/statistics/analysis-document'
+import { type CellSummary, replicatedCells } from '@/lib/statistics/cells'
+import {
+  type Cochran,
+  cochran,
+  cochranCritical,
+  type GeneralisedCochran,
+  generalisedCochran,
+  generalisedCochranCritical,
+} from '@/lib/statistics/cochran'
+import { once, required, withReasons } from '@/lib/statistics/document/attempt'
+import type { LevelSummaries } from '@/lib/statistics/laboratory-summaries'
+import {
+  mandelHCritical,
+  type MandelK,
+  mandelK,
+  mandelKCritical,
+  mandelKPValue,
+} from '@/lib/statistics/mandel'
+
+const NO_SCATTER_HERE = 'This laboratory has no second result to compare at this level.'
+
+type Critical = ConsistencyCriticalValues & Reasons
+
+/** Critical values of h for the laboratories at hand, and of k for each cell size that occurs. */
+export function criticalBlock(summaries: readonly CellSummary[], isNested: boolean): CriticalBlock {
+  const replicated = replicatedCells(summaries)
+  const pooledDf = replicated.reduce((sum, { df }) => sum + df, 0)
+  const dfs = [...new Set(replicated.map(({ df }) => df))].sort((one, other) => one - other)
+  const kByDf = Object.fromEntries(dfs.map((df) => [String(df), kCriticalBlock(df, pooledDf)]))
+  return {
+    h: hCriticalBlock(summaries.length),
+    k: isNested ? {} : Object.fromEntries(dfs.map((df) => [String(df + 1), kByDf[String(df)]!])),
+    kByDf,
+  }
+}
+
+export function kCriticalBlock(df: number, pooledDf: number): Critical {
+  return withReasons((attempt) => ({
+    '0.005': attempt('0.005', () => mandelKCritical({ df, pooledDf, alpha: 0.005 })),
+    '0.01': attempt('0.01', () => mandelKCritical({ df, pooledDf, alpha: 0.01 })),
+    '0.05': attempt('0.05', () => mandelKCritical({ df, pooledDf, alpha: 0.05 })),
+  }))
+}
+
+/** k of each laboratory that has one, computed when first asked for. */
+export function kByLaboratory(summaries: readonly CellSummary[]): () => ReadonlyMap<string, MandelK> {
+  return once(() => new Map(mandelK(summaries).map((own) => [own.laboratory, own])))
+}
+
+export function cochranBlock(summaries: readonly CellSummary[], isNested: boolean): CochranBlock {
+  const generalised = generalisedCochranBlock(summaries)
+  return withReasons((attempt) => {
+    const test = attempt('statistic', () => cochran(summaries))
+    return {
+      laboratory: test?.laboratory ?? null,
+      statistic: test?.statistic ?? null,
+      critical: cochranCriticalValues(test),
+      pValue: test?.pValue ?? null,
+      // With unequal cells the standard's statistic is only approximate; the generalised one decides.
+      level: test === null ? null : test.isBalanced ? outlierLevel(test.pValue) : generalised.level,
+      nUsed: test === null || isNested ? null : test.df + 1,
+      dfUsed: test?.df ?? null,
+      laboratoriesUsed: test?.cells ?? null,
+      generalised,
+    }
+  })
+}
+
+export function generalisedCochranBlock(summaries: readonly CellSummary[]): GeneralisedCochranBlock {
+  return withReasons((attempt) => {
+    const test = attempt('statistic', () => generalisedCochran(summaries))
+    return {
+      laboratory: test?.laboratory ?? null,
+      statistic: test?.statistic ?? null,
+      critical: generalisedCriticalValues(test),
+      pValue: test?.pValue ?? null,
+      level: test === null ? null : outlierLevel(test.pValue),
+    }
+  })
+}
+
+/** h, k and Cochran at each level between laboratory and replicate. */
+export function nestingLevelBlocks(levels: readonly LevelSummaries[]): NestingLevelBlock[] {
+  return levels
+    .filter(({ isReplicate }) => !isReplicate)
+    .map(({ source, laboratories }) => ({
+      source,
+      cells: levelCells(laboratories),
+      cochran: generalisedCochranBlock(laboratories),
+    }))
+}
+
+export function outlierLevel(pValue: number): OutlierLevel {
+  if (pValue < 0.01) return 'outlier'
+  return pValue < 0.05 ? 'straggler' : 'none'
+}
+
+function levelCells(laboratories: readonly CellSummary[]): NestingLevelBlock['cells'] {
+  const kStatistics = kByLaboratory(laboratories)
+  return laboratories.map((summary) => levelCell(summary, kStatistics))
+}
+
+function hCriticalBlock(laboratories: number): Critical {
+  return withReasons((attempt) => ({
+    '0.005': attempt('0.005', () => mandelHCritical(laboratories, 0.005)),
+    '0.01': attempt('0.01', () => mandelHCritical(laboratories, 0.01)),
+    '0.05': attempt('0.05', () => mandelHCritical(laboratories, 0.05)),
+  }))
+}
+
+function cochranCriticalValues(test: Cochran | null): CochranBlock['critical'] {
+  if (test === null) return { '0.05': null, '0.01': null }
+  const { cells, df } = test
+  return {
+    '0.05': cochranCritical({ cells, df, alpha: 0.05 }),
+    '0.01': cochranCritical({ cells, df, alpha: 0.01 }),
+  }
+}
+
+function generalisedCriticalValues(test: GeneralisedCochran | null): GeneralisedCochranBlock['critical'] {
+  if (test === null) return { '0.05': null, '0.01': null }
+  const { cells, df, pooledDf } = test
+  return {
+    '0.05': generalisedCochranCritical({ cells, df, pooledDf, alpha: 0.05 }),
+    '0.01': generalisedCochranCritical({ cells, df, pooledDf, alpha: 0.01 }),
+  }
+}
+
+function levelCell(
+  summary: CellSummary,
+  kStatistics: () => ReadonlyMap<string, MandelK>,
+): NestingLevelBlock['cells'][number] {
+  return withReasons((attempt) => {
+    const own = attempt('k', () => required(kStatistics().get(summary.laboratory) ?? null, NO_SCATTER_HERE))
+    return {
+      laboratory: summary.laboratory,
+      df: summary.df,
+      ms: attempt('ms', () => required(summary.sd ?? null, NO_SCATTER_HERE) ** 2),
+      k: own?.k ?? null,
+      kPValue: own === null ? null : attempt('kPValue', () => mandelKPValue(own)),
+    }
+  })
+}

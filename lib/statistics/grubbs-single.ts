@@ -1,0 +1,60 @@
+import type { CellSummary } from '@/lib/statistics/cells'
+import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
+import { NotComputable } from '@/lib/statistics/not-computable'
+import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
+
+export type End = 'high' | 'low'
+
+export interface GrubbsSingle {
+  /** Whose mean lies furthest out; the first of several. */
+  readonly laboratory: string
+  /** G = |ȳ_extreme - ȳ|/s_ȳ, a pure number. */
+  readonly statistic: number
+  readonly laboratories: number
+  readonly pValue: number
+}
+
+/**
+ * Grubbs' test for one outlying cell mean, at the high or the low end.
+ *
+ * Variant: two-sided with Bonferroni's inequality, as in the table of ISO 5725-2, so that p < 0.05 exactly when G is beyond
+ * its 5 % value. The p-value is taken from the distance to the mean of the other means in their own standard
+ * deviation, which is the same t and keeps its digits when one mean has nearly all of the sum of squares.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 3; `equal-means`.
+ *
+ * Source: ISO 5725-2:1994, 7.3.4 and table 5; F. E. Grubbs, Technometrics 11 (1969) 1.
+ */
+export function grubbsSingle(summaries: readonly CellSummary[], end: End): GrubbsSingle {
+  const { centred, sumOfSquares } = spreadOfMeans(summaries, 3)
+  const p = summaries.length
+  const extreme = end === 'high' ? Math.max(...centred) : Math.min(...centred)
+  const index = centred.indexOf(extreme)
+  return {
+    laboratory: (summaries[index] as CellSummary).laboratory,
+    statistic: Math.abs(extreme) / Math.sqrt(sumOfSquares / (p - 1)),
+    laboratories: p,
+    pValue: Math.min(1, 2 * p * tUpperTail(distanceFromOthers(centred, index), p - 2)),
+  }
+}
+
+/**
+ * The G that a share alpha exceeds, both ends together: ((p - 1)/√p) √(t²/(p - 2 + t²)), t the upper alpha/(2p) point.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 3.
+ */
+export function grubbsSingleCritical(laboratories: number, alpha: number): number {
+  if (laboratories < 3) throw new NotComputable('too-few-laboratories', '3 laboratories are needed.')
+  const t = tQuantileUpper(alpha / (2 * laboratories), laboratories - 2)
+  return (laboratories - 1) / Math.sqrt(laboratories * (1 + (laboratories - 2) / t / t))
+}
+
+function distanceFromOthers(values: readonly number[], index: number): number {
+  const others = values.filter((_, at) => at !== index)
+  const count = others.length
+  const mean = others.reduce((sum, value) => sum + value, 0) / count
+  const squares = others.reduce((sum, value) => sum + (value - mean) ** 2, 0)
+  const distance = Math.abs((values[index] as number) - mean)
+  if (squares === 0) return Infinity
+  return distance / Math.sqrt((squares / (count - 1)) * (1 + 1 / count))
+}

@@ -1,0 +1,103 @@
+import type { CellSummary } from '@/lib/statistics/cells'
+import type { NestedLayout, Stratum } from '@/lib/statistics/nested-layout'
+import { RESIDUAL } from '@/lib/statistics/nested-layout'
+
+/**
+ * What each laboratory contributes to one level of a nested layout: the
+ * scatter, inside that laboratory, of the level's groups about their parents.
+ *
+ * `mean` and `n` are those of all the laboratory's results; `sd` and `df` those
+ * of the level. For the residual this is the pooled innermost standard
+ * deviation, on which k and Cochran's test rest.
+ */
+export type LevelSummaries = {
+  /** The level's own name; for a residual that cannot be told from a named level, that level's. */
+  source: string
+  isReplicate: boolean
+  laboratories: CellSummary[]
+}
+
+/** One entry for each level inside the laboratories that has degrees of freedom, outermost first. */
+export function levelSummaries(
+  layout: NestedLayout,
+  laboratories: readonly { laboratory: string; observations: number }[],
+): LevelSummaries[] {
+  const laboratoryOf = Int32Array.from(
+    laboratories.flatMap(({ observations }, index) => new Array<number>(observations).fill(index)),
+  )
+  const wholes = wholeLaboratories(layout, laboratories)
+  const levels: LevelSummaries[] = []
+  let above = laboratoryStratum(layout, laboratories.length, laboratoryOf, wholes)
+  for (const stratum of layout.strata) {
+    const isLaboratory = stratum.source === layout.levels[0] || layout.confounded === layout.levels[0]
+    if (!isLaboratory) {
+      const isReplicate = stratum.source === RESIDUAL && layout.confounded === null
+      levels.push({
+        source: stratum.source === RESIDUAL ? (layout.confounded ?? RESIDUAL) : stratum.source,
+        isReplicate,
+        laboratories: insideLaboratories({ stratum, above, laboratoryOf, wholes }),
+      })
+    }
+    above = stratum
+  }
+  return levels
+}
+
+/** Number and mean of all results of each laboratory, without a scatter. */
+export function wholeLaboratories(
+  layout: NestedLayout,
+  laboratories: readonly { laboratory: string; observations: number }[],
+): CellSummary[] {
+  let start = 0
+  return laboratories.map(({ laboratory, observations }) => {
+    const own = layout.deviations.subarray(start, start + observations)
+    start += observations
+    let sum = 0
+    for (const deviation of own) sum += deviation
+    return { laboratory, n: observations, mean: sum / observations, sd: undefined, df: 0 }
+  })
+}
+
+function laboratoryStratum(
+  layout: NestedLayout,
+  count: number,
+  laboratoryOf: Int32Array,
+  wholes: readonly CellSummary[],
+): Stratum {
+  return {
+    source: layout.levels[0]!,
+    groupOf: laboratoryOf,
+    firstMember: Int32Array.from({ length: count }, (_, index) => laboratoryOf.indexOf(index)),
+    size: Float64Array.from(wholes, ({ n }) => n),
+    mean: Float64Array.from(wholes, ({ mean }) => mean),
+  }
+}
+
+function insideLaboratories(one: {
+  stratum: Stratum
+  above: Stratum
+  laboratoryOf: Int32Array
+  wholes: readonly CellSummary[]
+}): CellSummary[] {
+  const { stratum, above, laboratoryOf, wholes } = one
+  const squares = new Float64Array(wholes.length)
+  const groups = new Float64Array(wholes.length)
+  const largest = new Float64Array(wholes.length)
+  stratum.mean.forEach((mean, group) => {
+    const member = stratum.firstMember[group]!
+    const laboratory = laboratoryOf[member]!
+    const distance = mean - above.mean[above.groupOf[member]!]!
+    squares[laboratory]! += stratum.size[group]! * distance ** 2
+    groups[laboratory]! += 1
+    largest[laboratory] = Math.max(largest[laboratory]!, Math.abs(mean))
+  })
+  for (const member of above.firstMember) groups[laboratoryOf[member]!]! -= 1
+
+  return wholes.map((whole, index) => {
+    const df = groups[index]!
+    // A laboratory whose results are all equal has no scatter, whatever the last bit of a mean says.
+    const rounding = whole.n * (4 * Number.EPSILON * largest[index]!) ** 2
+    const ss = squares[index]! <= rounding ? 0 : squares[index]!
+    return { ...whole, sd: df >= 1 ? Math.sqrt(ss / df) : undefined, df }
+  })
+}

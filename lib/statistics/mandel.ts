@@ -1,0 +1,118 @@
+import { binaryScale } from '@/lib/statistics/binary-scale'
+import { replicatedCells, type CellSummary } from '@/lib/statistics/cells'
+import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
+import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
+import { NotComputable } from '@/lib/statistics/not-computable'
+import { noScatter, repeatability } from '@/lib/statistics/one-way-precision'
+import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
+
+/**
+ * Mandel's consistency statistics, h between and k within laboratories.
+ *
+ * Variant: h is signed and two-sided, centred on the unweighted mean of the cell means. k is the cell's standard deviation
+ * over the repeatability standard deviation pooled by degrees of freedom; ISO 5725-2 divides by the unweighted root mean
+ * square instead, but only with the pooled one is the critical value exact for unequal cells. They are equal when balanced.
+ *
+ * Both are pure numbers and come in the order of the cells.
+ *
+ * Source: ASTM E691, section 15; P.-Th. Wilrich, AStA Adv. Stat. Anal. 97 (2013) 1.
+ */
+export interface MandelH {
+  readonly laboratory: string
+  readonly h: number
+}
+
+export interface MandelK {
+  readonly laboratory: string
+  readonly k: number
+  /** ν_i, degrees of freedom of this cell. */
+  readonly df: number
+  /** ν, those of all cells together. */
+  readonly pooledDf: number
+}
+
+/** @throws {NotComputable} `too-few-laboratories` below 2; `equal-means`. */
+export function mandelH(summaries: readonly CellSummary[]): MandelH[] {
+  const { centred, sumOfSquares } = spreadOfMeans(summaries)
+  const sd = Math.sqrt(sumOfSquares / (summaries.length - 1))
+  return summaries.map(({ laboratory }, index) => ({ laboratory, h: (centred[index] as number) / sd }))
+}
+
+/**
+ * The |h| that a share alpha exceeds, h_c = (p - 1) t / √(p (t² + p - 2)).
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 3.
+ */
+export function mandelHCritical(laboratories: number, alpha: number): number {
+  requireThree(laboratories)
+  const t = tQuantileUpper(alpha / 2, laboratories - 2)
+  // Divided through by t, which is beyond 1e15 for a small alpha on one degree of freedom.
+  return (laboratories - 1) / Math.sqrt(laboratories * (1 + (laboratories - 2) / t / t))
+}
+
+/**
+ * Two-sided p-value, from t² = p h² (p - 2)/((p - 1)² - p h²).
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 3.
+ */
+export function mandelHPValue(h: number, laboratories: number): number {
+  requireThree(laboratories)
+  const p = laboratories
+  // h at its bound (p - 1)/√p: all other laboratories agree exactly.
+  const room = (p - 1) ** 2 - p * h * h
+  if (room <= 8 * Number.EPSILON * (p - 1) ** 2) return 0
+  return Math.min(1, 2 * tUpperTail(Math.sqrt((p * h * h * (p - 2)) / room), p - 2))
+}
+
+/**
+ * k of every cell that has a standard deviation; the others are left out.
+ *
+ * @throws {NotComputable} `no-replicates`; `no-scatter` when all replicates agree exactly.
+ */
+export function mandelK(summaries: readonly CellSummary[]): MandelK[] {
+  const cells = replicatedCells(summaries)
+  const scale = binaryScale(cells.map((cell) => cell.sd))
+  const scaled = cells.map((cell) => ({ ...cell, sd: cell.sd / scale }))
+  const pooled = repeatability(scaled)
+  if (pooled.sd === 0) throw noScatter()
+  return scaled.map(({ laboratory, sd, df }) => ({ laboratory, k: sd / pooled.sd, df, pooledDf: pooled.df }))
+}
+
+export interface KOf {
+  readonly df: number
+  readonly pooledDf: number
+}
+
+/**
+ * The k that a share alpha exceeds: k_c² = F ν/(ν_i F + ν - ν_i), F its upper point on (ν_i, ν - ν_i). Exact.
+ *
+ * @throws {NotComputable} `too-few-replicated-cells` when the cell is the only one with replicates.
+ */
+export function mandelKCritical({ df, pooledDf, alpha }: KOf & { readonly alpha: number }): number {
+  requireOthers({ df, pooledDf })
+  const f = fQuantileUpper(alpha, df, pooledDf - df)
+  return Math.sqrt(pooledDf / (df + (pooledDf - df) / f))
+}
+
+/**
+ * Upper p-value, from F = k² (ν - ν_i)/(ν - ν_i k²).
+ *
+ * @throws {NotComputable} `too-few-replicated-cells` when the cell is the only one with replicates.
+ */
+export function mandelKPValue({ k, df, pooledDf }: KOf & { readonly k: number }): number {
+  requireOthers({ df, pooledDf })
+  // k at its bound √(ν/ν_i): all other cells are without scatter.
+  const room = pooledDf - df * k * k
+  if (room <= 8 * Number.EPSILON * pooledDf) return 0
+  return fUpperTail((k * k * (pooledDf - df)) / room, df, pooledDf - df)
+}
+
+function requireThree(laboratories: number): void {
+  if (laboratories >= 3) return
+  throw new NotComputable('too-few-laboratories', '3 laboratories are needed to judge h.')
+}
+
+function requireOthers({ df, pooledDf }: KOf): void {
+  if (pooledDf > df && df >= 1) return
+  throw new NotComputable('too-few-replicated-cells', 'No other laboratory has a second result.')
+}

@@ -1,0 +1,57 @@
+import { binaryScale } from '@/lib/statistics/binary-scale'
+import type { CellSummary } from '@/lib/statistics/cells'
+import { NotComputable } from '@/lib/statistics/not-computable'
+
+export interface SpreadOfMeans {
+  /** The unweighted mean of the cell means. */
+  readonly mean: number
+  /** Their standard deviation, on p - 1 degrees of freedom. */
+  readonly sd: number
+  /** Cell mean less `mean`, divided by `scale`, in the order of the cells. */
+  readonly centred: readonly number[]
+  readonly sumOfSquares: number
+  /** A power of two in which `centred` and (squared) `sumOfSquares` are expressed. */
+  readonly scale: number
+}
+
+/**
+ * The unweighted mean and spread of cell means, on which Mandel's h and Grubbs' tests rest.
+ *
+ * Means that differ by no more than the rounding of their own computation are equal: a difference of one unit in
+ * the last place would otherwise be blown up to an h of any size.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below `atLeast`; `equal-means`.
+ */
+export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): SpreadOfMeans {
+  requireLaboratories(summaries, atLeast)
+  if (meansAreEqual(summaries)) throw new NotComputable('equal-means', 'All cell means are equal.')
+
+  const p = summaries.length
+  const first = (summaries[0] as CellSummary).mean
+  const scale = binaryScale(summaries.map((cell) => cell.mean - first))
+  const shifted = summaries.map((cell) => (cell.mean - first) / scale)
+  const middle = shifted.reduce((sum, value) => sum + value, 0) / p
+  const centred = shifted.map((value) => value - middle)
+  const sumOfSquares = centred.reduce((sum, value) => sum + value * value, 0)
+  const sd = Math.sqrt(sumOfSquares / (p - 1)) * scale
+  return { mean: first + middle * scale, sd, centred, sumOfSquares, scale }
+}
+
+export function requireLaboratories(summaries: readonly CellSummary[], atLeast: number): void {
+  if (summaries.length >= atLeast) return
+  const words = `${atLeast} laboratories with results are needed; there ${countWords(summaries.length)}.`
+  throw new NotComputable('too-few-laboratories', words)
+}
+
+function countWords(count: number): string {
+  return count === 1 ? 'is 1' : `are ${count}`
+}
+
+function meansAreEqual(summaries: readonly CellSummary[]): boolean {
+  const means = summaries.map((cell) => cell.mean)
+  const range = Math.max(...means) - Math.min(...means)
+  if (range === 0) return true
+  // No result of a cell lies further from 0 than this; the rounding of its mean is a few units in that last place.
+  const reach = summaries.map((cell) => Math.abs(cell.mean) + (cell.sd ?? 0) * Math.sqrt(cell.n))
+  return range <= 8 * Number.EPSILON * Math.max(...reach)
+}
