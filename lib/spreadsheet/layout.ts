@@ -14,6 +14,10 @@ export type ReturnLayout = {
 
 export type Measurand = { id: string; name: string; unit: string; decimals: number }
 
+/** The sheets of the workbook that the product writes for a return. */
+export const resultsSheetName = 'Results'
+export const guideSheetName = 'How to fill in'
+
 /** One row of the form: a material, and the number (from 1) of each level within it. */
 export type LayoutRow = { materialId: string; groups: readonly number[] }
 

@@ -24,9 +24,11 @@ export async function packWorkbook(workbook: ExcelJS.Workbook): Promise<Uint8Arr
   workbook.created = fixedInstant
   workbook.modified = fixedInstant
   const written = Buffer.from(await workbook.xlsx.writeBuffer())
-  const parts = listParts(written).map((part) =>
-    part.name.toString() === 'docProps/app.xml' ? { ...part, content: Buffer.from(applicationPart) } : part,
-  )
+  const parts = listParts(written)
+    .filter(({ name }) => !name.toString().endsWith('/'))
+    .map((part) =>
+      part.name.toString() === 'docProps/app.xml' ? { ...part, content: Buffer.from(applicationPart) } : part,
+    )
   return pack(parts)
 }
 

@@ -1,8 +1,13 @@
 import ExcelJS from 'exceljs'
-import { listRows, measurandTitle, placeKey, type ReturnLayout } from '@/lib/spreadsheet/layout'
+import {
+  guideSheetName,
+  listRows,
+  measurandTitle,
+  placeKey,
+  resultsSheetName,
+  type ReturnLayout,
+} from '@/lib/spreadsheet/layout'
 import { packWorkbook } from '@/lib/spreadsheet/pack-workbook'
-
-export const resultsSheetName = 'Results'
 
 /** Title, deadline, hint and an empty row stand above it. */
 const headerRow = 5
@@ -44,7 +49,7 @@ async function fillResults({ workbook, layout, values, deadlineText }: Filling):
   })
   writeText(sheet.getCell(1, 1), `${layout.studyShortName}: results`).font = { bold: true, size: 14 }
   writeText(sheet.getCell(2, 1), `Deadline: ${deadlineText}`)
-  writeText(sheet.getCell(3, 1), 'Fill in the open cells only. The sheet “How to fill in” says more.')
+  writeText(sheet.getCell(3, 1), `Fill in the open cells only. The sheet “${guideSheetName}” says more.`)
 
   const titles = [
     'Material',
@@ -83,7 +88,7 @@ async function fillResults({ workbook, layout, values, deadlineText }: Filling):
 }
 
 function fillGuide(workbook: ExcelJS.Workbook, layout: ReturnLayout): void {
-  const sheet = workbook.addWorksheet('How to fill in')
+  const sheet = workbook.addWorksheet(guideSheetName)
   sheet.getColumn(1).width = 90
   guideLines(layout).forEach((line, index) => {
     const cell = writeText(sheet.getCell(index + 1, 1), line)
@@ -94,7 +99,7 @@ function fillGuide(workbook: ExcelJS.Workbook, layout: ReturnLayout): void {
 
 function guideLines(layout: ReturnLayout): string[] {
   return [
-    'How to fill in',
+    guideSheetName,
     `The sheet “${resultsSheetName}” has one row for each test result to report. Write into its open cells and change nothing else.`,
     'Report every value with the digits your laboratory would give: 1.10 and 1.1 are not the same.',
     'Write a decimal point or a decimal comma. Leave out thousands marks: 1,234 could mean two things, and you would be asked.',
