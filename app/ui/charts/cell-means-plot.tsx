@@ -64,7 +64,7 @@ export function CellMeansPlot(props: CellMeansPlotProps) {
         aria-label={`Cell means, ${material}`}
         tabIndex={0}
         data-scrolls
-        className="overflow-x-auto"
+        className="relative overflow-x-auto"
       >
         <svg
           id={svgId}

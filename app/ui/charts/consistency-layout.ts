@@ -24,7 +24,7 @@ export interface PlacedCell extends ConsistencyCell {
   x: number
   /** Which group of the axis it stands in: its laboratory or its material. */
   group: number
-  /** Alone beyond a limit in its group, so that its label may lie flat. */
+  /** No other mark beyond a limit stands so near that flat labels would touch. */
   isAlone: boolean
 }
 
@@ -39,12 +39,13 @@ export interface ConsistencyLayout {
 }
 
 export const consistencyMargin = { top: 34, right: 52, bottom: 46, left: 50 }
-export const consistencyInnerHeight = 236
+export const consistencyInnerHeight = 272
 
 const leastInnerWidth = 898
 const markStep = 11
 // What a label needs above its mark: lying flat, and standing upright.
 const flatLabel = 20
+const flatLabelWidth = 76
 const uprightLabel = 46
 
 /** Where everything of an h or k plot stands. Pure, so that server, browser and tests agree. */
@@ -68,9 +69,9 @@ export function layOutConsistency(data: ConsistencyData): ConsistencyLayout {
       ]
     }),
   )
-  for (const cell of cells) {
-    const beyondInGroup = cells.filter((other) => other.group === cell.group && other.beyond)
-    cell.isAlone = groupWidth > 62 && beyondInGroup.length === 1
+  const beyond = cells.filter((cell) => cell.beyond)
+  for (const cell of beyond) {
+    cell.isAlone = beyond.every((other) => other === cell || Math.abs(other.x - cell.x) > flatLabelWidth)
   }
 
   const domain = consistencyDomain(data, cells)
@@ -85,23 +86,32 @@ export function layOutConsistency(data: ConsistencyData): ConsistencyLayout {
   }
 }
 
-/** k starts at zero, where it means no spread at all; h is the same on both sides of zero. */
+/** k starts at zero, where it means no spread at all; h has its limits on both sides of zero. */
 function consistencyDomain(data: ConsistencyData, cells: readonly PlacedCell[]) {
-  const isTwoSided = data.statistic === 'h'
-  const height = consistencyInnerHeight
-  const reach = [
-    ...cells.map((cell) => Math.abs(cell.value)),
-    ...data.criticals.map((limit) => limit.value),
-    1,
-  ]
-  const labelled = cells
+  const above = cells.filter((cell) => cell.value >= 0)
+  const below = cells.filter((cell) => cell.value < 0)
+  const limits = data.criticals.map((limit) => limit.value)
+  const upper = furthest([...above.map((cell) => cell.value), ...limits])
+  if (data.statistic === 'k') return { low: 0, high: reachWithLabels(above, upper, 0) }
+
+  const lower = furthest([...below.map((cell) => -cell.value), ...limits])
+  const high = reachWithLabels(above, upper, lower)
+  return { low: -reachWithLabels(below, lower, high), high }
+}
+
+function furthest(values: readonly number[]): number {
+  return Math.max(1, ...values) * 1.06
+}
+
+/** How far one side of the axis must go so that the labels of its marks have room, given the other side. */
+function reachWithLabels(cells: readonly PlacedCell[], least: number, otherSide: number): number {
+  const needed = cells
     .filter((cell) => cell.beyond)
     .map((cell) => {
-      const room = ((cell.isAlone ? flatLabel : uprightLabel) / height) * (isTwoSided ? 2 : 1)
-      return Math.abs(cell.value) / (1 - room)
+      const share = (cell.isAlone ? flatLabel : uprightLabel) / consistencyInnerHeight
+      return (Math.abs(cell.value) + share * otherSide) / (1 - share)
     })
-  const high = Math.max(Math.max(...reach) * 1.06, ...labelled)
-  return { low: isTwoSided ? -high : 0, high }
+  return Math.max(least, ...needed)
 }
 
 function wholeTicks({ low, high }: { low: number; high: number }): number[] {

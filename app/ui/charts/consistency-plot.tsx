@@ -69,7 +69,7 @@ export function ConsistencyPlot({ svgId, ...data }: ConsistencyPlotProps) {
         aria-label={`Plot of ${statistic}, ${subject[statistic]}`}
         tabIndex={0}
         data-scrolls
-        className="overflow-x-auto"
+        className="relative overflow-x-auto"
       >
         <svg
           id={svgId}

@@ -40,7 +40,7 @@ export function DrawingDownload({ svgId }: { svgId: string }) {
           {format.toUpperCase()}
         </button>
       ))}
-      <span role="status" className="w-full text-madder">
+      <span role="status" className="w-full text-madder empty:absolute">
         {failure}
       </span>
     </>

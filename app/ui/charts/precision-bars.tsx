@@ -40,7 +40,13 @@ export function PrecisionBars({ svgId, materials, groupName = 'groups' }: Precis
   ]
 
   return (
-    <div role="region" aria-label="Shares of variance" tabIndex={0} data-scrolls className="overflow-x-auto">
+    <div
+      role="region"
+      aria-label="Shares of variance"
+      tabIndex={0}
+      data-scrolls
+      className="relative overflow-x-auto"
+    >
       <svg
         id={svgId}
         viewBox={`0 0 ${width} ${height}`}
@@ -141,7 +147,7 @@ function PercentAxis({ y }: { y: number }) {
           </text>
         </g>
       ))}
-      <text x={left - 12} y={y + 12} textAnchor="end" fontFamily="var(--font-sans)">
+      <text x={left - 22} y={y + 12} textAnchor="end" fontFamily="var(--font-sans)">
         share of variance
       </text>
     </g>

@@ -38,7 +38,7 @@ export function Course({ stations }: { stations: readonly Station[] }) {
               station.phase === 'current' && '-mb-px border-x border-x-rule bg-sheet',
             )}
           >
-            <StationLink station={station} className="h-full px-3 pb-2.5 pt-2" />
+            <StationLink station={station} className="h-full px-2 pb-2.5 pt-2 margin:px-3" />
           </li>
         ))}
       </ol>
@@ -87,7 +87,7 @@ function StationLink({ station, className }: { station: Station; className: stri
     <>
       <span
         className={clsx(
-          'block font-semibold',
+          'block font-semibold lg:text-small margin:text-base',
           isCurrent ? 'text-verdigris' : 'text-ink',
           station.href && 'group-hover/station:underline',
         )}

@@ -30,7 +30,7 @@ export function TopBar({ person, links = [], signOut, home = '/' }: TopBarProps)
                   <Link
                     href={link.href}
                     aria-current={link.isCurrent ? 'page' : undefined}
-                    className="flex min-h-9 items-center border-b-2 border-transparent px-2 underline-offset-4 hover:underline aria-[current]:border-verdigris aria-[current]:font-semibold"
+                    className="flex min-h-9 items-center px-2 underline-offset-4 hover:underline aria-[current]:border-b-2 aria-[current]:border-verdigris aria-[current]:font-semibold"
                   >
                     {link.name}
                   </Link>

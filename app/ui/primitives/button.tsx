@@ -49,7 +49,8 @@ export function buttonLook(variant: ButtonVariant): string {
   return clsx(
     'inline-flex min-h-9 items-center justify-center gap-2 rounded border px-3 py-1 text-center font-semibold leading-tight',
     'transition-colors duration-100 disabled:opacity-60 aria-disabled:opacity-60',
-    variant === 'primary' && 'border-verdigris bg-verdigris text-paper hover:border-ink hover:bg-ink',
+    variant === 'primary' &&
+      'border-verdigris bg-verdigris text-paper hover:border-ink hover:bg-ink forced-colors:border-2 forced-colors:bg-[ButtonFace] forced-colors:text-[color:ButtonText]',
     variant === 'plain' && 'border-verdigris bg-transparent text-verdigris hover:bg-verdigris-wash',
     variant === 'destructive' && 'border-madder bg-transparent text-madder hover:bg-madder-wash',
   )

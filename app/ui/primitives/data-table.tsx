@@ -37,7 +37,7 @@ export function DataTable<Row>(props: DataTableProps<Row>) {
       aria-label={caption}
       tabIndex={0}
       data-scrolls
-      className="overflow-x-auto border bg-sheet"
+      className="relative overflow-x-auto border bg-sheet"
     >
       <table className="w-full border-collapse text-small">
         <caption className={isCaptionHidden ? 'sr-only' : 'px-3 pb-1 pt-2.5 text-left font-semibold'}>

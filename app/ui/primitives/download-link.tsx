@@ -16,7 +16,7 @@ export function DownloadLink({ href, children, format, fileName }: DownloadLinkP
       href={href}
       download={fileName ?? true}
       data-screen-only
-      className="inline-flex min-h-6 items-center gap-1.5 text-verdigris underline underline-offset-[0.18em] hover:decoration-2"
+      className="inline-flex min-h-6 items-center gap-1.5 text-verdigris"
     >
       <svg width="11" height="12" viewBox="0 0 11 12" aria-hidden="true">
         <path
@@ -26,7 +26,7 @@ export function DownloadLink({ href, children, format, fileName }: DownloadLinkP
           strokeWidth="1.4"
         />
       </svg>
-      {children}
+      <span className="underline underline-offset-[0.18em] hover:decoration-2">{children}</span>
       {format && <span className="text-small text-ink-soft">({format})</span>}
     </a>
   )
