@@ -165,25 +165,23 @@ export async function unscopedFindExtensionRequestMail(
 export interface ExtensionMailFacts extends StudyMailFacts {
   readonly dueAt: Date
   readonly zone: string
-  /** A later extension makes this one's mail misleading. */
-  readonly isLatest: boolean
 }
 
+/** The latest extension of a laboratory: whichever mail comes to be sent, it says what holds. */
 export async function unscopedFindExtensionMail(
   db: Kysely<DB>,
-  { studyId, participantId, number }: { studyId: string; participantId: string; number: number },
+  { studyId, participantId }: { studyId: string; participantId: string },
 ): Promise<ExtensionMailFacts | undefined> {
   const { rows } = await sql<ExtensionMailFacts>`
-    select ${studyFacts}, x.due_at as "dueAt", i.zone,
-      x.number = (select max(number) from vault.extension l
-        where l.study_id = x.study_id and l.participant_id = x.participant_id) as "isLatest"
+    select ${studyFacts}, x.due_at as "dueAt", i.zone
     from vault.extension x
     join vault.identity k on k.study_id = x.study_id and k.participant_id = x.participant_id
     join vault.invitation i on i.study_id = k.study_id and i.invitation_id = k.invitation_id
     join study s on s.study_id = x.study_id
     join organisation o on o.organisation_id = s.organisation_id
     join vault."User" c on c.id = x.granted_by
-    where x.study_id = ${studyId} and x.participant_id = ${participantId} and x.number = ${number}
+    where x.study_id = ${studyId} and x.participant_id = ${participantId}
+    order by x.number desc limit 1
   `.execute(db)
   return rows[0]
 }

@@ -40,7 +40,7 @@ export async function grantExtension(
         kind: 'extension-granted',
         studyId,
         recipient: address,
-        ids: { studyId, participantId },
+        ids: { studyId, participantId, number: String(number) },
         dedupeKey: `extension-granted.${participantId}.${number}.${personId}`,
       })
   })
