@@ -25,21 +25,18 @@ export function cellBlocks(one: {
   return summaries.map((summary) =>
     withReasons((attempt) => {
       const { laboratory, n, mean, sd, df } = summary
-      const h = attempt('h', () => hStatistics().get(laboratory)!)
-      const own = attempt('k', () => {
-        const all = kStatistics()
-        return required(all.get(laboratory) ?? null, ONE_RESULT)
-      })
+      const hOfCell = () => hStatistics().get(laboratory)!
+      const kOfCell = () => required(kStatistics().get(laboratory) ?? null, ONE_RESULT)
       return {
         laboratory,
         n,
         mean: restore(mean),
         sd: attempt('sd', () => required(sd ?? null, ONE_RESULT)),
-        h,
-        k: own?.k ?? null,
+        h: attempt('h', hOfCell),
+        k: attempt('k', () => kOfCell().k),
         df,
-        hPValue: h === null ? null : attempt('hPValue', () => mandelHPValue(h, summaries.length)),
-        kPValue: own === null ? null : attempt('kPValue', () => mandelKPValue(own)),
+        hPValue: attempt('hPValue', () => mandelHPValue(hOfCell(), summaries.length)),
+        kPValue: attempt('kPValue', () => mandelKPValue(kOfCell())),
         kCritical: kCriticalBlock(df, pooledDf),
         bias: attempt('bias', () => mean - one.reference()),
         generalisedCochran: generalisedOf(summary, { cells: summaries, pooledDf, pooledSquares }),

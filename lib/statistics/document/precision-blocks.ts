@@ -85,7 +85,7 @@ function betweenLaboratoryBlock(input: PrecisionInput, estimate: () => Estimate)
       varianceRaw: found?.raw ?? null,
       variance: found?.variance ?? null,
       sd: sdOf(found),
-      ci95: intervalBlock(estimate),
+      ci95: found !== null && found.raw < 0 ? explainedInterval(estimate) : intervalBlock(estimate),
       relative: relativeSd(attempt, found, input),
       satterthwaite95: satterthwaiteBlock(estimate),
     }
@@ -231,18 +231,20 @@ function relativeSd(attempt: Attempt, estimate: Estimate | null, input: Precisio
 }
 
 function intervalBlock(estimate: () => Estimate): Interval {
-  const block = withReasons((attempt) => {
+  return withReasons((attempt) => {
     const found = attempt('lower', () => {
       const { terms, variance } = estimate()
       return sdInterval(terms, variance)
     })
     return { lower: found?.lower ?? null, upper: found?.upper ?? null, extended: found?.extended ?? null }
   })
-  if (block.upper !== 0 || block.reasons !== undefined) return block
-  return {
-    ...block,
-    reasons: { upper: 'The laboratories agree better than their own scatter allows.' },
-  }
+}
+
+/** An interval that ends at 0 is no slip; it says why. */
+function explainedInterval(estimate: () => Estimate): Interval {
+  const block = intervalBlock(estimate)
+  if (block.upper !== 0) return block
+  return { ...block, reasons: { upper: 'The laboratories agree better than their own scatter allows.' } }
 }
 
 function satterthwaiteBlock(estimate: () => Estimate): SatterthwaiteInterval {

@@ -1,0 +1,259 @@
+import { nestedAnova } from '@/lib/statistics/nested-anova'
+import type { MaterialAnalysis, Reasons } from '@/lib/statistics/analysis-document'
+import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
+import { type CellSummary, summariseCells } from '@/lib/statistics/cells'
+import { censoredMedian } from '@/lib/statistics/censored-median'
+import { anovaBlock } from '@/lib/statistics/document/anova-block'
+import { notComputable, once, required, withReasons } from '@/lib/statistics/document/attempt'
+import { cellBlocks } from '@/lib/statistics/document/cell-blocks'
+import {
+  assignedBlock,
+  equalityBlock,
+  scoresBlock,
+  truenessBlock,
+  varianceOfMean,
+} from '@/lib/statistics/document/comparison-blocks'
+import { cochranBlock, criticalBlock, nestingLevelBlocks } from '@/lib/statistics/document/consistency-blocks'
+import { grubbsBlock } from '@/lib/statistics/document/grubbs-block'
+import type { MaterialCell, MaterialData } from '@/lib/statistics/document/material-data'
+import { precisionBlocks } from '@/lib/statistics/document/precision-blocks'
+import { remlBlock } from '@/lib/statistics/document/reml-block'
+import { robustBlock } from '@/lib/statistics/document/robust-block'
+import { levelSummaries } from '@/lib/statistics/laboratory-summaries'
+import { buildNestedLayout } from '@/lib/statistics/nested-layout'
+import { generalMeans } from '@/lib/statistics/one-way-precision'
+import { roundedPrecision } from '@/lib/statistics/rounding'
+
+/** Above this share of lost cells no figure of the material is given. */
+const MOST_CENSORED = 0.1
+
+/** One material with the summaries that plots and explanations go on from. */
+export type AnalysedMaterial = {
+  data: MaterialData
+  summaries: readonly CellSummary[]
+  analysis: MaterialAnalysis
+}
+
+/**
+ * Everything the analysis says of one material. Proposals and observations are
+ * left to the caller, because they look at several materials at once.
+ */
+export function analyseMaterial(
+  data: MaterialData,
+  nesting: readonly string[],
+  settings: AnalysisSettings,
+): AnalysedMaterial {
+  const tooMuchCensored = data.censoredShare > MOST_CENSORED
+  const cells = tooMuchCensored ? [] : data.cells
+  const analysed = analyseCells({ data, cells, nesting, settings })
+  if (!tooMuchCensored) return { data, ...analysed }
+
+  const words = 'More than 10 % of the cells hold a result below or above a limit.'
+  return { data, summaries: [], analysis: withOneReason(analysed.analysis, words) }
+}
+
+function analyseCells(one: {
+  data: MaterialData
+  cells: readonly MaterialCell[]
+  nesting: readonly string[]
+  settings: AnalysisSettings
+}): { summaries: CellSummary[]; analysis: MaterialAnalysis } {
+  const { data, cells, nesting, settings } = one
+  const { restore } = data
+  const layout = buildNestedLayout(
+    ['laboratory', ...nesting],
+    cells.flatMap(({ laboratory, results, deviations }) =>
+      results.map(({ groups }, index) => ({ path: [laboratory, ...groups], deviation: deviations[index]! })),
+    ),
+  )
+  const isNested = nesting.length > 0
+  const wholes = summariseCells(cells)
+  const levels = levelSummaries(
+    layout,
+    cells.map(({ laboratory, results }) => ({ laboratory, observations: results.length })),
+  )
+  const summaries = isNested ? innermost(wholes, levels) : wholes
+  const anova = once(() => nestedAnova(layout))
+  const means = once(() => generalMeans(summaries))
+  const uncertaintyOfMean = (): number => varianceOfMean(layout, anova())
+  const harmonic = (): number => harmonicCellSize(summaries)
+
+  const mean = summaries.length === 0 ? null : restore(means().weighted)
+  const precision = precisionBlocks({
+    summaries,
+    layout,
+    anova,
+    mean,
+    limitFactor: settings.limitFactor,
+    trueZero: settings.trueZero ?? true,
+  })
+  const robust = robustBlock({
+    cellMeans: summaries.map((summary) => summary.mean),
+    cellSpreads: summaries.map(({ sd, df }) => ({ sd: sd ?? 0, df })),
+    integers: cells.map(({ integers }) => integers),
+    step: data.step,
+    harmonicCellSize: summaries.length === 0 ? 1 : harmonic(),
+    restore,
+  })
+
+  const given = settings.references?.[data.material] ?? null
+  const reference =
+    given === null
+      ? null
+      : {
+          deviation: data.deviationOf(given.value),
+          value: Number(given.value),
+          uncertainty: given.uncertainty,
+        }
+  const sigma = settings.sigmas?.[data.material] ?? null
+  const varianceOfCellMean = (n: number): number =>
+    required(precision.betweenLaboratory.variance, 'There is no laboratory component.') +
+    required(precision.repeatability.variance, 'There is no repeatability.') / n
+  const assigned = assignedBlock({
+    reference,
+    robust: robust.algorithmA,
+    mean,
+    varianceOfMean: uncertaintyOfMean,
+    sigma,
+    varianceOfCellMean,
+    summaries,
+  })
+  const uncertainties = new Map(cells.map((cell) => [cell.laboratory, statedUncertainty(cell)]))
+
+  const analysis = withReasons((attempt): Omit<MaterialAnalysis, 'reasons'> => ({
+    material: data.material,
+    measurand: attempt('measurand', () => required(data.measurand, 'No measurand is named.')),
+    laboratories: summaries.length,
+    results: layout.deviations.length,
+    mean: attempt('mean', () => restore(means().weighted)),
+    meanOfCellMeans: attempt('meanOfCellMeans', () => restore(means().unweighted)),
+    median: attempt('median', () =>
+      restore(
+        censoredMedian(
+          data.cells.map((cell) => meanOf(cell.deviations)),
+          data.bounds,
+        ),
+      ),
+    ),
+    nBar: attempt('nBar', () => effectiveCellSize(summaries)),
+    nHarmonic: attempt('nHarmonic', harmonic),
+    ...precision,
+    cells: cellBlocks({
+      summaries,
+      restore,
+      reference: () => reference?.deviation ?? notAskedFor(),
+      scoresOf: (summary) =>
+        scoresBlock({
+          summary,
+          value: restore(summary.mean),
+          assigned,
+          laboratories: summaries.length,
+          sigma: () => sigma ?? Math.sqrt(varianceOfCellMean(summary.n)),
+          uncertainty: uncertainties.get(summary.laboratory) ?? null,
+        }),
+    }),
+    critical: criticalBlock(summaries, isNested),
+    cochran: cochranBlock(summaries, isNested),
+    grubbs: grubbsBlock(summaries),
+    anova: anovaBlock(anova, layout.confounded),
+    reml: remlBlock({ layout, anova, restore }),
+    robust,
+    censored: data.censored,
+    levels: nestingLevelBlocks(levels),
+    trueness: attempt('trueness', () =>
+      reference === null
+        ? notAskedFor()
+        : truenessBlock({
+            reference,
+            mean: () => means().weighted,
+            laboratories: summaries.length,
+            varianceOfMean: uncertaintyOfMean,
+          }),
+    ),
+    equality: equalityBlock({ summaries, layout, anova, harmonicCellSize: harmonic }),
+    assigned,
+    proposals: attempt('proposals', () => notComputable('not-made', 'not computed by this version')),
+    noticed: attempt('noticed', () => notComputable('not-made', 'not computed by this version')),
+    rounded: roundedBlock(mean, precision),
+  }))
+  return { summaries, analysis }
+}
+
+export function notAskedFor(): never {
+  notComputable('not-asked-for', 'not asked for')
+}
+
+function innermost(wholes: readonly CellSummary[], levels: ReturnType<typeof levelSummaries>): CellSummary[] {
+  const replicate = levels.find(({ isReplicate }) => isReplicate)
+  return wholes.map((whole, index) => ({
+    ...whole,
+    sd: replicate?.laboratories[index]!.sd,
+    df: replicate?.laboratories[index]!.df ?? 0,
+  }))
+}
+
+function meanOf(values: Float64Array): number {
+  return values.reduce((sum, value) => sum + value, 0) / values.length
+}
+
+function harmonicCellSize(summaries: readonly CellSummary[]): number {
+  if (summaries.length === 0) notComputable('no-results', 'There is no result.')
+  return summaries.length / summaries.reduce((sum, { n }) => sum + 1 / n, 0)
+}
+
+function effectiveCellSize(summaries: readonly CellSummary[]): number {
+  if (summaries.length < 2) notComputable('too-few-laboratories', '2 laboratories are needed.')
+  const results = summaries.reduce((sum, { n }) => sum + n, 0)
+  const squares = summaries.reduce((sum, { n }) => sum + n ** 2, 0)
+  return (results - squares / results) / (summaries.length - 1)
+}
+
+/** A laboratory's standard uncertainty counts if it stands beside each of its results; several are joined as squares. */
+function statedUncertainty({ results }: MaterialCell): number | null {
+  const stated = results.map(({ uncertainty }) => uncertainty ?? null)
+  if (stated.some((one) => one === null)) return null
+  return Math.sqrt(stated.reduce((sum: number, one) => sum + one! ** 2, 0) / stated.length)
+}
+
+function roundedBlock(
+  mean: number | null,
+  precision: ReturnType<typeof precisionBlocks>,
+): MaterialAnalysis['rounded'] {
+  const texts = roundedPrecision({
+    mean,
+    repeatabilitySd: precision.repeatability.sd,
+    reproducibilitySd: precision.reproducibility.sd,
+    repeatabilityLimit: precision.repeatability.limit,
+    reproducibilityLimit: precision.reproducibility.limit,
+  })
+  return withReasons((attempt) => ({
+    mean: attempt('mean', texts.mean),
+    repeatability: attempt('repeatability', texts.repeatability),
+    reproducibility: attempt('reproducibility', texts.reproducibility),
+    repeatabilityLimit: attempt('repeatabilityLimit', texts.repeatabilityLimit),
+    reproducibilityLimit: attempt('reproducibilityLimit', texts.reproducibilityLimit),
+  }))
+}
+
+/** The same block with every reason replaced: what is missing is missing for one cause, not for want of data. */
+function withOneReason(analysis: MaterialAnalysis, words: string): MaterialAnalysis {
+  const kept = { median: analysis.reasons?.['median'], trueness: analysis.reasons?.['trueness'] }
+  const replaced = replaceReasons(analysis, words) as MaterialAnalysis
+  const own = Object.entries(kept).filter((entry): entry is [string, string] => entry[1] !== undefined)
+  return { ...replaced, reasons: { ...(replaced.reasons ?? {}), ...Object.fromEntries(own) } }
+}
+
+function replaceReasons(value: unknown, words: string): unknown {
+  if (Array.isArray(value)) return value.map((one) => replaceReasons(one, words))
+  if (value === null || typeof value !== 'object') return value
+  return Object.fromEntries(
+    Object.entries(value).map(([key, inner]) =>
+      key === 'reasons'
+        ? [
+            key,
+            Object.fromEntries(Object.keys((value as Required<Reasons>).reasons).map((one) => [one, words])),
+          ]
+        : [key, replaceReasons(inner, words)],
+    ),
+  )
+}

@@ -1,0 +1,140 @@
+import { type AnalysedMaterial, analyseMaterial, notAskedFor } from '@/lib/statistics/analyse-material'
+import type {
+  AnalysisDocument,
+  HomogeneityCheck,
+  LevelRelation,
+  MeasurandAnalysis,
+  TwoSamplePlot,
+} from '@/lib/statistics/analysis-document'
+import type { AnalysisInput, AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
+import { notComputable, withReasons } from '@/lib/statistics/document/attempt'
+import { homogeneityBlock } from '@/lib/statistics/document/homogeneity-block'
+import { levelRelationBlock } from '@/lib/statistics/document/level-relation-block'
+import { materialData } from '@/lib/statistics/document/material-data'
+import { planningBlock } from '@/lib/statistics/document/planning-block'
+import { twoSampleBlock } from '@/lib/statistics/document/two-sample-blocks'
+
+/**
+ * Analyses an interlaboratory study: the one function behind the server, the
+ * command and every recomputation.
+ *
+ * Laboratories and materials keep the order in which they appear. The same input
+ * gives the same document, byte for byte. What cannot be computed is `null` with
+ * its reason; no number is ever NaN or infinite.
+ *
+ * @throws {RangeError} for a text that is no decimal number.
+ */
+export function analyse(input: AnalysisInput): AnalysisDocument {
+  const groups = byMeasurandAndMaterial(input.results)
+  const measurands = groups.map(({ measurand, materials }) => ({
+    measurand,
+    materials: materials.map(({ material, results }) =>
+      analyseMaterial(materialData({ material, measurand, results }), input.nesting, input.settings),
+    ),
+  }))
+  const only =
+    measurands.length === 0 || measurands[0]!.measurand === null ? (measurands[0]?.materials ?? []) : null
+  const all = measurands.flatMap(({ materials }) => materials)
+
+  const analysed = withReasons((attempt): Omit<AnalysisDocument, 'reasons'> => ({
+    engine: { name: 'evenlot', version: input.version },
+    input: inputBlock(input),
+    settings: { limitFactor: input.settings.limitFactor },
+    materials: all.map(({ analysis }) => analysis),
+    levelRelation: attempt('levelRelation', () => levelRelationOf(only ?? byMeasurand())),
+    youden: attempt('youden', () => youden(only ?? byMeasurand(), input.settings)),
+    homogeneity: attempt('homogeneity', () => homogeneity(all, input.settings)),
+    planning: attempt('planning', () =>
+      input.settings.plan === undefined ? notAskedFor() : planningBlock(input.settings.plan),
+    ),
+    measurands:
+      only !== null
+        ? attempt('measurands', notAskedFor)
+        : measurands.map(({ measurand, materials }): MeasurandAnalysis => ({
+            measurand: measurand!,
+            levelRelation: levelRelationOf(materials),
+            youden: youden(materials, input.settings),
+          })),
+  }))
+  assertFinite(analysed, 'document')
+  return analysed
+}
+
+function byMeasurand(): never {
+  notComputable('by-measurand', 'Given for each measurand.')
+}
+
+type MaterialGroup = { material: string; results: AnalysisResult[] }
+
+function byMeasurandAndMaterial(
+  results: readonly AnalysisResult[],
+): { measurand: string | null; materials: MaterialGroup[] }[] {
+  const measurands = new Map<string | null, Map<string, AnalysisResult[]>>()
+  for (const result of results) {
+    const materials = measurands.get(result.measurand) ?? new Map<string, AnalysisResult[]>()
+    measurands.set(result.measurand, materials)
+    const known = materials.get(result.material)
+    if (known === undefined) materials.set(result.material, [result])
+    else known.push(result)
+  }
+  return [...measurands].map(([measurand, materials]) => ({
+    measurand,
+    materials: [...materials].map(([material, own]) => ({ material, results: own })),
+  }))
+}
+
+function inputBlock({ results, nesting, sha256 }: AnalysisInput): AnalysisDocument['input'] {
+  const kept = results.filter(({ excluded }) => !excluded)
+  const used = kept.filter(({ text, censored }) => text !== '' && censored === null)
+  const withData = kept.filter(({ text }) => text !== '')
+  return {
+    sha256,
+    results: used.length,
+    excluded: results.length - kept.length,
+    censored: withData.length - used.length,
+    missing: kept.length - withData.length,
+    laboratories: new Set(withData.map(({ laboratory }) => laboratory)).size,
+    materials: new Set(results.map(({ material }) => material)).size,
+    nesting: ['laboratory', ...nesting, 'replicate'],
+  }
+}
+
+function levelRelationOf(materials: readonly AnalysedMaterial[]): LevelRelation {
+  return levelRelationBlock(materials.map(({ analysis }) => analysis))
+}
+
+function youden(materials: readonly AnalysedMaterial[], settings: AnalysisSettings): TwoSamplePlot[] {
+  const byName = new Map(
+    materials.map(({ data, summaries }) => [
+      data.material,
+      { material: data.material, summaries, restore: data.restore },
+    ]),
+  )
+  const names = [...byName.keys()]
+  const neighbours = names.flatMap((name, index): [string, string][] =>
+    index % 2 === 0 && index + 1 < names.length ? [[name, names[index + 1]!]] : [],
+  )
+  return (settings.pairs ?? neighbours).flatMap(([x, y]) => {
+    const [onX, onY] = [byName.get(x), byName.get(y)]
+    return onX === undefined || onY === undefined ? [] : [twoSampleBlock(onX, onY)]
+  })
+}
+
+function homogeneity(materials: readonly AnalysedMaterial[], settings: AnalysisSettings): HomogeneityCheck[] {
+  if (settings.homogeneity !== true) return notAskedFor()
+  return materials.map(({ data, summaries }) =>
+    homogeneityBlock({
+      material: data.material,
+      units: data.cells.map(({ deviations }) => [...deviations]),
+      summaries,
+      target: settings.sigmas?.[data.material] ?? null,
+    }),
+  )
+}
+
+/** A last look: whatever slipped through is a defect of the program, not a property of the data. */
+function assertFinite(value: unknown, path: string): void {
+  if (typeof value === 'number' && !Number.isFinite(value)) throw new Error(`${path} is ${value}`)
+  if (value === null || typeof value !== 'object') return
+  for (const [key, inner] of Object.entries(value)) assertFinite(inner, `${path}.${key}`)
+}

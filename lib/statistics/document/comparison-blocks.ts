@@ -1,0 +1,215 @@
+import type {
+  AssignedBlock,
+  EqualityBlock,
+  ScoresBlock,
+  TruenessBlock,
+} from '@/lib/statistics/analysis-document'
+import type { CellSummary } from '@/lib/statistics/cells'
+import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
+import { averageRange, referenceCurve } from '@/lib/statistics/equality'
+import { type NestedAnova, nestedTest } from '@/lib/statistics/nested-anova'
+import type { NestedLayout } from '@/lib/statistics/nested-layout'
+import { laboratoryFTest, repeatability } from '@/lib/statistics/one-way-precision'
+import { enScore, zPrimeScore, zScore, zetaScore } from '@/lib/statistics/scores'
+import { biasInterval } from '@/lib/statistics/trueness'
+
+/** Variance of the general mean: each component over the number of its groups that the mean holds. */
+export function varianceOfMean(layout: NestedLayout, anova: NestedAnova): number {
+  const results = layout.deviations.length
+  let variance = 0
+  layout.strata.forEach((stratum, level) => {
+    let squares = 0
+    for (const size of stratum.size) squares += (size / results) ** 2
+    variance += anova.components[level]!.variance * squares
+  })
+  return variance
+}
+
+export function truenessBlock(one: {
+  reference: { deviation: number; value: number; uncertainty: number }
+  /** The general mean as a deviation. */
+  mean: () => number
+  laboratories: number
+  varianceOfMean: () => number
+}): TruenessBlock {
+  const bias = (): number => one.mean() - one.reference.deviation
+  const interval = () =>
+    biasInterval({
+      bias: bias(),
+      laboratories: one.laboratories,
+      varianceOfMean: one.varianceOfMean(),
+      referenceUncertainty: one.reference.uncertainty,
+    })
+  return withReasons((attempt) => {
+    const found = attempt('standardUncertainty', interval)
+    return {
+      reference: one.reference.value,
+      referenceUncertainty: one.reference.uncertainty,
+      bias: attempt('bias', bias),
+      standardUncertainty: found?.standardUncertainty ?? null,
+      df: found?.df ?? null,
+      ci95: withReasons((inner) => {
+        const limits = inner('lower', interval)
+        return {
+          lower: limits?.lower ?? null,
+          upper: limits?.upper ?? null,
+          extended: limits === null ? null : false,
+        }
+      }),
+    }
+  })
+}
+
+/**
+ * Are the laboratories alike? In a nested layout the yardstick is the mean
+ * square that the laboratories are tested against, since their averages differ
+ * by the inner levels too.
+ */
+export function equalityBlock(one: {
+  summaries: readonly CellSummary[]
+  layout: NestedLayout
+  anova: () => NestedAnova
+  harmonicCellSize: () => number
+}): EqualityBlock {
+  const { summaries, layout } = one
+  const test =
+    layout.levels.length > 1 ? () => nestedYardstick(layout, one.anova()) : () => oneWayYardstick(summaries)
+  const curve = () => {
+    const { variance, df } =
+      layout.levels.length > 1 ? nestedYardstick(layout, one.anova()) : repeatability(summaries)
+    return referenceCurve({ variance, df, n: commonSize(summaries) ?? one.harmonicCellSize() })
+  }
+  return withReasons((attempt) => {
+    const found = attempt('f', test)
+    const range = attempt('range', () =>
+      averageRange(
+        summaries.map(({ mean }) => mean),
+        curve(),
+      ),
+    )
+    return {
+      f: found?.f ?? null,
+      df: found === null ? null : [found.laboratoryDf, found.df],
+      pValue: found?.pValue ?? null,
+      range: range?.range ?? null,
+      rangePValue: range?.pValue ?? null,
+      reference: withReasons((inner) => {
+        const { df = null, scale = null, n = null, halfWidth95 = null } = inner('scale', curve) ?? {}
+        return { df, scale, n, halfWidth95 }
+      }),
+    }
+  })
+}
+
+/** A value to measure laboratories by: an accepted one, else a robust mean, else the general mean. */
+export function assignedBlock(one: {
+  reference: { value: number; uncertainty: number } | null
+  robust: { mean: number | null; meanStandardError: number | null }
+  mean: number | null
+  varianceOfMean: () => number
+  sigma: number | null
+  /** s_L² + s_r²/n, the variance of a cell mean of n results. */
+  varianceOfCellMean: (n: number) => number
+  summaries: readonly CellSummary[]
+}): AssignedBlock {
+  return withReasons((attempt) => {
+    const { value, uncertainty, source } = assignedValue(one)
+    return {
+      value: attempt('value', () => required(value, 'There is no mean.')),
+      uncertainty: attempt('uncertainty', uncertainty),
+      source,
+      sigma: attempt('sigma', () => one.sigma ?? commonSigma(one)),
+      sigmaSource: one.sigma === null ? (one.summaries.length === 0 ? null : 'cell mean') : 'given',
+    }
+  })
+}
+
+/** Scores of one laboratory; σ is that of a mean of as many results as its own. */
+export function scoresBlock(one: {
+  summary: CellSummary
+  value: number
+  assigned: AssignedBlock
+  laboratories: number
+  sigma: () => number
+  /** The laboratory's own standard uncertainty; `null` where it gave none. */
+  uncertainty: number | null
+}): ScoresBlock {
+  const assigned = () => ({
+    value: required(one.assigned.value, 'There is no assigned value.'),
+    uncertainty: required(one.assigned.uncertainty, 'The assigned value has no uncertainty.'),
+  })
+  const own = (): number => {
+    if (one.assigned.source !== 'reference' && one.laboratories < FEWEST_FOR_CONSENSUS) {
+      notComputable(
+        'consensus-too-small',
+        'The assigned value comes from fewer than 12 laboratories, this one among them.',
+      )
+    }
+    return required(one.uncertainty, 'The laboratory gave no uncertainty.')
+  }
+  return withReasons((attempt) => ({
+    z: attempt('z', () => zScore(one.value, { ...assigned(), uncertainty: 0 }, one.sigma())),
+    zPrime: attempt('zPrime', () => zPrimeScore(one.value, assigned(), one.sigma())),
+    zeta: attempt('zeta', () => zetaScore(one.value, assigned(), own())),
+    en: attempt('en', () => enScore(one.value, assigned(), own())),
+  }))
+}
+
+const FEWEST_FOR_CONSENSUS = 12
+
+type Yardstick = { f: number; laboratoryDf: number; df: number; pValue: number; variance: number }
+
+function oneWayYardstick(summaries: readonly CellSummary[]): Yardstick {
+  const { f, df1, df2, pValue } = laboratoryFTest(summaries)
+  return { f, laboratoryDf: df1, df: df2, pValue, variance: repeatability(summaries).variance }
+}
+
+function nestedYardstick(layout: NestedLayout, anova: NestedAnova): Yardstick {
+  const laboratory = layout.levels[0]!
+  const row = required(
+    anova.rows.find(({ source }) => source === laboratory) ?? null,
+    'The laboratories cannot be told from what lies inside them.',
+  )
+  const { f, pValue, denominator } = nestedTest(anova.rows, laboratory)
+  return { f, laboratoryDf: row.df, df: denominator.df, pValue, variance: denominator.ms }
+}
+
+function commonSize(summaries: readonly CellSummary[]): number | null {
+  const [first, ...others] = summaries
+  return first !== undefined && others.every(({ n }) => n === first.n) ? first.n : null
+}
+
+function assignedValue(one: {
+  reference: { value: number; uncertainty: number } | null
+  robust: { mean: number | null; meanStandardError: number | null }
+  mean: number | null
+  varianceOfMean: () => number
+}): { value: number | null; uncertainty: () => number; source: AssignedBlock['source'] } {
+  const { reference, robust } = one
+  if (reference !== null) {
+    return { value: reference.value, uncertainty: () => reference.uncertainty, source: 'reference' }
+  }
+  if (robust.mean !== null) {
+    return {
+      value: robust.mean,
+      uncertainty: () => required(robust.meanStandardError, ''),
+      source: 'algorithmA',
+    }
+  }
+  return {
+    value: one.mean,
+    uncertainty: () => Math.sqrt(one.varianceOfMean()),
+    source: one.mean === null ? null : 'mean',
+  }
+}
+
+function commonSigma(one: {
+  varianceOfCellMean: (n: number) => number
+  summaries: readonly CellSummary[]
+}): number {
+  const n = required(
+    commonSize(one.summaries),
+    'It differs by cell size; each score uses that of its own cell.',
+  )
+  return Math.sqrt(one.varianceOfCellMean(n))
+}

@@ -1,0 +1,36 @@
+import type { HomogeneityCheck } from '@/lib/statistics/analysis-document'
+import type { CellSummary } from '@/lib/statistics/cells'
+import { generalisedCochranBlock } from '@/lib/statistics/document/consistency-blocks'
+import { required, withReasons } from '@/lib/statistics/document/attempt'
+import { homogeneityFigures, homogeneityPValue, homogeneityVerdict } from '@/lib/statistics/homogeneity'
+
+export function homogeneityBlock(one: {
+  material: string
+  units: readonly (readonly number[])[]
+  summaries: readonly CellSummary[]
+  target: number | null
+}): HomogeneityCheck {
+  return withReasons((attempt) => {
+    const figures = attempt('sx', () => homogeneityFigures(one.units))
+    const target = attempt('target', () => required(one.target, 'No target standard deviation was given.'))
+    const verdict = figures === null || target === null ? null : homogeneityVerdict(figures, target)
+    return {
+      material: one.material,
+      units: one.units.length,
+      portions: figures?.portions ?? null,
+      sx: figures?.sx ?? null,
+      sw: figures?.sw ?? null,
+      ssSquaredRaw: figures?.ssSquaredRaw ?? null,
+      ss: figures?.ss ?? null,
+      f1: figures?.f1 ?? null,
+      f2: figures?.f2 ?? null,
+      target,
+      basic: verdict?.basic ?? null,
+      expanded: verdict?.expanded ?? null,
+      checkPrecise: verdict?.checkPrecise ?? null,
+      fPValue:
+        figures === null ? null : attempt('fPValue', () => homogeneityPValue(figures, one.units.length)),
+      cochran: generalisedCochranBlock(one.summaries),
+    }
+  })
+}

@@ -1,0 +1,25 @@
+import type { Planning } from '@/lib/statistics/analysis-document'
+import { notComputable, withReasons } from '@/lib/statistics/document/attempt'
+import { biasPrecision, repeatabilityPrecision, reproducibilityPrecision } from '@/lib/statistics/planning'
+
+/** How well studies of different sizes would know their figures. */
+export function planningBlock(plan: { from: number; to: number; n: number; gamma: number }): Planning {
+  const { n, gamma } = plan
+  const sizes = Array.from({ length: plan.to - plan.from + 1 }, (_, index) => plan.from + index)
+  return {
+    n,
+    gamma,
+    points: sizes.map((p) =>
+      withReasons((attempt) => ({
+        p,
+        repeatability: attempt('repeatability', () =>
+          n < 2
+            ? notComputable('no-replication', 'One replicate tells nothing of repeatability.')
+            : repeatabilityPrecision({ p, n, gamma }),
+        ),
+        reproducibility: reproducibilityPrecision({ p, n, gamma }),
+        bias: biasPrecision({ p, n, gamma }),
+      })),
+    ),
+  }
+}

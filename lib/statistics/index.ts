@@ -1,0 +1,7 @@
+/** The published face of the numerical core. */
+export { analyse } from '@/lib/statistics/analyse'
+export type * from '@/lib/statistics/analysis-document'
+export type { AnalysisInput, AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
+export { NotComputable } from '@/lib/statistics/not-computable'
+export { parseDecimal } from '@/lib/statistics/decimal'
+export { repeatabilityPrecision, reproducibilityPrecision, biasPrecision } from '@/lib/statistics/planning'
