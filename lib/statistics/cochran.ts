@@ -3,6 +3,7 @@ import { replicatedCells, type CellSummary, type ReplicatedCell } from '@/lib/st
 import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { noScatter } from '@/lib/statistics/one-way-precision'
+import { tieKeys } from '@/lib/statistics/tie-keys'
 
 /**
  * Cochran's test for the largest of several variances, as ISO 5725-2 has it and generalised to unequal cells.
@@ -45,8 +46,9 @@ export interface GeneralisedCochran {
 export function cochran(summaries: readonly CellSummary[]): Cochran {
   const cells = comparableCells(summaries)
   const variances = cells.map((cell) => cell.sd ** 2)
-  const largest = Math.max(...variances)
-  const index = variances.indexOf(largest)
+  const keys = tieKeys(variances)
+  const index = keys.indexOf(Math.max(...keys))
+  const largest = variances[index] as number
   // The others are summed by themselves: as 1 - C they would lose their digits when one cell has nearly all.
   const others = variances.reduce((sum, variance, at) => (at === index ? sum : sum + variance), 0)
   const df = modalDf(cells)
@@ -125,6 +127,9 @@ function modalDf(cells: readonly ReplicatedCell[]): number {
   return modal
 }
 
+/** Ties: the larger statistic, then the order of the cells. Differences of rounding alone are ties. */
 function isMoreExtreme(a: GeneralisedCochran, b: GeneralisedCochran): boolean {
-  return a.pValue < b.pValue || (a.pValue === b.pValue && a.statistic > b.statistic)
+  const difference = b.pValue - a.pValue
+  if (Math.abs(difference) > 1e-9 * Math.max(a.pValue, b.pValue)) return difference > 0
+  return a.statistic > b.statistic * (1 + 1e-12)
 }

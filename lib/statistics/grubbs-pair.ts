@@ -7,6 +7,7 @@ import {
 import type { End } from '@/lib/statistics/grubbs-single'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
+import { tieKeys } from '@/lib/statistics/tie-keys'
 
 export interface GrubbsPair {
   /** The two, in ascending order of their means. */
@@ -34,8 +35,9 @@ export function grubbsPair(summaries: readonly CellSummary[], end: End): GrubbsP
 
   // A stable sort: of equal means the first in the order of the cells counts as the further out.
   const direction = end === 'high' ? -1 : 1
-  const outwardsFirst = centred.map((_, index) => index)
-  outwardsFirst.sort((a, b) => direction * ((centred[a] as number) - (centred[b] as number)))
+  const keys = tieKeys(centred)
+  const outwardsFirst = keys.map((_, index) => index)
+  outwardsFirst.sort((a, b) => direction * ((keys[a] as number) - (keys[b] as number)))
   const [first, second, ...others] = outwardsFirst as [number, number, ...number[]]
 
   const statistic = squaresAboutMean(others.map((index) => centred[index] as number)) / sumOfSquares

@@ -2,6 +2,7 @@ import type { CellSummary } from '@/lib/statistics/cells'
 import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
+import { tieKeys } from '@/lib/statistics/tie-keys'
 
 export type End = 'high' | 'low'
 
@@ -28,11 +29,11 @@ export interface GrubbsSingle {
 export function grubbsSingle(summaries: readonly CellSummary[], end: End): GrubbsSingle {
   const { centred, sumOfSquares } = spreadOfMeans(summaries, 3)
   const p = summaries.length
-  const extreme = end === 'high' ? Math.max(...centred) : Math.min(...centred)
-  const index = centred.indexOf(extreme)
+  const keys = tieKeys(centred)
+  const index = keys.indexOf(end === 'high' ? Math.max(...keys) : Math.min(...keys))
   return {
     laboratory: (summaries[index] as CellSummary).laboratory,
-    statistic: Math.abs(extreme) / Math.sqrt(sumOfSquares / (p - 1)),
+    statistic: Math.abs(centred[index] as number) / Math.sqrt(sumOfSquares / (p - 1)),
     laboratories: p,
     pValue: Math.min(1, 2 * p * tUpperTail(distanceFromOthers(centred, index), p - 2)),
   }
