@@ -2,6 +2,7 @@ import { sql, type Kysely } from 'kysely'
 import PgBoss from 'pg-boss'
 import type { DB } from '@/db/tables'
 import { queueNames } from '@/lib/jobs/queues'
+import { runStatement } from '@/lib/jobs/run-statement'
 
 /**
  * Makes the job queue's schema and queues as owner, and lets the app work in them: the app itself
@@ -21,11 +22,7 @@ export async function installQueues(db: Kysely<DB>): Promise<void> {
 }
 
 async function install(db: Kysely<DB>): Promise<void> {
-  // The queue's statements carry their own begin and commit, and so go to the driver as they are.
-  const executeSql = async (text: string, values: unknown[] = []) => {
-    const query = values.length > 0 ? boundQuery(text, values) : sql.raw(text)
-    return { rows: [...(await query.execute(db)).rows] }
-  }
+  const executeSql = (text: string, values?: unknown[]) => runStatement(db, text, values)
   const boss = new PgBoss({ db: { executeSql }, migrate: true, supervise: false, schedule: false })
   await boss.start()
   try {
@@ -39,13 +36,4 @@ async function install(db: Kysely<DB>): Promise<void> {
 async function grant(db: Kysely<DB>): Promise<void> {
   await sql`grant usage on schema pgboss to app`.execute(db)
   await sql`grant select, insert, update, delete on all tables in schema pgboss to app`.execute(db)
-}
-
-/** A statement with $1, $2, … and its values, in Kysely's form. */
-function boundQuery(text: string, values: unknown[]) {
-  const parts = text.split(/\$(\d+)/)
-  const fragments = parts.map((part, index) =>
-    index % 2 === 0 ? sql.raw(part) : sql`${values[Number(part) - 1]}`,
-  )
-  return sql`${sql.join(fragments, sql``)}`
 }

@@ -17,19 +17,17 @@ export async function startOnOutsideServices(root: string): Promise<number> {
 
   const children = new Children()
   try {
-    const env = {
-      DATABASE_URL: config.databaseUrl,
-      DATABASE_READER_URL: config.databaseReaderUrl,
-      BASE_URL: config.baseUrl,
-      AUTH_SECRET: config.authSecret,
-      SMTP_URL: config.smtpUrl,
-      MAIL_FROM: config.mailFrom,
-    }
-    await startProduct({ root, children, env, port: config.port })
+    await startProduct({ root, children, env: withoutOwner(process.env), port: config.port })
     say(`Evenlot answers on 127.0.0.1:${config.port} for ${config.baseUrl}.`)
     say('The first administrator is made with: npm run create-administrator -- name@organisation.example')
     return await runUntilStopped(children, stopRequested)
   } finally {
     await children.stopAll()
   }
+}
+
+/** Whoever breaks into web or worker must not find the login that may change the schema. */
+function withoutOwner(env: NodeJS.ProcessEnv): Record<string, string> {
+  const kept = Object.entries(env).filter(([name, value]) => name !== 'DATABASE_OWNER_URL' && value !== undefined)
+  return Object.fromEntries(kept) as Record<string, string>
 }
