@@ -7,9 +7,9 @@ const number = z.string().regex(/^[1-9]\d*$/)
 export const mailKinds = {
   'sign-in': z.object({ requestId: id }),
   invitation: z.object({ studyId: id, invitationId: id, link: number }),
-  receipt: z.object({ studyId: id, returnId: id }),
+  receipt: z.object({ studyId: id, returnId: id, participantId: id }),
   'extension-requested': z.object({ studyId: id, requestId: id }),
-  'extension-granted': z.object({ studyId: id, participantId: id, number }),
+  'extension-granted': z.object({ studyId: id, participantId: id }),
 } as const
 
 export type MailKind = keyof typeof mailKinds

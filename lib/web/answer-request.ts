@@ -1,7 +1,7 @@
 import { isForeignRequest } from './foreign-request'
 import { ForeignRequest } from './foreign-request-error'
 import { publicError } from './error-status'
-import { logDefect } from './log'
+import { logDefect } from '@/lib/log'
 import { securityHeaders } from './security-headers'
 
 interface Handling {
