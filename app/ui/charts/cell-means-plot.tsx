@@ -72,7 +72,7 @@ export function CellMeansPlot(props: CellMeansPlotProps) {
           role="group"
           aria-labelledby={`${labelId}-title`}
           aria-describedby={`${labelId}-description`}
-          className="mx-auto block w-full font-mono print:min-w-0"
+          className="mx-auto block w-full font-mono print:min-w-0!"
           style={{ minWidth: Math.max(700, width * 0.7), maxWidth: width * 1.15 }}
         >
           <title id={`${labelId}-title`}>{`Cell means with ± s, ${material}`}</title>

@@ -27,7 +27,7 @@ export function ChartFrame({ title, summary, children, table, csv, svgId, level 
       </figcaption>
       <div className="border bg-sheet">{children}</div>
       <div className="mt-1.5 flex flex-wrap items-start justify-between gap-x-6 gap-y-1 text-small">
-        <details className="min-w-0 max-w-full grow basis-80">
+        <details data-table className="min-w-0 max-w-full grow basis-80">
           <summary className="min-h-6 w-fit text-verdigris underline underline-offset-[0.18em]">
             The figures as a table
           </summary>

@@ -77,7 +77,7 @@ export function ConsistencyPlot({ svgId, ...data }: ConsistencyPlotProps) {
           role="group"
           aria-labelledby={`${labelId}-title`}
           aria-describedby={`${labelId}-description`}
-          className="mx-auto block w-full font-mono print:min-w-0"
+          className="mx-auto block w-full font-mono print:min-w-0!"
           style={{ minWidth: Math.max(700, layout.width * 0.7), maxWidth: layout.width * 1.15 }}
         >
           <title id={`${labelId}-title`}>{`${statistic}, ${subject[statistic]}`}</title>

@@ -52,7 +52,7 @@ export function PrecisionBars({ svgId, materials, groupName = 'groups' }: Precis
         viewBox={`0 0 ${width} ${height}`}
         role="img"
         aria-labelledby={`${svgId}-title ${svgId}-description`}
-        className="mx-auto block w-full min-w-[620px] max-w-[1080px] font-mono print:min-w-0"
+        className="mx-auto block w-full min-w-[620px] max-w-[1080px] font-mono print:min-w-0!"
       >
         <title id={`${svgId}-title`}>Shares of the reproducibility variance, by material</title>
         <desc id={`${svgId}-description`}>{materials.map(inWords(groupName)).join(' ')}</desc>

@@ -67,7 +67,10 @@ function copyInLightDress(drawn: SVGSVGElement) {
   document.body.append(stage)
   const faces = new Set<Face>()
   copy.querySelectorAll('[data-transient]').forEach((mark) => mark.remove())
-  for (const element of [copy, ...copy.querySelectorAll<SVGElement>('*')]) resolve(element, faces)
+  const elements = [copy, ...copy.querySelectorAll<SVGElement>('*')]
+  for (const element of elements) resolve(element, faces)
+  // Last, since classes and styles are what the values above were inherited from.
+  for (const element of elements) strip(element)
   stage.remove()
   return { copy, faces }
 }
@@ -78,13 +81,16 @@ function resolve(element: SVGElement, faces: Set<Face>) {
   for (const property of resolvedProperties) {
     if (element.hasAttribute(property)) element.setAttribute(property, computed.getPropertyValue(property))
   }
-  element.removeAttribute('font-family')
   if (element.tagName === 'text') {
     const face = computed.fontFamily.includes('monospace') ? mono : sans
     faces.add(face)
     element.setAttribute('font-family', `'${face.name}', ${face.generic}`)
   }
+}
+
+function strip(element: SVGElement) {
   for (const attribute of ['class', 'style', 'tabindex', 'data-cell']) element.removeAttribute(attribute)
+  if (element.tagName !== 'text') element.removeAttribute('font-family')
 }
 
 /** A @font-face rule holding the very file that the page has loaded; empty if the page never did. */
