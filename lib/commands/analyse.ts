@@ -1,0 +1,94 @@
+import { createHash } from 'node:crypto'
+import { readFile } from 'node:fs/promises'
+import { type AnalyseOptions, readAnalyseOptions } from '@/lib/commands/analyse-options'
+import { type AnalysisFileProblem, readAnalysisFile } from '@/lib/commands/read-analysis-file'
+import { analyse, type AnalysisResult } from '@/lib/statistics'
+
+/*
+ * Analyses a file with the core the server uses, so that anybody can recompute
+ * a published study: one JSON document on standard output, or every problem on
+ * standard error and nothing else.
+ */
+
+const MOST_PROBLEMS = 50
+
+await main(process.argv.slice(2))
+
+async function main(args: readonly string[]): Promise<void> {
+  const { options, problems } = readAnalyseOptions(args)
+  if (options === null) return refuse(problems.map((words) => `analyse: ${words}`))
+
+  const read = options.file === null ? { results: [], bytes: new Uint8Array() } : await readResults(options)
+  if (read === null) return
+
+  const document = analyse({
+    results: read.results,
+    nesting: options.nesting,
+    settings: options.settings,
+    sha256: createHash('sha256').update(read.bytes).digest('hex'),
+    version: await ownVersion(),
+  })
+  process.stdout.write(`${JSON.stringify(document, null, 2)}\n`)
+}
+
+async function readResults(
+  options: AnalyseOptions,
+): Promise<{ results: AnalysisResult[]; bytes: Uint8Array } | null> {
+  const file = options.file!
+  let bytes: Uint8Array
+  try {
+    bytes = await readFile(file)
+  } catch (error) {
+    const code = error instanceof Error && 'code' in error ? String(error.code) : String(error)
+    refuse([`${file}: the file cannot be read (${code})`])
+    return null
+  }
+  const { results, problems } = await readAnalysisFile(bytes, options)
+  const all = [...problems, ...unknownMaterials(options, results)]
+  if (all.length > 0) {
+    refuse(all.map((problem) => inWords(file, problem)))
+    return null
+  }
+  return { results, bytes }
+}
+
+/** Materials that an option names and the file does not have. */
+function unknownMaterials(
+  { settings }: AnalyseOptions,
+  results: readonly AnalysisResult[],
+): AnalysisFileProblem[] {
+  if (results.length === 0) return []
+  const known = new Set(results.map(({ material }) => material))
+  const named = [
+    ...Object.keys(settings.references ?? {}),
+    ...Object.keys(settings.sigmas ?? {}),
+    ...Object.keys(settings.decimals ?? {}),
+    ...(settings.pairs ?? []).flat(),
+  ]
+  return [...new Set(named)]
+    .filter((name) => !known.has(name))
+    .map((name) => ({
+      row: null,
+      column: 'material',
+      found: [...known].join(', '),
+      expected: `${JSON.stringify(name)}, which an option names`,
+    }))
+}
+
+function inWords(file: string, { row, column, found, expected }: AnalysisFileProblem): string {
+  const place = [row === null ? null : `row ${row}`, column === null ? null : `column ${column}`]
+  const where = place.filter((part) => part !== null).join(', ')
+  return `${file}: ${where === '' ? '' : `${where}: `}found ${found}, expected ${expected}`
+}
+
+function refuse(lines: readonly string[]): void {
+  const shown = lines.slice(0, MOST_PROBLEMS)
+  if (lines.length > MOST_PROBLEMS) shown.push(`and ${lines.length - MOST_PROBLEMS} more`)
+  process.stderr.write(`${shown.join('\n')}\n`)
+  process.exitCode = 2
+}
+
+async function ownVersion(): Promise<string> {
+  const text = await readFile(new URL('../../package.json', import.meta.url), 'utf8')
+  return (JSON.parse(text) as { version: string }).version
+}
