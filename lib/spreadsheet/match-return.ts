@@ -305,9 +305,8 @@ function matchValue({
 }
 
 function convertAdvice(found: string, asked: string): string {
-  return asked === ''
-    ? `Values are asked without a unit, and this one is in ${found}. Convert it if needed and leave the unit out.`
-    : `Values are asked in ${asked}, and this one is in ${found}. Convert it and leave the unit out.`
+  const how = asked === '' ? 'without a unit' : `in ${asked}`
+  return `“${found}” follows the number, and values are asked ${how}: convert it if needed and write the number alone.`
 }
 
 function noValues(sheet: Sheet | undefined): CellProblem {

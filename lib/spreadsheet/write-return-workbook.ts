@@ -113,7 +113,12 @@ function guideLines(layout: ReturnLayout): string[] {
 }
 
 function writeText(cell: ExcelJS.Cell, text: string | null): ExcelJS.Cell {
-  cell.value = text
+  cell.value = text === null ? null : escapeForXml(text)
   cell.numFmt = asTyped
   return cell
+}
+
+/** XML turns a carriage return into a line feed, so these files spell it out, and the spelling itself too. */
+function escapeForXml(text: string): string {
+  return text.replace(/_x(?=[0-9A-Fa-f]{4}_)/g, '_x005F_x').replaceAll('\r', '_x000D_')
 }
