@@ -2,6 +2,7 @@
 
 import { useId, useState } from 'react'
 import { formatFigure } from '../primitives/format-figure'
+import { leastWidth } from './least-width'
 import { scaleTicks, tickDecimals } from './scale-ticks'
 import { SvgTag } from './svg-tag'
 
@@ -73,7 +74,7 @@ export function CellMeansPlot(props: CellMeansPlotProps) {
           aria-labelledby={`${labelId}-title`}
           aria-describedby={`${labelId}-description`}
           className="mx-auto block w-full font-mono print:min-w-0!"
-          style={{ minWidth: Math.max(700, width * 0.7), maxWidth: width * 1.15 }}
+          style={{ minWidth: leastWidth(width), maxWidth: width * 1.15 }}
         >
           <title id={`${labelId}-title`}>{`Cell means with ± s, ${material}`}</title>
           <desc id={`${labelId}-description`}>

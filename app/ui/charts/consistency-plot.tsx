@@ -12,6 +12,7 @@ import {
   type ConsistencyLayout,
   type PlacedCell,
 } from './consistency-layout'
+import { leastWidth } from './least-width'
 import { nextCell } from './next-cell'
 import { SeriesMark, seriesHue } from './series-mark'
 import { SvgTag } from './svg-tag'
@@ -78,7 +79,7 @@ export function ConsistencyPlot({ svgId, ...data }: ConsistencyPlotProps) {
           aria-labelledby={`${labelId}-title`}
           aria-describedby={`${labelId}-description`}
           className="mx-auto block w-full font-mono print:min-w-0!"
-          style={{ minWidth: Math.max(700, layout.width * 0.7), maxWidth: layout.width * 1.15 }}
+          style={{ minWidth: leastWidth(layout.width), maxWidth: layout.width * 1.15 }}
         >
           <title id={`${labelId}-title`}>{`${statistic}, ${subject[statistic]}`}</title>
           <desc id={`${labelId}-description`}>
