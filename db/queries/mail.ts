@@ -38,7 +38,13 @@ export async function unscopedFindMail(db: Kysely<DB>, mailId: string): Promise<
     .where('mail_id', '=', mailId)
     .executeTakeFirst()
   if (!row) return undefined
-  return { mailId: row.mail_id, studyId: row.study_id, kind: row.kind, recipient: row.recipient, subjectIds: row.subject_ids }
+  return {
+    mailId: row.mail_id,
+    studyId: row.study_id,
+    kind: row.kind,
+    recipient: row.recipient,
+    subjectIds: row.subject_ids,
+  }
 }
 
 /**
@@ -58,7 +64,12 @@ export async function insertMailAttempt(db: Kysely<DB>, mailId: string): Promise
 
 export async function finishMailAttempt(
   db: Kysely<DB>,
-  { mailId, number, outcome, detail }: { mailId: string; number: number; outcome: MailOutcome; detail: string | null },
+  {
+    mailId,
+    number,
+    outcome,
+    detail,
+  }: { mailId: string; number: number; outcome: MailOutcome; detail: string | null },
 ): Promise<void> {
   await db
     .updateTable('vault.mail_attempt')

@@ -59,12 +59,20 @@ export async function ensurePerson(
     .returning('id')
     .executeTakeFirst()
   if (made) return { personId: made.id, isNew: true }
-  const known = await trx.selectFrom('vault.User').select('id').where('email', '=', address).executeTakeFirstOrThrow()
+  const known = await trx
+    .selectFrom('vault.User')
+    .select('id')
+    .where('email', '=', address)
+    .executeTakeFirstOrThrow()
   return { personId: known.id, isNew: false }
 }
 
 export async function insertOrganisation(trx: Transaction<DB>, name: string): Promise<string> {
-  const made = await trx.insertInto('organisation').values({ name }).returning('organisation_id').executeTakeFirstOrThrow()
+  const made = await trx
+    .insertInto('organisation')
+    .values({ name })
+    .returning('organisation_id')
+    .executeTakeFirstOrThrow()
   return made.organisation_id
 }
 
@@ -80,7 +88,11 @@ export async function findOrganisationByName(db: Kysely<DB>, name: string): Prom
 /** False when the person already holds the role. */
 export async function insertOrganisationMember(
   trx: Transaction<DB>,
-  { organisationId, personId, role }: { organisationId: string; personId: string; role: 'administrator' | 'coordinator' },
+  {
+    organisationId,
+    personId,
+    role,
+  }: { organisationId: string; personId: string; role: 'administrator' | 'coordinator' },
 ): Promise<boolean> {
   const made = await trx
     .insertInto('vault.organisation_member')
@@ -96,7 +108,11 @@ export async function listCoordinators(db: Kysely<DB>, organisationId: string): 
   return db
     .selectFrom('vault.organisation_member as member')
     .innerJoin('vault.User as person', 'person.id', 'member.person_id')
-    .select(['person.id as personId', sql<string>`coalesce(person.name, person.email)`.as('name'), 'person.email as address'])
+    .select([
+      'person.id as personId',
+      sql<string>`coalesce(person.name, person.email)`.as('name'),
+      'person.email as address',
+    ])
     .where('member.organisation_id', '=', organisationId)
     .distinct()
     .orderBy('address')

@@ -19,17 +19,25 @@ export async function findSession(
   db: Kysely<DB>,
   { hash, endsAt }: Session,
 ): Promise<{ personId: string; isDueForTouch: boolean } | undefined> {
-  return db
-    .selectFrom('vault.Session')
-    // Written again at most every few minutes, so that reading a page seldom means writing a row.
-    .select(['userId as personId', sql<boolean>`expires < clock_now() + interval '11 hours 55 minutes'`.as('isDueForTouch')])
-    .where('sessionToken', '=', hash)
-    .where('expires', '>', sql<Date>`clock_now()`)
-    .where(sql<boolean>`${endsAt}::timestamptz > clock_now()`)
-    .executeTakeFirst()
+  return (
+    db
+      .selectFrom('vault.Session')
+      // Written again at most every few minutes, so that reading a page seldom means writing a row.
+      .select([
+        'userId as personId',
+        sql<boolean>`expires < clock_now() + interval '11 hours 55 minutes'`.as('isDueForTouch'),
+      ])
+      .where('sessionToken', '=', hash)
+      .where('expires', '>', sql<Date>`clock_now()`)
+      .where(sql<boolean>`${endsAt}::timestamptz > clock_now()`)
+      .executeTakeFirst()
+  )
 }
 
-export async function touchSession(db: Kysely<DB>, { hash, endsAt, idleHours }: Session & { idleHours: number }): Promise<void> {
+export async function touchSession(
+  db: Kysely<DB>,
+  { hash, endsAt, idleHours }: Session & { idleHours: number },
+): Promise<void> {
   await db
     .updateTable('vault.Session')
     .set({ expires: idleEnd(endsAt, idleHours) })
@@ -40,7 +48,9 @@ export async function touchSession(db: Kysely<DB>, { hash, endsAt, idleHours }: 
 export async function deleteSession(db: Kysely<DB>, hash: string): Promise<void> {
   await db
     .deleteFrom('vault.Session')
-    .where((where) => where.or([where('sessionToken', '=', hash), where('expires', '<', sql<Date>`clock_now()`)]))
+    .where((where) =>
+      where.or([where('sessionToken', '=', hash), where('expires', '<', sql<Date>`clock_now()`)]),
+    )
     .execute()
 }
 

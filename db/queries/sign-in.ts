@@ -61,7 +61,10 @@ export interface SignInRequest {
 }
 
 /** The request of an address, while it lasts. */
-export async function findLiveSignInRequest(db: Kysely<DB>, address: string): Promise<SignInRequest | undefined> {
+export async function findLiveSignInRequest(
+  db: Kysely<DB>,
+  address: string,
+): Promise<SignInRequest | undefined> {
   return db
     .selectFrom('vault.sign_in_request')
     .select(['request_id as requestId', 'address', 'code_hash as codeHash'])
@@ -71,7 +74,10 @@ export async function findLiveSignInRequest(db: Kysely<DB>, address: string): Pr
 }
 
 /** The address of a request whose mail is still wanted: a person's, not used, not replaced, not over. */
-export async function unscopedFindSignInMail(db: Kysely<DB>, requestId: string): Promise<{ address: string } | undefined> {
+export async function unscopedFindSignInMail(
+  db: Kysely<DB>,
+  requestId: string,
+): Promise<{ address: string } | undefined> {
   return db
     .selectFrom('vault.sign_in_request as request')
     .innerJoin('vault.VerificationToken as token', 'token.identifier', 'request.address')

@@ -42,7 +42,10 @@ export function createAuthAdapter(db: Kysely<DB>): Adapter {
       const found = session && (await findSession(db, session))
       const user = found && (await stock.getUser?.(found.personId))
       if (!session || !user) return null
-      return { session: { sessionToken, userId: user.id, expires: session.endsAt }, user: user as AdapterUser }
+      return {
+        session: { sessionToken, userId: user.id, expires: session.endsAt },
+        user: user as AdapterUser,
+      }
     },
 
     async updateSession({ sessionToken }) {

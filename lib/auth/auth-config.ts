@@ -12,7 +12,10 @@ import { absoluteDays } from './session-token'
 /** The one configuration of the library, for its session handler and for our own handlers that call it. */
 export function authConfig(parts: Parts): AuthConfig {
   const { baseUrl, authSecret } = parts.config
-  const provider = mailedLink(systemContext(parts), purposeKey(authSecret, 'verification token').toString('base64url'))
+  const provider = mailedLink(
+    systemContext(parts),
+    purposeKey(authSecret, 'verification token').toString('base64url'),
+  )
   return {
     adapter: createAuthAdapter(parts.db),
     providers: [provider],

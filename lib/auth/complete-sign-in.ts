@@ -42,6 +42,7 @@ async function tokenForCode(parts: Parts, given: { address: string; code: string
 }
 
 function badLink(): Refusal {
-  const words = 'This link was used already, or a later one took its place, or its 10 minutes are over. Ask for a new one.'
+  const words =
+    'This link was used already, or a later one took its place, or its 10 minutes are over. Ask for a new one.'
   return new Refusal('bad-link', words)
 }

@@ -17,7 +17,13 @@ export function readJourney(headers: Pick<Headers, 'get'>): Journey {
 
 /** Name, value and options of each cookie, as the framework takes them. */
 export function journeyCookies({ next, address }: Journey, baseUrl: string) {
-  const options = { httpOnly: true, sameSite: 'lax', path: '/', maxAge: 1800, secure: baseUrl.startsWith('https:') } as const
+  const options = {
+    httpOnly: true,
+    sameSite: 'lax',
+    path: '/',
+    maxAge: 1800,
+    secure: baseUrl.startsWith('https:'),
+  } as const
   return [
     { name: names.next, value: next ?? '', ...options },
     { name: names.address, value: address ?? '', ...options },

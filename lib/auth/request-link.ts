@@ -18,7 +18,10 @@ export async function requestSignInLink(
   const address = readMailAddress(typed)
   const verdict = await createSignInLimits(parts.db, parts.secrets).take({ address, peer })
   if (verdict === 'crowd')
-    throw new Refusal('too-many', 'Too many links were asked for from here. Wait an hour, or use the link you have.')
+    throw new Refusal(
+      'too-many',
+      'Too many links were asked for from here. Wait an hour, or use the link you have.',
+    )
   if (verdict === 'free') await askLibraryForLink(parts, address)
   return { address }
 }

@@ -23,11 +23,17 @@ const hourSeconds = 3600
 export function createSignInLimits(
   db: Kysely<DB>,
   secrets: LinkSecrets,
-  { perAddress = 5, perPeer = 60, inAll = 2000 }: { perAddress?: number; perPeer?: number; inAll?: number } = {},
+  {
+    perAddress = 5,
+    perPeer = 60,
+    inAll = 2000,
+  }: { perAddress?: number; perPeer?: number; inAll?: number } = {},
 ): SignInLimits {
   const limiter = (keyPrefix: string, points: number) =>
     new RateLimiterPostgres({
-      storeClient: { query: ({ text, values }: { text: string; values: unknown[] }) => runStatement(db, text, values) },
+      storeClient: {
+        query: ({ text, values }: { text: string; values: unknown[] }) => runStatement(db, text, values),
+      },
       schemaName: 'vault',
       tableName: 'rate_limit',
       tableCreated: true,
@@ -36,7 +42,11 @@ export function createSignInLimits(
       duration: hourSeconds,
       clearExpiredByTimeout: false,
     })
-  const limits = { address: limiter('address', perAddress), peer: limiter('peer', perPeer), all: limiter('all', inAll) }
+  const limits = {
+    address: limiter('address', perAddress),
+    peer: limiter('peer', perPeer),
+    all: limiter('all', inAll),
+  }
   // Whoever reads the table learns neither who asked nor from where.
   const key = (text: string) => secrets.hash(`limit.${text}`).slice(0, 32)
 

@@ -3,7 +3,8 @@ import { createDatabase } from '@/db/connection'
 import { Refusal } from '@/lib/domain/errors'
 import { createAdministrator } from '@/lib/use-cases/people/create-administrator'
 
-const usage = 'npm run create-administrator -- --organisation "…" --name "…" --address name@organisation.example'
+const usage =
+  'npm run create-administrator -- --organisation "…" --name "…" --address name@organisation.example'
 
 process.exitCode = await run()
 
@@ -26,7 +27,11 @@ async function run(): Promise<number> {
 }
 
 function readArguments(): { organisation: string; name: string; address: string } | null {
-  const options = { organisation: { type: 'string' }, name: { type: 'string' }, address: { type: 'string' } } as const
+  const options = {
+    organisation: { type: 'string' },
+    name: { type: 'string' },
+    address: { type: 'string' },
+  } as const
   try {
     const { organisation, name, address } = parseArgs({ options }).values
     return organisation && name && address ? { organisation, name, address } : null

@@ -5,7 +5,9 @@ import { runStatement } from './run-statement'
 
 /** Sends jobs, each inside the transaction it is given. It holds no connection and is never started. */
 export function createJobs(): Jobs {
-  const onlyInTransactions = { executeSql: () => Promise.reject(new Error('a job is enqueued in a transaction only')) }
+  const onlyInTransactions = {
+    executeSql: () => Promise.reject(new Error('a job is enqueued in a transaction only')),
+  }
   const boss = new PgBoss({ db: onlyInTransactions, migrate: false, supervise: false, schedule: false })
   return {
     async enqueue(trx, queue, payload, options = {}) {

@@ -21,7 +21,9 @@ export function requireWholeRegistry(
 ): void {
   const faults = [
     ...queueNames.filter((name) => !Object.hasOwn(handlers, name)).map((name) => `${name} has no handler`),
-    ...queueNames.filter((name) => !Object.hasOwn(definitions, name)).map((name) => `${name} has no definition`),
+    ...queueNames
+      .filter((name) => !Object.hasOwn(definitions, name))
+      .map((name) => `${name} has no definition`),
     ...[...new Set([...Object.keys(handlers), ...Object.keys(definitions)])]
       .filter((name) => !(queueNames as readonly string[]).includes(name))
       .map((name) => `${name} is no queue`),

@@ -17,7 +17,11 @@ export class JobFailed extends Error {
  * Runs one job. A refusal, or a row that is gone, ends it: another try would end the same. Anything else comes
  * again, and is logged unless it is only a mail server that is busy.
  */
-export async function runJob(context: WorkerContext, queue: QueueName, data: unknown): Promise<{ ended?: string }> {
+export async function runJob(
+  context: WorkerContext,
+  queue: QueueName,
+  data: unknown,
+): Promise<{ ended?: string }> {
   try {
     await jobHandlers[queue](context, data)
     return {}

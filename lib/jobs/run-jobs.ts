@@ -22,7 +22,7 @@ export async function runJobs(
   const boss = new PgBoss({ db: { executeSql }, migrate: false, supervise: false, schedule: false })
   const ran: Ran[] = []
   const seen = new Set<string>()
-  for (let before = -1; before !== ran.length; ) {
+  for (let before = -1; before !== ran.length;) {
     before = ran.length
     for (const queue of queueNames) {
       for (;;) {

@@ -7,6 +7,8 @@ export async function runStatement(
   text: string,
   values: readonly unknown[] = [],
 ): Promise<{ rows: Record<string, unknown>[]; rowCount: number }> {
-  const { rows, numAffectedRows } = await db.executeQuery<Record<string, unknown>>(CompiledQuery.raw(text, [...values]))
+  const { rows, numAffectedRows } = await db.executeQuery<Record<string, unknown>>(
+    CompiledQuery.raw(text, [...values]),
+  )
   return { rows, rowCount: Number(numAffectedRows ?? rows.length) }
 }

@@ -31,7 +31,9 @@ export interface ComposedMail {
   readonly replyTo: string | null
 }
 
-type Composers = { [Kind in MailKind]: (parts: ComposeParts, ids: MailIds<Kind>) => Promise<ComposedMail | null> }
+type Composers = {
+  [Kind in MailKind]: (parts: ComposeParts, ids: MailIds<Kind>) => Promise<ComposedMail | null>
+}
 
 /** The words of a mail as things stand now, or null when it is no longer wanted. */
 export async function composeMail(parts: ComposeParts, mail: MailRow): Promise<ComposedMail | null> {
@@ -76,6 +78,8 @@ const composers: Composers = {
   async 'extension-granted'({ db, baseUrl }, { studyId, participantId }) {
     const facts = await unscopedFindExtensionMail(db, { studyId, participantId })
     const url = `${baseUrl}/participations/${studyId}`
-    return facts ? { letter: extensionGrantedLetter({ ...facts, url }), replyTo: facts.coordinatorAddress } : null
+    return facts
+      ? { letter: extensionGrantedLetter({ ...facts, url }), replyTo: facts.coordinatorAddress }
+      : null
   },
 }

@@ -47,11 +47,18 @@ export function oneLine(text: string): string {
 }
 
 function buttonHtml({ label, url }: { label: string; url: string }): string {
-  const style = 'display:inline-block;padding:10px 16px;background:#0e5e5c;color:#ffffff;text-decoration:none;border-radius:2px'
+  const style =
+    'display:inline-block;padding:10px 16px;background:#0e5e5c;color:#ffffff;text-decoration:none;border-radius:2px'
   return `<p><a href="${escapeHtml(url)}" style="${style}">${escapeHtml(label)}</a></p>\n<p style="font-size:14px">${escapeHtml(label)}:<br>${escapeHtml(url)}</p>`
 }
 
-const entities: Record<string, string> = { '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;', "'": '&#39;' }
+const entities: Record<string, string> = {
+  '&': '&amp;',
+  '<': '&lt;',
+  '>': '&gt;',
+  '"': '&quot;',
+  "'": '&#39;',
+}
 
 export function escapeHtml(text: string): string {
   return text.replace(/[&<>"']/g, (character) => entities[character] ?? '')

@@ -26,7 +26,13 @@ export async function queueMail<Kind extends MailKind>(
   { kind, studyId, recipient, ids, dedupeKey }: QueuedMail<Kind>,
 ): Promise<boolean> {
   const subjectIds = mailKinds[kind].parse(ids)
-  const mailId = await insertMail(trx, { kind, studyId: studyId ?? null, recipient, subjectIds, dedupeKey: dedupeKey ?? null })
+  const mailId = await insertMail(trx, {
+    kind,
+    studyId: studyId ?? null,
+    recipient,
+    subjectIds,
+    dedupeKey: dedupeKey ?? null,
+  })
   if (!mailId) return false
   await jobs.enqueue(trx, 'mail.send', { mailId })
   return true

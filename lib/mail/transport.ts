@@ -19,7 +19,13 @@ export interface MailTransport {
   close(): void
 }
 
-export function createMailTransport({ smtpUrl, mailFrom }: { smtpUrl: string; mailFrom: string }): MailTransport {
+export function createMailTransport({
+  smtpUrl,
+  mailFrom,
+}: {
+  smtpUrl: string
+  mailFrom: string
+}): MailTransport {
   const transporter = nodemailer.createTransport(
     { url: smtpUrl, connectionTimeout: 10_000, greetingTimeout: 10_000, socketTimeout: 30_000 },
     { from: mailFrom },

@@ -30,7 +30,9 @@ interface Definition<C, Schema extends z.ZodType, R> {
 type FormAction = (previous: FormState, form: FormData) => Promise<FormState>
 
 /** A form's action for signed-in people: parse, ask who it is, run the use case, and say where to go. */
-export function formAction<Schema extends z.ZodType, R>(definition: Definition<Context, Schema, R>): FormAction {
+export function formAction<Schema extends z.ZodType, R>(
+  definition: Definition<Context, Schema, R>,
+): FormAction {
   return (_previous, form) => act(definition, form, requestContext)
 }
 

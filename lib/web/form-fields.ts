@@ -32,7 +32,11 @@ export function readFormFields(form: FormData): FormFields {
   }
   const renamed = new Map<string, string>()
   const fields = branchToObject(root, [], [], renamed)
-  return { fields, values: Object.fromEntries(values), nameOf: (path) => typedName(path.map(String), renamed) }
+  return {
+    fields,
+    values: Object.fromEntries(values),
+    nameOf: (path) => typedName(path.map(String), renamed),
+  }
 }
 
 function isUnusable(segment: string): boolean {
@@ -57,13 +61,21 @@ function plant(root: Branch, path: readonly string[], value: string | string[]):
 function branchToObject(branch: Branch, parsed: string[], typed: string[], renamed: Map<string, string>) {
   const members = [...branch].map(([key, value]) => {
     const place = [...parsed, key]
-    return [key, value instanceof Map ? branchToValue(value, place, [...typed, key], renamed) : value] as const
+    return [
+      key,
+      value instanceof Map ? branchToValue(value, place, [...typed, key], renamed) : value,
+    ] as const
   })
   return Object.fromEntries(members)
 }
 
 /** Rows keep their order by number; numbers that are missing close up, and the way back is noted. */
-function branchToValue(branch: Branch, parsed: string[], typed: string[], renamed: Map<string, string>): unknown {
+function branchToValue(
+  branch: Branch,
+  parsed: string[],
+  typed: string[],
+  renamed: Map<string, string>,
+): unknown {
   const keys = [...branch.keys()]
   if (!keys.every((key) => /^\d{1,4}$/.test(key))) return branchToObject(branch, parsed, typed, renamed)
   return keys

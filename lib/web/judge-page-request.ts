@@ -33,7 +33,12 @@ export function judgePageRequest({ method, headers, url, baseUrl, nonce, develop
   return { status: statusAtOnce({ method, headers, pathname, baseUrl }), requestHeaders, responseHeaders }
 }
 
-function statusAtOnce(asked: { method: string; headers: Headers; pathname: string; baseUrl: string }): 403 | 404 | null {
+function statusAtOnce(asked: {
+  method: string
+  headers: Headers
+  pathname: string
+  baseUrl: string
+}): 403 | 404 | null {
   // Pictures are served as they are; nothing here fetches or shrinks one on request.
   if (asked.pathname.startsWith('/_next/image')) return 404
   return isForeignRequest(asked, asked.baseUrl) ? 403 : null

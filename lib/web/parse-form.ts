@@ -5,10 +5,14 @@ import type { FormState } from './form-state'
 export type ParsedForm<T> = { ok: true; input: T; state: FormState } | { ok: false; state: FormState }
 
 /** Reads a form by its schema. What the schema does not name is dropped; faults come back beside their fields. */
-export function parseForm<Schema extends z.ZodType>(schema: Schema, form: FormData): ParsedForm<z.output<Schema>> {
+export function parseForm<Schema extends z.ZodType>(
+  schema: Schema,
+  form: FormData,
+): ParsedForm<z.output<Schema>> {
   const { fields, values, nameOf } = readFormFields(form)
   let parsed = schema.safeParse(fields, { error: sayFault })
-  if (!parsed.success && listsWanted(fields, parsed.error.issues)) parsed = schema.safeParse(fields, { error: sayFault })
+  if (!parsed.success && listsWanted(fields, parsed.error.issues))
+    parsed = schema.safeParse(fields, { error: sayFault })
   if (parsed.success) return { ok: true, input: parsed.data, state: { errors: {}, values } }
 
   const errors = new Map<string, string[]>()
@@ -41,7 +45,9 @@ function listsWanted(fields: Record<string, unknown>, issues: readonly z.core.$Z
 }
 
 function memberOf(value: unknown, key: PropertyKey): unknown {
-  return value !== null && typeof value === 'object' && Object.hasOwn(value, key) ? Reflect.get(value, key) : undefined
+  return value !== null && typeof value === 'object' && Object.hasOwn(value, key)
+    ? Reflect.get(value, key)
+    : undefined
 }
 
 /** Words for faults for which the schema has none of its own. */
@@ -53,7 +59,9 @@ function sayFault(issue: z.core.$ZodRawIssue): string {
     case 'too_small':
       return issue.origin === 'number' ? `Give ${issue.minimum} or more.` : `Give at least ${issue.minimum}.`
     case 'too_big':
-      return issue.origin === 'string' ? `Use at most ${issue.maximum} characters.` : `Give at most ${issue.maximum}.`
+      return issue.origin === 'string'
+        ? `Use at most ${issue.maximum} characters.`
+        : `Give at most ${issue.maximum}.`
     case 'invalid_value':
       return 'Choose one of the options.'
     default:

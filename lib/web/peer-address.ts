@@ -48,6 +48,9 @@ function block(address: string): string {
   const [head = '', tail] = address.split('::')
   const left = head.split(':').filter(Boolean)
   const right = (tail ?? '').split(':').filter(Boolean)
-  const groups = tail === undefined ? left : [...left, ...Array<string>(8 - left.length - right.length).fill('0'), ...right]
+  const groups =
+    tail === undefined
+      ? left
+      : [...left, ...Array<string>(8 - left.length - right.length).fill('0'), ...right]
   return `${groups.slice(0, 4).join(':')}::/64`
 }

@@ -5,7 +5,15 @@
  * The referrer stays within the site rather than being withheld altogether: under `no-referrer` a browser also
  * sends `Origin: null` with our own forms, which could then not be told from a sandboxed frame's.
  */
-export function securityHeaders({ baseUrl, nonce, develop = false }: { baseUrl: string; nonce?: string; develop?: boolean }): Record<string, string> {
+export function securityHeaders({
+  baseUrl,
+  nonce,
+  develop = false,
+}: {
+  baseUrl: string
+  nonce?: string
+  develop?: boolean
+}): Record<string, string> {
   const headers: Record<string, string> = {
     'Content-Security-Policy': nonce ? pagePolicy(nonce, develop) : handlerPolicy,
     'Cache-Control': 'private, no-store',
@@ -16,12 +24,14 @@ export function securityHeaders({ baseUrl, nonce, develop = false }: { baseUrl: 
     'X-Content-Type-Options': 'nosniff',
     'X-Frame-Options': 'DENY',
   }
-  if (baseUrl.startsWith('https:')) headers['Strict-Transport-Security'] = 'max-age=63072000; includeSubDomains'
+  if (baseUrl.startsWith('https:'))
+    headers['Strict-Transport-Security'] = 'max-age=63072000; includeSubDomains'
   return headers
 }
 
 /** For what is read by programs or saved to disk: nothing in it may run or load. */
-const handlerPolicy = "default-src 'none'; frame-ancestors 'none'; base-uri 'none'; form-action 'none'; sandbox"
+const handlerPolicy =
+  "default-src 'none'; frame-ancestors 'none'; base-uri 'none'; form-action 'none'; sandbox"
 
 function pagePolicy(nonce: string, develop: boolean): string {
   return [

@@ -32,7 +32,10 @@ export async function sendMail(parts: SendMailParts, { mailId }: { mailId: strin
   if (outcome === 'deferred') throw new MailDeferred()
 }
 
-async function deliver(parts: SendMailParts, row: MailRow): Promise<Delivery | { outcome: 'dropped'; detail: string }> {
+async function deliver(
+  parts: SendMailParts,
+  row: MailRow,
+): Promise<Delivery | { outcome: 'dropped'; detail: string }> {
   if (!isOneAddress(row.recipient)) return { outcome: 'dropped', detail: 'no recipient' }
   const composed = await composeMail(parts, row)
   if (!composed) return { outcome: 'dropped', detail: 'no longer wanted' }

@@ -21,7 +21,10 @@ interface Wanted {
  * trail names no actor.
  * @throws {Refusal} `organisation-exists`, `too-short`, `bad-address`
  */
-export async function createAdministrator({ db }: Pick<AnonymousContext, 'db'>, wanted: Wanted): Promise<{ personId: string }> {
+export async function createAdministrator(
+  { db }: Pick<AnonymousContext, 'db'>,
+  wanted: Wanted,
+): Promise<{ personId: string }> {
   const organisation = readName(wanted.organisation, 'organisation')
   const name = readName(wanted.name, 'name')
   const address = readMailAddress(wanted.address)
@@ -36,8 +39,14 @@ export async function createAdministrator({ db }: Pick<AnonymousContext, 'db'>, 
     const { personId } = await ensurePerson(trx, { address, name })
     await insertOrganisationMember(trx, { organisationId, personId, role: 'administrator' })
     const common = { actor: null, role: 'operator', studyId: houseChain }
-    await recordAudit(trx, { ...common, fact: { action: 'organisation.created', version: 1, name: organisation } })
-    await recordAudit(trx, { ...common, fact: { action: 'member.added', version: 1, personId, role: 'administrator' } })
+    await recordAudit(trx, {
+      ...common,
+      fact: { action: 'organisation.created', version: 1, name: organisation },
+    })
+    await recordAudit(trx, {
+      ...common,
+      fact: { action: 'member.added', version: 1, personId, role: 'administrator' },
+    })
     return { personId }
   })
 }

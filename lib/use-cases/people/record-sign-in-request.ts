@@ -24,7 +24,12 @@ export async function recordSignInRequest(
     const person = await findPersonByAddress(trx, address)
     // The token first: its lock puts requests of one address in a line.
     await replaceVerificationToken(trx, { address, tokenHash, lifetimeSeconds })
-    await insertSignInRequest(trx, { requestId, address, codeHash: hashCode(secrets, requestId), lifetimeSeconds })
+    await insertSignInRequest(trx, {
+      requestId,
+      address,
+      codeHash: hashCode(secrets, requestId),
+      lifetimeSeconds,
+    })
     // A stranger's address does not stay in the outbox; the request that holds it is forgotten.
     await queueMail(trx, jobs, { kind: 'sign-in', recipient: person?.address ?? '', ids: { requestId } })
   })
