@@ -28,7 +28,7 @@ export type UploadLimits = {
   startingMs: number
 }
 
-export const uploadLimits: UploadLimits = { memoryMiB: 256, readingMs: 10_000, startingMs: 30_000 }
+const uploadLimits: UploadLimits = { memoryMiB: 256, readingMs: 10_000, startingMs: 30_000 }
 
 /** Found from the root of the project, as bundling moves this module but not the file it starts. */
 const childFile = ['lib', 'spreadsheet', 'check-upload-child.ts']
@@ -98,9 +98,7 @@ function readInChild(upload: UploadToCheck, limits: UploadLimits): Promise<Uploa
 }
 
 function startChild({ memoryMiB }: UploadLimits): ChildProcess {
-  const root = process.cwd()
-  return fork(join(/* turbopackIgnore: true */ root, ...childFile), {
-    cwd: root,
+  return fork(join(/* turbopackIgnore: true */ process.cwd(), ...childFile), {
     execArgv: ['--import', 'tsx', `--max-old-space-size=${memoryMiB}`],
     // No secrets, no settings: the reader needs none, and what it does not have it cannot give away.
     env: { NODE_ENV: process.env.NODE_ENV, PATH: process.env.PATH, TZ: 'UTC' },

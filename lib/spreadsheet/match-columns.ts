@@ -41,7 +41,9 @@ export function findHeader(sheet: Sheet, layout: ReturnLayout): Header | undefin
   const rows = new Map<number, SheetCell[]>()
   for (const cell of sheet.cells) {
     if (cell.row > lastHeaderRow) continue
-    rows.set(cell.row, [...(rows.get(cell.row) ?? []), cell])
+    const row = rows.get(cell.row)
+    if (row === undefined) rows.set(cell.row, [cell])
+    else row.push(cell)
   }
   let best: Header | undefined
   for (const [row, cells] of [...rows].sort(([a], [b]) => a - b)) {
@@ -83,11 +85,13 @@ function readHeader({ sheet, row, cells, layout }: HeaderRow): Header {
     if (recognised === undefined) header.unknown.push(cell)
     else found.push({ column: cell.column, title: cell.text.trim(), address: cell.address, ...recognised })
   }
-  const hasOwnColumn = found.some(({ role }) => role.kind === 'measurand')
+  const ownColumns = found.filter(({ role }) => role.kind === 'measurand').length
   const only = layout.measurands.length === 1 ? layout.measurands[0] : undefined
   for (const column of found) {
-    // “Value” is the column of the only measurand, unless that has one under its own name.
-    if (column.role.kind === 'value' && hasOwnColumn) {
+    // “Value” is the column of the only measurand, unless that has one under its own name; and a column of
+    // units says nothing where a row holds values of several measurands.
+    const isValueBeside = column.role.kind === 'value' && ownColumns > 0
+    if (isValueBeside || (column.role.kind === 'unit' && ownColumns > 1)) {
       const cell = cells.find(({ address }) => address === column.address)
       if (cell !== undefined) header.unknown.push(cell)
       continue

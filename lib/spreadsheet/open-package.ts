@@ -131,7 +131,7 @@ function entryName(entry: Entry): string {
   if (unsafe) {
     throw new Refusal(
       'workbook-unsafe-names',
-      'This file names parts outside itself, which no spreadsheet program does. Save it again as .xlsx.',
+      'This file names its parts in a way that could reach outside it, as no spreadsheet program does. Save it again as .xlsx.',
     )
   }
   return name.toLowerCase()

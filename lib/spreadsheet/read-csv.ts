@@ -9,7 +9,7 @@ import {
 } from '@/lib/spreadsheet/workbook'
 
 /** The one sheet of a text file needs a name, so that its cells can be spoken of. */
-export const csvSheetName = 'File'
+const csvSheetName = 'File'
 
 /** Reads a table from UTF-8 text; throws a `Refusal` that names what is wrong with the file. */
 export function readCsv(bytes: Uint8Array, limits: Partial<WorkbookLimits> = {}): Workbook {

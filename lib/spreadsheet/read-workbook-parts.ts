@@ -125,7 +125,7 @@ export function decodeEscapes(text: string): string {
     : text
 }
 
-export function isTrue(attribute: string | undefined): boolean {
+function isTrue(attribute: string | undefined): boolean {
   return attribute === '1' || attribute === 'true'
 }
 

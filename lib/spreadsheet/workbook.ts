@@ -65,7 +65,7 @@ export function cellAddress({ row, column }: { row: number; column: number }): s
   return `${columnLetters(column)}${row}`
 }
 
-export function columnLetters(column: number): string {
+function columnLetters(column: number): string {
   let letters = ''
   for (let rest = column; rest > 0; rest = Math.floor((rest - 1) / 26)) {
     letters = String.fromCharCode(65 + ((rest - 1) % 26)) + letters

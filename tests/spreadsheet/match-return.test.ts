@@ -150,6 +150,19 @@ describe('matchReturn', () => {
     expect(check.problems).toEqual([])
   })
 
+  it('checks a column of units where each row has one value, and leaves it alone where it has several', () => {
+    const one = checkText('Material,Replicate,Value,Unit\nRye,1,1,g/kg\nRye,2,1,mg/kg\n', single)
+    expect(faultsOf(one)).toEqual(['D3 other-unit'])
+    const several = checkText(
+      'Material,Day,Replicate,Breaking force,Strain at break,Unit\nWool felt,1,1,31,4,N\n',
+      twoByTwo,
+    )
+    expect(several.problems).toEqual([])
+    expect(several.notices).toEqual([
+      'The column “Unit” (File!F1) is not part of this study and was not read.',
+    ])
+  })
+
   it.each([
     ['no table at all', 'a,b\nc,d\n', ['- no-header']],
     ['an empty table', 'Material,Replicate,Value\n', ['- no-values']],
