@@ -91,7 +91,8 @@ export default {
     },
     {
       name: 'committee-and-public-reach-no-vault',
-      comment: 'Go through a use case that reads db/anonymous; not even by way of another file may the vault be reached.',
+      comment:
+        'Go through a use case that reads db/anonymous; not even by way of another file may the vault be reached.',
       severity: 'error',
       from: { path: ['^app/\\(public\\)/', '^app/\\(work\\)/committee/', '^db/anonymous/'] },
       to: { path: QUERIES_OF_THE_VAULT, reachable: true },
@@ -107,7 +108,9 @@ export default {
       name: 'framework-stays-outside',
       comment: 'Only app, lib/web and lib/auth know Next.js; give the rest what it needs as plain values.',
       severity: 'error',
-      from: { pathNot: '^(app/|lib/web/|lib/auth/|proxy\\.ts$|next\\.config\\.mjs$|next-env\\.d\\.ts$|tests/)' },
+      from: {
+        pathNot: '^(app/|lib/web/|lib/auth/|proxy\\.ts$|next\\.config\\.mjs$|next-env\\.d\\.ts$|tests/)',
+      },
       to: { path: npm('next', 'next-auth') },
     },
     {
@@ -125,8 +128,8 @@ export default {
       },
     },
     {
-      name: 'sheets-and-mail-stand-below',
-      comment: 'Give the workbook or the letter its values; reading them is the use case’s part.',
+      name: 'sheets-stand-below',
+      comment: 'Give the workbook its values; reading them is the use case’s part.',
       severity: 'error',
       from: { path: '^lib/spreadsheet/' },
       to: { path: ['^(app|db|fakes|migrations|tests)/', '^lib/(?!domain/|spreadsheet/)'] },
@@ -179,6 +182,9 @@ export default {
     exclude: { path: '^\\.(next|data)/' },
     tsPreCompilationDeps: true,
     tsConfig: { fileName: 'tsconfig.json' },
-    enhancedResolveOptions: { exportsFields: ['exports'], conditionNames: ['import', 'require', 'node', 'default', 'types'] },
+    enhancedResolveOptions: {
+      exportsFields: ['exports'],
+      conditionNames: ['import', 'require', 'node', 'default', 'types'],
+    },
   },
 }

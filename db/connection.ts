@@ -34,6 +34,7 @@ function ourTypes(): pg.CustomTypesConfig {
 /** Counts and sums arrive as int8; as strings they would be joined where they should be added. */
 function parseInt8(text: string): number {
   const value = Number(text)
-  if (!Number.isSafeInteger(value)) throw new RangeError(`The database sent ${text}, too large to be counted with.`)
+  if (!Number.isSafeInteger(value))
+    throw new RangeError(`The database sent ${text}, too large to be counted with.`)
   return value
 }

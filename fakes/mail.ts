@@ -24,6 +24,6 @@ const mailbox = await startMailbox({
 
 for (const signal of ['SIGINT', 'SIGTERM'] as const) {
   process.once(signal, () => {
-    Promise.allSettled([relay.close(), mailbox.close()]).then(() => process.exit(0))
+    void Promise.allSettled([relay.close(), mailbox.close()]).then(() => process.exit(0))
   })
 }

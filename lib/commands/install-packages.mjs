@@ -23,7 +23,9 @@ export function installPackages() {
 
   // npm ci empties the folder first, and would empty another checkout's through a link.
   if (lstatSync(`${root}node_modules`, { throwIfNoEntry: false })?.isSymbolicLink()) {
-    console.error('node_modules is a link to another folder and out of date. Remove the link and start again.')
+    console.error(
+      'node_modules is a link to another folder and out of date. Remove the link and start again.',
+    )
     process.exit(1)
   }
   console.log('Installing packages (npm ci)')

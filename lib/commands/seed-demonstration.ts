@@ -39,6 +39,6 @@ export async function demonstrationPeople(): Promise<readonly DemonstrationPerso
 
 // Loaded only where the run is private: a run against outside services never has it in memory.
 async function demonstrationWorld(): Promise<DemonstrationWorld | undefined> {
-  const module = new URL('../../db/seed/demonstration-world.ts', import.meta.url)
-  return existsSync(module) ? ((await import(module.href)) as DemonstrationWorld) : undefined
+  const source = new URL('../../db/seed/demonstration-world.ts', import.meta.url)
+  return existsSync(source) ? ((await import(source.href)) as DemonstrationWorld) : undefined
 }

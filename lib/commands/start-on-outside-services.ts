@@ -28,6 +28,8 @@ export async function startOnOutsideServices(root: string): Promise<number> {
 
 /** Whoever breaks into web or worker must not find the login that may change the schema. */
 function withoutOwner(env: NodeJS.ProcessEnv): Record<string, string> {
-  const kept = Object.entries(env).filter(([name, value]) => name !== 'DATABASE_OWNER_URL' && value !== undefined)
+  const kept = Object.entries(env).filter(
+    ([name, value]) => name !== 'DATABASE_OWNER_URL' && value !== undefined,
+  )
   return Object.fromEntries(kept) as Record<string, string>
 }
