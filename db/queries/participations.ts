@@ -121,23 +121,13 @@ export async function insertExtension(
   return number
 }
 
-/** Where the contacts of a laboratory, or the coordinators of a study, read their mail. */
+/** Where the contacts of a laboratory read their mail. */
 export async function listContactAddresses(db: Kysely<DB>, { studyId, participantId }: { studyId: string; participantId: string }): Promise<{ personId: string; address: string }[]> {
   return db
     .selectFrom('vault.contact as contact')
     .innerJoin('vault.User as person', 'person.id', 'contact.person_id')
     .where('contact.study_id', '=', studyId)
     .where('contact.participant_id', '=', participantId)
-    .select(['person.id as personId', 'person.email as address'])
-    .execute()
-}
-
-export async function listCoordinatorAddresses(db: Kysely<DB>, organisationId: string): Promise<{ personId: string; address: string }[]> {
-  return db
-    .selectFrom('vault.organisation_member as member')
-    .innerJoin('vault.User as person', 'person.id', 'member.person_id')
-    .where('member.organisation_id', '=', organisationId)
-    .where('member.role', '=', 'coordinator')
     .select(['person.id as personId', 'person.email as address'])
     .execute()
 }

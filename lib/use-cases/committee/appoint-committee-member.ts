@@ -1,6 +1,6 @@
 import { actsForLaboratory, deleteCommitteeMember, listCommittee, writeCommitteeMember, type CommitteeMemberRecord } from '@/db/queries/committee'
 import { findStudyFor, type StudyRecord } from '@/db/queries/studies'
-import { upsertPerson } from '@/db/queries/upsert-person'
+import { ensurePerson } from '@/db/queries/people'
 import type { Context } from '@/lib/context'
 import type { CommitteeRole } from '@/lib/domain/actor'
 import { NotFound, Refusal } from '@/lib/domain/errors'
@@ -19,7 +19,7 @@ export async function appointCommitteeMember(
     const study = await findStudyFor(trx, context.actor, studyId, { lock: 'update' })
     if (!study) throw new NotFound('study')
     const role = authorise(context.actor, 'committee.appoint', study)
-    const personId = await upsertPerson(trx, { address: read, name: name.trim().slice(0, 120) })
+    const { personId } = await ensurePerson(trx, { address: read, name: name.trim().slice(0, 120) })
     if (await actsForLaboratory(trx, { studyId, personId }))
       throw new Refusal('acts-for-laboratory', 'This person acts for a laboratory of the study and would know its code among the others. Name someone else.', 'address')
     await writeCommitteeMember(trx, { studyId, personId, role: committeeRole, addedBy: context.actor.personId })

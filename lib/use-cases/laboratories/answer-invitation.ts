@@ -1,5 +1,5 @@
 import { findInvitation, findInvitedStudy, insertInvitationAnswer, insertParticipant, listCodes } from '@/db/queries/laboratories'
-import { upsertPerson } from '@/db/queries/upsert-person'
+import { ensurePerson } from '@/db/queries/people'
 import { lockStudy } from '@/db/queries/studies'
 import type { AnonymousContext } from '@/lib/context'
 import { NotFound, Refusal } from '@/lib/domain/errors'
@@ -33,7 +33,7 @@ export async function answerInvitation(
       await recordAudit(trx, { actor: null, role, studyId, fact: { action: 'laboratory.declined', version: 1, invitationId } })
       return { address: invitation.address }
     }
-    const personId = await upsertPerson(trx, { address: invitation.address, name: invitation.contactName })
+    const { personId } = await ensurePerson(trx, { address: invitation.address, name: invitation.contactName })
     const code = drawLaboratoryCode(context.random.below, new Set(await listCodes(trx, studyId)))
     const participantId = await insertParticipant(trx, { studyId, invitationId, code, personId })
     await recordAudit(trx, { actor: null, role, studyId, fact: { action: 'laboratory.accepted', version: 1, invitationId, participantId } })

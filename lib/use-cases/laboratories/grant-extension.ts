@@ -40,7 +40,7 @@ export async function grantExtension(
         kind: 'extension-granted',
         studyId,
         recipient: address,
-        ids: { studyId, participantId, number: String(number) },
+        ids: { studyId, participantId },
         dedupeKey: `extension-granted.${participantId}.${number}.${personId}`,
       })
   })

@@ -1,4 +1,5 @@
-import { insertExtensionRequest, listCoordinatorAddresses } from '@/db/queries/participations'
+import { insertExtensionRequest } from '@/db/queries/participations'
+import { listCoordinators } from '@/db/queries/people'
 import type { Context } from '@/lib/context'
 import { Refusal } from '@/lib/domain/errors'
 import { requireState } from '@/lib/domain/study-states'
@@ -17,7 +18,7 @@ export async function requestExtension(context: Context, { studyId, message }: {
     const { participantId } = participation
     const requestId = await insertExtensionRequest(trx, { studyId, participantId, message: words, personId: context.actor.personId })
     await recordAudit(trx, { actor: context.actor, role, studyId, fact: { action: 'extension.requested', version: 1, participantId } })
-    for (const { address, personId } of await listCoordinatorAddresses(trx, study.organisationId))
+    for (const { address, personId } of await listCoordinators(trx, study.organisationId))
       await queueMail(trx, context.jobs, {
         kind: 'extension-requested',
         studyId,

@@ -105,7 +105,7 @@ async function storeReturn(trx: Transaction<DB>, context: Context, submission: S
       kind: 'receipt',
       studyId,
       recipient: address,
-      ids: { studyId, returnId },
+      ids: { studyId, returnId, participantId },
       dedupeKey: `receipt.${returnId}.${personId}`,
     })
   }
