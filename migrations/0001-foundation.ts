@@ -27,14 +27,14 @@ create function clock_now() returns timestamptz(3) language sql volatile securit
   from clock_setting
 $$;
 
-create function set_clock(instant timestamptz, freeze boolean) returns void language plpgsql security definer set search_path = public as $$
+create function set_clock(instant timestamptz, stand_still boolean) returns void language plpgsql security definer set search_path = public as $$
 begin
   if current_setting('cluster_name') <> 'evenlot-private' then
     raise exception 'the clock can be set on a private cluster only';
   end if;
   update clock_setting set
     shift = case when instant is null then '0' else instant - clock_timestamp() end,
-    frozen_at = case when freeze then instant end;
+    frozen_at = case when stand_still then instant end;
 end $$;
 `
 

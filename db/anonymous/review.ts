@@ -2,7 +2,7 @@ import type { Kysely } from 'kysely'
 import type { DB } from '@/db/tables'
 import type { StudyState } from '@/lib/domain/study-states'
 
-/** A study as one who knows no names may see it. Every query here runs on the reader's connection. */
+/** A study as one who knows no names may see it: nothing here asks for more than the reader login may read. */
 export interface AnonymousStudy {
   readonly studyId: string
   readonly organisationId: string
