@@ -19,7 +19,7 @@ export type SatterthwaiteInterval = { lower: Quantity; upper: Quantity; df: Quan
 export type ConsistencyCriticalValues = { '0.005': Quantity; '0.01': Quantity; '0.05': Quantity }
 
 /** Cochran and Grubbs are judged at two. */
-export type OutlierCriticalValues = { '0.05': Quantity; '0.01': Quantity }
+export type OutlierCriticalValues = { '0.05': Quantity; '0.01': Quantity } & Reasons
 
 export type OutlierLevel = 'none' | 'straggler' | 'outlier'
 

@@ -4,19 +4,18 @@ import type {
   CriticalBlock,
   GeneralisedCochranBlock,
   NestingLevelBlock,
+  OutlierCriticalValues,
   OutlierLevel,
   Reasons,
 } from '@/lib/statistics/analysis-document'
 import { type CellSummary, replicatedCells } from '@/lib/statistics/cells'
 import {
-  type Cochran,
   cochran,
   cochranCritical,
-  type GeneralisedCochran,
   generalisedCochran,
   generalisedCochranCritical,
 } from '@/lib/statistics/cochran'
-import { once, required, withReasons } from '@/lib/statistics/document/attempt'
+import { notComputable, once, required, withReasons } from '@/lib/statistics/document/attempt'
 import type { LevelSummaries } from '@/lib/statistics/laboratory-summaries'
 import {
   mandelHCritical,
@@ -57,17 +56,22 @@ export function kByLaboratory(summaries: readonly CellSummary[]): () => Readonly
 }
 
 export function cochranBlock(summaries: readonly CellSummary[], isNested: boolean): CochranBlock {
+  const tested = once(() => cochran(summaries))
   const generalised = generalisedCochranBlock(summaries)
   return withReasons((attempt) => {
-    const test = attempt('statistic', () => cochran(summaries))
+    const test = attempt('statistic', tested)
     return {
       laboratory: test?.laboratory ?? null,
       statistic: test?.statistic ?? null,
-      critical: cochranCriticalValues(test),
+      critical: criticalValues((alpha) => cochranCritical({ ...tested(), alpha })),
       pValue: test?.pValue ?? null,
       // With unequal cells the standard's statistic is only approximate; the generalised one decides.
       level: test === null ? null : test.isBalanced ? outlierLevel(test.pValue) : generalised.level,
-      nUsed: test === null || isNested ? null : test.df + 1,
+      nUsed: attempt('nUsed', () =>
+        isNested
+          ? notComputable('nested', 'In a nested layout dfUsed stands in its place.')
+          : tested().df + 1,
+      ),
       dfUsed: test?.df ?? null,
       laboratoriesUsed: test?.cells ?? null,
       generalised,
@@ -76,12 +80,13 @@ export function cochranBlock(summaries: readonly CellSummary[], isNested: boolea
 }
 
 export function generalisedCochranBlock(summaries: readonly CellSummary[]): GeneralisedCochranBlock {
+  const tested = once(() => generalisedCochran(summaries))
   return withReasons((attempt) => {
-    const test = attempt('statistic', () => generalisedCochran(summaries))
+    const test = attempt('statistic', tested)
     return {
       laboratory: test?.laboratory ?? null,
       statistic: test?.statistic ?? null,
-      critical: generalisedCriticalValues(test),
+      critical: criticalValues((alpha) => generalisedCochranCritical({ ...tested(), alpha })),
       pValue: test?.pValue ?? null,
       level: test === null ? null : outlierLevel(test.pValue),
     }
@@ -117,22 +122,12 @@ function hCriticalBlock(laboratories: number): Critical {
   }))
 }
 
-function cochranCriticalValues(test: Cochran | null): CochranBlock['critical'] {
-  if (test === null) return { '0.05': null, '0.01': null }
-  const { cells, df } = test
-  return {
-    '0.05': cochranCritical({ cells, df, alpha: 0.05 }),
-    '0.01': cochranCritical({ cells, df, alpha: 0.01 }),
-  }
-}
-
-function generalisedCriticalValues(test: GeneralisedCochran | null): GeneralisedCochranBlock['critical'] {
-  if (test === null) return { '0.05': null, '0.01': null }
-  const { cells, df, pooledDf } = test
-  return {
-    '0.05': generalisedCochranCritical({ cells, df, pooledDf, alpha: 0.05 }),
-    '0.01': generalisedCochranCritical({ cells, df, pooledDf, alpha: 0.01 }),
-  }
+/** Critical values at the two levels; where there is no test, they are missing for the same reason. */
+function criticalValues(atLevel: (alpha: number) => number): OutlierCriticalValues {
+  return withReasons((attempt) => ({
+    '0.05': attempt('0.05', () => atLevel(0.05)),
+    '0.01': attempt('0.01', () => atLevel(0.01)),
+  }))
 }
 
 function levelCell(

@@ -32,11 +32,13 @@ function testBlock(one: {
 }): GrubbsTestBlock {
   return withReasons((attempt) => {
     const found = attempt('statistic', one.test)
-    const critical = (alpha: number): number | null => (found === null ? null : one.critical(alpha))
     return {
       laboratories: found?.laboratories ?? [],
       statistic: found?.statistic ?? null,
-      critical: { '0.05': critical(0.05), '0.01': critical(0.01) },
+      critical: withReasons((inner) => ({
+        '0.05': inner('0.05', () => one.critical(0.05)),
+        '0.01': inner('0.01', () => one.critical(0.01)),
+      })),
       pValue: found?.pValue ?? null,
       level: found === null ? null : outlierLevel(found.pValue),
     }
