@@ -34,6 +34,8 @@ export function createSignInLimits(
       storeClient: {
         query: ({ text, values }: { text: string; values: unknown[] }) => runStatement(db, text, values),
       },
+      // Makes the library call `query` on what it is given, rather than look for a pool of its own.
+      storeType: 'pool',
       schemaName: 'vault',
       tableName: 'rate_limit',
       tableCreated: true,
