@@ -27,7 +27,8 @@ export interface UnexpectedEnd {
 
 const TAIL_LINES = 40
 const READY_WITHIN_MS = 60_000
-const STOP_WITHIN_MS = 15_000
+// Longer than the worker allows the jobs under way.
+const STOP_WITHIN_MS = 30_000
 
 /** The Node.js processes of one run: started in order, stopped in the reverse order, missed when one dies. */
 export class Children {

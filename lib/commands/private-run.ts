@@ -46,7 +46,7 @@ export async function preparePrivateDatabase(
   await migrateDatabase(ownerUrl)
   say('Filling the database with the demonstration studies')
   const environment = privateEnvironment({ access, database, ...run })
-  if (!(await seedDemonstration({ ownerUrl, environment }))) return
+  await seedDemonstration({ ownerUrl, environment })
   await asClusterAdmin(access, (client) => client.query(`comment on database "${database}" is '${SEEDED}'`))
 }
 

@@ -19,7 +19,8 @@ export async function startOnOutsideServices(root: string): Promise<number> {
   try {
     await startProduct({ root, children, env: withoutOwner(process.env), port: config.port })
     say(`Evenlot answers on 127.0.0.1:${config.port} for ${config.baseUrl}.`)
-    say('The first administrator is made with: npm run create-administrator -- name@organisation.example')
+    say('The first administrator is made with:')
+    say('  npm run create-administrator -- --organisation "…" --name "…" --address …')
     return await runUntilStopped(children, stopRequested)
   } finally {
     await children.stopAll()

@@ -7,7 +7,7 @@ import { preparePrivateDatabase, privateEnvironment } from './private-run'
 import { ensureBuild } from './product-build'
 import { startFakeMail, startProduct } from './product-processes'
 import { nextStopSignal, runUntilStopped } from './run-until-stopped'
-import { demonstrationPeople, type DemonstrationPerson } from './seed-demonstration'
+import { demonstrationPeople } from './seed-demonstration'
 
 /** Runs the product by itself: a private database, a fake mail service and the demonstration world. */
 export async function startPrivately(root: string): Promise<number> {
@@ -37,7 +37,10 @@ export async function startPrivately(root: string): Promise<number> {
   }
 }
 
-function welcome(ports: Ports, everybody: readonly DemonstrationPerson[]): string[] {
+function welcome(
+  ports: Ports,
+  everybody: readonly { name: string; address: string; role: string }[],
+): string[] {
   const people = everybody.map(({ name, address, role }) => `  ${address.padEnd(36)} ${name}, ${role}`)
   return [
     '',
