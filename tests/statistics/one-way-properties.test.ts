@@ -243,3 +243,40 @@ describe('a statistic at its critical value', () => {
     }
   })
 })
+
+describe('the generalised Cochran test', () => {
+  // Eight laboratories of normal results without an outlier, n = 3 save two of 2, 20,000 times. Simulation gives 8.6 % and
+  // 2.3 % for the plain statistic at its nominal 5 % and 1 % (standard errors 0.2 % and 0.1 %).
+  const sizes = [3, 3, 3, 3, 3, 3, 2, 2]
+  const draws = 20_000
+
+  it('keeps its level with unequal cells, where the plain one is beyond it', () => {
+    const random = normalNumbers(20261201)
+    const beyond = { plain5: 0, plain1: 0, general5: 0, general1: 0 }
+    for (let draw = 0; draw < draws; draw++) {
+      const cells = summariseCells(
+        sizes.map((n, index) => ({ laboratory: `L${index}`, deviations: Array.from({ length: n }, random) })),
+      )
+      const plain = cochran(cells).pValue
+      const general = generalisedCochran(cells).pValue
+      if (plain < 0.05) beyond.plain5 += 1
+      if (plain < 0.01) beyond.plain1 += 1
+      if (general < 0.05) beyond.general5 += 1
+      if (general < 0.01) beyond.general1 += 1
+    }
+    expect(beyond.plain5 / draws).toBeCloseTo(0.086, 2)
+    expect(beyond.plain1 / draws).toBeCloseTo(0.023, 2)
+    expect(Math.abs(beyond.general5 / draws - 0.05)).toBeLessThan(0.006)
+    expect(Math.abs(beyond.general1 / draws - 0.01)).toBeLessThan(0.003)
+  })
+})
+
+/** Seeded standard normal numbers: a linear congruential generator (Park and Miller) and Box and Muller's pairs. */
+function normalNumbers(seedOfNumbers: number): () => number {
+  let state = seedOfNumbers
+  const uniform = () => {
+    state = (state * 48271) % 2147483647
+    return state / 2147483647
+  }
+  return () => Math.sqrt(-2 * Math.log(uniform())) * Math.cos(2 * Math.PI * uniform())
+}

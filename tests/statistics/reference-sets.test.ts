@@ -1,6 +1,11 @@
 import { describe, expect, it } from 'vitest'
 import { summariseCells } from '@/lib/statistics/cells'
-import { cochran, cochranCritical, generalisedCochran } from '@/lib/statistics/cochran'
+import {
+  cochran,
+  cochranCritical,
+  generalisedCochran,
+  generalisedCochranCritical,
+} from '@/lib/statistics/cochran'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
 import { grubbsSingle, grubbsSingleCritical, type End } from '@/lib/statistics/grubbs-single'
 import { mandelH, mandelHCritical, mandelK, mandelKCritical } from '@/lib/statistics/mandel'
@@ -196,6 +201,25 @@ describe.each(replicated)('%s, with replicates', (_, { cells, centred, expected 
     expectClose(between.rawVariance, exact.sL2_raw, 1e-13)
     expectClose(within.sd, exact.sr, 1e-13)
     expectClose(reproducibility(summaries).sd, exact.sR, 1e-13)
+  })
+})
+
+describe.each(replicated)('%s, generalised Cochran', (_, { cells, expected }) => {
+  const ks = Object.entries<number | null>(expected.mandel.k_pooled ?? {}).filter(
+    (entry) => entry[1] !== null,
+  )
+
+  it('is the square of k in another scale, with the critical value of k at alpha over the number of cells', () => {
+    const summaries = summariseCells(cells)
+    if (ks.length < 2) return expect(() => generalisedCochran(summaries)).toThrow(NotComputable)
+
+    const { laboratory, statistic, df, pooledDf, cells: count } = generalisedCochran(summaries)
+    const k = expected.mandel.k_pooled[laboratory] as number
+    expectClose(statistic, (df * k * k) / pooledDf)
+    for (const [name, alpha] of Object.entries(alphas)) {
+      const critical = generalisedCochranCritical({ cells: count, df, pooledDf, alpha: count * alpha })
+      expectClose(critical, (df * expected.mandel.k_pooled_critical[laboratory][name] ** 2) / pooledDf)
+    }
   })
 })
 
