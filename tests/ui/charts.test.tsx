@@ -1,3 +1,4 @@
+// @vitest-environment jsdom
 import { renderToStaticMarkup } from 'react-dom/server'
 import { describe, expect, it } from 'vitest'
 import { CellMeansPlot } from '@/app/ui/charts/cell-means-plot'
@@ -47,6 +48,30 @@ describe('ConsistencyPlot, drawn on the server', () => {
     expect(page.querySelector('#within > desc')!.textContent).toContain(
       '3 cells of 2 laboratories and 2 materials; 1 beyond',
     )
+  })
+
+  it('moves the names of close critical values apart', () => {
+    const close = parseMarkup(
+      renderToStaticMarkup(
+        <ConsistencyPlot
+          svgId="close"
+          statistic="h"
+          order="laboratory"
+          materials={[]}
+          laboratories={[]}
+          criticals={[
+            { label: '5 %', value: 2.4 },
+            { label: '1 %', value: 2.5 },
+          ]}
+        />,
+      ),
+    )
+    const heights = Array.from(close.querySelectorAll('text'))
+      .filter((text) => text.textContent!.includes('%'))
+      .map((text) => Number(text.getAttribute('y')))
+    expect(heights).toHaveLength(4)
+    expect(heights[1]! - heights[0]!).toBeGreaterThanOrEqual(13)
+    expect(heights[3]! - heights[2]!).toBeGreaterThanOrEqual(13)
   })
 
   it('names the critical value at the end of its line and labels the mark beyond it', () => {
@@ -103,6 +128,16 @@ describe('PrecisionBars', () => {
     expect(page.querySelector('desc')!.textContent).toBe(
       'coir: within 50\u00a0%, between days 25\u00a0%, between laboratories 25\u00a0%. flax: no variance.',
     )
+  })
+
+  it('lays the parts of a bar end to end', () => {
+    const parts = Array.from(page.querySelectorAll('g > g > rect'))
+      .filter((part) => part.getAttribute('height') === '24')
+      .map((part) => [Number(part.getAttribute('x')), Number(part.getAttribute('width'))] as const)
+    expect(parts).toHaveLength(3)
+    expect(parts[1]![0]).toBeCloseTo(parts[0]![0] + parts[0]![1], 6)
+    expect(parts[2]![0]).toBeCloseTo(parts[1]![0] + parts[1]![1], 6)
+    expect(parts[0]![1]).toBeCloseTo(2 * parts[2]![1], 6)
   })
 
   it('draws no bar where there is no variance, and no impossible number', () => {

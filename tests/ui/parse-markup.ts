@@ -1,5 +1,4 @@
-import { JSDOM } from 'jsdom'
-
+/** Static markup as a document to be asked. The test must run in vitest's jsdom environment. */
 export function parseMarkup(markup: string): Document {
-  return new JSDOM(`<!doctype html><body>${markup}`).window.document
+  return new DOMParser().parseFromString(`<!doctype html><body>${markup}`, 'text/html')
 }

@@ -67,7 +67,7 @@ export function ConsistencyPlot({ svgId, ...data }: ConsistencyPlotProps) {
     <DrawingContext value={{ data, layout, active, entry, choose }}>
       <div
         role="region"
-        aria-label={`Plot of ${statistic}, ${subject[statistic]}`}
+        aria-label={`Plot of ${statistic}, ${subject[statistic]}, by ${order}`}
         tabIndex={0}
         data-scrolls
         className="relative overflow-x-auto"
@@ -166,29 +166,33 @@ function Limits({ yScale, innerWidth }: Scales) {
   const { layout } = useDrawing()
   const y = yScale as (value: number) => number
   const lines = layout.limits.map((limit) => ({ ...limit, y: y(limit.value) })).sort((a, b) => a.y - b.y)
-  let previous = -Infinity
+  const labelsAt = apart(lines.map((line) => line.y + 4))
   return (
     <g fontSize="12" fill="var(--ink)">
-      {lines.map((line) => {
-        const labelY = Math.max(line.y + 4, previous + 13)
-        previous = labelY
-        return (
-          <g key={`${line.label} ${line.value}`}>
-            <line
-              x1="0"
-              x2={innerWidth}
-              y1={line.y}
-              y2={line.y}
-              stroke="var(--ink)"
-              strokeDasharray={line.isOuter ? '7 3' : '1.5 4'}
-            />
-            <text x={innerWidth + 8} y={labelY}>
-              {line.label}
-            </text>
-          </g>
-        )
-      })}
+      {lines.map((line, index) => (
+        <g key={`${line.label} ${line.value}`}>
+          <line
+            x1="0"
+            x2={innerWidth}
+            y1={line.y}
+            y2={line.y}
+            stroke="var(--ink)"
+            strokeDasharray={line.isOuter ? '7 3' : '1.5 4'}
+          />
+          <text x={innerWidth + 8} y={labelsAt[index]}>
+            {line.label}
+          </text>
+        </g>
+      ))}
     </g>
+  )
+}
+
+/** Baselines from the top down, each at least a line below the one before. */
+function apart(baselines: readonly number[]): number[] {
+  return baselines.reduce<number[]>(
+    (placed, baseline) => [...placed, Math.max(baseline, (placed[placed.length - 1] ?? -Infinity) + 13)],
+    [],
   )
 }
 

@@ -16,6 +16,8 @@ export interface PrecisionShares {
 interface Part {
   key: 'within' | 'groups' | 'laboratories'
   label: string
+  /** Where it begins and how much it takes, both as a share of the whole. */
+  from: number
   share: number
 }
 
@@ -33,7 +35,7 @@ const top = 40
 export function PrecisionBars({ svgId, materials, groupName = 'groups' }: PrecisionBarsProps) {
   const height = top + materials.length * rowHeight + 34
   const hasGroups = materials.some((material) => material.betweenGroups !== null)
-  const legend: Omit<Part, 'share'>[] = [
+  const legend: Pick<Part, 'key' | 'label'>[] = [
     { key: 'within', label: 'within' },
     ...(hasGroups ? [{ key: 'groups' as const, label: `between ${groupName}` }] : []),
     { key: 'laboratories', label: 'between laboratories' },
@@ -88,7 +90,6 @@ export function PrecisionBars({ svgId, materials, groupName = 'groups' }: Precis
 }
 
 function Bar({ material, y, svgId }: { material: PrecisionShares; y: number; svgId: string }) {
-  let x = left
   return (
     <g>
       <text
@@ -102,9 +103,8 @@ function Bar({ material, y, svgId }: { material: PrecisionShares; y: number; svg
         {material.name}
       </text>
       {partsOf(material).map((part) => {
-        const start = x
+        const start = left + part.from * barWidth
         const length = part.share * barWidth
-        x += length
         return (
           <g key={part.key}>
             <rect x={start} y={y} width={length} height={barHeight} {...dress(part.key, svgId)} />
@@ -158,12 +158,19 @@ function partsOf({ within, betweenGroups, betweenLaboratories }: PrecisionShares
   const total = within + (betweenGroups ?? 0) + betweenLaboratories
   // A material whose every result is the same has no variance to share out.
   if (total <= 0) return []
+  const withinShare = within / total
+  const groupShare = (betweenGroups ?? 0) / total
   return [
-    { key: 'within', label: 'within', share: within / total },
+    { key: 'within', label: 'within', from: 0, share: withinShare },
     ...(betweenGroups === null
       ? []
-      : [{ key: 'groups' as const, label: 'groups', share: betweenGroups / total }]),
-    { key: 'laboratories', label: 'between laboratories', share: betweenLaboratories / total },
+      : [{ key: 'groups' as const, label: 'groups', from: withinShare, share: groupShare }]),
+    {
+      key: 'laboratories',
+      label: 'between laboratories',
+      from: withinShare + groupShare,
+      share: betweenLaboratories / total,
+    },
   ]
 }
 

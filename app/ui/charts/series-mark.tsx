@@ -1,4 +1,4 @@
-export type MarkFill = 'open' | 'faint' | 'full'
+type MarkFill = 'open' | 'faint' | 'full'
 
 interface SeriesMarkProps {
   /** Which series: it decides shape and hue together, so that either alone tells the series. */

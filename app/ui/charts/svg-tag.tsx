@@ -28,6 +28,6 @@ export function SvgTag({ code, x, y, isUpright = false }: SvgTagProps) {
 }
 
 /** Red Hat Mono advances 0.6 em a sign. */
-export function tagWidth(code: string): number {
+function tagWidth(code: string): number {
   return 17 + code.length * 6.9
 }

@@ -1,7 +1,7 @@
 import Link from 'next/link'
 import clsx from 'clsx'
 
-export type StationPhase = 'done' | 'current' | 'open' | 'later'
+type StationPhase = 'done' | 'current' | 'open' | 'later'
 
 export interface Station {
   name: string

@@ -2,4 +2,6 @@
 export const controlLook =
   'block w-full rounded border border-edge bg-sheet px-2.5 text-ink placeholder:text-ink-soft ' +
   'aria-[invalid=true]:border-2 aria-[invalid=true]:border-madder ' +
+  // Under 16 px some telephones zoom the page when a control takes the focus.
+  'pointer-coarse:text-[1rem] ' +
   'disabled:bg-paper disabled:text-ink-soft read-only:bg-paper'
