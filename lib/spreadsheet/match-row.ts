@@ -29,8 +29,7 @@ export function readRowPlace(reading: RowReading): RowPlace {
     ({ role }) => role.kind === 'material' || role.kind === 'level',
   )
   return {
-    row:
-      isWhole && problems.length === 0 ? { materialId: material.id, groups: groups as number[] } : undefined,
+    row: isWhole ? { materialId: material.id, groups: groups as number[] } : undefined,
     measurand,
     cell: placeColumns.flatMap(({ column }) => reading.cells.get(column) ?? [])[0],
     words: [material?.name ?? '?', ...levelWords, ...(measurand === undefined ? [] : [measurand.name])].join(

@@ -34,7 +34,7 @@ describe('readWorkbook', () => {
       '<row r="3"><c r="A3" s="1"><v>1.1000000000000001</v></c><c s="2"><v>1.1</v></c><c><v>1.1</v></c><c s="5"><v>0.5</v></c></row>' +
       '<row r="4"><c r="A4" s="3"><v>46024</v></c><c s="4"><v>46024.25</v></c><c t="d"><v>2026-01-02</v></c></row>' +
       '<row r="5"><c t="b"><v>1</v></c><c t="e"><v>#DIV/0!</v></c><c><f>1+1</f><v>99</v></c><c t="str"><f>A1</f><v>x</v></c><c><f t="shared" si="0"/><v>2</v></c></row>' +
-      '<row><c t="inlineStr"><is><t>in &amp; line</t></is></c><c t="inlineStr"><is><t></t></is></c><c s="1"/></row>'
+      '<row><c t="inlineStr"><is><t>in &amp; line</t><rPh><t>no</t></rPh></is></c><c t="inlineStr"><is><t></t></is></c><c s="1"/></row>'
     const bytes = makeWorkbook({ styles, strings, sheets: [{ name: 'One', xml }] })
     expect(await textsOf(bytes)).toEqual({
       A2: 'text plain',
@@ -325,6 +325,16 @@ describe('readWorkbook withstands', () => {
     const startedAt = performance.now()
     expect((await refusalOf(bytes)).code).toBe('workbook-text-too-long')
     expect(performance.now() - startedAt).toBeLessThan(5_000)
+  })
+
+  it('a part that grows past the size it stated, as soon as it does', async () => {
+    const content = `<?xml version="1.0"?><worksheet>${' '.repeat(100 * 1024 * 1024)}</worksheet>`
+    const bytes = packZip(
+      workbookParts().map((part) =>
+        part.name.includes('sheet1') ? { ...part, content, claimedSize: 900 } : part,
+      ),
+    )
+    expect((await refusalOf(bytes)).code).toBe('workbook-sizes-lie')
   })
 
   it('100 MiB of one tag, packed a thousandfold', async () => {
