@@ -50,6 +50,16 @@ export async function listStudiesFor(db: Kysely<DB>, actor: Actor): Promise<Stud
   return rows.map(toStudy)
 }
 
+export async function listOrganisationNames(db: Kysely<DB>, organisationIds: readonly string[]): Promise<{ organisationId: string; name: string }[]> {
+  if (organisationIds.length === 0) return []
+  return db
+    .selectFrom('organisation')
+    .where('organisation_id', 'in', organisationIds)
+    .select(['organisation_id as organisationId', 'name'])
+    .orderBy('name')
+    .execute()
+}
+
 function selectStudies(db: Kysely<DB>, actor: Actor) {
   const organisationIds = actor.organisations.map((each) => each.organisationId)
   const studyIds = [...actor.laboratories, ...actor.committees].map((each) => each.studyId)

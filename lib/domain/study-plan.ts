@@ -8,7 +8,9 @@ const filled = <Rows extends z.ZodType>(rows: Rows) =>
   z.preprocess((typed) => (Array.isArray(typed) ? typed.filter((row) => !isBlank(row)) : []), rows)
 
 function isBlank(row: unknown): boolean {
-  return !row || (typeof row === 'object' && !String((row as { name?: unknown }).name ?? '').trim())
+  if (!row || typeof row !== 'object') return true
+  // A choice always has some value, so only what is typed counts as filling a row.
+  return Object.entries(row).every(([key, value]) => key === 'hasTrueZero' || !String(value ?? '').trim())
 }
 
 /** A checkbox sends "on" or nothing at all. */

@@ -1,5 +1,5 @@
 import { readClock } from '@/db/queries/clock'
-import { listStudiesFor, type StudyRecord } from '@/db/queries/studies'
+import { listOrganisationNames, listStudiesFor, type StudyRecord } from '@/db/queries/studies'
 import type { Context } from '@/lib/context'
 import { permittedRole } from '@/lib/domain/permissions'
 
@@ -10,13 +10,18 @@ export interface StudyListEntry {
 }
 
 /** Every study a person has to do with, once for each capacity. */
-export async function listStudies(context: Context): Promise<{ now: Date; entries: StudyListEntry[]; mayCreateIn: string[] }> {
+export async function listStudies(context: Context): Promise<{ now: Date; entries: StudyListEntry[]; mayCreateIn: { organisationId: string; name: string }[] }> {
   const { actor } = context
-  const [now, studies] = await Promise.all([readClock(context.db), listStudiesFor(context.db, actor)])
+  const mayCreate = actor.organisations.filter((target) => permittedRole(actor, 'study.create', target))
+  const [now, studies, mayCreateIn] = await Promise.all([
+    readClock(context.db),
+    listStudiesFor(context.db, actor),
+    listOrganisationNames(context.db, mayCreate.map(({ organisationId }) => organisationId)),
+  ])
   const entries = studies.flatMap((study): StudyListEntry[] => [
     ...(permittedRole(actor, 'study.read', study) ? [{ study, as: 'coordinator' as const }] : []),
     ...(actor.laboratories.some(({ studyId }) => studyId === study.studyId) ? [{ study, as: 'laboratory' as const }] : []),
     ...(actor.committees.some(({ studyId }) => studyId === study.studyId) ? [{ study, as: 'committee' as const }] : []),
   ])
-  return { now, entries, mayCreateIn: [...new Set(actor.organisations.map(({ organisationId }) => organisationId))] }
+  return { now, entries, mayCreateIn }
 }
