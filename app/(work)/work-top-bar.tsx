@@ -19,7 +19,10 @@ export function WorkTopBar({ actor, current }: WorkTopBarProps) {
       ]}
       signOut={
         <form method="post" action={paths.signOut()}>
-          <button type="submit" className="min-h-6 text-verdigris underline underline-offset-[0.18em] hover:decoration-2">
+          <button
+            type="submit"
+            className="min-h-6 text-verdigris underline underline-offset-[0.18em] hover:decoration-2"
+          >
             Sign out
           </button>
         </form>

@@ -23,7 +23,13 @@ export interface CourseStation {
 export interface CourseFacts {
   readonly study: { readonly state: StudyState }
   readonly layout: { readonly materials: readonly unknown[] }
-  readonly counts: { readonly invited: number; readonly accepted: number; readonly declined: number; readonly returned: number; readonly committee: number }
+  readonly counts: {
+    readonly invited: number
+    readonly accepted: number
+    readonly declined: number
+    readonly returned: number
+    readonly committee: number
+  }
   readonly analysis: { readonly number: number; readonly upToDate: boolean } | null
   readonly computing: boolean
   readonly proposed: boolean
@@ -36,8 +42,19 @@ export function courseOf(facts: CourseFacts): CourseStation[] {
   const isDraft = study.state === 'draft'
   const count = layout.materials.length
   return [
-    { key: 'plan', name: 'Plan', ...(isDraft ? ({ state: 'draft', phase: 'open' } as const) : ({ state: 'settled', phase: 'done' } as const)) },
-    { key: 'materials', name: 'Materials', state: `${count} even ${count === 1 ? 'lot' : 'lots'}`, phase: isDraft ? 'open' : 'done' },
+    {
+      key: 'plan',
+      name: 'Plan',
+      ...(isDraft
+        ? ({ state: 'draft', phase: 'open' } as const)
+        : ({ state: 'settled', phase: 'done' } as const)),
+    },
+    {
+      key: 'materials',
+      name: 'Materials',
+      state: `${count} even ${count === 1 ? 'lot' : 'lots'}`,
+      phase: isDraft ? 'open' : 'done',
+    },
     { key: 'laboratories', name: 'Laboratories', ...laboratories(facts) },
     { key: 'dispatch', name: 'Dispatch', state: 'outside Evenlot', phase: 'later' },
     { key: 'results', name: 'Results', ...results(facts) },
@@ -51,9 +68,13 @@ export function courseOf(facts: CourseFacts): CourseStation[] {
 type Progress = Pick<CourseStation, 'state' | 'phase'>
 
 function laboratories({ study, counts: { invited, accepted, declined } }: CourseFacts): Progress {
-  if (study.state === 'draft') return { state: invited === 0 ? 'none named yet' : `${invited} named`, phase: 'open' }
+  if (study.state === 'draft')
+    return { state: invited === 0 ? 'none named yet' : `${invited} named`, phase: 'open' }
   const isAnswered = accepted + declined === invited
-  return { state: `${accepted} of ${invited} accepted`, phase: study.state === 'open' && !isAnswered ? 'open' : 'done' }
+  return {
+    state: `${accepted} of ${invited} accepted`,
+    phase: study.state === 'open' && !isAnswered ? 'open' : 'done',
+  }
 }
 
 function results({ study, counts: { accepted, returned } }: CourseFacts): Progress {
@@ -80,7 +101,8 @@ function isPastScrutiny(state: StudyState): boolean {
 }
 
 function review({ study, counts: { committee } }: CourseFacts): Progress {
-  const members = committee === 0 ? 'no committee yet' : `${committee} ${committee === 1 ? 'member' : 'members'}`
+  const members =
+    committee === 0 ? 'no committee yet' : `${committee} ${committee === 1 ? 'member' : 'members'}`
   if (study.state === 'published') return { state: members, phase: 'done' }
   if (study.state === 'in-review') return { state: `with ${members}`, phase: 'open' }
   return { state: members, phase: 'later' }

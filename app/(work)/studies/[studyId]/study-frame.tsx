@@ -22,7 +22,16 @@ interface StudyFrameProps {
 }
 
 /** Every page of a study as its coordinator sees it: the bar, what study it is, its course, the work, the margin. */
-export function StudyFrame({ view, actor, station, title, lead, actions, margin, children }: StudyFrameProps) {
+export function StudyFrame({
+  view,
+  actor,
+  station,
+  title,
+  lead,
+  actions,
+  margin,
+  children,
+}: StudyFrameProps) {
   const { study, layout } = view
   return (
     <PageShell
@@ -38,7 +47,9 @@ export function StudyFrame({ view, actor, station, title, lead, actions, margin,
       title={title}
       lead={lead}
       actions={actions}
-      course={<Course stations={courseOf(view).map((each) => drawn(each, { studyId: study.studyId, station }))} />}
+      course={
+        <Course stations={courseOf(view).map((each) => drawn(each, { studyId: study.studyId, station }))} />
+      }
       margin={
         <>
           {margin}
@@ -68,8 +79,16 @@ export function StudyFrame({ view, actor, station, title, lead, actions, margin,
   )
 }
 
-function drawn({ key, name, state, phase }: CourseStation, place: { studyId: string; station: Station | null }): DrawnStation {
+function drawn(
+  { key, name, state, phase }: CourseStation,
+  place: { studyId: string; station: Station | null },
+): DrawnStation {
   // Kits travel outside the product, so there is no page to lead to.
   if (key === 'dispatch') return { name, state, phase }
-  return { name, state, href: paths.station(place.studyId, key), phase: key === place.station ? 'current' : phase }
+  return {
+    name,
+    state,
+    href: paths.station(place.studyId, key),
+    phase: key === place.station ? 'current' : phase,
+  }
 }

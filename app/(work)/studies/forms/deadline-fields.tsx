@@ -1,0 +1,63 @@
+'use client'
+
+import { Field } from '@/app/ui/primitives/field'
+import { RadioGroup } from '@/app/ui/primitives/radio-group'
+import { TextInput } from '@/app/ui/primitives/text-input'
+import type { ZoneGroup } from '@/lib/domain/list-zones'
+import type { FormAnswer } from './action-form'
+import { ZoneSelect } from './zone-select'
+
+interface DeadlineFieldsProps {
+  answer: FormAnswer
+  /** Without zones the deadline is meant in the study's own. */
+  zones?: readonly ZoneGroup[]
+  begun?: { localTime: string; zone: string }
+  hint?: string
+}
+
+/** A day and a time as meant in a zone. An hour that occurs twice there is asked back, never guessed. */
+export function DeadlineFields({ answer, zones, begun, hint }: DeadlineFieldsProps) {
+  const choice = answer.valueOf('choice')
+  const choiceError = answer.errorOf('choice')
+  return (
+    <div className="flex flex-col gap-4">
+      <div className="grid gap-4 sm:grid-cols-2">
+        <Field name="localTime" label="Day and time" hint={hint} error={answer.errorOf('localTime')}>
+          {(wiring) => (
+            <TextInput
+              {...wiring}
+              type="datetime-local"
+              defaultValue={answer.valueOf('localTime', begun?.localTime)}
+            />
+          )}
+        </Field>
+        {zones && (
+          <Field
+            name="zone"
+            label="In the time of"
+            hint="Each laboratory is shown the same moment in its own time."
+            error={answer.errorOf('zone')}
+          >
+            {(wiring) => (
+              <ZoneSelect wiring={wiring} zones={zones} defaultValue={answer.valueOf('zone', begun?.zone)} />
+            )}
+          </Field>
+        )}
+      </div>
+      {(choiceError || choice) && (
+        <RadioGroup
+          name="choice"
+          legend="Which of the two"
+          hint="Clocks go back that night, so this time occurs twice."
+          error={choiceError}
+          options={[
+            { value: 'earlier', label: 'The first, before clocks go back' },
+            { value: 'later', label: 'The second, after clocks went back' },
+          ]}
+          defaultValue={choice}
+          isOptional
+        />
+      )}
+    </div>
+  )
+}
