@@ -2,7 +2,9 @@ import { randomUUID } from 'node:crypto'
 import pino from 'pino'
 
 // Everything logged passes through the functions below, which take no address, token or value.
-const logger = pino({ base: null, level: process.env.LOG_LEVEL ?? 'info' })
+// Lines go out by the process's own stream, so that what captures that stream captures them too.
+const stream = { write: (line: string) => void process.stdout.write(line) }
+const logger = pino({ base: null, level: process.env.LOG_LEVEL ?? 'info' }, stream)
 
 /**
  * Logs a defect once and returns the reference a person can quote.

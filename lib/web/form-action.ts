@@ -1,10 +1,11 @@
 import 'server-only'
 import { revalidatePath } from 'next/cache'
 import { headers } from 'next/headers'
-import { notFound, redirect } from 'next/navigation'
+import { notFound, redirect, unstable_rethrow } from 'next/navigation'
 import type { z } from 'zod'
 import type { AnonymousContext, Context } from '@/lib/context'
 import { NotFound, SignInNeeded } from '@/lib/domain/errors'
+import { logDefect } from '@/lib/log'
 import { parts } from '@/lib/wiring'
 import { isForeignRequest } from './foreign-request'
 import { ForeignRequest } from './foreign-request-error'
@@ -55,7 +56,9 @@ async function act<C, Schema extends z.ZodType, R>(
   } catch (error) {
     if (error instanceof NotFound) notFound()
     if (error instanceof SignInNeeded) redirect(paths.signIn(await pageOfForm()))
-    throw error
+    unstable_rethrow(error)
+    // The framework prints what it catches, and a driver's error may hold a row's values.
+    throw new Error(`defect ${logDefect(error, { place: 'form' })}`)
   }
   if (outcome.kind === 'again') return outcome.state
   const { refresh, go, message } = then(outcome.result)
