@@ -41,7 +41,8 @@ function welcome(
   ports: Ports,
   everybody: readonly { name: string; address: string; role: string }[],
 ): string[] {
-  const people = everybody.map(({ name, address, role }) => `  ${address.padEnd(36)} ${name}, ${role}`)
+  const width = Math.max(...everybody.map(({ address }) => address.length))
+  const people = everybody.map(({ name, address, role }) => `  ${address.padEnd(width)}  ${name}, ${role}`)
   return [
     '',
     `Evenlot            http://localhost:${ports.web}`,
