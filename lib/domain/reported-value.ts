@@ -79,6 +79,14 @@ export function readReportedValue(text: string, options: { decimalMark?: Decimal
     : { kind: 'censored', mark, decimal: outcome.decimal }
 }
 
+/** Cuts a text for a message, never through the middle of a character, which no database would store. */
+export function shortenText(text: string, most: number): string {
+  if (text.length <= most) return text
+  const cut = text.slice(0, most - 1)
+  const isHalf = /[\ud800-\udbff]$/.test(cut)
+  return `${isHalf ? cut.slice(0, -1) : cut}…`
+}
+
 type Outcome =
   | { kind: 'one'; decimal: string }
   | { kind: 'two'; asDecimal: string; asThousands: string }
@@ -271,5 +279,5 @@ function quote(text: string): string {
 }
 
 function shorten(text: string): string {
-  return text.length > 40 ? `${text.slice(0, 39)}…` : text
+  return shortenText(text, 40)
 }

@@ -1,3 +1,4 @@
+import { shortenText } from '@/lib/domain/reported-value'
 import type { SheetCell } from '@/lib/spreadsheet/workbook'
 
 /** One thing in a file that keeps it from being taken, with where it is and what would put it right. */
@@ -18,9 +19,9 @@ export function describeProblem({
   found,
   ...problem
 }: Omit<CellProblem, 'message'> & { advice: string }): CellProblem {
-  const short = shorten(found)
+  const short = shortenText(found, 60)
   const where = problem.cell === null ? problem.sheet : `${problem.sheet}!${problem.cell}`
-  const title = problem.column === null || problem.cell === null ? '' : `, ${shorten(problem.column)}`
+  const title = problem.column === null || problem.cell === null ? '' : `, ${shortenText(problem.column, 60)}`
   const quoted = problem.cell === null ? short : `“${short}”`
   return {
     ...problem,
@@ -51,8 +52,4 @@ export function refuseKind({ kind }: SheetCell): { code: string; advice: string 
     case 'number':
       return undefined
   }
-}
-
-function shorten(text: string): string {
-  return text.length > 60 ? `${text.slice(0, 59)}…` : text
 }

@@ -1,4 +1,4 @@
-import { readReportedValue, type DecimalMark } from '@/lib/domain/reported-value'
+import { readReportedValue, shortenText, type DecimalMark } from '@/lib/domain/reported-value'
 import {
   guideSheetName,
   listPlaces,
@@ -182,7 +182,7 @@ function checkHeader({ header, check }: SheetMatching): void {
   }
   for (const cell of unknown) {
     check.notices.push(
-      `The column “${cell.text.trim().slice(0, 40)}” (${sheet.name}!${cell.address}) is not part of this study and was not read.`,
+      `The column “${shortenText(cell.text.trim(), 40)}” (${sheet.name}!${cell.address}) is not part of this study and was not read.`,
     )
   }
 }

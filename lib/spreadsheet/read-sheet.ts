@@ -1,4 +1,5 @@
 import { Refusal } from '@/lib/domain/errors'
+import { shortenText } from '@/lib/domain/reported-value'
 import { showDate, showNumber, type NumberFormat } from '@/lib/spreadsheet/number-format'
 import { parseXml } from '@/lib/spreadsheet/parse-xml'
 import {
@@ -156,6 +157,6 @@ function rowNumber(attribute: string): number {
 function strangeAddress(address: string): Refusal {
   return new Refusal(
     'workbook-damaged',
-    `This workbook has a row or cell “${address.slice(0, 20)}”, which cannot be. Save it again as .xlsx.`,
+    `This workbook has a row or cell “${shortenText(address, 20)}”, which cannot be. Save it again as .xlsx.`,
   )
 }

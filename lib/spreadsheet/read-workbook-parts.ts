@@ -118,10 +118,16 @@ export async function readCellFormats(reading: Reading, part: string | undefined
   return formats
 }
 
-/** Characters that XML cannot hold are written `_x000D_` in these files. */
+/**
+ * Characters that XML cannot hold are written `_x000D_` in these files. A null or half a character could not
+ * be stored, so such a spelling stays as it stands.
+ */
 export function decodeEscapes(text: string): string {
   return text.includes('_x')
-    ? text.replace(/_x([0-9A-Fa-f]{4})_/g, (_, code: string) => String.fromCharCode(parseInt(code, 16)))
+    ? text.replace(/_x([0-9A-Fa-f]{4})_/g, (spelled, code: string) => {
+        const character = String.fromCharCode(parseInt(code, 16))
+        return /[\0\ud800-\udfff]/.test(character) ? spelled : character
+      })
     : text
 }
 

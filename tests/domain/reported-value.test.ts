@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { readReportedValue, type ReportedValue } from '@/lib/domain/reported-value'
+import { readReportedValue, shortenText, type ReportedValue } from '@/lib/domain/reported-value'
 
 /*
  * The expected readings are decided by hand from the house rules: a point is decimal unless the text or the
@@ -205,6 +205,12 @@ describe('readReportedValue', () => {
   it('shortens what it repeats, so that a message stays a sentence', () => {
     const answer = readReportedValue('x'.repeat(90))
     expect(answer).toMatchObject({ kind: 'fault', code: 'word', found: `${'x'.repeat(39)}…` })
+  })
+
+  it('never cuts a character in two', () => {
+    expect(shortenText('ab\u{1f9f5}cd', 4)).toBe('ab…')
+    expect(shortenText('ab\u{1f9f5}cd', 5)).toBe('ab\u{1f9f5}…')
+    expect(shortenText('ab\u{1f9f5}cd', 6)).toBe('ab\u{1f9f5}cd')
   })
 
   it.each([

@@ -72,6 +72,6 @@ describe('readCsv', () => {
     const bytes = make()
     const startedAt = performance.now()
     expect(refusalOf(bytes)).toBe(code)
-    expect(performance.now() - startedAt).toBeLessThan(2_000)
+    expect(performance.now() - startedAt).toBeLessThan(5_000)
   })
 })
