@@ -70,6 +70,7 @@ export async function readSheet(context: Context, { studyId }: { studyId: string
     entries,
     remark: view.draft?.remark ?? (last ? last.remark : ''),
     draftVersion: view.draft?.version ?? 0,
-    submissionKey: context.random.uuid(),
+    // The same on every page that would follow the same return: two tabs, a reload or a way back make one return.
+    submissionKey: `sheet-after-${last?.number ?? 0}`,
   }
 }
