@@ -1,0 +1,42 @@
+import type { Metadata } from 'next'
+import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
+import { PrecisionReport } from '@/app/ui/analysis/precision-report'
+import { PrecisionNotes } from '@/app/ui/analysis/precision-notes'
+import { readReview } from '@/lib/use-cases/reviews/read-review'
+import { readStudy } from '@/lib/use-cases/studies/read-study'
+import { readerContext } from '@/lib/web/reader-context'
+import { requireActor, requestContext } from '@/lib/web/request-context'
+import { chooseMeasurand } from '../choose-measurand'
+import { AnalysisState } from '../scrutiny/analysis-state'
+import { StudyFrame } from '../study-frame'
+
+export const metadata: Metadata = { title: 'Precision' }
+
+export default async function PrecisionPage({ params, searchParams }: PageProps<'/studies/[studyId]/precision'>) {
+  const actor = await requireActor()
+  const { studyId } = await params
+  const { measurand: asked } = await searchParams
+  const [view, review] = await Promise.all([
+    readStudy(await requestContext(), { studyId }),
+    readReview(readerContext(actor), { studyId }),
+  ])
+  const measurand = chooseMeasurand(review, asked)
+
+  return (
+    <StudyFrame
+      view={view}
+      actor={actor}
+      station="precision"
+      title="Precision: how far may two results differ?"
+      margin={<PrecisionNotes limitFactor={view.study.limitFactor} />}
+    >
+      <AnalysisState view={view} />
+      {measurand && review.analysis && (
+        <>
+          <MeasurandTabs measurands={review.analysis.measurands} chosen={measurand.measurandId} />
+          <PrecisionReport measurand={measurand} />
+        </>
+      )}
+    </StudyFrame>
+  )
+}

@@ -1,0 +1,59 @@
+import type { Metadata } from 'next'
+import { ConsistencyPlots } from '@/app/ui/analysis/consistency-plots'
+import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
+import { OutlierTests } from '@/app/ui/analysis/outlier-tests'
+import { Section } from '@/app/ui/layout/section'
+import { DownloadLink } from '@/app/ui/primitives/download-link'
+import { readReview } from '@/lib/use-cases/reviews/read-review'
+import { readStudy } from '@/lib/use-cases/studies/read-study'
+import { readerContext } from '@/lib/web/reader-context'
+import { requireActor, requestContext } from '@/lib/web/request-context'
+import { chooseMeasurand } from '../choose-measurand'
+import { StudyFrame } from '../study-frame'
+import { AnalysisState } from './analysis-state'
+import { CellDecisions } from './cell-decisions'
+import { ScrutinyMargin } from './scrutiny-margin'
+
+export const metadata: Metadata = { title: 'Scrutiny' }
+
+export default async function ScrutinyPage({ params, searchParams }: PageProps<'/studies/[studyId]/scrutiny'>) {
+  const actor = await requireActor()
+  const { studyId } = await params
+  const { measurand: asked } = await searchParams
+  const [view, review] = await Promise.all([
+    readStudy(await requestContext(), { studyId }),
+    readReview(readerContext(actor), { studyId }),
+  ])
+  const measurand = chooseMeasurand(review, asked)
+
+  return (
+    <StudyFrame
+      view={view}
+      actor={actor}
+      station="scrutiny"
+      title="Scrutiny: do the laboratories fit together?"
+      margin={<ScrutinyMargin measurand={measurand} />}
+    >
+      <AnalysisState view={view} />
+      {measurand && review.analysis && (
+        <>
+          <MeasurandTabs measurands={review.analysis.measurands} chosen={measurand.measurandId} />
+          <ConsistencyPlots document={measurand.document} />
+          <Section
+            title="Outlier tests"
+            note="A test proposes; a person decides. Nothing is left out by a test."
+            actions={
+              <>
+                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`}>Coded results</DownloadLink>
+                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`}>Analysis</DownloadLink>
+              </>
+            }
+          >
+            <OutlierTests document={measurand.document} />
+          </Section>
+          <CellDecisions studyId={studyId} review={review} measurand={measurand} isOpen={view.study.state === 'closed'} />
+        </>
+      )}
+    </StudyFrame>
+  )
+}

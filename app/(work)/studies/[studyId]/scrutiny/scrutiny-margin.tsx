@@ -1,0 +1,61 @@
+import { beyond } from '@/app/ui/analysis/consistency-data'
+import { showStatistic } from '@/app/ui/analysis/show-quantity'
+import { MarginNote } from '@/app/ui/layout/margin'
+import { Tag } from '@/app/ui/primitives/tag'
+import type { MeasurandReview } from '@/lib/use-cases/reviews/read-review'
+
+const most = 4
+
+/** The cells that lie furthest from the others, and how the figures beside them come about. */
+export function ScrutinyMargin({ measurand }: { measurand: MeasurandReview | undefined }) {
+  return (
+    <>
+      {measurand && <CellNotes measurand={measurand} />}
+      <MarginNote title="How h is computed">
+        <p>The mean of a cell less the mean of all cells, in units of their standard deviation. Its limits come from t with p − 2 degrees of freedom, two-sided.</p>
+      </MarginNote>
+      <MarginNote title="How k is computed">
+        <p>The standard deviation of a cell over the repeatability standard deviation pooled by degrees of freedom; its limits are exact for any cell size.</p>
+      </MarginNote>
+      <MarginNote title="Who decides">
+        <p>No result is ever left out by a test. A coordinator sets a cell aside with a written reason, after asking the laboratory.</p>
+      </MarginNote>
+    </>
+  )
+}
+
+function CellNotes({ measurand }: { measurand: MeasurandReview }) {
+  const apart = measurand.document.materials
+    .flatMap((material) =>
+      material.cells.flatMap((cell) => {
+        const h = beyond(material, cell, 'h')
+        const k = beyond(material, cell, 'k')
+        return (h && h !== '5 %') || (k && k !== '5 %') ? [{ material: material.material, cell, h, k, surprise: surpriseOf(cell) }] : []
+      }),
+    )
+    .sort((a, b) => a.surprise - b.surprise)
+  return (
+    <>
+      {apart.slice(0, most).map(({ material, cell, h, k }) => (
+        <MarginNote key={`${cell.laboratory} ${material}`} title={<><Tag code={cell.laboratory} /> {material}</>}>
+          <p>
+            This cell lies apart from the others:
+            {h && ` h = ${showStatistic(cell.h)}, beyond ${h}`}
+            {h && k && ' and'}
+            {k && ` k = ${showStatistic(cell.k)}, beyond ${k}`}.
+          </p>
+        </MarginNote>
+      ))}
+      {apart.length > most && (
+        <MarginNote title={`${apart.length - most} more cells`}>
+          <p>They are filled in the plots and marked in the tables.</p>
+        </MarginNote>
+      )}
+    </>
+  )
+}
+
+/** The smaller of the two p-values: the cell furthest out stands first. */
+function surpriseOf({ hPValue, kPValue }: { hPValue: number | null; kPValue: number | null }): number {
+  return Math.min(hPValue ?? 1, kPValue ?? 1)
+}

@@ -1,0 +1,35 @@
+import { formatFigure } from '../primitives/format-figure'
+
+/** Stands where there is no figure; the reason is said beside it. */
+export const noFigure = '–'
+
+/** h, k, C, G: three decimals. */
+export function showStatistic(value: number | null): string {
+  return value === null ? noFigure : formatFigure(value.toFixed(3))
+}
+
+/** Two figures, or "< 0.0001". */
+export function showPValue(value: number | null): string {
+  if (value === null) return noFigure
+  if (value < 0.0001) return formatFigure('<0.0001')
+  return formatFigure(value < 0.1 ? String(Number(value.toPrecision(2))) : value.toFixed(2))
+}
+
+/** A mean square, component or deviance to a number of significant figures, written out. */
+export function showFigures(value: number | null, figures = 4): string {
+  if (value === null) return noFigure
+  if (value === 0) return '0'
+  const place = Math.floor(Math.log10(Math.abs(value)))
+  if (place > 9 || place < -7) return formatFigure(value.toExponential(figures - 1))
+  return formatFigure(value.toFixed(Math.max(0, figures - 1 - place)))
+}
+
+/** A share in %, two figures. */
+export function showPercent(value: number | null): string {
+  return value === null ? noFigure : `${showFigures(value, 2)}\u00a0%`
+}
+
+export function showInterval(interval: { lower: number | null; upper: number | null }, figures = 3): string {
+  if (interval.lower === null || interval.upper === null) return noFigure
+  return `${showFigures(interval.lower, figures)} to ${showFigures(interval.upper, figures)}`
+}
