@@ -1,5 +1,3 @@
-import { sql } from 'kysely'
-import { createDatabase } from '@/db/connection'
 import { migrateDatabase } from '@/db/commands/migrate-database'
 import { asClusterAdmin, clusterUrl, type ClusterAccess } from './cluster-access'
 import { prepareDatabase } from './cluster-roles'
@@ -53,16 +51,11 @@ export async function preparePrivateDatabase(
 const SEEDED = 'Holds the whole demonstration world.'
 
 async function isSeeded(access: ClusterAccess, database: string): Promise<boolean> {
-  const db = createDatabase(clusterUrl(access, 'owner', database), {
-    applicationName: 'evenlot-start',
-    max: 1,
-  })
-  try {
-    const { rows } = await sql<{ remark: string | null }>`
-      select shobj_description(oid, 'pg_database') as remark from pg_database where datname = current_database()
-    `.execute(db)
-    return rows[0]?.remark === SEEDED
-  } finally {
-    await db.destroy()
-  }
+  const { rows } = await asClusterAdmin(access, (client) =>
+    client.query<{ remark: string | null }>(
+      "select shobj_description(oid, 'pg_database') as remark from pg_database where datname = $1",
+      [database],
+    ),
+  )
+  return rows[0]?.remark === SEEDED
 }
