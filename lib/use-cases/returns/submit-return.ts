@@ -25,7 +25,8 @@ export interface Submission {
   readonly submissionKey: string
   readonly entries: Readonly<Record<string, string>>
   readonly decimalMark?: DecimalMark
-  readonly upload?: { uploadId: string; cells: Readonly<Record<string, string>> }
+  /** The file the entries were read from, with the cell and the letters of each. */
+  readonly upload?: { uploadId: string; cells: Readonly<Record<string, { cell: string; typed: string }>> }
   readonly remark: string
 }
 
@@ -91,7 +92,10 @@ async function storeReturn(trx: Transaction<DB>, context: Context, submission: S
     source: submission.upload ? 'file' : 'sheet',
     uploadId: submission.upload?.uploadId ?? null,
     remark: submission.remark.trim(),
-    results: read.results.map((each) => ({ ...each, ...each.place, cell: submission.upload?.cells[placeKey(each.place)] ?? null })),
+    results: read.results.map((each) => {
+      const source = submission.upload?.cells[placeKey(each.place)]
+      return { ...each, ...each.place, text: source?.typed ?? each.text, cell: source?.cell ?? null }
+    }),
   })
   await deleteDraft(trx, { studyId, participantId })
   await recordAudit(trx, {
