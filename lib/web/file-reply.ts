@@ -1,5 +1,13 @@
 /** A download: always an attachment, never rendered in our origin. @param fileName ASCII, made by us */
-export function fileReply({ body, type, fileName }: { body: string; type: string; fileName: string }): Response {
+export function fileReply({
+  body,
+  type,
+  fileName,
+}: {
+  body: string
+  type: string
+  fileName: string
+}): Response {
   return new Response(body, {
     headers: {
       'content-type': type,

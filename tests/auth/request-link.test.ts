@@ -9,7 +9,16 @@ import { Refusal } from '@/lib/domain/errors'
 import { notePeerAddresses, peerHeaderName, readPeer } from '@/lib/web/peer-address'
 import type { Parts } from '@/lib/wiring'
 import { createTestDatabase, type TestDatabase } from '@/tests/support/database'
-import { addPerson, createTestMailServer, createTestParts, linkIn, codeIn, sessionIn, signInRequest, work } from './test-parts'
+import {
+  addPerson,
+  createTestMailServer,
+  createTestParts,
+  linkIn,
+  codeIn,
+  sessionIn,
+  signInRequest,
+  work,
+} from './test-parts'
 
 let database: TestDatabase
 let parts: Parts
@@ -42,7 +51,9 @@ describe('asking for a link', () => {
 
   it('keeps a stranger’s address out of the outbox', async () => {
     await ask('stranger2@quill.example')
-    const { rows } = await sql<{ text: string }>`select string_agg(m::text, ' ') as text from vault.mail m`.execute(database.owner)
+    const { rows } = await sql<{
+      text: string
+    }>`select string_agg(m::text, ' ') as text from vault.mail m`.execute(database.owner)
     expect(rows[0]?.text).not.toContain('stranger2')
   })
 
@@ -55,7 +66,9 @@ describe('asking for a link', () => {
     const code = parts.secrets.code(rows[0]?.id ?? '')
     const response = await handleSignIn(signInRequest({ address, code }), parts)
     expect(sessionIn(response)).toBeUndefined()
-    const { rows: made } = await sql`select from vault."User" where email = ${address}`.execute(database.owner)
+    const { rows: made } = await sql`select from vault."User" where email = ${address}`.execute(
+      database.owner,
+    )
     expect(made).toEqual([])
   })
 
@@ -108,7 +121,8 @@ describe('the limits', () => {
     const last = server.sent.at(-1)
     if (!last) throw new Error('no mail was sent')
     const wrong = codeIn(last) === '00000000' ? '00000001' : '00000000'
-    for (let each = 0; each < 30; each += 1) await handleSignIn(signInRequest({ address, code: wrong }), parts)
+    for (let each = 0; each < 30; each += 1)
+      await handleSignIn(signInRequest({ address, code: wrong }), parts)
     const session = sessionIn(await handleSignIn(signInRequest({ ...linkIn(last) }), parts))
     expect(await findActor(parts.db, session)).toMatchObject({ address })
   })
@@ -144,12 +158,18 @@ describe('the limits', () => {
 
   it('keep neither addresses nor places in their table', async () => {
     await ask('quiet@quill.example', '192.0.2.99')
-    const { rows } = await sql<{ text: string }>`select string_agg(r::text, ' ') as text from vault.rate_limit r`.execute(database.owner)
+    const { rows } = await sql<{
+      text: string
+    }>`select string_agg(r::text, ' ') as text from vault.rate_limit r`.execute(database.owner)
     expect(rows[0]?.text).not.toMatch(/quiet|192\.0\.2/)
   })
 
   it('turn the crowd away with words', async () => {
-    for (let each = 0; each < 60; each += 1) await createSignInLimits(parts.db, parts.secrets).take({ address: `c${each}@quill.example`, peer: '192.0.2.50' })
+    for (let each = 0; each < 60; each += 1)
+      await createSignInLimits(parts.db, parts.secrets).take({
+        address: `c${each}@quill.example`,
+        peer: '192.0.2.50',
+      })
     const refused = await ask('c@quill.example', '192.0.2.50').catch((error: unknown) => error)
     expect(refused).toBeInstanceOf(Refusal)
     expect((refused as Refusal).code).toBe('too-many')

@@ -52,7 +52,11 @@ async function askForLink(): Promise<OutgoingMail> {
 
 function scan(path: string, method: string) {
   const request = new Request(`${baseUrl}${path}`, { method })
-  return handleLibraryRequest(request, parts, async (asked) => (await Auth(asked, authConfig(parts))) as Response)
+  return handleLibraryRequest(
+    request,
+    parts,
+    async (asked) => (await Auth(asked, authConfig(parts))) as Response,
+  )
 }
 
 async function signIn(fields: Record<string, string>, headers?: Record<string, string>) {
@@ -82,7 +86,15 @@ describe('a mailed link', () => {
 
   it('is closed at every other address of the library too, whatever the method', async () => {
     const { token } = linkIn(await askForLink())
-    const addresses = ['callback/mailed-link', 'signin', 'signin/mailed-link', 'signout', 'csrf', 'providers', 'verify-request']
+    const addresses = [
+      'callback/mailed-link',
+      'signin',
+      'signin/mailed-link',
+      'signout',
+      'csrf',
+      'providers',
+      'verify-request',
+    ]
     for (const each of addresses) {
       expect((await scan(`/api/auth/${each}?token=${token}&email=${address}`, 'GET')).status).toBe(404)
     }
@@ -90,7 +102,9 @@ describe('a mailed link', () => {
       method: 'POST',
       headers: { origin: baseUrl },
     })
-    const answer = await handleLibraryRequest(post, parts, () => Promise.reject(new Error('reached the library')))
+    const answer = await handleLibraryRequest(post, parts, () =>
+      Promise.reject(new Error('reached the library')),
+    )
     expect(answer.status).toBe(404)
     expect((await signIn({ token, address })).session).toBeDefined()
   })
@@ -186,7 +200,10 @@ describe('a session', () => {
     expect(first.session).not.toBe(planted)
     expect(await findActor(parts.db, planted)).toBeNull()
 
-    const second = await signIn({ ...linkIn(await askForLink()) }, { cookie: `evenlot.session=${first.session}` })
+    const second = await signIn(
+      { ...linkIn(await askForLink()) },
+      { cookie: `evenlot.session=${first.session}` },
+    )
     expect(second.session).not.toBe(first.session)
     expect(await findActor(parts.db, first.session)).toBeNull()
     expect(await findActor(parts.db, second.session)).not.toBeNull()
@@ -208,7 +225,9 @@ describe('a session', () => {
   it('is not ended by another site', async () => {
     const { session } = await signIn({ ...linkIn(await askForLink()) })
     const headers = { origin: 'https://elsewhere.example', cookie: `evenlot.session=${session}` }
-    expect((await handleSignOut(new Request(`${baseUrl}/sign-out`, { method: 'POST', headers }), parts)).status).toBe(403)
+    expect(
+      (await handleSignOut(new Request(`${baseUrl}/sign-out`, { method: 'POST', headers }), parts)).status,
+    ).toBe(403)
     expect(await findActor(parts.db, session)).not.toBeNull()
   })
 
@@ -261,7 +280,15 @@ describe('a session', () => {
 })
 
 async function wholeDatabase(): Promise<string> {
-  const tables = ['"User"', '"Session"', '"VerificationToken"', 'sign_in_request', 'mail', 'mail_attempt', 'rate_limit']
+  const tables = [
+    '"User"',
+    '"Session"',
+    '"VerificationToken"',
+    'sign_in_request',
+    'mail',
+    'mail_attempt',
+    'rate_limit',
+  ]
   const texts: string[] = []
   for (const table of tables) {
     const { rows } = await sql<{ text: string | null }>`
@@ -269,6 +296,8 @@ async function wholeDatabase(): Promise<string> {
     `.execute(database.owner)
     texts.push(rows[0]?.text ?? '')
   }
-  const { rows } = await sql<{ text: string | null }>`select string_agg(j::text, ' ') as text from pgboss.job j`.execute(database.owner)
+  const { rows } = await sql<{
+    text: string | null
+  }>`select string_agg(j::text, ' ') as text from pgboss.job j`.execute(database.owner)
   return [...texts, rows[0]?.text ?? ''].join(' ')
 }

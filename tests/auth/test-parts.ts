@@ -8,7 +8,10 @@ import type { TestDatabase } from '@/tests/support/database'
 export const baseUrl = 'http://localhost:3999'
 
 /** The real parts on a test database; only the configuration is made up. */
-export function createTestParts(database: TestDatabase, { base = baseUrl, trustedProxies = [] as string[] } = {}): Parts {
+export function createTestParts(
+  database: TestDatabase,
+  { base = baseUrl, trustedProxies = [] as string[] } = {},
+): Parts {
   const authSecret = 'a-secret-for-tests-that-is-long-enough-to-serve'
   const { randomUUID } = globalThis.crypto
   return {
@@ -55,7 +58,11 @@ export function work(parts: Parts, mail: MailTransport) {
   return runJobs({ ...systemContext(parts), mail, baseUrl: parts.config.baseUrl })
 }
 
-export async function addPerson(database: TestDatabase, address: string, name = 'Ada Quill'): Promise<string> {
+export async function addPerson(
+  database: TestDatabase,
+  address: string,
+  name = 'Ada Quill',
+): Promise<string> {
   const made = await database.owner
     .insertInto('vault.User')
     .values({ email: address, name })

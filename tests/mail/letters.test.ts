@@ -21,23 +21,34 @@ const zone = 'America/Sao_Paulo'
 
 const letters = {
   'sign-in': signInLetter({ url, code: '12345678' }),
-  invitation: invitationLetter({ ...study, url, contactName: 'Ada Quill', zone, dueAt, isAnswered: false, latestLink: 1 }),
+  invitation: invitationLetter({
+    ...study,
+    url,
+    contactName: 'Ada Quill',
+    zone,
+    dueAt,
+    isAnswered: false,
+    latestLink: 1,
+  }),
   receipt: receiptLetter({ ...study, url, receiptNumber: 'R-7H2K', receivedAt: dueAt, results: 24, zone }),
   'extension-requested': extensionRequestedLetter({ ...study, url, requestedAt: dueAt, zone }),
   'extension-granted': extensionGrantedLetter({ ...study, url, dueAt, zone }),
 }
 
 describe('every letter', () => {
-  it.each(Object.entries(letters))('%s: says the same in plain text and in HTML, with one button to one link', (_kind, letter) => {
-    const { text, html } = layOutLetter(letter)
-    for (const words of [...letter.paragraphs, ...letter.closing]) {
-      expect(text).toContain(words)
-      expect(unescaped(html)).toContain(words)
-    }
-    expect(text).toContain(url)
-    expect(html.match(/<a /g)).toHaveLength(1)
-    expect(html).toContain(`href="${url}"`)
-  })
+  it.each(Object.entries(letters))(
+    '%s: says the same in plain text and in HTML, with one button to one link',
+    (_kind, letter) => {
+      const { text, html } = layOutLetter(letter)
+      for (const words of [...letter.paragraphs, ...letter.closing]) {
+        expect(text).toContain(words)
+        expect(unescaped(html)).toContain(words)
+      }
+      expect(text).toContain(url)
+      expect(html.match(/<a /g)).toHaveLength(1)
+      expect(html).toContain(`href="${url}"`)
+    },
+  )
 
   it.each(Object.entries(letters))('%s: loads nothing from outside', (_kind, letter) => {
     expect(layOutLetter(letter).html).not.toMatch(/<(img|link|script|iframe|style)|src=|url\(|@import/i)
@@ -68,7 +79,10 @@ describe('the receipt', () => {
     const { text } = layOutLetter(letters.receipt)
     expect(text).toContain('24 test results')
     expect(text).toContain('R-7H2K')
-    expect(layOutLetter(receiptLetter({ ...study, url, receiptNumber: 'R', receivedAt: dueAt, results: 1, zone })).text).toContain('1 test result.')
+    expect(
+      layOutLetter(receiptLetter({ ...study, url, receiptNumber: 'R', receivedAt: dueAt, results: 1, zone }))
+        .text,
+    ).toContain('1 test result.')
   })
 })
 
@@ -81,11 +95,22 @@ describe('the link to sign in', () => {
 })
 
 describe('what people typed into a study', () => {
-  const nasty = 'Flour\r\nBcc: eve@evil.example\r\nList-Unsubscribe: <https://evil.example>\r\n\r\n<b>Hello</b>\u202e\u2028'
+  const nasty =
+    'Flour\r\nBcc: eve@evil.example\r\nList-Unsubscribe: <https://evil.example>\r\n\r\n<b>Hello</b>\u202e\u2028'
 
   it('never makes a second line, of a subject or of anything else', () => {
     const { subject, text } = layOutLetter(
-      invitationLetter({ ...study, shortName: nasty, title: nasty, url, contactName: nasty, zone, dueAt, isAnswered: false, latestLink: 1 }),
+      invitationLetter({
+        ...study,
+        shortName: nasty,
+        title: nasty,
+        url,
+        contactName: nasty,
+        zone,
+        dueAt,
+        isAnswered: false,
+        latestLink: 1,
+      }),
     )
     expect(subject).not.toMatch(/[\r\n\u2028\u202e]/)
     expect(text.split('\n').filter((line) => /^(Bcc|List-)/i.test(line))).toEqual([])
@@ -93,7 +118,9 @@ describe('what people typed into a study', () => {
 
   it('never becomes markup', () => {
     const title = '<img src=x onerror=alert(1)>"\'&<script>'
-    const { html } = layOutLetter(extensionGrantedLetter({ ...study, title, url: `${url}?a="><b>`, dueAt, zone }))
+    const { html } = layOutLetter(
+      extensionGrantedLetter({ ...study, title, url: `${url}?a="><b>`, dueAt, zone }),
+    )
     expect(html).not.toMatch(/<img|<script|"><b>/)
     expect(html).toContain('&lt;img src=x onerror=alert(1)&gt;&quot;&#39;&amp;&lt;script&gt;')
   })
@@ -104,5 +131,10 @@ describe('what people typed into a study', () => {
 })
 
 function unescaped(html: string): string {
-  return html.replaceAll('&#39;', "'").replaceAll('&quot;', '"').replaceAll('&lt;', '<').replaceAll('&gt;', '>').replaceAll('&amp;', '&')
+  return html
+    .replaceAll('&#39;', "'")
+    .replaceAll('&quot;', '"')
+    .replaceAll('&lt;', '<')
+    .replaceAll('&gt;', '>')
+    .replaceAll('&amp;', '&')
 }

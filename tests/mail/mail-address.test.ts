@@ -27,7 +27,7 @@ const refused = [
   '"ada@evil.example"@quill.example',
   '"ada eve"@quill.example',
   'ada"@quill.example',
-  "\"><script>alert(1)</script>\"@quill.example",
+  '"><script>alert(1)</script>"@quill.example',
   'Ada <ada@quill.example>',
   '<ada@quill.example>',
   'ada@quill.example>',

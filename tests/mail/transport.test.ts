@@ -38,7 +38,10 @@ beforeEach(async () => {
   })
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve))
   const { port } = server.server.address() as AddressInfo
-  transport = createMailTransport({ smtpUrl: `smtp://127.0.0.1:${port}`, mailFrom: 'Evenlot <studies@evenlot.example>' })
+  transport = createMailTransport({
+    smtpUrl: `smtp://127.0.0.1:${port}`,
+    mailFrom: 'Evenlot <studies@evenlot.example>',
+  })
 })
 
 afterEach(async () => {
@@ -89,7 +92,9 @@ describe('a mail on its way out', () => {
 
   it('has plain text first and HTML second, and nothing attached', async () => {
     await transport.send(outgoing())
-    const types = [...(received[0]?.message.matchAll(/^Content-Type: ([\w/]+)/gim) ?? [])].map(([, type]) => type)
+    const types = [...(received[0]?.message.matchAll(/^Content-Type: ([\w/]+)/gim) ?? [])].map(
+      ([, type]) => type,
+    )
     expect(types).toEqual(['multipart/alternative', 'text/plain', 'text/html'])
   })
 
@@ -132,7 +137,10 @@ describe('a mail that is not taken', () => {
   })
 
   it('because no server is there is deferred', async () => {
-    const nowhere = createMailTransport({ smtpUrl: 'smtp://127.0.0.1:1', mailFrom: 'studies@evenlot.example' })
+    const nowhere = createMailTransport({
+      smtpUrl: 'smtp://127.0.0.1:1',
+      mailFrom: 'studies@evenlot.example',
+    })
     expect(await nowhere.send(outgoing())).toEqual({ outcome: 'deferred', detail: 'ESOCKET' })
     nowhere.close()
   })
@@ -146,7 +154,9 @@ async function headerNames(mail: OutgoingMail): Promise<string[]> {
 
 function headerOf(mail: Received | undefined, name: string): string[] {
   const lines = mail?.head.split('\r\n') ?? []
-  return lines.filter((line) => line.toLowerCase().startsWith(`${name.toLowerCase()}:`)).map((line) => line.slice(name.length + 1).trim())
+  return lines
+    .filter((line) => line.toLowerCase().startsWith(`${name.toLowerCase()}:`))
+    .map((line) => line.slice(name.length + 1).trim())
 }
 
 function unfold(head: string): string {

@@ -29,16 +29,22 @@ const ours: [string, Record<string, string>][] = [
 ]
 
 describe('a request that may change something', () => {
-  it.each(foreign)('is refused from %s: in the proxy, and in the handler without it', async (_who, headers) => {
-    for (const method of ['POST', 'PUT', 'PATCH', 'DELETE']) {
-      const request = new Request(`${baseUrl}/studies`, { method, headers })
-      expect(isForeignRequest(request, baseUrl)).toBe(true)
-      expect(judge(request).status).toBe(403)
-      const response = await answerRequest(request, { baseUrl, run: () => Promise.reject(new Error('ran')) })
-      expect(response.status).toBe(403)
-      expect(await response.json()).toMatchObject({ error: { code: 'foreign-request' } })
-    }
-  })
+  it.each(foreign)(
+    'is refused from %s: in the proxy, and in the handler without it',
+    async (_who, headers) => {
+      for (const method of ['POST', 'PUT', 'PATCH', 'DELETE']) {
+        const request = new Request(`${baseUrl}/studies`, { method, headers })
+        expect(isForeignRequest(request, baseUrl)).toBe(true)
+        expect(judge(request).status).toBe(403)
+        const response = await answerRequest(request, {
+          baseUrl,
+          run: () => Promise.reject(new Error('ran')),
+        })
+        expect(response.status).toBe(403)
+        expect(await response.json()).toMatchObject({ error: { code: 'foreign-request' } })
+      }
+    },
+  )
 
   it.each(ours)('is let through from %s', async (_who, headers) => {
     const request = new Request(`${baseUrl}/studies`, { method: 'POST', headers })
@@ -48,7 +54,10 @@ describe('a request that may change something', () => {
 
   it('is not what a link or a picture is: reading is open to all', () => {
     for (const method of ['GET', 'HEAD']) {
-      const request = new Request(`${baseUrl}/studies`, { method, headers: { 'sec-fetch-site': 'cross-site' } })
+      const request = new Request(`${baseUrl}/studies`, {
+        method,
+        headers: { 'sec-fetch-site': 'cross-site' },
+      })
       expect(judge(request).status).toBeNull()
     }
   })
@@ -60,7 +69,11 @@ describe('the proxy', () => {
   })
 
   it('gives the page its nonce and its address, whatever the client claimed them to be', () => {
-    const headers = { 'x-page-path': '//evil.example', 'x-nonce': 'known', 'content-security-policy': "script-src 'nonce-known'" }
+    const headers = {
+      'x-page-path': '//evil.example',
+      'x-nonce': 'known',
+      'content-security-policy': "script-src 'nonce-known'",
+    }
     const { requestHeaders } = judge(new Request(`${baseUrl}/studies?sort=name`, { headers }))
     expect(requestHeaders.get('x-page-path')).toBe('/studies?sort=name')
     expect(requestHeaders.get('x-nonce')).toBe('drawn')

@@ -44,17 +44,24 @@ describe('a form', () => {
   })
 
   it('reads one ticked box, or none, as the list the schema wants', async () => {
-    const input = z.object({ chosen: z.array(z.string()), rows: z.array(z.object({ days: z.array(z.string()) })) })
+    const input = z.object({
+      chosen: z.array(z.string()),
+      rows: z.array(z.object({ days: z.array(z.string()) })),
+    })
     const sent = form(['chosen', 'a'], ['rows.0.days', 'Monday'])
     expect(await runForm({ form: sent, input, run: echo })).toMatchObject({
       result: { chosen: ['a'], rows: [{ days: ['Monday'] }] },
     })
-    expect(await runForm({ form: form(), input, run: echo })).toMatchObject({ result: { chosen: [], rows: [] } })
+    expect(await runForm({ form: form(), input, run: echo })).toMatchObject({
+      result: { chosen: [], rows: [] },
+    })
   })
 
   it('reads a tick box as yes or no', async () => {
     const input = z.object({ sure: checkboxField() })
-    expect(await runForm({ form: form(['sure', 'on']), input, run: echo })).toMatchObject({ result: { sure: true } })
+    expect(await runForm({ form: form(['sure', 'on']), input, run: echo })).toMatchObject({
+      result: { sure: true },
+    })
     expect(await runForm({ form: form(), input, run: echo })).toMatchObject({ result: { sure: false } })
   })
 
@@ -71,7 +78,13 @@ describe('a form', () => {
   })
 
   it('names the row as it was typed when rows before it were taken out', async () => {
-    const sent = form(['title', 'Flour'], ['levels.2.name', 'Day'], ['levels.2.count', '1'], ['levels.10.name', ''], ['levels.10.count', '1'])
+    const sent = form(
+      ['title', 'Flour'],
+      ['levels.2.name', 'Day'],
+      ['levels.2.count', '1'],
+      ['levels.10.name', ''],
+      ['levels.10.count', '1'],
+    )
     const outcome = await runForm({ form: sent, input: study, run: echo })
     expect(outcome).toMatchObject({ state: { errors: { 'levels.10.name': ['Fill this in.'] } } })
   })
@@ -82,7 +95,8 @@ describe('a form', () => {
   })
 
   it('turns a refusal into an error at its field, or of the whole form, and keeps what was typed', async () => {
-    const refuse = (field?: string) => () => Promise.reject(new Refusal('taken', 'This name is taken.', field))
+    const refuse = (field?: string) => () =>
+      Promise.reject(new Refusal('taken', 'This name is taken.', field))
     const sent = form(['title', 'Flour'])
     expect(await runForm({ form: sent, input: study, run: refuse('title') })).toEqual({
       kind: 'again',
@@ -96,7 +110,9 @@ describe('a form', () => {
 
   it('lets anything else rise, untouched', async () => {
     const missing = new NotFound('study')
-    await expect(runForm({ form: form(['title', 'x']), input: study, run: () => Promise.reject(missing) })).rejects.toBe(missing)
+    await expect(
+      runForm({ form: form(['title', 'x']), input: study, run: () => Promise.reject(missing) }),
+    ).rejects.toBe(missing)
   })
 
   it('lists its faults for the summary, the whole form’s first', () => {
@@ -121,13 +137,28 @@ describe('what a form has no business sending', () => {
       ['studyId', 'another'],
       ['$ACTION_ID_x', ''],
     )
-    expect(await runForm({ form: sent, input: study, run: echo })).toEqual({ kind: 'done', result: { title: 'Flour' } })
+    expect(await runForm({ form: sent, input: study, run: echo })).toEqual({
+      kind: 'done',
+      result: { title: 'Flour' },
+    })
   })
 
   it('cannot reach behind an object', async () => {
-    const names = ['__proto__', '__proto__.role', 'constructor', 'constructor.prototype.role', 'levels.__proto__.role', 'levels.0.__proto__.role', 'a.prototype']
+    const names = [
+      '__proto__',
+      '__proto__.role',
+      'constructor',
+      'constructor.prototype.role',
+      'levels.__proto__.role',
+      'levels.0.__proto__.role',
+      'a.prototype',
+    ]
     const loose = z.looseObject({ title: z.string() })
-    const outcome = await runForm({ form: form(['title', 'x'], ...names.map((name): [string, string] => [name, 'administrator'])), input: loose, run: echo })
+    const outcome = await runForm({
+      form: form(['title', 'x'], ...names.map((name): [string, string] => [name, 'administrator'])),
+      input: loose,
+      run: echo,
+    })
     expect(outcome).toEqual({ kind: 'done', result: { title: 'x' } })
     expect(({} as { role?: string }).role).toBeUndefined()
     expect(([] as { role?: string }).role).toBeUndefined()
@@ -143,13 +174,19 @@ describe('what a form has no business sending', () => {
 
   it('does not turn one field into two kinds of thing', async () => {
     const input = z.looseObject({})
-    expect(await runForm({ form: form(['a', '1'], ['a.b', '2']), input, run: echo })).toMatchObject({ result: { a: '1' } })
-    expect(await runForm({ form: form(['a.b', '2'], ['a', '1']), input, run: echo })).toMatchObject({ result: { a: { b: '2' } } })
+    expect(await runForm({ form: form(['a', '1'], ['a.b', '2']), input, run: echo })).toMatchObject({
+      result: { a: '1' },
+    })
+    expect(await runForm({ form: form(['a.b', '2'], ['a', '1']), input, run: echo })).toMatchObject({
+      result: { a: { b: '2' } },
+    })
   })
 
   it('is not a file', async () => {
     const sent = form(['title', 'Flour'])
     sent.append('materials', new File(['x'], 'x.txt'))
-    expect(await runForm({ form: sent, input: study, run: echo })).toMatchObject({ result: { title: 'Flour' } })
+    expect(await runForm({ form: sent, input: study, run: echo })).toMatchObject({
+      result: { title: 'Flour' },
+    })
   })
 })

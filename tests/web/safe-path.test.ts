@@ -79,16 +79,35 @@ describe('the page to go to after signing in', () => {
     expect(safePath(typed, '/fallback')).toBe(typed)
   })
 
-  it.each([undefined, null, 7, ['/studies'], { toString: () => '//evil.example' }])('is the fallback for what is no text', (typed) => {
-    expect(safePath(typed, '/fallback')).toBe('/fallback')
-  })
+  it.each([undefined, null, 7, ['/studies'], { toString: () => '//evil.example' }])(
+    'is the fallback for what is no text',
+    (typed) => {
+      expect(safePath(typed, '/fallback')).toBe('/fallback')
+    },
+  )
 
   it('leaves out a fragment, which the server has no business with', () => {
     expect(safePath('/studies#token=1')).toBe('/studies')
   })
 
   it('never leaves the site, however it is put together', () => {
-    const pieces = fc.constantFrom('/', '\\', '.', '..', '%2f', '%5c', '%25', '@', ':', '\t', '\n', '?', '#', 'evil.example', 'https:')
+    const pieces = fc.constantFrom(
+      '/',
+      '\\',
+      '.',
+      '..',
+      '%2f',
+      '%5c',
+      '%25',
+      '@',
+      ':',
+      '\t',
+      '\n',
+      '?',
+      '#',
+      'evil.example',
+      'https:',
+    )
     fc.assert(
       fc.property(fc.array(pieces, { maxLength: 12 }), (parts) => {
         const path = safePath(parts.join(''))
