@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import type { z } from 'zod'
 import { readFormFields } from './form-fields'
 import type { FormState } from './form-state'
 
