@@ -30,7 +30,7 @@ async function signIn(request: Request, parts: Parts): Promise<Response> {
       peer: readPeer(request.headers, parts.trustedProxies),
     })
     const cookies = [setCookie, ...clearedJourneyCookies(parts.config.baseUrl)]
-    return goTo(safePath(next, paths.home()), cookies)
+    return goTo(safePath(next, paths.studies()), cookies)
   } catch (error) {
     if (!(error instanceof Refusal)) throw error
     return goTo(pageFor(error), [])

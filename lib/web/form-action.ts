@@ -67,8 +67,11 @@ async function act<C, Schema extends z.ZodType, R>(
   return { ok: message ?? 'Saved.', errors: {}, values: {} }
 }
 
-/** The proxy answers these with 403 before they come here; without it they end here, where nothing was done. */
-async function refuseForeignRequest(): Promise<void> {
+/**
+ * For actions that are not made by `formAction`. The proxy answers these requests with 403 before they come here;
+ * without it they end here, where nothing was done.
+ */
+export async function refuseForeignRequest(): Promise<void> {
   const asked = { method: 'POST', headers: await headers() }
   if (isForeignRequest(asked, parts().config.baseUrl)) throw new ForeignRequest()
 }

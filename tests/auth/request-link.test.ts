@@ -196,7 +196,7 @@ describe('what a client says of itself', () => {
     }
     const response = await handleSignIn(signInRequest({ ...linkIn(mail) }, spoof), parts)
     expect(sessionIn(response)).toBeDefined()
-    expect(response.headers.get('location')).toBe('/')
+    expect(response.headers.get('location')).toBe('/studies')
     const headers = new Headers({ ...spoof, [peerHeaderName() ?? '']: '192.0.2.1' })
     expect(readPeer(headers, [])).toBe('192.0.2.1')
     expect(readPeer(headers, ['192.0.2.1'])).toBe('198.51.100.1')

@@ -76,12 +76,22 @@ describe('a mailed link', () => {
 
     const first = await signIn({ token, address })
     expect(first.response.status).toBe(303)
-    expect(first.place).toBe('/')
+    expect(first.place).toBe('/studies')
     expect(await findActor(parts.db, first.session)).toMatchObject({ personId, address })
 
     const replay = await signIn({ token, address })
     expect(replay.session).toBeUndefined()
     expect(replay.place).toBe('/sign-in?problem=link')
+  })
+
+  it('leads to the page that was wanted, if it is one of ours', async () => {
+    const wanted = async (next: string) => {
+      const cookie = `evenlot.next=${encodeURIComponent(next)}`
+      return (await signIn({ ...linkIn(await askForLink()) }, { cookie })).place
+    }
+    expect(await wanted('/studies/new?from=mail')).toBe('/studies/new?from=mail')
+    for (const elsewhere of ['//evil.example', 'https://evil.example', '/\\\\evil.example', '/sign-out'])
+      expect(await wanted(elsewhere)).toBe('/studies')
   })
 
   it('is closed at every other address of the library too, whatever the method', async () => {

@@ -17,7 +17,7 @@ export default async function SignIn({
   searchParams: Promise<Record<string, string | string[] | undefined>>
 }) {
   const { next, problem, signed } = await searchParams
-  const after = safePath(next, paths.home())
+  const after = safePath(next, paths.studies())
   if (await currentActor()) redirect(after)
 
   return (
