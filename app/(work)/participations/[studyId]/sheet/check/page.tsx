@@ -5,6 +5,7 @@ import { namePlace } from '../../../name-place'
 import { notFoundOnAbsence } from '../../../not-found-on-absence'
 import { participationPaths } from '../../../participation-paths'
 import { ClosedNotice } from '../../closed-notice'
+import { ConfirmReturn } from '../../confirm-return'
 import { ReportedTable } from '../../reported-table'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { Section } from '@/app/ui/layout/section'
@@ -14,7 +15,6 @@ import { reviewSheet, type SheetReview } from '@/lib/use-cases/returns/review-sh
 import { paths } from '@/lib/web/paths'
 import { requestContext, requireActor } from '@/lib/web/request-context'
 import { submitSheetAction } from './actions'
-import { ConfirmReturn } from './confirm-return'
 
 export const metadata: Metadata = { title: 'Check before returning' }
 
@@ -42,12 +42,15 @@ export default async function CheckPage({ params }: { params: Promise<{ studyId:
         <ReportedTable layout={view.layout} texts={entries} caption="Results as they will be returned" />
       </Section>
       <ConfirmReturn
-        studyId={studyId}
-        submissionKey={submissionKey}
-        checked={JSON.stringify(listPlaces(view.layout).map((place) => entries[placeKey(place)] ?? ''))}
+        fields={{
+          studyId,
+          submissionKey,
+          checked: JSON.stringify(listPlaces(view.layout).map((place) => entries[placeKey(place)] ?? '')),
+        }}
         remark={remark}
         missing={read.missing.length}
         canReturn={view.canReturn}
+        back={{ href: paths.resultSheet(studyId), words: 'Back to the sheet' }}
         action={submitSheetAction}
       />
     </LaboratoryPage>

@@ -6,33 +6,31 @@ import { ErrorSummary } from '@/app/ui/primitives/error-summary'
 import { Field } from '@/app/ui/primitives/field'
 import { SubmitButton } from '@/app/ui/primitives/submit-button'
 import { TextArea } from '@/app/ui/primitives/text-area'
-import { paths } from '@/lib/web/paths'
 import type { FormState } from '@/lib/web/form-state'
 
 interface ConfirmReturnProps {
-  studyId: string
-  submissionKey: string
-  /** What this page shows, so that nothing else can be returned from it. */
-  checked: string
+  /** What is returned, as the page shows it: sent along unseen, so that nothing else can be returned from it. */
+  fields: Readonly<Record<string, string>>
   remark: string
   missing: number
   canReturn: boolean
+  back: { href: string; words: string }
   action: (previous: FormState, form: FormData) => Promise<FormState>
 }
 
 const untouched: FormState = { errors: {}, values: {} }
 
 /** The last step: a remark, and the button that returns. */
-export function ConfirmReturn({ studyId, submissionKey, checked, remark, missing, canReturn, action }: ConfirmReturnProps) {
+export function ConfirmReturn({ fields, remark, missing, canReturn, back, action }: ConfirmReturnProps) {
   const [state, formAction] = useActionState(action, untouched)
   const errors = useMemo(() => listErrors(state), [state])
   const typed = state.values.remark
   return (
     <form action={formAction} className="flex flex-col gap-5">
       <ErrorSummary errors={errors} />
-      <input type="hidden" name="studyId" value={studyId} />
-      <input type="hidden" name="submissionKey" value={submissionKey} />
-      <input type="hidden" name="checked" value={checked} />
+      {Object.entries(fields).map(([name, value]) => (
+        <input key={name} type="hidden" name={name} value={value} />
+      ))}
       <Field
         name="remark"
         label="Remark"
@@ -52,7 +50,7 @@ export function ConfirmReturn({ studyId, submissionKey, checked, remark, missing
       </Field>
       <div className="flex flex-wrap gap-2.5">
         {canReturn && <SubmitButton pendingLabel="Returning…">Return these results</SubmitButton>}
-        <ButtonLink href={paths.resultSheet(studyId)}>Back to the sheet</ButtonLink>
+        <ButtonLink href={back.href}>{back.words}</ButtonLink>
       </div>
     </form>
   )
