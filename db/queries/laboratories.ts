@@ -124,6 +124,18 @@ export async function insertInvitation(
   return invitation_id
 }
 
+export async function updateInvitation(
+  trx: Transaction<DB>,
+  row: { studyId: string; invitationId: string; address: string; contactName: string; zone: string },
+): Promise<void> {
+  await trx
+    .updateTable('vault.invitation')
+    .set({ address: row.address, contact_name: row.contactName, zone: row.zone })
+    .where('study_id', '=', row.studyId)
+    .where('invitation_id', '=', row.invitationId)
+    .execute()
+}
+
 export async function insertInvitationLink(
   trx: Transaction<DB>,
   link: { studyId: string; invitationId: string; number: number; tokenHash: string; personId: string | null },

@@ -17,6 +17,7 @@ export type AuditFact =
   | { action: 'deadline.set'; version: 1; before: unknown; after: unknown }
   | { action: 'laboratory.invited'; version: 1; invitationId: string }
   | { action: 'laboratory.re-sent'; version: 1; invitationId: string; link: number }
+  | { action: 'laboratory.corrected'; version: 1; invitationId: string; link: number | null }
   | { action: 'laboratory.accepted'; version: 1; invitationId: string; participantId: string }
   | { action: 'laboratory.declined'; version: 1; invitationId: string }
   | { action: 'extension.requested'; version: 1; participantId: string }

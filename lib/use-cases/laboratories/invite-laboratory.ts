@@ -1,6 +1,8 @@
+import type { Transaction } from 'kysely'
 import { z } from 'zod'
 import { insertInvitation, upsertLaboratory } from '@/db/queries/laboratories'
 import { findStudyFor } from '@/db/queries/studies'
+import type { DB } from '@/db/tables'
 import type { Context } from '@/lib/context'
 import { NotFound, Refusal } from '@/lib/domain/errors'
 import { readMailAddress } from '@/lib/domain/mail-address'
@@ -28,40 +30,58 @@ export async function inviteLaboratory(
   context: Context,
   { studyId, ...invitation }: LaboratoryInvitation & { studyId: string },
 ): Promise<{ invitationId: string; mailed: boolean }> {
-  const { actor } = context
   const address = readMailAddress(invitation.address)
   return context.db
     .transaction()
     .execute(async (trx) => {
-      const study = await findStudyFor(trx, actor, studyId, { lock: 'update' })
-      if (!study) throw new NotFound('study')
-      const role = authorise(actor, 'laboratory.invite', study)
-      requireState(study.state, 'draft', 'open')
-      const { organisationId } = study
-      const laboratoryId = await upsertLaboratory(trx, {
-        organisationId,
-        name: invitation.laboratory,
-        city: invitation.city,
-        country: invitation.country,
-      })
-      const { contactName, zone } = invitation
-      const invitationId = await insertInvitation(trx, {
-        studyId,
-        organisationId,
-        laboratoryId,
-        address,
-        contactName,
-        zone,
-        personId: actor.personId,
-      })
-      await recordAudit(trx, { actor, role, studyId, fact: { action: 'laboratory.invited', version: 1, invitationId } })
-      const mailed = study.state === 'open'
-      if (mailed) await issueInvitationLink(trx, context, { studyId, invitationId })
-      return { invitationId, mailed }
+      const [invited] = await inviteAll(trx, context, { studyId, invitations: [{ ...invitation, address }] })
+      if (!invited) throw new Error('an invitation was lost')
+      return invited
     })
-    .catch((error: unknown) => {
-      if (error instanceof Error && 'constraint' in error && error.constraint === 'invitation_laboratory_unique')
-        throw new Refusal('already-invited', 'A laboratory of this name is on the list already.', 'laboratory')
-      throw error
+    .catch(refuseInvitedTwice)
+}
+
+/** Puts several on the list at once: all of them, or none. */
+export async function inviteLaboratories(
+  context: Context,
+  { studyId, invitations }: { studyId: string; invitations: readonly LaboratoryInvitation[] },
+): Promise<{ invited: number; mailed: boolean }> {
+  const read = invitations.map((each) => ({ ...each, address: readMailAddress(each.address) }))
+  return context.db
+    .transaction()
+    .execute(async (trx) => {
+      const invited = await inviteAll(trx, context, { studyId, invitations: read })
+      return { invited: invited.length, mailed: invited.some(({ mailed }) => mailed) }
     })
+    .catch(refuseInvitedTwice)
+}
+
+async function inviteAll(
+  trx: Transaction<DB>,
+  context: Context,
+  { studyId, invitations }: { studyId: string; invitations: readonly LaboratoryInvitation[] },
+) {
+  const { actor } = context
+  const study = await findStudyFor(trx, actor, studyId, { lock: 'update' })
+  if (!study) throw new NotFound('study')
+  const role = authorise(actor, 'laboratory.invite', study)
+  requireState(study.state, 'draft', 'open')
+  const { organisationId } = study
+  const mailed = study.state === 'open'
+  const invited: { invitationId: string; mailed: boolean }[] = []
+  for (const { laboratory: name, city, country, contactName, address, zone } of invitations) {
+    const laboratoryId = await upsertLaboratory(trx, { organisationId, name, city, country })
+    const row = { studyId, organisationId, laboratoryId, address, contactName, zone, personId: actor.personId }
+    const invitationId = await insertInvitation(trx, row)
+    await recordAudit(trx, { actor, role, studyId, fact: { action: 'laboratory.invited', version: 1, invitationId } })
+    if (mailed) await issueInvitationLink(trx, context, { studyId, invitationId })
+    invited.push({ invitationId, mailed })
+  }
+  return invited
+}
+
+function refuseInvitedTwice(error: unknown): never {
+  if (error instanceof Error && 'constraint' in error && error.constraint === 'invitation_laboratory_unique')
+    throw new Refusal('already-invited', 'A laboratory of this name is on the list already.', 'laboratory')
+  throw error
 }
