@@ -15,10 +15,14 @@ export interface FormAnswer {
   /** What was typed, or the text the form began with. */
   valueOf(name: string, begun?: string): string
   errorOf(name: string): string | undefined
+  /** The field's name within the page, where several forms have one of the same name. */
+  placeOf(name: string): string
 }
 
 interface ActionFormProps {
   action: FormAction
+  /** Tells the form's fields from those of other forms on the page. */
+  scope?: string
   /** Values that go along unseen, such as the id of the study. */
   hidden?: Readonly<Record<string, string>>
   submit: ReactNode
@@ -32,6 +36,7 @@ interface ActionFormProps {
 /** A form that works without scripts, says above itself what to mend, and keeps everything typed. */
 export function ActionForm({
   action,
+  scope,
   hidden = {},
   submit,
   pendingLabel,
@@ -41,12 +46,13 @@ export function ActionForm({
 }: ActionFormProps) {
   const [state, formAction] = useActionState(action, untouchedForm)
   const attempt = useAttempt(state)
-  const errors = useMemo(() => listErrors(state), [state])
+  const errors = useMemo(() => listErrors(state, scope), [state, scope])
   useErrorInTitle(errors.length > 0)
   const answer: FormAnswer = {
     state,
     valueOf: (name, begun = '') => typedText(state, name) ?? begun,
     errorOf: (name) => state.errors[name]?.join(' '),
+    placeOf: (name) => placeOf(name, scope),
   }
 
   return (
@@ -74,9 +80,13 @@ function typedText({ values }: FormState, name: string): string | undefined {
   return Array.isArray(value) ? (value.at(-1) ?? '') : (value ?? '')
 }
 
-function listErrors(state: FormState): { field?: string; message: string }[] {
+function placeOf(name: string, scope: string | undefined): string {
+  return scope ? `${scope}-${name}` : name
+}
+
+function listErrors(state: FormState, scope: string | undefined): { field?: string; message: string }[] {
   const byField = Object.entries(state.errors).flatMap(([field, messages]) =>
-    messages.map((message) => ({ field, message })),
+    messages.map((message) => ({ field: placeOf(field, scope), message })),
   )
   return state.message ? [{ message: state.message }, ...byField] : byField
 }

@@ -1,11 +1,13 @@
 'use client'
 
-import { Field } from '@/app/ui/primitives/field'
-import { RadioGroup } from '@/app/ui/primitives/radio-group'
+import { Choice } from '@/app/ui/primitives/choice'
+import { fieldId } from '@/app/ui/primitives/field-id'
+import { Fieldset } from '@/app/ui/primitives/fieldset'
 import { TextInput } from '@/app/ui/primitives/text-input'
 import type { ZoneGroup } from '@/lib/domain/list-zones'
 import type { FormAnswer } from './action-form'
 import { ZoneSelect } from './zone-select'
+import { FormField } from './form-field'
 
 interface DeadlineFieldsProps {
   answer: FormAnswer
@@ -22,7 +24,7 @@ export function DeadlineFields({ answer, zones, begun, hint }: DeadlineFieldsPro
   return (
     <div className="flex flex-col gap-4">
       <div className="grid gap-4 sm:grid-cols-2">
-        <Field name="localTime" label="Day and time" hint={hint} error={answer.errorOf('localTime')}>
+        <FormField answer={answer} name="localTime" label="Day and time" hint={hint}>
           {(wiring) => (
             <TextInput
               {...wiring}
@@ -30,34 +32,45 @@ export function DeadlineFields({ answer, zones, begun, hint }: DeadlineFieldsPro
               defaultValue={answer.valueOf('localTime', begun?.localTime)}
             />
           )}
-        </Field>
+        </FormField>
         {zones && (
-          <Field
+          <FormField
+            answer={answer}
             name="zone"
             label="In the time of"
             hint="Each laboratory is shown the same moment in its own time."
-            error={answer.errorOf('zone')}
           >
             {(wiring) => (
               <ZoneSelect wiring={wiring} zones={zones} defaultValue={answer.valueOf('zone', begun?.zone)} />
             )}
-          </Field>
+          </FormField>
         )}
       </div>
       {(choiceError || choice) && (
-        <RadioGroup
-          name="choice"
+        <Fieldset
+          name={answer.placeOf('choice')}
           legend="Which of the two"
           hint="Clocks go back that night, so this time occurs twice."
           error={choiceError}
-          options={[
-            { value: 'earlier', label: 'The first, before clocks go back' },
-            { value: 'later', label: 'The second, after clocks went back' },
-          ]}
-          defaultValue={choice}
-          isOptional
-        />
+        >
+          {choices.map(({ value, label }) => (
+            <Choice
+              key={value}
+              kind="radio"
+              id={`${fieldId(answer.placeOf('choice'))}-${value}`}
+              name="choice"
+              value={value}
+              label={label}
+              defaultChecked={choice === value}
+            />
+          ))}
+        </Fieldset>
       )}
     </div>
   )
 }
+
+const choices = [
+  { value: 'earlier', label: 'The first, before clocks go back' },
+  { value: 'later', label: 'The second, after clocks went back' },
+]

@@ -1,12 +1,13 @@
 'use client'
 
-import { Field } from '@/app/ui/primitives/field'
 import { TextArea } from '@/app/ui/primitives/text-area'
 import type { ZoneGroup } from '@/lib/domain/list-zones'
 import { ActionForm, type FormAction } from './action-form'
 import { DeadlineFields } from './deadline-fields'
+import { FormField } from './form-field'
 
 interface DeadlineFormProps {
+  scope?: string
   action: FormAction
   hidden: Readonly<Record<string, string>>
   zones?: readonly ZoneGroup[]
@@ -20,6 +21,7 @@ interface DeadlineFormProps {
 
 /** A form that sets a moment, for all laboratories or for one. */
 export function DeadlineForm({
+  scope,
   action,
   hidden,
   zones,
@@ -30,19 +32,14 @@ export function DeadlineForm({
   pendingLabel,
 }: DeadlineFormProps) {
   return (
-    <ActionForm action={action} hidden={hidden} submit={submit} pendingLabel={pendingLabel}>
+    <ActionForm scope={scope} action={action} hidden={hidden} submit={submit} pendingLabel={pendingLabel}>
       {(answer) => (
         <>
           <DeadlineFields answer={answer} zones={zones} begun={begun} hint={hint} />
           {reasonLabel && (
-            <Field
-              name="reason"
-              label={reasonLabel}
-              hint="It stands in the audit trail."
-              error={answer.errorOf('reason')}
-            >
+            <FormField answer={answer} name="reason" label={reasonLabel} hint="It stands in the audit trail.">
               {(wiring) => <TextArea {...wiring} rows={2} defaultValue={answer.valueOf('reason')} />}
-            </Field>
+            </FormField>
           )}
         </>
       )}

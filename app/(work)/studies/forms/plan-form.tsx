@@ -1,7 +1,6 @@
 'use client'
 
 import { useState, type FormEvent } from 'react'
-import { Field } from '@/app/ui/primitives/field'
 import { Fieldset } from '@/app/ui/primitives/fieldset'
 import { RadioGroup } from '@/app/ui/primitives/radio-group'
 import { TextArea } from '@/app/ui/primitives/text-area'
@@ -12,6 +11,7 @@ import type { BegunPlan } from '@/lib/domain/begin-plan'
 import { ActionForm, type FormAction, type FormAnswer } from './action-form'
 import { DeadlineFields } from './deadline-fields'
 import { LayoutRows } from './layout-rows'
+import { FormField } from './form-field'
 
 interface PlanFormProps {
   action: FormAction
@@ -55,7 +55,6 @@ function PlanFields({
         name="limitFactor"
         legend="Factor of the limits"
         hint="The repeatability and reproducibility limits are this factor times their standard deviations."
-        error={answer.errorOf('limitFactor')}
         options={[
           { value: '2.8', label: '2.8, as methods usually state it' },
           { value: '2.77', label: '1.96·√2, unrounded' },
@@ -72,11 +71,11 @@ function PlanFields({
 function Identity({ answer, begun }: { answer: FormAnswer; begun: BegunPlan }) {
   return (
     <div className="flex flex-col gap-4">
-      <Field
+      <FormField
+        answer={answer}
         name="shortName"
         label="Short name"
         hint="Begins the subject of every mail and stands in every file's name, such as HC-27."
-        error={answer.errorOf('shortName')}
       >
         {(wiring) => (
           <TextInput
@@ -85,29 +84,24 @@ function Identity({ answer, begun }: { answer: FormAnswer; begun: BegunPlan }) {
             className="sm:max-w-60"
           />
         )}
-      </Field>
-      <Field name="title" label="Title" error={answer.errorOf('title')}>
+      </FormField>
+      <FormField answer={answer} name="title" label="Title">
         {(wiring) => <TextInput {...wiring} defaultValue={answer.valueOf('title', begun.title)} />}
-      </Field>
-      <Field
-        name="method"
-        label="Test method"
-        hint="Its number and what it determines."
-        error={answer.errorOf('method')}
-      >
+      </FormField>
+      <FormField answer={answer} name="method" label="Test method" hint="Its number and what it determines.">
         {(wiring) => <TextInput {...wiring} defaultValue={answer.valueOf('method', begun.method)} />}
-      </Field>
-      <Field
+      </FormField>
+      <FormField
+        answer={answer}
         name="purpose"
         label="Purpose"
         hint="Laboratories read it in their invitation."
-        error={answer.errorOf('purpose')}
         isOptional
       >
         {(wiring) => (
           <TextArea {...wiring} rows={3} defaultValue={answer.valueOf('purpose', begun.purpose)} />
         )}
-      </Field>
+      </FormField>
     </div>
   )
 }
