@@ -79,3 +79,9 @@ export async function listChains(db: Kysely<DB>): Promise<string[]> {
   const rows = await db.selectFrom('audit.chain').select('study_id').orderBy('study_id').execute()
   return rows.map((row) => row.study_id)
 }
+
+/** The code of each laboratory of a study by its id, to say of whom an entry speaks. */
+export async function listCodesByParticipant(db: Kysely<DB>, studyId: string): Promise<Map<string, string>> {
+  const rows = await db.selectFrom('participant').select(['participant_id', 'code']).where('study_id', '=', studyId).execute()
+  return new Map(rows.map((row) => [row.participant_id, row.code]))
+}

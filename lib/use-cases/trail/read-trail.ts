@@ -1,4 +1,4 @@
-import { findChainHead, listAuditEntries } from '@/db/queries/audit'
+import { findChainHead, listAuditEntries, listCodesByParticipant } from '@/db/queries/audit'
 import { findPersonNames } from '@/db/queries/person-names'
 import { findStudyFor, type StudyRecord } from '@/db/queries/studies'
 import type { Context } from '@/lib/context'
@@ -11,6 +11,8 @@ export interface TrailView {
   readonly entries: readonly (AuditEntry & { actor: string })[]
   readonly verdict: { sequence: number; reason: string } | null
   readonly head: string | null
+  /** Names of people and codes of laboratories that entries speak of, by id. */
+  readonly subjects: ReadonlyMap<string, string>
 }
 
 /**
@@ -22,17 +24,27 @@ export async function readTrail(context: Context, { studyId }: { studyId: string
   if (!study) throw new NotFound('study')
   authorise(context.actor, 'trail.read', study)
   const [entries, head] = await Promise.all([listAuditEntries(context.db, studyId), findChainHead(context.db, studyId)])
-  const named = entries.filter((entry) => entry.actorRole !== 'contact').flatMap((entry) => entry.actorId ?? [])
-  const names = await findPersonNames(context.db, named)
+  const actors = entries.filter((entry) => entry.actorRole !== 'contact').flatMap((entry) => entry.actorId ?? [])
+  const members = entries.filter(({ action }) => action.startsWith('committee.')).flatMap(({ body }) => personOf(body) ?? [])
+  const [names, codes] = await Promise.all([
+    findPersonNames(context.db, [...actors, ...members]),
+    listCodesByParticipant(context.db, studyId),
+  ])
   return {
     study,
     entries: entries.map((entry) => ({ ...entry, actor: actorWords(entry, names) })),
     verdict: findBreak(entries, head),
     head: head?.hash ?? null,
+    subjects: new Map([...names, ...codes]),
   }
 }
 
 function actorWords(entry: AuditEntry, names: ReadonlyMap<string, string>): string {
   if (entry.actorRole === 'contact') return 'a laboratory'
   return (entry.actorId && names.get(entry.actorId)) ?? entry.actorRole
+}
+
+function personOf(body: string): string | undefined {
+  const { personId } = JSON.parse(body) as { personId?: unknown }
+  return typeof personId === 'string' ? personId : undefined
 }

@@ -15,9 +15,18 @@ export const GET = routeHandler({
     const [id, kind] = file.split('.')
     const measurand = review.analysis?.measurands.find(({ measurandId }) => measurandId === id)
     const name = `${review.study.shortName}-${measurand?.name ?? ''}`.toLowerCase()
-    if (measurand && kind === 'csv') return fileReply({ body: measurand.csv, type: 'text/csv; charset=utf-8', fileName: `${name}-results.csv` })
+    if (measurand && kind === 'csv')
+      return fileReply({
+        body: measurand.csv,
+        type: 'text/csv; charset=utf-8',
+        fileName: `${name}-results.csv`,
+      })
     if (measurand && kind === 'json')
-      return fileReply({ body: JSON.stringify(measurand.document, null, 2), type: 'application/json', fileName: `${name}-analysis.json` })
+      return fileReply({
+        body: JSON.stringify(measurand.document, null, 2),
+        type: 'application/json',
+        fileName: `${name}-analysis.json`,
+      })
     throw new NotFound('file')
   },
 })

@@ -1,0 +1,36 @@
+import { Section } from '@/app/ui/layout/section'
+import { Confirm } from '@/app/ui/primitives/confirm'
+import type { ReturnsView } from '@/lib/use-cases/returns/watch-returns'
+import { CloseForm } from './close-form'
+
+/** Ends the round. Before the deadline it needs a reason, since laboratories were promised the time. */
+export function CloseSection({ returns: { study, lanes, returned, now } }: { returns: ReturnsView }) {
+  const isEarly = now < study.deadline.dueAt
+  const waiting = lanes.length - returned
+  if (returned === 0)
+    return (
+      <Section title="Close for returns" id="close">
+        <p className="max-w-text">
+          No laboratory has returned results yet, so there is nothing to close and nothing to scrutinise.
+        </p>
+      </Section>
+    )
+  return (
+    <Section title="Close for returns" id="close">
+      <Confirm
+        label="Close for returns"
+        consequence={
+          <p>
+            {returned} of {lanes.length} laboratories have returned.{' '}
+            {waiting > 0 &&
+              `${waiting === 1 ? 'The one that has' : `The ${waiting} that have`} not can no longer do so. `}
+            {isEarly && 'The deadline has not passed, so this needs a reason. '}
+            The study can be reopened until it goes to its committee.
+          </p>
+        }
+      >
+        <CloseForm studyId={study.studyId} isEarly={isEarly} />
+      </Confirm>
+    </Section>
+  )
+}
