@@ -35,16 +35,14 @@ afterEach(() => vi.restoreAllMocks())
 
 function queueReceipt() {
   const ids = { studyId: world.studyId, returnId: taken.returnId, participantId: taken.participantId }
-  return parts.db
-    .transaction()
-    .execute((trx) =>
-      queueMail(trx, parts.jobs, {
-        kind: 'receipt',
-        studyId: world.studyId,
-        recipient: 'ada@quill.example',
-        ids,
-      }),
-    )
+  return parts.db.transaction().execute((trx) =>
+    queueMail(trx, parts.jobs, {
+      kind: 'receipt',
+      studyId: world.studyId,
+      recipient: 'ada@quill.example',
+      ids,
+    }),
+  )
 }
 
 describe('a worker', () => {
