@@ -4,7 +4,7 @@ import type { Kysely } from 'kysely'
 import { deleteSession, findClock, findSession, insertSession, touchSession } from '@/db/queries/sessions'
 import { consumeVerificationToken } from '@/db/queries/sign-in'
 import type { DB } from '@/db/tables'
-import { idleHours, makeSessionToken, readSessionToken } from './session-token'
+import { absoluteDays, idleHours, makeSessionToken, readSessionToken } from './session-token'
 
 /**
  * The library's adapter with four things changed: a session's token is stored only as its hash; the database's
@@ -34,7 +34,7 @@ export function createAuthAdapter(db: Kysely<DB>): Adapter {
       const sessionToken = makeSessionToken(await findClock(db))
       const { hash, endsAt } = known(sessionToken)
       await insertSession(db, { hash, endsAt, personId: userId, idleHours })
-      return { sessionToken, userId, expires: endsAt }
+      return { sessionToken, userId, expires: lastMomentHere() }
     },
 
     async getSessionAndUser(sessionToken) {
@@ -43,7 +43,7 @@ export function createAuthAdapter(db: Kysely<DB>): Adapter {
       const user = found && (await stock.getUser?.(found.personId))
       if (!session || !user) return null
       return {
-        session: { sessionToken, userId: user.id, expires: session.endsAt },
+        session: { sessionToken, userId: user.id, expires: lastMomentHere() },
         user: user as AdapterUser,
       }
     },
@@ -59,6 +59,14 @@ export function createAuthAdapter(db: Kysely<DB>): Adapter {
       if (session) await deleteSession(db, session.hash)
     },
   }
+}
+
+/**
+ * For the cookie, and for the library, which both go by clocks of their own; what has ended is decided by the
+ * database and told by finding no session.
+ */
+function lastMomentHere(): Date {
+  return new Date(Date.now() + absoluteDays * 86_400_000)
 }
 
 function known(sessionToken: AdapterSession['sessionToken']): { hash: string; endsAt: Date } {

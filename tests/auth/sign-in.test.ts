@@ -263,6 +263,24 @@ describe('a session', () => {
     expect(await findActor(parts.db, session)).toBeNull()
   })
 
+  it('is not cut short by clocks that disagree: neither in the browser nor in the library', async () => {
+    await database.setClock('2021-06-01T09:00:00Z')
+    const { response, session } = await signIn({ ...linkIn(await askForLink()) })
+    const expires = /Expires=([^;]+)/.exec(response.headers.getSetCookie()[0] ?? '')?.[1] ?? ''
+    expect(Date.parse(expires)).toBeGreaterThan(Date.now() + 6 * 86_400_000)
+
+    const asked = new Request(`${baseUrl}/api/auth/session`, {
+      headers: { cookie: `evenlot.session=${session}` },
+    })
+    const told = await handleLibraryRequest(
+      asked,
+      parts,
+      async (each) => (await Auth(each, authConfig(parts))) as Response,
+    )
+    expect(await told.json()).toMatchObject({ user: { name: 'Ada Quill' } })
+    expect(await findActor(parts.db, session)).not.toBeNull()
+  })
+
   it('cannot be given a later end by its holder', async () => {
     const { session = '' } = await signIn({ ...linkIn(await askForLink()) })
     expect(await findActor(parts.db, session.replace(/\d{10}$/, '2900000000'))).toBeNull()

@@ -25,7 +25,10 @@ export const requestLinkAction = publicFormAction({
     const peer = readPeer(await headers(), parts().trustedProxies)
     const { address } = await requestSignInLink(parts(), { address: typed, peer })
     const jar = await cookies()
-    for (const cookie of journeyCookies({ next: safePath(next, paths.studies()), address }, parts().config.baseUrl))
+    for (const cookie of journeyCookies(
+      { next: safePath(next, paths.studies()), address },
+      parts().config.baseUrl,
+    ))
       jar.set(cookie)
   },
   then: () => ({ go: paths.signInCode() }),
