@@ -1,5 +1,6 @@
 import { Temporal } from 'temporal-polyfill'
 import { Refusal } from './errors'
+import { isTimeZone } from './time-zones'
 
 export interface Deadline {
   /** ISO 8601 instant in UTC. */
@@ -55,7 +56,7 @@ function badTime(): Refusal {
 }
 
 function requireZone(zone: string): void {
-  if (!Intl.supportedValuesOf('timeZone').includes(zone) && zone !== 'UTC')
+  if (!isTimeZone(zone))
     throw new Refusal('bad-zone', `“${zone}” is not a time zone known here; choose one such as Europe/Lisbon.`, 'zone')
 }
 

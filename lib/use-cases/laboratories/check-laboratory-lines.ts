@@ -1,5 +1,6 @@
 import { Refusal } from '@/lib/domain/errors'
 import { readMailAddress } from '@/lib/domain/mail-address'
+import { timeZones } from '@/lib/domain/time-zones'
 import { splitLaboratoryLines, type LaboratoryLine } from '@/lib/domain/split-laboratory-lines'
 import { laboratoryInvitation, type LaboratoryInvitation } from './invite-laboratory'
 
@@ -57,9 +58,8 @@ function readLine(line: LaboratoryLine, invitations: LaboratoryInvitation[]): st
 /** A zone by its full name, or by the place alone where only one zone has it: "Lisbon". */
 function findZone(typed: string): string | undefined {
   const sought = typed.trim().replaceAll(' ', '_').toLowerCase()
-  const zones = Intl.supportedValuesOf('timeZone')
-  const exact = zones.find((zone) => zone.toLowerCase() === sought)
+  const exact = timeZones.find((zone) => zone.toLowerCase() === sought)
   if (exact) return exact
-  const ofPlace = zones.filter((zone) => zone.toLowerCase().endsWith(`/${sought}`))
+  const ofPlace = timeZones.filter((zone) => zone.toLowerCase().endsWith(`/${sought}`))
   return ofPlace.length === 1 ? ofPlace[0] : undefined
 }

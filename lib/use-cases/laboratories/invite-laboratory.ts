@@ -8,6 +8,7 @@ import { NotFound, Refusal } from '@/lib/domain/errors'
 import { readMailAddress } from '@/lib/domain/mail-address'
 import { authorise } from '@/lib/domain/permissions'
 import { requireState } from '@/lib/domain/study-states'
+import { isTimeZone } from '@/lib/domain/time-zones'
 import { recordAudit } from '../record-audit'
 import { issueInvitationLink } from './issue-invitation-link'
 
@@ -20,7 +21,7 @@ export const laboratoryInvitation = z.object({
   country: z.string().trim().max(80, 'Keep the country within 80 characters.').default(''),
   contactName: line('the name of the contact'),
   address: z.string(),
-  zone: z.string().refine((zone) => Intl.supportedValuesOf('timeZone').includes(zone), 'Choose the time zone of the laboratory.'),
+  zone: z.string().refine(isTimeZone, 'Choose the time zone of the laboratory.'),
 })
 
 export type LaboratoryInvitation = z.infer<typeof laboratoryInvitation>
