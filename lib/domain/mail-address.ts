@@ -18,6 +18,8 @@ export function readMailAddress(typed: string, field = 'address'): string {
   if (address !== text.normalize('NFC')) throw refuse()
   const match = /^([a-z0-9.!#$%&'*+/=?^_`{|}~-]{1,64})@([^@\s]{1,253})$/i.exec(address)
   if (!match?.[1] || !match[2]) throw refuse()
+  // Dots of other scripts and joiners vanish when the domain is put into ASCII, and an encoded word is no name.
+  if (!/^[\p{L}\p{M}\p{N}.-]+$/u.test(match[2]) || match[1].includes('=?')) throw refuse()
   const local = match[1].toLowerCase()
   const domain = domainToASCII(match[2].toLowerCase())
   if (local.startsWith('.') || local.endsWith('.') || local.includes('..')) throw refuse()

@@ -13,6 +13,7 @@ import { DownloadLink } from '@/app/ui/primitives/download-link'
 import { EmptyState } from '@/app/ui/primitives/empty-state'
 import { permittedRole } from '@/lib/domain/permissions'
 import { readReview } from '@/lib/use-cases/reviews/read-review'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { readerContext } from '@/lib/web/reader-context'
 import { requireActor } from '@/lib/web/request-context'
 import { WorkTopBar } from '../../work-top-bar'
@@ -23,7 +24,7 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
   const actor = await requireActor()
   const { studyId } = await params
   const { measurand: asked } = await searchParams
-  const review = await readReview(readerContext(actor), { studyId })
+  const review = await orNotFound(readReview(readerContext(actor), { studyId }))
   const { study, analysis } = review
   const measurand = analysis?.measurands.find(({ measurandId }) => measurandId === asked) ?? analysis?.measurands[0]
   const mayConfirm = study.state === 'in-review' && permittedRole(actor, 'publication.confirm', study) !== undefined

@@ -3,23 +3,19 @@ import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
 import { PrecisionReport } from '@/app/ui/analysis/precision-report'
 import { PrecisionNotes } from '@/app/ui/analysis/precision-notes'
 import { readReview } from '@/lib/use-cases/reviews/read-review'
-import { readStudy } from '@/lib/use-cases/studies/read-study'
 import { readerContext } from '@/lib/web/reader-context'
-import { requireActor, requestContext } from '@/lib/web/request-context'
 import { chooseMeasurand } from '../choose-measurand'
+import { loadStudy } from '../load-study'
 import { AnalysisState } from '../scrutiny/analysis-state'
 import { StudyFrame } from '../study-frame'
 
 export const metadata: Metadata = { title: 'Precision' }
 
 export default async function PrecisionPage({ params, searchParams }: PageProps<'/studies/[studyId]/precision'>) {
-  const actor = await requireActor()
   const { studyId } = await params
   const { measurand: asked } = await searchParams
-  const [view, review] = await Promise.all([
-    readStudy(await requestContext(), { studyId }),
-    readReview(readerContext(actor), { studyId }),
-  ])
+  const { actor, view } = await loadStudy(studyId)
+  const review = await readReview(readerContext(actor), { studyId })
   const measurand = chooseMeasurand(review, asked)
 
   return (

@@ -1,18 +1,16 @@
 import type { Metadata } from 'next'
-import { ProposalSteps } from '@/app/(work)/publishing/proposal-steps'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { readReport } from '@/lib/use-cases/publications/read-report'
-import { readStudy } from '@/lib/use-cases/studies/read-study'
-import { requireActor, requestContext } from '@/lib/web/request-context'
+import { loadStudy } from '../load-study'
 import { StudyFrame } from '../study-frame'
+import { ReportSteps } from './report-steps'
 
 export const metadata: Metadata = { title: 'Report' }
 
 export default async function ReportPage({ params }: PageProps<'/studies/[studyId]/report'>) {
-  const actor = await requireActor()
   const { studyId } = await params
-  const context = await requestContext()
-  const [view, report] = await Promise.all([readStudy(context, { studyId }), readReport(context, { studyId })])
+  const { actor, context, view } = await loadStudy(studyId)
+  const report = await readReport(context, { studyId })
   return (
     <StudyFrame
       view={view}
@@ -30,7 +28,7 @@ export default async function ReportPage({ params }: PageProps<'/studies/[studyI
         </>
       }
     >
-      <ProposalSteps report={report} />
+      <ReportSteps report={report} />
     </StudyFrame>
   )
 }

@@ -5,19 +5,17 @@ import { ButtonLink } from '@/app/ui/primitives/button'
 import { DataTable } from '@/app/ui/primitives/data-table'
 import { Notice } from '@/app/ui/primitives/notice'
 import { readCommittee } from '@/lib/use-cases/committee/appoint-committee-member'
-import { readStudy } from '@/lib/use-cases/studies/read-study'
 import { paths } from '@/lib/web/paths'
-import { requireActor, requestContext } from '@/lib/web/request-context'
+import { loadStudy } from '../load-study'
 import { StudyFrame } from '../study-frame'
 import { ReviewSteps } from './review-steps'
 
 export const metadata: Metadata = { title: 'Review' }
 
 export default async function ReviewPage({ params }: PageProps<'/studies/[studyId]/review'>) {
-  const actor = await requireActor()
   const { studyId } = await params
-  const context = await requestContext()
-  const [view, { members }] = await Promise.all([readStudy(context, { studyId }), readCommittee(context, { studyId })])
+  const { actor, context, view } = await loadStudy(studyId)
+  const { members } = await readCommittee(context, { studyId })
   const isBefore = view.study.state === 'in-review' || view.study.state === 'published'
 
   return (

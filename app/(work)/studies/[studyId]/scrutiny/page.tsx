@@ -5,10 +5,9 @@ import { OutlierTests } from '@/app/ui/analysis/outlier-tests'
 import { Section } from '@/app/ui/layout/section'
 import { DownloadLink } from '@/app/ui/primitives/download-link'
 import { readReview } from '@/lib/use-cases/reviews/read-review'
-import { readStudy } from '@/lib/use-cases/studies/read-study'
 import { readerContext } from '@/lib/web/reader-context'
-import { requireActor, requestContext } from '@/lib/web/request-context'
 import { chooseMeasurand } from '../choose-measurand'
+import { loadStudy } from '../load-study'
 import { StudyFrame } from '../study-frame'
 import { AnalysisState } from './analysis-state'
 import { CellDecisions } from './cell-decisions'
@@ -17,13 +16,10 @@ import { ScrutinyMargin } from './scrutiny-margin'
 export const metadata: Metadata = { title: 'Scrutiny' }
 
 export default async function ScrutinyPage({ params, searchParams }: PageProps<'/studies/[studyId]/scrutiny'>) {
-  const actor = await requireActor()
   const { studyId } = await params
   const { measurand: asked } = await searchParams
-  const [view, review] = await Promise.all([
-    readStudy(await requestContext(), { studyId }),
-    readReview(readerContext(actor), { studyId }),
-  ])
+  const { actor, view } = await loadStudy(studyId)
+  const review = await readReview(readerContext(actor), { studyId })
   const measurand = chooseMeasurand(review, asked)
 
   return (
