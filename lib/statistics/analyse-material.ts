@@ -4,7 +4,7 @@ import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
 import { type CellSummary, summariseCells } from '@/lib/statistics/cells'
 import { censoredMedian } from '@/lib/statistics/censored-median'
 import { anovaBlock } from '@/lib/statistics/document/anova-block'
-import { notComputable, once, required, withReasons } from '@/lib/statistics/document/attempt'
+import { notComputable, once, OUT_OF_RANGE, required, withReasons } from '@/lib/statistics/document/attempt'
 import { cellBlocks } from '@/lib/statistics/document/cell-blocks'
 import {
   assignedBlock,
@@ -27,6 +27,8 @@ import { roundedPrecision } from '@/lib/statistics/rounding'
 /** Above this share of lost cells no figure of the material is given. */
 const MOST_CENSORED = 0.1
 
+const CENSORED = 'More than 10 % of the cells hold a result below or above a limit.'
+
 /** One material with the summaries that plots and explanations go on from. */
 export type AnalysedMaterial = {
   data: MaterialData
@@ -43,13 +45,19 @@ export function analyseMaterial(
   nesting: readonly string[],
   settings: AnalysisSettings,
 ): AnalysedMaterial {
-  const tooMuchCensored = data.censoredShare > MOST_CENSORED
-  const cells = tooMuchCensored ? [] : data.cells
-  const analysed = analyseCells({ data, cells, nesting, settings })
-  if (!tooMuchCensored) return { data, ...analysed }
-
-  const words = 'More than 10 % of the cells hold a result below or above a limit.'
-  return { data, summaries: [], analysis: withOneReason(analysed.analysis, words) }
+  if (data.isOutOfRange) {
+    const emptied = analyseCells({ data: { ...data, cells: [], bounds: [] }, cells: [], nesting, settings })
+    return { data, summaries: [], analysis: withOneReason(emptied.analysis, OUT_OF_RANGE, ['trueness']) }
+  }
+  if (data.censoredShare > MOST_CENSORED) {
+    const emptied = analyseCells({ data, cells: [], nesting, settings })
+    return {
+      data,
+      summaries: [],
+      analysis: withOneReason(emptied.analysis, CENSORED, ['median', 'trueness']),
+    }
+  }
+  return { data, ...analyseCells({ data, cells: data.cells, nesting, settings }) }
 }
 
 function analyseCells(one: {
@@ -236,10 +244,15 @@ function roundedBlock(
 }
 
 /** The same block with every reason replaced: what is missing is missing for one cause, not for want of data. */
-function withOneReason(analysis: MaterialAnalysis, words: string): MaterialAnalysis {
-  const kept = { median: analysis.reasons?.['median'], trueness: analysis.reasons?.['trueness'] }
+function withOneReason(
+  analysis: MaterialAnalysis,
+  words: string,
+  keeping: readonly string[],
+): MaterialAnalysis {
   const replaced = replaceReasons(analysis, words) as MaterialAnalysis
-  const own = Object.entries(kept).filter((entry): entry is [string, string] => entry[1] !== undefined)
+  const own = Object.entries(analysis.reasons ?? {}).filter(([key]) =>
+    ['measurand', ...keeping].includes(key),
+  )
   return { ...replaced, reasons: { ...(replaced.reasons ?? {}), ...Object.fromEntries(own) } }
 }
 

@@ -125,7 +125,7 @@ function homogeneity(materials: readonly AnalysedMaterial[], settings: AnalysisS
   return materials.map(({ data, summaries }) =>
     homogeneityBlock({
       material: data.material,
-      units: data.cells.map(({ deviations }) => [...deviations]),
+      units: data.isOutOfRange ? [] : data.cells.map(({ deviations }) => [...deviations]),
       summaries,
       target: settings.sigmas?.[data.material] ?? null,
     }),

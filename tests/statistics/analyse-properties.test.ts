@@ -98,7 +98,7 @@ describe('analyse', () => {
       laboratory: fc.constantFrom('A', 'B', 'C', 'D'),
       material: fc.constantFrom('M', 'N'),
       groups: fc.constantFrom(['1'], ['2']),
-      text: fc.constantFrom('', '0', '1', '1.0', '1.1', '-3', '7e5', '1e-8'),
+      text: fc.constantFrom('', '0', '1', '1.0', '1.1', '-3', '7e5', '1e-8', '0.3', '0.10'),
       censored: fc.constantFrom(null, null, null, null, null, '<' as const, '>' as const),
       excluded: fc.constantFrom(false, false, false, true),
     })
@@ -112,6 +112,26 @@ describe('analyse', () => {
       }),
       { seed, numRuns: 300 },
     )
+  })
+})
+
+describe('results at the ends of what a double holds', () => {
+  it.each([
+    ['too large', '1e160 2e160', '3e160 5e160'],
+    ['further apart than a double', '1e308 -1e308', '1e308 5'],
+    ['too small', '1e-200 2e-200', '3e-200 5e-200'],
+  ])('are given up with one reason when they lie %s', (_, a, b) => {
+    const one = analyseRows(rowsOf({ A: a, B: b })).materials[0]!
+    expect(one.mean).toBeNull()
+    expect(one.reproducibility.reasons!['sd']).toContain('too large or too small to be squared')
+  })
+
+  it('are analysed like any others when only their common part is large', () => {
+    const one = analyseRows(
+      rowsOf({ A: '1e30 1000000000000000000000000000001', B: '1000000000000000000000000000003 1e30' }),
+    )
+    // Deviations 0, 1 and 3, 0: within squares 0.5 + 4.5 over 2.
+    expectNear(one.materials[0]!.repeatability.variance, 2.5, 1e-14)
   })
 })
 

@@ -4,7 +4,7 @@ import type { Reasons } from '@/lib/statistics/analysis-document'
 /** Computes one quantity of a block, or leaves `null` and notes the reason under its key. */
 export type Attempt = <Value>(key: string, compute: () => Value) => Value | null
 
-const OUT_OF_RANGE = 'The results are too large or too small to be squared; change their unit.'
+export const OUT_OF_RANGE = 'The results are too large or too small to be squared; change their unit.'
 
 /**
  * Builds one block of the analysis document. This is the one place where a

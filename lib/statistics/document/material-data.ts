@@ -3,10 +3,12 @@ import type { CensoredBlock } from '@/lib/statistics/analysis-document'
 import {
   centreExactly,
   type Decimal,
+  type ExactlyCentred,
   parseDecimal,
   subtractDecimals,
   toCommonScale,
 } from '@/lib/statistics/decimal'
+import { NotComputable } from '@/lib/statistics/not-computable'
 
 /** The results of one laboratory for one material that carry a number and take part. */
 export type MaterialCell = {
@@ -33,6 +35,8 @@ export type MaterialData = {
   bounds: readonly { below: number | null; above: number | null }[]
   /** Share of the cells with data that a censored result took out. */
   censoredShare: number
+  /** The results lie so far apart, or so close together, that their squares are no doubles. */
+  isOutOfRange: boolean
 }
 
 /**
@@ -49,7 +53,7 @@ export function materialData(one: {
   const taking = one.results.filter(({ excluded, text }) => !excluded && text !== '')
   const decimals = taking.map(({ text }) => parseDecimal(text))
   const { units, scale } = toCommonScale(decimals.length === 0 ? [parseDecimal('0')] : decimals)
-  const centred = centreExactly(decimals.length === 0 ? ['0'] : taking.map(({ text }) => text))
+  const centred = centreWithinRange(taking.map(({ text }) => text))
 
   const positions = new Map<string, number[]>()
   taking.forEach(({ laboratory }, position) => {
@@ -87,7 +91,26 @@ export function materialData(one: {
       cells: censoredCells,
     },
     bounds,
+    isOutOfRange: centred.isOutOfRange,
     censoredShare: positions.size === 0 ? 0 : censoredCells.length / positions.size,
+  }
+}
+
+/** Squares, and sums and ratios of squares, stay within a double. */
+const LARGEST_DEVIATION = 1e140
+const SMALLEST_DEVIATION = 1e-140
+
+function centreWithinRange(texts: readonly string[]): ExactlyCentred & { isOutOfRange: boolean } {
+  const nothing = centreExactly(['0'])
+  if (texts.length === 0) return { ...nothing, isOutOfRange: false }
+  try {
+    const centred = centreExactly(texts)
+    const reach = centred.deviations.reduce((most, deviation) => Math.max(most, Math.abs(deviation)), 0)
+    const isOutOfRange = reach !== 0 && !(reach >= SMALLEST_DEVIATION && reach <= LARGEST_DEVIATION)
+    return { ...centred, isOutOfRange }
+  } catch (error) {
+    if (!(error instanceof NotComputable)) throw error
+    return { ...nothing, deviations: new Float64Array(texts.length), isOutOfRange: true }
   }
 }
 
