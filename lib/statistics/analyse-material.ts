@@ -180,8 +180,8 @@ function analyseCells(one: {
     ),
     equality: equalityBlock({ summaries, layout, anova, harmonicCellSize: harmonic }),
     assigned,
-    proposals: attempt('proposals', () => notComputable('not-made', 'not computed by this version')),
-    noticed: attempt('noticed', () => notComputable('not-made', 'not computed by this version')),
+    proposals: [],
+    noticed: [],
     rounded: roundedBlock(mean, precision),
   }))
   return { summaries, analysis }

@@ -8,6 +8,7 @@ import type {
 } from '@/lib/statistics/analysis-document'
 import type { AnalysisInput, AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
 import { notComputable, withReasons } from '@/lib/statistics/document/attempt'
+import { explained } from '@/lib/statistics/document/explanation-blocks'
 import { homogeneityBlock } from '@/lib/statistics/document/homogeneity-block'
 import { levelRelationBlock } from '@/lib/statistics/document/level-relation-block'
 import { materialData } from '@/lib/statistics/document/material-data'
@@ -35,12 +36,13 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
   const only =
     measurands.length === 0 || measurands[0]!.measurand === null ? (measurands[0]?.materials ?? []) : null
   const all = measurands.flatMap(({ materials }) => materials)
+  const explainedMaterials = measurands.flatMap(({ materials }) => explained(materials, input.settings))
 
   const analysed = withReasons((attempt): Omit<AnalysisDocument, 'reasons'> => ({
     engine: { name: 'evenlot', version: input.version },
     input: inputBlock(input),
     settings: { limitFactor: input.settings.limitFactor },
-    materials: all.map(({ analysis }) => analysis),
+    materials: explainedMaterials,
     levelRelation: attempt('levelRelation', () => levelRelationOf(only ?? byMeasurand())),
     youden: attempt('youden', () => youden(only ?? byMeasurand(), input.settings)),
     homogeneity: attempt('homogeneity', () => homogeneity(all, input.settings)),

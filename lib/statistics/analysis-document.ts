@@ -227,7 +227,7 @@ export type ProposalKind =
   | 'proportion'
   | 'oneApart'
 
-export type ProposalState = { h: Quantity; k: Quantity; surprise: Quantity }
+export type ProposalState = { h: Quantity; k: Quantity; surprise: Quantity } & Reasons
 
 export type Proposal = {
   laboratory: string
@@ -248,7 +248,7 @@ export type Noticed = {
   /** For a coarse step: the step itself, and the share of s_r² it explains. */
   step: Quantity
   share: Quantity
-}
+} & Reasons
 
 export type RoundedBlock = {
   mean: string | null

@@ -39,6 +39,8 @@ export type AnalysisSettings = {
   pairs?: readonly (readonly [string, string])[]
   /** Decimals that were asked for, by material. */
   decimals?: Readonly<Record<string, number>>
+  /** Other units results are often given in; multiplied by `factor` they are in the study's. */
+  units?: readonly { name: string; factor: number }[]
   /** The laboratories are units of a material before shipping. */
   homogeneity?: boolean
   plan?: { from: number; to: number; n: number; gamma: number }

@@ -1,0 +1,227 @@
+import type { AnalysedMaterial } from '@/lib/statistics/analyse-material'
+import type { MaterialAnalysis, Noticed, Proposal } from '@/lib/statistics/analysis-document'
+import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
+import { required, withReasons } from '@/lib/statistics/document/attempt'
+import type { MaterialCell } from '@/lib/statistics/document/material-data'
+import { type Explanation, explanationsOf, type LaboratoryCell } from '@/lib/statistics/explanations'
+import { mandelH, mandelK } from '@/lib/statistics/mandel'
+import { NotComputable } from '@/lib/statistics/not-computable'
+import { chanceOfIdentical, commonStep, trendPValue } from '@/lib/statistics/noticed'
+import { type CellFigures, summariseOthers } from '@/lib/statistics/surprise'
+
+/**
+ * Adds to each material of one measurand what might have gone wrong in its
+ * flagged cells, and what is noticed beside.
+ */
+export function explained(
+  materials: readonly AnalysedMaterial[],
+  settings: AnalysisSettings,
+): MaterialAnalysis[] {
+  const counted = materials
+    .flatMap(({ data }) => data.cells)
+    .filter(({ results }) => results.length >= 2).length
+  const cellsOf = cellsByLaboratory(materials)
+  return materials.map((one) => {
+    if (one.summaries.length === 0) return withoutProposals(one, 'There is no result.')
+    if (one.summaries.length < 4) return withoutProposals(one, '4 laboratories are needed.')
+    const identical = identicalCells(one, cellsOf, counted)
+    const flagged = [...new Set([...flaggedCells(one.analysis), ...identical.keys()])]
+    return {
+      ...one.analysis,
+      proposals: flagged.flatMap((laboratory) =>
+        explanationsOf(one.data.material, cellsOf.get(laboratory) ?? [], settings.units ?? []).map((found) =>
+          proposalBlock(one, laboratory, found),
+        ),
+      ),
+      noticed: [
+        ...[...identical].map(([laboratory, probability]) =>
+          noticedBlock({ laboratory, kind: 'identical', probability }),
+        ),
+        ...coarseSteps(one, materials, cellsOf, settings),
+        ...(one === materials[0] ? trends(materials, cellsOf) : []),
+      ],
+    }
+  })
+}
+
+function withoutProposals({ analysis }: AnalysedMaterial, words: string): MaterialAnalysis {
+  const reason = analysis.reasons?.['mean'] ?? words
+  return {
+    ...analysis,
+    proposals: null,
+    noticed: null,
+    reasons: { ...analysis.reasons, proposals: reason, noticed: reason },
+  }
+}
+
+/** All cells of each laboratory that have enough others beside them to be judged. */
+function cellsByLaboratory(materials: readonly AnalysedMaterial[]): Map<string, LaboratoryCell[]> {
+  const all = new Map<string, LaboratoryCell[]>()
+  for (const { data, summaries } of materials) {
+    if (summaries.length < 4) continue
+    const figures = summaries.map((summary): CellFigures => summary)
+    data.cells.forEach((cell, index) => {
+      const others = summariseOthers(figures.filter((_, place) => place !== index))
+      const own = all.get(cell.laboratory) ?? []
+      all.set(cell.laboratory, own)
+      own.push({
+        material: data.material,
+        values: [...cell.deviations],
+        offset: data.restore(0),
+        texts: cell.results.map(({ text }) => text),
+        groups: cell.results.map(({ groups }) => JSON.stringify(groups)),
+        others,
+      })
+    })
+  }
+  return all
+}
+
+/** Beyond 0.5 % in h or k, or at least a straggler in Cochran's or one of Grubbs' tests. */
+function flaggedCells({ cells, critical, cochran, grubbs }: MaterialAnalysis): string[] {
+  const flagged = new Set<string>()
+  for (const { laboratory, h, k, kCritical } of cells) {
+    const bounds = [critical.h['0.005'], kCritical['0.005']] as const
+    if (h !== null && bounds[0] !== null && Math.abs(h) > bounds[0]) flagged.add(laboratory)
+    if (k !== null && bounds[1] !== null && k > bounds[1]) flagged.add(laboratory)
+  }
+  if (cochran.level !== null && cochran.level !== 'none') flagged.add(cochran.generalised.laboratory!)
+  for (const test of Object.values(grubbs)) {
+    if (test.level !== null && test.level !== 'none') test.laboratories.forEach((one) => flagged.add(one))
+  }
+  return cells.map(({ laboratory }) => laboratory).filter((laboratory) => flagged.has(laboratory))
+}
+
+/** Cells whose results agree in every digit although the others' scatter makes that unlikely. */
+function identicalCells(
+  { data }: AnalysedMaterial,
+  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
+  counted: number,
+): Map<string, number> {
+  const found = new Map<string, number>()
+  for (const cell of data.cells) {
+    const [first, ...more] = cell.integers
+    if (more.length === 0 || more.some((one) => one !== first)) continue
+    const { others } = judged(cellsOf, cell.laboratory, data.material)
+    const probability = chanceOfIdentical({
+      results: cell.integers.length,
+      step: lastStep(cell),
+      sd: Math.sqrt(others.repeatabilityVariance),
+      cells: counted,
+    })
+    if (probability < 0.05) found.set(cell.laboratory, probability)
+  }
+  return found
+}
+
+function lastStep({ results }: MaterialCell): number {
+  const decimals = results.map(({ text }) => /\.(\d+)/.exec(text)?.[1]?.length ?? 0)
+  return Number(`1e${-Math.max(...decimals)}`)
+}
+
+/** A laboratory needs this many results before a common step is no accident. */
+const FEWEST_FOR_STEP = 4
+
+function coarseSteps(
+  { data }: AnalysedMaterial,
+  materials: readonly AnalysedMaterial[],
+  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
+  { decimals }: AnalysisSettings,
+): Noticed[] {
+  const asked = decimals?.[data.material] === undefined ? data.step : Number(`1e${-decimals[data.material]!}`)
+  return data.cells.flatMap(({ laboratory }): Noticed[] => {
+    const finest = Math.min(...materials.map((one) => one.data.step))
+    const numbers = materials.flatMap((one) => {
+      const cell = one.data.cells.find((other) => other.laboratory === laboratory)
+      const scale = BigInt(Math.round(one.data.step / finest))
+      return cell?.integers.map((integer) => integer * scale) ?? []
+    })
+    if (numbers.length < FEWEST_FOR_STEP) return []
+    const step = Number(commonStep(numbers)) * finest
+    const { repeatabilityVariance } = judged(cellsOf, laboratory, data.material).others
+    const sd = Math.sqrt(repeatabilityVariance)
+    if (!(step > asked * 1.5) || !(sd > 0) || !(step > sd / 2)) return []
+    return [noticedBlock({ laboratory, kind: 'coarse', step, share: step ** 2 / (12 * sd ** 2) })]
+  })
+}
+
+function trends(
+  materials: readonly AnalysedMaterial[],
+  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
+): Noticed[] {
+  return [...cellsOf.keys()].flatMap((laboratory) => {
+    const cells = materials.flatMap(({ data }) => {
+      const cell = data.cells.find((one) => one.laboratory === laboratory)
+      const others = cellsOf.get(laboratory)?.find(({ material }) => material === data.material)?.others
+      const sd = Math.sqrt(others?.repeatabilityVariance ?? 0)
+      if (cell === undefined || sd === 0) return []
+      return [
+        cell.results.flatMap(({ order }, index) =>
+          order == null ? [] : [{ order, value: cell.deviations[index]! / sd }],
+        ),
+      ]
+    })
+    const probability = trendPValue(cells.filter(({ length }) => length > 0))
+    return probability !== null && probability < 0.01
+      ? [noticedBlock({ laboratory, kind: 'trend', probability })]
+      : []
+  })
+}
+
+function judged(
+  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
+  laboratory: string,
+  material: string,
+): LaboratoryCell {
+  return cellsOf.get(laboratory)!.find((cell) => cell.material === material)!
+}
+
+function noticedBlock(one: {
+  laboratory: string
+  kind: Noticed['kind']
+  probability?: number
+  step?: number
+  share?: number
+}): Noticed {
+  return withReasons((attempt) => ({
+    laboratory: one.laboratory,
+    kind: one.kind,
+    probability: attempt('probability', () => given(one.probability)),
+    step: attempt('step', () => given(one.step)),
+    share: attempt('share', () => given(one.share)),
+  }))
+}
+
+function given(value: number | undefined): number {
+  if (value === undefined) throw new NotComputable('other-kind', 'No figure of this kind of observation.')
+  return value
+}
+
+function proposalBlock(one: AnalysedMaterial, laboratory: string, found: Explanation): Proposal {
+  const own = one.analysis.cells.find((cell) => cell.laboratory === laboratory)!
+  const after = one.summaries.map((summary) =>
+    summary.laboratory === laboratory ? { ...summary, ...found.changed } : summary,
+  )
+  return {
+    laboratory,
+    kind: found.kind,
+    detail: found.detail,
+    cells: [...found.materials],
+    before: withReasons((attempt) => ({
+      h: attempt('h', () => required(own.h, own.reasons?.['h'] ?? 'h could not be computed.')),
+      k: attempt('k', () => required(own.k, own.reasons?.['k'] ?? 'k could not be computed.')),
+      surprise: found.surpriseBefore,
+    })),
+    after: withReasons((attempt) => ({
+      h: attempt('h', () => mandelH(after).find((cell) => cell.laboratory === laboratory)!.h),
+      k: attempt('k', () => {
+        const k = mandelK(after).find((cell) => cell.laboratory === laboratory)?.k
+        if (k === undefined) throw new NotComputable('no-replicates', 'The laboratory has no second result.')
+        return k
+      }),
+      surprise: found.surpriseAfter,
+    })),
+    price: found.price,
+    score: found.score,
+  }
+}

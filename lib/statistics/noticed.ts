@@ -1,0 +1,57 @@
+import { tUpperTail } from '@/lib/statistics/distributions/students-t'
+
+/**
+ * What stands out in a laboratory's results without explaining a discrepancy:
+ * identical results, a step coarser than asked, a trend in the order of the runs.
+ * These never compete with explanations.
+ */
+
+/**
+ * Chance, over all cells looked at, that the results of some cell agree in every
+ * digit by accident: a normal scatter rounded to steps of `step`.
+ */
+export function chanceOfIdentical(one: { results: number; step: number; sd: number; cells: number }): number {
+  if (one.sd === 0) return 1
+  const single = one.step / (one.sd * Math.sqrt(2 * Math.PI))
+  return Math.min(1, (single ** (one.results - 1) / Math.sqrt(one.results)) * one.cells)
+}
+
+/** The largest step of which all the numbers are multiples; 0 when all are 0. */
+export function commonStep(numbers: readonly bigint[]): bigint {
+  return numbers.reduce((step, number) => greatestCommonDivisor(step, number), 0n)
+}
+
+/**
+ * Two-sided p-value of a straight trend of results in the order of the runs.
+ * Orders and results are both taken about the mean of their cell, so that the
+ * means, which cost a degree of freedom each, cannot pass for a trend. `null`
+ * where there is nothing to judge by.
+ */
+export function trendPValue(cells: readonly (readonly { order: number; value: number }[])[]): number | null {
+  let orders = 0
+  let products = 0
+  let squares = 0
+  let results = 0
+  for (const cell of cells) {
+    const order = cell.reduce((sum, one) => sum + one.order, 0) / cell.length
+    const value = cell.reduce((sum, one) => sum + one.value, 0) / cell.length
+    for (const one of cell) {
+      orders += (one.order - order) ** 2
+      products += (one.order - order) * (one.value - value)
+      squares += (one.value - value) ** 2
+      results += 1
+    }
+  }
+  const df = results - cells.length - 1
+  if (df < 1 || orders === 0 || squares === 0) return null
+  const rest = squares - products ** 2 / orders
+  if (rest <= squares * 1e-14) return 0
+  const t = Math.abs(products) / Math.sqrt((orders * rest) / df)
+  return Math.min(1, 2 * tUpperTail(t, df))
+}
+
+function greatestCommonDivisor(one: bigint, other: bigint): bigint {
+  let [a, b] = [one < 0n ? -one : one, other < 0n ? -other : other]
+  while (b !== 0n) [a, b] = [b, a % b]
+  return a
+}
