@@ -8,7 +8,7 @@ const npm = (...names) => `node_modules/(${names.map((name) => name.replace('/',
 const QUERIES_OF_THE_VAULT = '^db/queries/(laboratories|participations|returns|uploads)\\.ts$'
 
 /** @type {import('dependency-cruiser').IConfiguration} */
-export default {
+const config = {
   forbidden: [
     {
       name: 'no-cycles',
@@ -188,3 +188,5 @@ export default {
     },
   },
 }
+
+export default config
