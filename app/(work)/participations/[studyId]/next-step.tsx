@@ -32,7 +32,7 @@ export function NextStep({ view }: { view: ParticipationView }) {
             Download it as filled so far
           </DownloadLink>
         )}
-        <a href={paths.resultUpload(studyId)} className="prose-link">
+        <a href={paths.resultUpload(studyId)} className="prose-link inline-flex min-h-6 items-center">
           Send a filled workbook
         </a>
       </div>

@@ -32,7 +32,7 @@ export default async function SheetPage({ params, searchParams }: PageProps) {
       actor={actor}
       view={view}
       title="Results"
-      lead="Type each value with the digits your laboratory would give. A decimal point or a decimal comma will do."
+      lead="Type each value with the digits your laboratory would give, with a decimal point or a comma."
       margin={<SheetNotes studyId={studyId} />}
     >
       <ClosedNotice view={view} />

@@ -99,7 +99,7 @@ export function ResultSheet(props: ResultSheetProps) {
     <form action={formAction} onSubmit={(event) => void check(event)} className="flex flex-col gap-5">
       <input type="hidden" name="studyId" value={studyId} />
       <input type="hidden" name="draftVersion" value={draftVersion} />
-      <div onClick={followErrorLink}>
+      <div onClick={followErrorLink} className="empty:hidden">
         <ErrorSummary errors={found ?? fromServer} />
       </div>
       {state.isRestored && (

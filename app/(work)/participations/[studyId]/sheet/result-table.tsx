@@ -33,7 +33,7 @@ export function ResultTable({ layout, groups, entries, active, isLive, shown, on
       <caption className="sr-only">Results of this laboratory, one row for each test result to report</caption>
       <thead role="rowgroup" className="max-sm:hidden">
         <tr role="row">
-          <th role="columnheader" scope="col" className="h-9 w-px whitespace-nowrap border-b px-3 text-left align-bottom font-semibold text-ink-soft">
+          <th role="columnheader" scope="col" className="h-9 w-px whitespace-nowrap border-b px-3 py-2 text-left align-bottom font-semibold text-ink-soft">
             {hasRowGroups ? 'Test result' : 'Material'}
           </th>
           {measurands.map((measurand) => (

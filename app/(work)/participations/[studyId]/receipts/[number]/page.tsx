@@ -33,7 +33,7 @@ export default async function ReceiptPage({ params }: { params: Promise<{ studyI
         <MarginNote title="What happens next">
           <p>
             A copy of this receipt is on its way by mail. When returns close, the coordinator has the statistics
-            computed and may ask about a single value. You will be told when the report is published.
+            computed and may ask about a single value. What is published names no laboratory.
           </p>
           {view.canReturn && (
             <p>
