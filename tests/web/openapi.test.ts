@@ -39,7 +39,7 @@ describe('the described interface', () => {
   })
 
   it('describes the lanes by the very schema the handler answers with', () => {
-    const text = JSON.stringify(document.paths?.['/api/studies/{studyId}/returns']?.get?.responses['200'])
+    const text = JSON.stringify(document.paths?.['/api/studies/{studyId}/returns']?.get?.responses?.['200'])
     for (const field of ['code', 'draftEntries', 'asksForTime', 'returnedAt'])
       expect(text).toContain(`"${field}"`)
     for (const word of ['laboratoryName', 'address', 'participantId', 'remark'])
