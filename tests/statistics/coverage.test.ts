@@ -48,7 +48,7 @@ describe('one-way intervals, balanced and with 15 % of the results missing', () 
 describe('one-way intervals with badly unequal cells', () => {
   const layouts = {
     mixed: [1, 2, 2, 3, 4, 5, 3, 2],
-    'six of 2, six of 4': [2, 2, 2, 2, 2, 2, 4, 4, 4, 4, 4, 4],
+    'six of 2, four of 6': [2, 2, 2, 2, 2, 2, 6, 6, 6, 6],
     'four of 1, four of 4': [1, 1, 1, 1, 4, 4, 4, 4],
     'nine of 2, one of 20': [2, 2, 2, 2, 2, 2, 2, 2, 2, 20],
   }
