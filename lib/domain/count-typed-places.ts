@@ -30,7 +30,7 @@ export function describeTypedPlaces({ measurands, materials, levels, places }: T
   const factors = [
     counted(measurands, 'measurand'),
     counted(materials, 'material'),
-    ...levels.map(({ name, count }) => `${count} × ${name}`),
+    ...levels.map(({ name, count }) => counted(count, name)),
   ]
   return `This asks each laboratory for ${counted(places, 'result')}: ${factors.join(' × ')}.`
 }
@@ -48,6 +48,7 @@ function rowsOf(typed: ReadonlyMap<string, string>, list: string): number[] {
   return [...rows].sort((a, b) => a - b)
 }
 
-function counted(count: number, what: string): string {
-  return `${count} ${what}${count === 1 ? '' : 's'}`
+/** A plural of a level's name is guessed only where adding an s cannot be wrong. */
+export function counted(count: number, what: string): string {
+  return `${count} ${what}${count !== 1 && /[a-z]$/.test(what) && !what.endsWith('s') ? 's' : ''}`
 }

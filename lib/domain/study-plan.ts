@@ -1,7 +1,7 @@
 import { z } from 'zod'
 
 const words = (name: string, most: number) =>
-  z.string().trim().min(1, `Give ${name}.`).max(most, `Keep ${name} within ${most} characters.`).refine((text) => !/[\p{Cc}\p{Cf}]/u.test(text), `Leave control characters out of ${name}.`)
+  z.string().trim().min(1, { error: `Give ${name}.`, abort: true }).max(most, `Keep ${name} within ${most} characters.`).refine((text) => !/[\p{Cc}\p{Cf}]/u.test(text), `Leave control characters out of ${name}.`)
 
 /** Rows of a form that were left empty are no rows. */
 const filled = <Rows extends z.ZodType>(rows: Rows) =>
@@ -16,10 +16,17 @@ function isBlank(row: unknown): boolean {
 /** A checkbox sends "on" or nothing at all. */
 const ticked = z.preprocess((value) => value === true || value === 'on' || value === 'true', z.boolean())
 
+/** A box left empty holds no number, and above all not nought. */
+const wholeNumber = (missing: string, least: number, most: number) =>
+  z.preprocess(
+    (typed) => (typeof typed === 'string' && !typed.trim() ? undefined : typed),
+    z.coerce.number(missing).int('Give a whole number.').min(least, `From ${least} to ${most}.`).max(most, `From ${least} to ${most}.`),
+  )
+
 export const measurandPlan = z.object({
   name: words('the name of the measurand', 60),
   unit: words('the unit', 20),
-  decimals: z.coerce.number('Give the number of decimals.').int('Decimals are a whole number.').min(0, 'From 0 to 12 decimals.').max(12, 'From 0 to 12 decimals.'),
+  decimals: wholeNumber('Give the number of decimals.', 0, 12),
   hasTrueZero: ticked.default(true),
 })
 
@@ -30,7 +37,7 @@ export const materialPlan = z.object({
 
 export const levelPlan = z.object({
   name: words('the name of the level', 30),
-  count: z.coerce.number('Give how many.').int('Give a whole number.').min(1, 'From 1 to 50.').max(50, 'From 1 to 50.'),
+  count: wholeNumber('Give how many.', 1, 50),
 })
 
 /** The most single results one return may hold; the upload reader has the same order of limit. */

@@ -24,6 +24,11 @@ export function describeState(state: StudyState): string {
   return words[state]
 }
 
+/** The same standing alone, as in a list: "open for returns". */
+export function stateWords(state: StudyState): string {
+  return words[state].replace(/^is (still )?/, '')
+}
+
 /** @throws {Refusal} `wrong-state` when the course of a study has no such step. */
 export function requireStep(from: StudyState, to: StudyState): void {
   if (!steps[from].includes(to)) throw new Refusal('wrong-state', `The study ${words[from]}; this step is not open from there.`)

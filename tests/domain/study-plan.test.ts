@@ -95,6 +95,24 @@ describe('a plan', () => {
     expect(Object.keys(faultsOf({ [field]: value }))).toEqual([field])
   })
 
+  it.each([
+    [
+      'measurands',
+      { name: 'Force', unit: 'N', decimals: '' },
+      'measurands.0.decimals',
+      'Give the number of decimals.',
+    ],
+    ['levels', { name: 'replicate', count: ' ' }, 'levels.0.count', 'Give how many.'],
+  ])('asks for a number of %s left empty instead of taking nought', (list, row, field, words) => {
+    expect(faultsOf({ [list]: [row] })).toEqual({ [field]: words })
+  })
+
+  it('says one thing of a field left empty', () => {
+    expect(
+      studyPlan.safeParse({ ...plain, shortName: '' }).error?.issues.map(({ message }) => message),
+    ).toEqual(['Give a short name.'])
+  })
+
   it.each(['-1', '13', '1.5', 'two'])('refuses %s decimals', (decimals) => {
     expect(faultsOf({ measurands: [{ ...plain.measurands[0], decimals }] })).toHaveProperty(
       'measurands.0.decimals',

@@ -4,7 +4,7 @@ import { Button } from '@/app/ui/primitives/button'
 import { Field } from '@/app/ui/primitives/field'
 import { Select } from '@/app/ui/primitives/select'
 import { TextInput } from '@/app/ui/primitives/text-input'
-import { describeState, studyStates } from '@/lib/domain/study-states'
+import { stateWords, studyStates } from '@/lib/domain/study-states'
 import type { StudiesWish } from '@/lib/domain/arrange-studies'
 import { paths } from '@/lib/web/paths'
 
@@ -13,19 +13,21 @@ export function StudiesFilter({ wish, shown, all }: { wish: StudiesWish; shown: 
   return (
     <Form action={paths.studies()} className="flex flex-wrap items-end gap-x-4 gap-y-3" data-screen-only>
       <div className="min-w-0 grow sm:max-w-72">
-        <Field name="q" label="Name or title" isOptional>
-          {(wiring) => <TextInput {...wiring} type="search" defaultValue={wish.text} key={wish.text} />}
+        <Field name="q" label="Name or title">
+          {({ required: _, ...wiring }) => (
+            <TextInput {...wiring} type="search" defaultValue={wish.text} key={wish.text} />
+          )}
         </Field>
       </div>
       <div className="min-w-44">
-        <Field name="state" label="State" isOptional>
-          {(wiring) => (
+        <Field name="state" label="State">
+          {({ required: _, ...wiring }) => (
             <Select
               {...wiring}
               key={wish.state}
               defaultValue={wish.state ?? ''}
               placeholder="Any"
-              options={studyStates.map((state) => ({ value: state, label: describeState(state) }))}
+              options={studyStates.map((state) => ({ value: state, label: stateWords(state) }))}
             />
           )}
         </Field>

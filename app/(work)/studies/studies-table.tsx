@@ -8,7 +8,7 @@ import { Time } from '@/app/ui/primitives/time'
 import type { Tone } from '@/app/ui/primitives/tone'
 import type { StudiesWish, StudySort } from '@/lib/domain/arrange-studies'
 import { showDistance, showTime } from '@/lib/domain/show-time'
-import { describeState, type StudyState } from '@/lib/domain/study-states'
+import { stateWords, type StudyState } from '@/lib/domain/study-states'
 import type { StudyListEntry } from '@/lib/use-cases/studies/list-studies'
 import { paths } from '@/lib/web/paths'
 
@@ -54,7 +54,7 @@ function columns(wish: StudiesWish, now: Date): Column<StudyListEntry>[] {
       key: 'state',
       header: 'State',
       sort: sortBy('state', wish),
-      cell: ({ study }) => <Status tone={tones[study.state]}>{describeState(study.state)}</Status>,
+      cell: ({ study }) => <Status tone={tones[study.state]}>{stateWords(study.state)}</Status>,
     },
     {
       key: 'deadline',

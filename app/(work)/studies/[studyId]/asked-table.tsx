@@ -1,11 +1,12 @@
 import { DataTable } from '@/app/ui/primitives/data-table'
+import { counted } from '@/lib/domain/count-typed-places'
 import type { StudyView } from '@/lib/use-cases/studies/read-study'
 
 /** What each measurand asks of a laboratory. */
 export function AskedTable({ layout }: Pick<StudyView, 'layout'>) {
   const { measurands, materials, levels } = layout
   const perMaterial = levels.reduce((product, { count }) => product * count, 1)
-  const within = levels.map(({ name, count }) => `${count} × ${name}`).join(', each with ')
+  const within = levels.map(({ name, count }) => counted(count, name)).join(', each with ')
   return (
     <DataTable
       caption="Measurands"

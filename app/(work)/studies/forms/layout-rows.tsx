@@ -1,5 +1,6 @@
 'use client'
 
+import type { ReactNode } from 'react'
 import { Field } from '@/app/ui/primitives/field'
 import { Select } from '@/app/ui/primitives/select'
 import { TextInput } from '@/app/ui/primitives/text-input'
@@ -9,9 +10,9 @@ import { RowFields } from './row-fields'
 
 /** What is measured, on what, and how often: the three lists that make up what a laboratory is asked. */
 export function LayoutRows({ answer, begun }: { answer: FormAnswer; begun: BegunPlan }) {
-  const cell = (prefix: string, key: string, label: string, begunText = '') => ({
+  const cell = (prefix: string, key: string, label: { word: string; of: string }, begunText = '') => ({
     name: `${prefix}.${key}`,
-    label,
+    label: <RowLabel {...label} />,
     error: answer.errorOf(`${prefix}.${key}`),
     defaultValue: begunText,
   })
@@ -28,13 +29,17 @@ export function LayoutRows({ answer, begun }: { answer: FormAnswer; begun: Begun
         begun={begun.measurands}
         most={10}
         spare={1}
-        row={(prefix, row) => (
+        row={(prefix, row, of) => (
           <div className="grid gap-3 sm:grid-cols-[minmax(0,2fr)_minmax(0,1fr)_6rem_8.5rem]">
-            <TextCell {...cell(prefix, 'name', 'Name', row.name)} />
-            <TextCell {...cell(prefix, 'unit', 'Unit', row.unit)} />
-            <TextCell {...cell(prefix, 'decimals', 'Decimals', row.decimals)} isFigure inputMode="numeric" />
-            <Field name={`${prefix}.hasTrueZero`} label="True zero" isOptional>
-              {(wiring) => (
+            <TextCell {...cell(prefix, 'name', { word: 'Name', of }, row.name)} />
+            <TextCell {...cell(prefix, 'unit', { word: 'Unit', of }, row.unit)} />
+            <TextCell
+              {...cell(prefix, 'decimals', { word: 'Decimals', of }, row.decimals)}
+              isFigure
+              inputMode="numeric"
+            />
+            <Field name={`${prefix}.hasTrueZero`} label={<RowLabel word="True zero" of={of} />}>
+              {({ required: _, ...wiring }) => (
                 <Select
                   {...wiring}
                   defaultValue={row.hasTrueZero ?? 'true'}
@@ -57,10 +62,13 @@ export function LayoutRows({ answer, begun }: { answer: FormAnswer; begun: Begun
         typedKeys={['name', 'description']}
         begun={begun.materials}
         most={50}
-        row={(prefix, row) => (
+        row={(prefix, row, of) => (
           <div className="grid gap-3 sm:grid-cols-[minmax(0,1fr)_minmax(0,2fr)]">
-            <TextCell {...cell(prefix, 'name', 'Name', row.name)} />
-            <TextCell {...cell(prefix, 'description', 'Description', row.description)} isOptional />
+            <TextCell {...cell(prefix, 'name', { word: 'Name', of }, row.name)} />
+            <TextCell
+              {...cell(prefix, 'description', { word: 'Description', of }, row.description)}
+              isOptional
+            />
           </div>
         )}
       />
@@ -74,10 +82,14 @@ export function LayoutRows({ answer, begun }: { answer: FormAnswer; begun: Begun
         begun={begun.levels}
         most={4}
         spare={1}
-        row={(prefix, row) => (
+        row={(prefix, row, of) => (
           <div className="grid gap-3 sm:grid-cols-[minmax(0,2fr)_8rem]">
-            <TextCell {...cell(prefix, 'name', 'Name', row.name)} />
-            <TextCell {...cell(prefix, 'count', 'How many', row.count)} isFigure inputMode="numeric" />
+            <TextCell {...cell(prefix, 'name', { word: 'Name', of }, row.name)} />
+            <TextCell
+              {...cell(prefix, 'count', { word: 'How many', of }, row.count)}
+              isFigure
+              inputMode="numeric"
+            />
           </div>
         )}
       />
@@ -87,7 +99,7 @@ export function LayoutRows({ answer, begun }: { answer: FormAnswer; begun: Begun
 
 interface TextCellProps {
   name: string
-  label: string
+  label: ReactNode
   error: string | undefined
   defaultValue: string
   isOptional?: boolean
@@ -101,5 +113,15 @@ function TextCell({ name, label, error, isOptional, isFigure, ...input }: TextCe
       {/* A spare row may stay empty, so no single box of it is required. */}
       {({ required: _, ...wiring }) => <TextInput {...wiring} isFigure={isFigure} {...input} />}
     </Field>
+  )
+}
+
+/** The eye sees the row; whoever hears the label is told it. */
+function RowLabel({ word, of }: { word: string; of: string }) {
+  return (
+    <>
+      {word}
+      <span className="sr-only"> of {of}</span>
+    </>
   )
 }

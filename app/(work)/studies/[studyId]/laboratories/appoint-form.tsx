@@ -9,49 +9,43 @@ import { FormField } from '../../forms/form-field'
 
 export function AppointForm({ studyId }: { studyId: string }) {
   return (
-    <details className="border bg-sheet" data-screen-only>
-      <summary className="flex min-h-11 items-center px-4 font-semibold text-verdigris">
-        Appoint a member
-      </summary>
-      <div className="border-t p-4">
-        <ActionForm
-          scope="appoint"
-          action={appointAction}
-          hidden={{ studyId }}
-          submit="Appoint"
-          pendingLabel="Appointing…"
-        >
-          {(answer) => (
-            <div className="grid gap-4 sm:grid-cols-3">
-              <FormField answer={answer} name="name" label="Name">
-                {(wiring) => (
-                  <TextInput {...wiring} autoComplete="off" defaultValue={answer.valueOf('name')} />
-                )}
-              </FormField>
-              <FormField answer={answer} name="address" label="Mail address">
-                {(wiring) => (
-                  <TextInput
-                    {...wiring}
-                    type="email"
-                    autoComplete="off"
-                    defaultValue={answer.valueOf('address')}
-                  />
-                )}
-              </FormField>
-              <FormField answer={answer} name="role" label="Role">
-                {(wiring) => (
-                  <Select
-                    {...wiring}
-                    placeholder="Choose"
-                    defaultValue={answer.valueOf('role')}
-                    options={committeeRoles}
-                  />
-                )}
-              </FormField>
-            </div>
-          )}
-        </ActionForm>
-      </div>
-    </details>
+    <div className="border bg-sheet p-4" data-screen-only>
+      <h3 className="mb-3 font-semibold">Appoint a member</h3>
+      <ActionForm
+        scope="appoint"
+        action={appointAction}
+        hidden={{ studyId }}
+        submit="Appoint"
+        pendingLabel="Appointing…"
+      >
+        {(answer) => (
+          <div className="grid gap-4 sm:grid-cols-3">
+            <FormField answer={answer} name="name" label="Name">
+              {(wiring) => <TextInput {...wiring} autoComplete="off" defaultValue={answer.valueOf('name')} />}
+            </FormField>
+            <FormField answer={answer} name="address" label="Mail address">
+              {(wiring) => (
+                <TextInput
+                  {...wiring}
+                  type="email"
+                  autoComplete="off"
+                  defaultValue={answer.valueOf('address')}
+                />
+              )}
+            </FormField>
+            <FormField answer={answer} name="role" label="Role">
+              {(wiring) => (
+                <Select
+                  {...wiring}
+                  placeholder="Choose"
+                  defaultValue={answer.valueOf('role')}
+                  options={committeeRoles}
+                />
+              )}
+            </FormField>
+          </div>
+        )}
+      </ActionForm>
+    </div>
   )
 }

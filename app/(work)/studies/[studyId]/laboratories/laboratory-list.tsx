@@ -114,7 +114,11 @@ function Answer({
 }) {
   if (answer === 'accepted') return <Status tone="done">accepted</Status>
   if (answer === 'declined') return <Status tone="info">declined</Status>
-  return <Status tone="quiet">{state === 'draft' ? 'not asked yet' : 'no answer yet'}</Status>
+  return (
+    <Status tone="quiet">
+      <span className="whitespace-nowrap">{state === 'draft' ? 'not asked yet' : 'no answer yet'}</span>
+    </Status>
+  )
 }
 
 /** The mail that carried the latest link, and what the server of the address said of it. */

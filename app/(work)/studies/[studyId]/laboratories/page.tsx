@@ -26,7 +26,7 @@ export default async function LaboratoriesPage({ params, searchParams }: Laborat
   const { studyId } = await params
   const { correct, done } = await searchParams
   const { actor, context, view } = await loadStudy(studyId)
-  const [{ study, invitations }, { members }] = await Promise.all([
+  const [{ study, now, invitations }, { members }] = await Promise.all([
     readLaboratories(context, { studyId }),
     readCommittee(context, { studyId }),
   ])
@@ -79,7 +79,7 @@ export default async function LaboratoriesPage({ params, searchParams }: Laborat
           zones={zones}
         />
       </Section>
-      {study.state === 'draft' && <SendInvitations study={study} count={invitations.length} />}
+      {study.state === 'draft' && <SendInvitations study={study} now={now} count={invitations.length} />}
       {mayInvite && <InviteSection study={study} zones={zones} />}
       <CommitteeSection study={study} members={members} />
     </StudyFrame>

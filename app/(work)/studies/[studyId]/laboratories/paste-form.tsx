@@ -10,21 +10,17 @@ import { FormField } from '../../forms/form-field'
 /** Many laboratories at once: pasted, shown as they were read, and only then put on the list. */
 export function PasteForm({ studyId, isOpen }: { studyId: string; isOpen: boolean }) {
   return (
-    <details className="border bg-sheet" data-screen-only>
-      <summary className="flex min-h-11 items-center px-4 font-semibold text-verdigris">
-        Paste a whole list instead
-      </summary>
-      <div className="border-t p-4">
-        <ActionForm
-          action={inviteLinesAction}
-          hidden={{ studyId }}
-          submit="Read the lines"
-          pendingLabel="Reading…"
-        >
-          {(answer) => <Lines answer={answer} isOpen={isOpen} />}
-        </ActionForm>
-      </div>
-    </details>
+    <div className="border bg-sheet p-4" data-screen-only>
+      <h3 className="mb-3 font-semibold">Or paste a whole list</h3>
+      <ActionForm
+        action={inviteLinesAction}
+        hidden={{ studyId }}
+        submit="Read the lines"
+        pendingLabel="Reading…"
+      >
+        {(answer) => <Lines answer={answer} isOpen={isOpen} />}
+      </ActionForm>
+    </div>
   )
 }
 
@@ -42,7 +38,7 @@ function Lines({ answer, isOpen }: { answer: FormAnswer; isOpen: boolean }) {
         {(wiring) => (
           <TextArea
             {...wiring}
-            rows={6}
+            rows={4}
             defaultValue={lines}
             className="font-mono text-small"
             spellCheck={false}

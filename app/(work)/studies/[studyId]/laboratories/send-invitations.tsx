@@ -1,12 +1,18 @@
+import Link from 'next/link'
 import { Section } from '@/app/ui/layout/section'
 import { Confirm } from '@/app/ui/primitives/confirm'
 import { showTime } from '@/lib/domain/show-time'
 import type { LaboratoriesView } from '@/lib/use-cases/laboratories/read-laboratories'
+import { paths } from '@/lib/web/paths'
 import { PressForm } from '../../forms/press-form'
 import { openStudyAction } from './actions'
 
 /** The step that cannot be taken back: it says what will happen, and to whom, before it does. */
-export function SendInvitations({ study, count }: { study: LaboratoriesView['study']; count: number }) {
+export function SendInvitations({
+  study,
+  now,
+  count,
+}: Pick<LaboratoriesView, 'study' | 'now'> & { count: number }) {
   const due = showTime(study.deadline.dueAt, study.deadline.zone)
   if (count < 2)
     return (
@@ -14,6 +20,18 @@ export function SendInvitations({ study, count }: { study: LaboratoriesView['stu
         <p className="max-w-text">
           Name at least two laboratories first: with one there is nothing to compare. Sending then invites all
           of them at once.
+        </p>
+      </Section>
+    )
+  if (study.deadline.dueAt <= now)
+    return (
+      <Section title="Send the invitations" id="send">
+        <p className="max-w-text">
+          The deadline, {due.text} in {due.zoneText}, has passed.{' '}
+          <Link href={`${paths.station(study.studyId, 'plan')}#field-deadline`} className="prose-link">
+            Choose a later one
+          </Link>{' '}
+          before anyone is asked.
         </p>
       </Section>
     )

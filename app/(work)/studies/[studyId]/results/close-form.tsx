@@ -11,7 +11,7 @@ export function CloseForm({ studyId, isEarly }: { studyId: string; isEarly: bool
       scope="close"
       action={closeStudyAction}
       hidden={{ studyId }}
-      submit="Close it now"
+      submit="Close for returns"
       pendingLabel="Closing…"
       variant="destructive"
     >

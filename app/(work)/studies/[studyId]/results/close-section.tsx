@@ -1,5 +1,4 @@
 import { Section } from '@/app/ui/layout/section'
-import { Confirm } from '@/app/ui/primitives/confirm'
 import type { ReturnsView } from '@/lib/use-cases/returns/watch-returns'
 import { CloseForm } from './close-form'
 
@@ -17,20 +16,16 @@ export function CloseSection({ returns: { study, lanes, returned, now } }: { ret
     )
   return (
     <Section title="Close for returns" id="close">
-      <Confirm
-        label="Close for returns"
-        consequence={
-          <p>
-            {returned} of {lanes.length} laboratories have returned.{' '}
-            {waiting > 0 &&
-              `${waiting === 1 ? 'The one that has' : `The ${waiting} that have`} not can no longer do so. `}
-            {isEarly && 'The deadline has not passed, so this needs a reason. '}
-            The study can be reopened until it goes to its committee.
-          </p>
-        }
-      >
+      <div className="flex max-w-text flex-col gap-4 border bg-sheet p-4" data-screen-only>
+        <p>
+          {returned} of {lanes.length} laboratories have returned.{' '}
+          {waiting > 0 &&
+            `${waiting === 1 ? 'The one that has' : `The ${waiting} that have`} not can no longer do so. `}
+          {isEarly && 'The deadline has not passed, so this needs a reason. '}
+          The study can be reopened until it goes to its committee.
+        </p>
         <CloseForm studyId={study.studyId} isEarly={isEarly} />
-      </Confirm>
+      </div>
     </Section>
   )
 }

@@ -1,5 +1,4 @@
 import { Section } from '@/app/ui/layout/section'
-import { Confirm } from '@/app/ui/primitives/confirm'
 import type { ZoneGroup } from '@/lib/domain/list-zones'
 import type { ReturnsView } from '@/lib/use-cases/returns/watch-returns'
 import { DeadlineForm } from '../../forms/deadline-form'
@@ -12,16 +11,11 @@ export function ReopenSection({
 }: Pick<ReturnsView, 'study'> & { zones: readonly ZoneGroup[] }) {
   return (
     <Section title="Reopen for returns" id="reopen" note="As long as the study is not before its committee.">
-      <Confirm
-        label="Reopen for returns"
-        variant="plain"
-        consequence={
-          <p>
-            Every laboratory that accepted can return again until the new deadline. An analysis made so far
-            will be out of date once one does.
-          </p>
-        }
-      >
+      <div className="flex max-w-text flex-col gap-4 border bg-sheet p-4" data-screen-only>
+        <p>
+          Every laboratory that accepted can return again until the new deadline. An analysis made so far will
+          be out of date once one does.
+        </p>
         <DeadlineForm
           scope="reopen"
           action={reopenStudyAction}
@@ -32,7 +26,7 @@ export function ReopenSection({
           submit="Reopen it"
           pendingLabel="Reopening…"
         />
-      </Confirm>
+      </div>
     </Section>
   )
 }

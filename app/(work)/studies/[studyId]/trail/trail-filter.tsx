@@ -19,8 +19,8 @@ export function TrailFilter({ studyId, chosen, actions }: TrailFilterProps) {
       className="flex flex-wrap items-end gap-3"
       data-screen-only
     >
-      <Field name="action" label="Action" isOptional>
-        {(wiring) => (
+      <Field name="action" label="Action">
+        {({ required: _, ...wiring }) => (
           <Select
             {...wiring}
             key={chosen}
