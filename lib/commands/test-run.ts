@@ -10,6 +10,7 @@ export class TestRun {
   readonly folder: string
   private cluster: Promise<PrivateCluster> | undefined
   private current: ChildProcess | undefined
+  private closing: Promise<void> | undefined
   private readonly closers: (() => Promise<void>)[] = []
 
   constructor(
@@ -52,7 +53,17 @@ export class TestRun {
     this.closers.push(close)
   }
 
-  async close(): Promise<void> {
+  /** Once asked to close, no further stage begins. */
+  get isClosing(): boolean {
+    return this.closing !== undefined
+  }
+
+  close(): Promise<void> {
+    this.closing ??= this.closeAll()
+    return this.closing
+  }
+
+  private async closeAll(): Promise<void> {
     if (this.current) endGroup(this.current)
     for (const close of this.closers.splice(0).reverse()) await close()
     const cluster = await this.cluster?.catch(() => undefined)

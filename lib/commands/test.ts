@@ -12,7 +12,7 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) {
 
 const outcomes: { name: string; seconds: number; count: Count }[] = []
 try {
-  for (const stage of chosen) outcomes.push(await runStage(stage))
+  for (const stage of chosen) if (!run.isClosing) outcomes.push(await runStage(stage))
 } finally {
   await run.close()
 }
