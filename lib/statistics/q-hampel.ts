@@ -26,19 +26,13 @@ export type DecimalStep = number
  * @throws {NotComputable} `too-few-laboratories` below 3; `all-equal`.
  */
 export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
-  if (cells.length < 3)
-    throw new NotComputable('too-few-laboratories', 'The Q method needs three laboratories.')
+  const count = cells.length
+  if (count < 3) throw new NotComputable('too-few-laboratories', 'The Q method needs three laboratories.')
   const multiple = cells.reduce((common, cell) => leastCommonMultiple(common, BigInt(cell.length)), 1n)
-  const means = cells.map(
-    (cell) => cell.reduce((sum, one) => sum + one, 0n) * (multiple / BigInt(cell.length)),
-  )
-  const differences: WeightedDifference[] = []
-  const weight = 2 / (cells.length * (cells.length - 1))
-  means.forEach((one, index) => {
-    for (let other = index + 1; other < means.length; other += 1) {
-      differences.push({ size: distance(one, means[other]!), weight })
-    }
-  })
+  const means = cells.map((cell) => [
+    cell.reduce((sum, one) => sum + one, 0n) * (multiple / BigInt(cell.length)),
+  ])
+  const differences = differencesBetween(means, 2 / (count * (count - 1)))
   return (spreadFrom(differences, BETWEEN) / Number(multiple)) * step
 }
 
@@ -51,14 +45,7 @@ export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
 export function qReproducibility(cells: IntegerCells, step: DecimalStep): number {
   const count = cells.length
   if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
-  const differences: WeightedDifference[] = []
-  cells.forEach((cell, index) => {
-    for (const other of cells.slice(index + 1)) {
-      const weight = 2 / (count * (count - 1) * cell.length * other.length)
-      for (const one of cell) for (const two of other) differences.push({ size: distance(one, two), weight })
-    }
-  })
-  return spreadFrom(differences, BETWEEN) * step
+  return spreadFrom(differencesBetween(cells, 2 / (count * (count - 1))), BETWEEN) * step
 }
 
 /**
@@ -70,14 +57,7 @@ export function qReproducibility(cells: IntegerCells, step: DecimalStep): number
 export function qRepeatability(cells: IntegerCells, step: DecimalStep): number {
   const replicated = cells.filter((cell) => cell.length >= 2)
   if (replicated.length === 0) throw new NotComputable('no-replication', 'No cell holds two results.')
-  const differences: WeightedDifference[] = []
-  for (const cell of replicated) {
-    const weight = 2 / (replicated.length * cell.length * (cell.length - 1))
-    cell.forEach((one, index) => {
-      for (const other of cell.slice(index + 1)) differences.push({ size: distance(one, other), weight })
-    })
-  }
-  return spreadFrom(differences, WITHIN) * step
+  return spreadFrom(differencesWithin(replicated), WITHIN) * step
 }
 
 /**
@@ -117,7 +97,8 @@ function influence(distanceInSpreads: number): number {
   return distanceInSpreads < 0 ? -pull : pull
 }
 
-type WeightedDifference = { size: bigint; weight: number }
+/** Differences that count alike. */
+type DifferenceClass = { weight: number; sizes: Float64Array }
 
 /** Which quantile of the differences is read, and what it is in a normal distribution. */
 type Reading = { share: number; probability: number; probabilityOfTies: number }
@@ -125,49 +106,118 @@ type Reading = { share: number; probability: number; probabilityOfTies: number }
 const BETWEEN: Reading = { share: 0.25, probability: 0.625, probabilityOfTies: 0.375 }
 const WITHIN: Reading = { share: 0.5, probability: 0.75, probabilityOfTies: 0.25 }
 
-function spreadFrom(differences: readonly WeightedDifference[], reading: Reading): number {
-  const steps = cumulate(differences)
-  if (steps.at(-1)!.size === 0n) throw new NotComputable('all-equal', 'All the values are equal.')
-  const ties = steps[0]!.size === 0n ? steps[0]!.cumulated : 0
+/** All pairs of results of different cells; a pair of cells weighs `ofCells` in all. */
+function differencesBetween(cells: IntegerCells, ofCells: number): DifferenceClass[] {
+  const distance = exactDistance(cells.flat())
+  const starts = startsOf(cells)
+  return byWeight((add) => {
+    cells.forEach((cell, index) => {
+      for (let other = index + 1; other < cells.length; other += 1) {
+        const size = cells[other]!.length
+        const weight = ofCells / (cell.length * size)
+        for (let one = 0; one < cell.length; one += 1) {
+          for (let two = 0; two < size; two += 1)
+            add(weight, distance(starts[index]! + one, starts[other]! + two))
+        }
+      }
+    })
+  })
+}
+
+/** All pairs of results inside a cell; every cell weighs alike. */
+function differencesWithin(cells: IntegerCells): DifferenceClass[] {
+  const distance = exactDistance(cells.flat())
+  const starts = startsOf(cells)
+  return byWeight((add) => {
+    cells.forEach((cell, index) => {
+      const weight = 2 / (cells.length * cell.length * (cell.length - 1))
+      for (let one = 0; one < cell.length; one += 1) {
+        for (let two = one + 1; two < cell.length; two += 1) {
+          add(weight, distance(starts[index]! + one, starts[index]! + two))
+        }
+      }
+    })
+  })
+}
+
+/**
+ * Distance of two of the numbers by their places. Within 2^53 of each other they
+ * are compared as doubles, which is exact; further apart each difference is
+ * rounded after it was taken, so that equal ones still come out equal.
+ */
+function exactDistance(numbers: readonly bigint[]): (one: number, other: number) => number {
+  const least = numbers.reduce((low, number) => (number < low ? number : low), numbers[0]!)
+  const most = numbers.reduce((high, number) => (number > high ? number : high), numbers[0]!)
+  if (most - least <= BigInt(Number.MAX_SAFE_INTEGER)) {
+    const shifted = Float64Array.from(numbers, (number) => Number(number - least))
+    return (one, other) => Math.abs(shifted[one]! - shifted[other]!)
+  }
+  return (one, other) => Math.abs(Number(numbers[one]! - numbers[other]!))
+}
+
+function startsOf(cells: IntegerCells): number[] {
+  let next = 0
+  return cells.map((cell) => {
+    next += cell.length
+    return next - cell.length
+  })
+}
+
+function byWeight(collect: (add: (weight: number, size: number) => void) => void): DifferenceClass[] {
+  const classes = new Map<number, number[]>()
+  collect((weight, size) => {
+    const known = classes.get(weight)
+    if (known === undefined) classes.set(weight, [size])
+    else known.push(size)
+  })
+  return [...classes].map(([weight, sizes]) => ({ weight, sizes: Float64Array.from(sizes).sort() }))
+}
+
+function spreadFrom(classes: readonly DifferenceClass[], reading: Reading): number {
+  if (classes.every(({ sizes }) => sizes.at(-1) === 0)) {
+    throw new NotComputable('all-equal', 'All the values are equal.')
+  }
+  const ties = classes.reduce(
+    (sum, { weight, sizes }) => sum + weight * sizes.filter((size) => size === 0).length,
+    0,
+  )
   const target = reading.share + (1 - reading.share) * ties
   const normal = Math.SQRT2 * normalQuantile(reading.probability + reading.probabilityOfTies * ties)
 
-  let beforeSize = 0
-  let beforeShare = 0
-  let beforeCumulated = 0
-  for (const { size, cumulated } of steps) {
-    const share = size === 0n ? 0 : (beforeCumulated + cumulated) / 2
+  let before = { size: 0, share: 0, cumulated: 0 }
+  for (const { size, cumulated } of inOrder(classes)) {
+    const share = size === 0 ? 0 : (before.cumulated + cumulated) / 2
     if (share >= target) {
-      const reached =
-        beforeSize + ((Number(size) - beforeSize) * (target - beforeShare)) / (share - beforeShare)
-      return reached / normal
+      return (
+        (before.size + ((size - before.size) * (target - before.share)) / (share - before.share)) / normal
+      )
     }
-    beforeSize = Number(size)
-    beforeShare = share
-    beforeCumulated = cumulated
+    before = { size, share, cumulated }
   }
   // The polygon ends half a step short of 1; with nearly all differences equal
   // to 0 the target lies above its end.
   throw new NotComputable('all-equal', 'Too many of the values are equal.')
 }
 
-function cumulate(differences: readonly WeightedDifference[]): { size: bigint; cumulated: number }[] {
-  const sorted = [...differences].sort((one, other) =>
-    one.size < other.size ? -1 : one.size > other.size ? 1 : 0,
-  )
-  const steps: { size: bigint; cumulated: number }[] = []
+/** The distinct sizes in ascending order, each with the share of differences up to it. */
+function* inOrder(classes: readonly DifferenceClass[]): Generator<{ size: number; cumulated: number }> {
+  const places = classes.map(() => 0)
   let cumulated = 0
-  for (const { size, weight } of sorted) {
-    cumulated += weight
-    const last = steps.at(-1)
-    if (last !== undefined && last.size === size) last.cumulated = cumulated
-    else steps.push({ size, cumulated })
+  for (;;) {
+    let size = Infinity
+    classes.forEach(({ sizes }, index) => {
+      const head = sizes[places[index]!]
+      if (head !== undefined && head < size) size = head
+    })
+    if (size === Infinity) return
+    classes.forEach(({ weight, sizes }, index) => {
+      while (sizes[places[index]!] === size) {
+        cumulated += weight
+        places[index]! += 1
+      }
+    })
+    yield { size, cumulated }
   }
-  return steps
-}
-
-function distance(one: bigint, other: bigint): bigint {
-  return one > other ? one - other : other - one
 }
 
 function leastCommonMultiple(one: bigint, other: bigint): bigint {

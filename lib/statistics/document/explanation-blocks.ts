@@ -21,6 +21,7 @@ export function explained(
     .flatMap(({ data }) => data.cells)
     .filter(({ results }) => results.length >= 2).length
   const cellsOf = cellsByLaboratory(materials)
+  const steps = commonSteps(materials)
   return materials.map((one) => {
     if (one.summaries.length === 0) return withoutProposals(one, 'There is no result.')
     if (one.summaries.length < 4) return withoutProposals(one, '4 laboratories are needed.')
@@ -29,15 +30,15 @@ export function explained(
     return {
       ...one.analysis,
       proposals: flagged.flatMap((laboratory) =>
-        explanationsOf(one.data.material, cellsOf.get(laboratory) ?? [], settings.units ?? []).map((found) =>
-          proposalBlock(one, laboratory, found),
+        explanationsOf(one.data.material, [...cellsOf.get(laboratory)!.values()], settings.units ?? []).map(
+          (found) => proposalBlock(one, laboratory, found),
         ),
       ),
       noticed: [
         ...[...identical].map(([laboratory, probability]) =>
           noticedBlock({ laboratory, kind: 'identical', probability }),
         ),
-        ...coarseSteps(one, materials, cellsOf, settings),
+        ...coarseSteps(one, steps, cellsOf, settings),
         ...(one === materials[0] ? trends(materials, cellsOf) : []),
       ],
     }
@@ -54,17 +55,20 @@ function withoutProposals({ analysis }: AnalysedMaterial, words: string): Materi
   }
 }
 
+/** By laboratory, then by material. */
+type CellsByLaboratory = ReadonlyMap<string, ReadonlyMap<string, LaboratoryCell>>
+
 /** All cells of each laboratory that have enough others beside them to be judged. */
-function cellsByLaboratory(materials: readonly AnalysedMaterial[]): Map<string, LaboratoryCell[]> {
-  const all = new Map<string, LaboratoryCell[]>()
+function cellsByLaboratory(materials: readonly AnalysedMaterial[]): CellsByLaboratory {
+  const all = new Map<string, Map<string, LaboratoryCell>>()
   for (const { data, summaries } of materials) {
     if (summaries.length < 4) continue
     const figures = summaries.map((summary): CellFigures => summary)
     data.cells.forEach((cell, index) => {
       const others = summariseOthers(figures.filter((_, place) => place !== index))
-      const own = all.get(cell.laboratory) ?? []
+      const own = all.get(cell.laboratory) ?? new Map<string, LaboratoryCell>()
       all.set(cell.laboratory, own)
-      own.push({
+      own.set(data.material, {
         material: data.material,
         values: [...cell.deviations],
         offset: data.restore(0),
@@ -95,7 +99,7 @@ function flaggedCells({ cells, critical, cochran, grubbs }: MaterialAnalysis): s
 /** Cells whose results agree in every digit although the others' scatter makes that unlikely. */
 function identicalCells(
   { data }: AnalysedMaterial,
-  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
+  cellsOf: CellsByLaboratory,
   counted: number,
 ): Map<string, number> {
   const found = new Map<string, number>()
@@ -122,37 +126,42 @@ function lastStep({ results }: MaterialCell): number {
 /** A laboratory needs this many results before a common step is no accident. */
 const FEWEST_FOR_STEP = 4
 
+/** The step of which all results of a laboratory, over all materials, are multiples. */
+function commonSteps(materials: readonly AnalysedMaterial[]): Map<string, number> {
+  const finest = Math.max(...materials.map(({ data }) => data.scale))
+  const numbers = new Map<string, bigint[]>()
+  for (const { data } of materials) {
+    const factor = 10n ** BigInt(finest - data.scale)
+    for (const { laboratory, integers } of data.cells) {
+      const own = numbers.get(laboratory) ?? []
+      numbers.set(laboratory, own)
+      own.push(...integers.map((integer) => integer * factor))
+    }
+  }
+  const steps = [...numbers].filter(([, own]) => own.length >= FEWEST_FOR_STEP)
+  return new Map(steps.map(([laboratory, own]) => [laboratory, Number(`${commonStep(own)}e${-finest}`)]))
+}
+
 function coarseSteps(
   { data }: AnalysedMaterial,
-  materials: readonly AnalysedMaterial[],
-  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
+  steps: ReadonlyMap<string, number>,
+  cellsOf: CellsByLaboratory,
   { decimals }: AnalysisSettings,
 ): Noticed[] {
-  const asked = decimals?.[data.material] === undefined ? data.step : Number(`1e${-decimals[data.material]!}`)
+  const asked = Number(`1e${-(decimals?.[data.material] ?? data.scale)}`)
   return data.cells.flatMap(({ laboratory }): Noticed[] => {
-    const finest = Math.min(...materials.map((one) => one.data.step))
-    const numbers = materials.flatMap((one) => {
-      const cell = one.data.cells.find((other) => other.laboratory === laboratory)
-      const scale = BigInt(Math.round(one.data.step / finest))
-      return cell?.integers.map((integer) => integer * scale) ?? []
-    })
-    if (numbers.length < FEWEST_FOR_STEP) return []
-    const step = Number(commonStep(numbers)) * finest
-    const { repeatabilityVariance } = judged(cellsOf, laboratory, data.material).others
-    const sd = Math.sqrt(repeatabilityVariance)
+    const step = steps.get(laboratory) ?? 0
+    const sd = Math.sqrt(judged(cellsOf, laboratory, data.material).others.repeatabilityVariance)
     if (!(step > asked * 1.5) || !(sd > 0) || !(step > sd / 2)) return []
     return [noticedBlock({ laboratory, kind: 'coarse', step, share: step ** 2 / (12 * sd ** 2) })]
   })
 }
 
-function trends(
-  materials: readonly AnalysedMaterial[],
-  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
-): Noticed[] {
+function trends(materials: readonly AnalysedMaterial[], cellsOf: CellsByLaboratory): Noticed[] {
   return [...cellsOf.keys()].flatMap((laboratory) => {
     const cells = materials.flatMap(({ data }) => {
       const cell = data.cells.find((one) => one.laboratory === laboratory)
-      const others = cellsOf.get(laboratory)?.find(({ material }) => material === data.material)?.others
+      const others = cellsOf.get(laboratory)?.get(data.material)?.others
       const sd = Math.sqrt(others?.repeatabilityVariance ?? 0)
       if (cell === undefined || sd === 0) return []
       return [
@@ -168,12 +177,8 @@ function trends(
   })
 }
 
-function judged(
-  cellsOf: ReadonlyMap<string, readonly LaboratoryCell[]>,
-  laboratory: string,
-  material: string,
-): LaboratoryCell {
-  return cellsOf.get(laboratory)!.find((cell) => cell.material === material)!
+function judged(cellsOf: CellsByLaboratory, laboratory: string, material: string): LaboratoryCell {
+  return cellsOf.get(laboratory)!.get(material)!
 }
 
 function noticedBlock(one: {

@@ -25,7 +25,8 @@ export type MaterialData = {
   measurand: string | null
   /** In the order in which laboratories appear in the input. */
   cells: readonly MaterialCell[]
-  /** The value of one unit of the integers. */
+  /** Decimals of the integers, whose unit is worth `step`. */
+  scale: number
   step: number
   restore: (deviation: number) => number
   /** The difference of another value of this material, an accepted reference say, from the offset. */
@@ -83,6 +84,7 @@ export function materialData(one: {
     material: one.material,
     measurand: one.measurand,
     cells,
+    scale,
     step: Number(`1e${-scale}`),
     restore: centred.restore,
     deviationOf: (text) => differenceAsNumber(parseDecimal(text), centred.offset),
