@@ -1,0 +1,132 @@
+import fc from 'fast-check'
+import { describe, expect, it } from 'vitest'
+import { normalQuantile } from '@/lib/statistics/distributions/normal'
+import { NotComputable } from '@/lib/statistics/not-computable'
+import { hampelLocation, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+
+const seed = 20261203
+
+type Pair = { size: number; weight: number }
+
+/** The definition of ISO 13528, C.5, read off word for word: H, G and the straight lines between. */
+function naiveSpread(
+  pairs: readonly Pair[],
+  share: number,
+  probability: number,
+  ofTies: number,
+): number | null {
+  const h = (x: number): number => pairs.reduce((sum, { size, weight }) => sum + (size <= x ? weight : 0), 0)
+  const sizes = [...new Set(pairs.map(({ size }) => size))].sort((one, other) => one - other)
+  const ties = h(0)
+  const points = sizes.map((size, index) => ({
+    x: size,
+    g: size === 0 ? 0 : ((index === 0 ? 0 : h(sizes[index - 1]!)) + h(size)) / 2,
+  }))
+  if (points[0]!.x > 0) points.unshift({ x: 0, g: 0 })
+  const target = share + (1 - share) * ties
+  const upper = points.findIndex(({ g }) => g >= target)
+  if (upper < 1) return null
+  const [a, b] = [points[upper - 1]!, points[upper]!]
+  const x = a.x + ((b.x - a.x) * (target - a.g)) / (b.g - a.g)
+  return x / (Math.SQRT2 * normalQuantile(probability + ofTies * ties))
+}
+
+function betweenPairs(cells: readonly (readonly number[])[]): Pair[] {
+  return cells.flatMap((cell, index) =>
+    cells.slice(index + 1).flatMap((other) =>
+      cell.flatMap((one) =>
+        other.map((two) => ({
+          size: Math.abs(one - two),
+          weight: 2 / (cells.length * (cells.length - 1) * cell.length * other.length),
+        })),
+      ),
+    ),
+  )
+}
+
+function withinPairs(cells: readonly (readonly number[])[]): Pair[] {
+  const replicated = cells.filter(({ length }) => length >= 2)
+  return replicated.flatMap((cell) =>
+    cell.flatMap((one, index) =>
+      cell.slice(index + 1).map((two) => ({
+        size: Math.abs(one - two),
+        weight: 2 / (replicated.length * cell.length * (cell.length - 1)),
+      })),
+    ),
+  )
+}
+
+function orNull(compute: () => number): number | null {
+  try {
+    return compute()
+  } catch (error) {
+    if (error instanceof NotComputable) return null
+    throw error
+  }
+}
+
+function expectSame(got: number | null, wanted: number | null): void {
+  if (wanted === null) expect(got).toBeNull()
+  else expect(Math.abs(got! - wanted)).toBeLessThanOrEqual(1e-12 * wanted)
+}
+
+const cellsOf = fc.array(fc.array(fc.integer({ min: 0, max: 400 }), { minLength: 1, maxLength: 4 }), {
+  minLength: 3,
+  maxLength: 8,
+})
+
+describe('the Q method', () => {
+  it('equals its definition, cells of any size', () => {
+    fc.assert(
+      fc.property(cellsOf, (cells) => {
+        const integers = cells.map((cell) => cell.map(BigInt))
+        const between = naiveSpread(betweenPairs(cells), 0.25, 0.625, 0.375)
+        expectSame(
+          orNull(() => qReproducibility(integers, 1)),
+          between,
+        )
+        if (!cells.some(({ length }) => length >= 2)) return
+        const within = naiveSpread(withinPairs(cells), 0.5, 0.75, 0.25)
+        expectSame(
+          orNull(() => qRepeatability(integers, 1)),
+          within,
+        )
+      }),
+      { seed, numRuns: 300 },
+    )
+  })
+
+  it('takes means of unequal cells at a common multiple, so that equal differences stay equal', () => {
+    // Means 1/3, 2/3, 1, 4/3 in units: the differences of neighbours are equal, which thirds as doubles are not.
+    const cells = [[0n, 0n, 1n], [1n, 0n, 1n], [1n], [1n, 1n, 2n]]
+    const thirds = [1, 2, 3, 4].map((value) => [value])
+    expectSame(qOfCellMeans(cells, 1), naiveSpread(betweenPairs(thirds), 0.25, 0.625, 0.375)! / 3)
+  })
+
+  it('keeps its figure when the results lie further apart than doubles count', () => {
+    const near = [[1n], [2n], [4n], [8n], [15n]]
+    const far = near.map((cell) => cell.map((one) => one * 10n ** 20n))
+    expectSame(qReproducibility(far, 1e-20), qReproducibility(near, 1))
+  })
+
+  it('does not exist where results do not differ or laboratories are too few', () => {
+    expect(() => qOfCellMeans([[1n], [1n], [1n]], 1)).toThrow('All the values are equal.')
+    expect(() => qOfCellMeans([[1n], [2n]], 1)).toThrow(NotComputable)
+    expect(() => qRepeatability([[1n], [2n], [3n]], 1)).toThrow('No cell holds two results.')
+  })
+})
+
+describe("Hampel's location", () => {
+  it('is the mean where nothing lies far out', () => {
+    expect(hampelLocation([1, 2, 3, 4, 6], 10)).toBeCloseTo(3.2, 12)
+  })
+
+  it('leaves a value beyond four and a half spreads out altogether', () => {
+    expect(hampelLocation([1, 2, 3, 1000], 2)).toBeCloseTo(2, 12)
+  })
+
+  it('takes the median where two solutions lie equally near', () => {
+    // Two clusters ten spreads apart: each is a solution, and neither is the nearer.
+    expect(hampelLocation([0, 0, 10, 10], 1)).toBe(5)
+  })
+})
