@@ -16,13 +16,17 @@ import type { InvitationState } from './invitation-state'
 
 const input = z.object({
   /** The link as mailed, or only what follows its #. */
-  link: z.string().max(1000).transform((link) => link.trim().split('#').at(-1) ?? ''),
+  link: z
+    .string()
+    .max(1000)
+    .transform((link) => link.trim().split('#').at(-1) ?? ''),
   step: z.enum(['read', 'accepted', 'declined', 'renew']),
 })
 
 /** Everything the page of an invitation can be asked. Only a POST changes anything: a mail scanner opens, it does not press. */
 export async function invitationAction(_previous: InvitationState, form: FormData): Promise<InvitationState> {
-  if (isForeignRequest({ method: 'POST', headers: await headers() }, parts().config.baseUrl)) throw new ForeignRequest()
+  if (isForeignRequest({ method: 'POST', headers: await headers() }, parts().config.baseUrl))
+    throw new ForeignRequest()
   const parsed = input.safeParse({ link: form.get('link'), step: form.get('step') })
   if (!parsed.success) return { step: 'asking', error: 'Paste the link from the mail.' }
   const { link: token, step } = parsed.data
@@ -34,7 +38,12 @@ export async function invitationAction(_previous: InvitationState, form: FormDat
   } catch (error) {
     if (error instanceof NotFound) return { step: 'read', token, view: { state: 'unknown' } }
     if (!(error instanceof Refusal)) throw error
-    return { step: 'read', token, view: await readInvitation(anonymousContext(), { token }), error: error.publicMessage }
+    return {
+      step: 'read',
+      token,
+      view: await readInvitation(anonymousContext(), { token }),
+      error: error.publicMessage,
+    }
   }
 }
 
@@ -46,12 +55,18 @@ async function accept(token: string): Promise<InvitationState> {
   } catch (error) {
     // The answer stands whatever becomes of the mail; a link can be asked for on the sign-in page.
     if (!(error instanceof Refusal)) throw error
-    return { step: 'done', title: 'Accepted', words: 'Sign in with the address the invitation was mailed to.', leadsToSignIn: true }
+    return {
+      step: 'done',
+      title: 'Accepted',
+      words: 'Sign in with the address the invitation was mailed to.',
+      leadsToSignIn: true,
+    }
   }
   return {
     step: 'done',
     title: 'Accepted. A sign-in link is on its way to the invited address',
-    words: 'Only that address can sign in and return results. The link in the mail works once; you can always ask for another.',
+    words:
+      'Only that address can sign in and return results. The link in the mail works once; you can always ask for another.',
     leadsToSignIn: true,
   }
 }

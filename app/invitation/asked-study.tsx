@@ -16,7 +16,8 @@ export function AskedStudy({ view: { study, asked, deadline } }: { view: KnownIn
         <Item name="Test method">{study.method}</Item>
         {study.purpose && <Item name="Purpose">{study.purpose}</Item>}
         <Item name="To measure">
-          {asked.measurands.join(', ')} of {asked.materials === 1 ? 'one material' : `${asked.materials} materials`}:{' '}
+          {asked.measurands.join(', ')} of{' '}
+          {asked.materials === 1 ? 'one material' : `${asked.materials} materials`}:{' '}
           {asked.results === 1 ? 'one result' : `${asked.results} results`} in all
         </Item>
         <Item name="Until">

@@ -17,18 +17,25 @@ export function InvitationFound({ state: { token, view, error }, action }: Invit
   if (view.state === 'unknown')
     return (
       <Notice tone="danger" title="This link is not known" isLive>
-        <p>A mail program may have cut it at the end of a line. Open it from the mail again, or ask whoever invited you to send a new one.</p>
+        <p>
+          A mail program may have cut it at the end of a line. Open it from the mail again, or ask whoever
+          invited you to send a new one.
+        </p>
       </Notice>
     )
   return (
     <>
       {error && <Notice tone="warn" title={error} isLive />}
-      {view.state !== 'open' && <Notice tone={view.state === 'accepted' ? 'done' : 'info'} title={titles[view.state]}>{advice[view.state]}</Notice>}
+      {view.state !== 'open' && (
+        <Notice tone={view.state === 'accepted' ? 'done' : 'info'} title={titles[view.state]}>
+          {advice[view.state]}
+        </Notice>
+      )}
       <AskedStudy view={view} />
       {view.state === 'open' && (
         <div className="flex flex-wrap items-start gap-3">
           <StepForm token={token} step="accepted" action={action}>
-            <SubmitButton pendingLabel="Accepting…" className="min-h-11 px-6">
+            <SubmitButton pendingLabel="Accepting…" className="px-6">
               Accept
             </SubmitButton>
           </StepForm>

@@ -34,7 +34,11 @@ export function InvitationPanel({ action }: InvitationPanelProps) {
     <div className="flex max-w-text flex-col gap-6" aria-busy={isReading || undefined}>
       {state.step === 'asking' && (
         <>
-          {isReading ? <p role="status">Reading the invitation…</p> : <LinkForm action={formAction} error={state.error} />}
+          {isReading ? (
+            <p role="status">Reading the invitation…</p>
+          ) : (
+            <LinkForm action={formAction} error={state.error} />
+          )}
         </>
       )}
       {state.step === 'read' && <InvitationFound state={state} action={formAction} />}

@@ -17,7 +17,9 @@ export function LinkForm({ action, error }: { action: (form: FormData) => void; 
           hint="Paste the whole link here. Only so does it reach us where scripts are switched off."
           error={error}
         >
-          {(wiring) => <TextInput {...wiring} isFigure autoComplete="off" spellCheck={false} maxLength={1000} />}
+          {(wiring) => (
+            <TextInput {...wiring} isFigure autoComplete="off" spellCheck={false} maxLength={1000} />
+          )}
         </Field>
       </div>
       <input type="hidden" name="step" value="read" />

@@ -14,5 +14,8 @@ export async function readLink(token: string): Promise<InvitationState> {
   } catch {
     // Said below, with every other way of not getting an answer.
   }
-  return { step: 'asking', error: 'The invitation could not be read just now. Load the page again, or paste the link here.' }
+  return {
+    step: 'asking',
+    error: 'The invitation could not be read just now. Load the page again, or paste the link here.',
+  }
 }

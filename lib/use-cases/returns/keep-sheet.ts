@@ -20,11 +20,17 @@ export interface TypedSheet {
  * Keeps a sheet sent as a whole, as its draft, and says whether it could be returned as it stands.
  * @throws {Refusal} `stale-draft` when another page wrote since: nothing is overwritten unseen
  */
-export async function keepSheet(context: Context, typed: TypedSheet): Promise<{ studyId: string; problems: number }> {
+export async function keepSheet(
+  context: Context,
+  typed: TypedSheet,
+): Promise<{ studyId: string; problems: number }> {
   const { studyId, cells, remark, seenVersion } = typed
   const { layout } = await readParticipation(context, { studyId })
   const entries = Object.fromEntries(
-    listPlaces(layout).map((place, position) => [placeKey(place), settleComma(cells.get(position) ?? '', typed.commaIs)]),
+    listPlaces(layout).map((place, position) => [
+      placeKey(place),
+      settleComma(cells.get(position) ?? '', typed.commaIs),
+    ]),
   )
   const kept = await saveDraft(context, { studyId, entries, remark, seenVersion })
   if (kept.outcome === 'changed-elsewhere' && !isSame(entries, kept.entries))

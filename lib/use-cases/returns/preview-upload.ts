@@ -27,8 +27,14 @@ export interface UploadPreview {
 }
 
 /** An uploaded file beside what is asked and what was returned before; nothing of it counts until it is confirmed. */
-export async function previewUpload(context: Context, { studyId, uploadId }: { studyId: string; uploadId: string }): Promise<UploadPreview> {
-  const [view, upload] = await Promise.all([readParticipation(context, { studyId }), readUpload(context, { studyId, uploadId })])
+export async function previewUpload(
+  context: Context,
+  { studyId, uploadId }: { studyId: string; uploadId: string },
+): Promise<UploadPreview> {
+  const [view, upload] = await Promise.all([
+    readParticipation(context, { studyId }),
+    readUpload(context, { studyId, uploadId }),
+  ])
   const returned = view.receipts.find((receipt) => receipt.uploadId === uploadId) ?? null
   if (!upload.check) return { view, upload, places: [], returned }
   const last = view.receipts[0]

@@ -17,6 +17,8 @@ export async function submitSheet(
   { studyId, submissionKey, checked, remark }: CheckedSheet,
 ): Promise<{ studyId: string; outcome: SubmissionOutcome }> {
   const { layout } = await readParticipation(context, { studyId })
-  const entries = Object.fromEntries(listPlaces(layout).map((place, position) => [placeKey(place), checked[position] ?? '']))
+  const entries = Object.fromEntries(
+    listPlaces(layout).map((place, position) => [placeKey(place), checked[position] ?? '']),
+  )
   return { studyId, outcome: await submitReturn(context, { studyId, submissionKey, entries, remark }) }
 }

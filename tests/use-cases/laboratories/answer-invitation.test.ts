@@ -28,37 +28,54 @@ async function invite(in_ = world): Promise<{ studyId: string; tokens: string[];
     laboratories: laboratories.slice(0, 3),
   })
   await openStudy(await in_.as(in_.coordinator), { studyId })
-  const tokens = await Promise.all(invitationIds.map((invitationId) => invitationToken(in_, { studyId, invitationId })))
+  const tokens = await Promise.all(
+    invitationIds.map((invitationId) => invitationToken(in_, { studyId, invitationId })),
+  )
   return { studyId, tokens, invitationIds }
 }
 
 const codesOf = async (of: TestWorld, studyId: string) => {
-  const { rows } = await sql<{ code: string }>`select code from participant where study_id = ${studyId} order by code`.execute(of.database.owner)
+  const { rows } = await sql<{
+    code: string
+  }>`select code from participant where study_id = ${studyId} order by code`.execute(of.database.owner)
   return rows.map(({ code }) => code)
 }
 
 describe('an invitation', () => {
   it('is accepted once, however often the button is pressed at the same time', async () => {
     const { studyId, tokens } = await invite()
-    const answers = await Promise.allSettled(Array.from({ length: 8 }, () => answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' })))
+    const answers = await Promise.allSettled(
+      Array.from({ length: 8 }, () =>
+        answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' }),
+      ),
+    )
     const accepted = answers.filter((answer) => answer.status === 'fulfilled')
     expect(accepted).toHaveLength(1)
-    expect(answers.flatMap((answer) => (answer.status === 'rejected' ? [answer.reason.code] : []))).toEqual(Array(7).fill('already-answered'))
+    expect(answers.flatMap((answer) => (answer.status === 'rejected' ? [answer.reason.code] : []))).toEqual(
+      Array(7).fill('already-answered'),
+    )
     expect(await codesOf(world, studyId)).toHaveLength(1)
     expect(await readInvitation(world.system, { token: tokens[0]! })).toMatchObject({ state: 'accepted' })
   })
 
   it('gives back the invited address and nobody else’s', async () => {
     const { tokens } = await invite()
-    expect(await answerInvitation(world.system, { token: tokens[1]!, answer: 'accepted' })).toEqual({ address: laboratories[1]!.address })
+    expect(await answerInvitation(world.system, { token: tokens[1]!, answer: 'accepted' })).toEqual({
+      address: laboratories[1]!.address,
+    })
   })
 
   it('can be declined, draws no code then, and cannot be accepted afterwards', async () => {
     const { studyId, tokens } = await invite()
     await answerInvitation(world.system, { token: tokens[0]!, answer: 'declined' })
-    await expect(answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' })).rejects.toMatchObject({ code: 'already-answered' })
+    await expect(
+      answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' }),
+    ).rejects.toMatchObject({ code: 'already-answered' })
     expect(await codesOf(world, studyId)).toEqual([])
-    const { rows } = await sql`select action, actor_role from audit.entry where study_id = ${studyId} order by sequence desc limit 1`.execute(world.database.owner)
+    const { rows } =
+      await sql`select action, actor_role from audit.entry where study_id = ${studyId} order by sequence desc limit 1`.execute(
+        world.database.owner,
+      )
     expect(rows).toEqual([{ action: 'laboratory.declined', actor_role: 'invited laboratory' }])
   })
 
@@ -66,17 +83,23 @@ describe('an invitation', () => {
     const { studyId, tokens, invitationIds } = await invite()
     await world.database.setClock('2027-03-02T09:00:00Z')
     await requestNewLink(world.system, { token: tokens[0]! })
-    await expect(answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' })).rejects.toMatchObject({ code: 'superseded' })
+    await expect(
+      answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' }),
+    ).rejects.toMatchObject({ code: 'superseded' })
     expect(await readInvitation(world.system, { token: tokens[0]! })).toMatchObject({ state: 'superseded' })
     const newer = await invitationToken(world, { studyId, invitationId: invitationIds[0]! })
-    expect(await answerInvitation(world.system, { token: newer, answer: 'accepted' })).toEqual({ address: laboratories[0]!.address })
+    expect(await answerInvitation(world.system, { token: newer, answer: 'accepted' })).toEqual({
+      address: laboratories[0]!.address,
+    })
   })
 
   it('has a new link mailed to the invited address alone, and not twice within five minutes', async () => {
     const { studyId, tokens } = await invite()
     await world.database.setClock('2027-03-02T09:00:00Z')
     await requestNewLink(world.system, { token: tokens[0]! })
-    await expect(requestNewLink(world.system, { token: tokens[0]! })).rejects.toMatchObject({ code: 'just-sent' })
+    await expect(requestNewLink(world.system, { token: tokens[0]! })).rejects.toMatchObject({
+      code: 'just-sent',
+    })
     const { rows } = await sql`
       select recipient, count(*)::int as mails from vault.mail where study_id = ${studyId} and kind = 'invitation' group by recipient having count(*) > 1
     `.execute(world.database.owner)
@@ -88,7 +111,9 @@ describe('an invitation', () => {
     await world.database.setClock(due)
     await answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' })
     await world.database.setClock('2027-03-14T17:00:00.001Z')
-    await expect(answerInvitation(world.system, { token: tokens[1]!, answer: 'accepted' })).rejects.toMatchObject({ code: 'closed' })
+    await expect(
+      answerInvitation(world.system, { token: tokens[1]!, answer: 'accepted' }),
+    ).rejects.toMatchObject({ code: 'closed' })
     expect(await readInvitation(world.system, { token: tokens[1]! })).toMatchObject({ state: 'closed' })
   })
 
@@ -98,7 +123,9 @@ describe('an invitation', () => {
     const changed = `${id}.${number}.${secret.startsWith('A') ? 'B' : 'A'}${secret.slice(1)}`
     for (const token of [changed, `${id}.${number}.`, `${id}.2.${secret}`, '', 'x'.repeat(5000)]) {
       expect(await readInvitation(world.system, { token })).toEqual({ state: 'unknown' })
-      await expect(answerInvitation(world.system, { token, answer: 'accepted' })).rejects.toBeInstanceOf(NotFound)
+      await expect(answerInvitation(world.system, { token, answer: 'accepted' })).rejects.toBeInstanceOf(
+        NotFound,
+      )
     }
     // 256 bits of a keyed hash, in 43 signs.
     expect(secret).toMatch(/^[\w-]{43}$/)
@@ -109,7 +136,8 @@ describe('an invitation', () => {
     await answerInvitation(world.system, { token: tokens[0]!, answer: 'accepted' })
     const shown = JSON.stringify(await readInvitation(world.system, { token: tokens[0]! }))
     const { laboratory, address, contactName } = laboratories[0]!
-    for (const secret of [laboratory, address, contactName, ...(await codesOf(world, studyId))]) expect(shown).not.toContain(secret)
+    for (const secret of [laboratory, address, contactName, ...(await codesOf(world, studyId))])
+      expect(shown).not.toContain(secret)
   })
 })
 

@@ -34,7 +34,10 @@ export async function openTestStudy(): Promise<OpenStudy> {
 }
 
 /** One more open study of the same two laboratories. */
-export async function makeStudy(world: TestWorld, shortName: string): Promise<{ studyId: string; invitationIds: string[] }> {
+export async function makeStudy(
+  world: TestWorld,
+  shortName: string,
+): Promise<{ studyId: string; invitationIds: string[] }> {
   const draft = await draftStudy(world, {
     coordinator: world.coordinator,
     plan: planWith({ shortName, levels: [{ name: 'replicate', count: 2 }] }),

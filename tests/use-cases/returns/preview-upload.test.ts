@@ -15,7 +15,11 @@ afterAll(() => study?.world.destroy())
 
 async function send(csv: string): Promise<string> {
   const context = await study.world.as(study.contact)
-  const { uploadId } = await receiveUpload(context, { studyId: study.studyId, fileName: 'C:\\results\\ours.csv', bytes: Buffer.from(csv) })
+  const { uploadId } = await receiveUpload(context, {
+    studyId: study.studyId,
+    fileName: 'C:\\results\\ours.csv',
+    bytes: Buffer.from(csv),
+  })
   await checkUploadedFile(study.world.system, { studyId: study.studyId, uploadId, number: 1 })
   return uploadId
 }
@@ -23,7 +27,12 @@ async function send(csv: string): Promise<string> {
 describe('a file, once read', () => {
   it('stands beside the last return: changed, the same whatever the mark, missing', async () => {
     const context = await study.world.as(study.contact)
-    await submitReturn(context, { studyId: study.studyId, submissionKey: 'first', entries: entriesOf(study.keys, ['1.5', '2.50', '3', '4']), remark: '' })
+    await submitReturn(context, {
+      studyId: study.studyId,
+      submissionKey: 'first',
+      entries: entriesOf(study.keys, ['1.5', '2.50', '3', '4']),
+      remark: '',
+    })
     const uploadId = await send('Material;replicate;Breaking force (N)\nsisal;1;1,5\nsisal;2;2,5\nhemp;1;3\n')
     const { places, upload, returned } = await previewUpload(context, { studyId: study.studyId, uploadId })
     expect(places.map(({ state, text, before }) => [state, text, before])).toEqual([
@@ -50,6 +59,8 @@ describe('a file, once read', () => {
   it('that is one byte too large is refused by name and not cut', async () => {
     const context = await study.world.as(study.contact)
     const bytes = Buffer.alloc(largestUpload + 1, 32)
-    await expect(receiveUpload(context, { studyId: study.studyId, fileName: 'a.csv', bytes })).rejects.toMatchObject({ code: 'file-too-large' })
+    await expect(
+      receiveUpload(context, { studyId: study.studyId, fileName: 'a.csv', bytes }),
+    ).rejects.toMatchObject({ code: 'file-too-large' })
   })
 })

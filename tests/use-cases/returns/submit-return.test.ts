@@ -20,7 +20,13 @@ beforeEach(() => study.world.database.setClock(opened))
 const complete = ['412.6', '413,10', '<0.5', '398']
 
 function submission(change: Partial<Submission> = {}): Submission {
-  return { studyId: study.studyId, submissionKey: 'one form', entries: entriesOf(study.keys, complete), remark: '', ...change }
+  return {
+    studyId: study.studyId,
+    submissionKey: 'one form',
+    entries: entriesOf(study.keys, complete),
+    remark: '',
+    ...change,
+  }
 }
 
 /** A study in which nothing was returned yet, for tests that count. */
@@ -35,10 +41,17 @@ describe('a return', () => {
   it('is one return for fifty posts of one form at once, and all get the same receipt', async () => {
     const context = await study.world.as(study.contact)
     const outcomes = await Promise.all(Array.from({ length: 50 }, () => submitReturn(context, submission())))
-    const receipts = new Set(outcomes.map((outcome) => outcome.outcome === 'received' && `${outcome.number} ${outcome.receiptNumber}`))
+    const receipts = new Set(
+      outcomes.map(
+        (outcome) => outcome.outcome === 'received' && `${outcome.number} ${outcome.receiptNumber}`,
+      ),
+    )
     expect(receipts.size).toBe(1)
     expect(outcomes.filter((outcome) => outcome.outcome === 'received' && !outcome.repeated)).toHaveLength(1)
-    const { rows } = await sql`select count(*)::int as returns from result_return where study_id = ${study.studyId}`.execute(study.world.database.app)
+    const { rows } =
+      await sql`select count(*)::int as returns from result_return where study_id = ${study.studyId}`.execute(
+        study.world.database.app,
+      )
     expect(rows).toEqual([{ returns: 1 }])
   })
 
@@ -58,11 +71,16 @@ describe('a return', () => {
 
   it('writes one audit entry, with the facts and nothing that names anybody', async () => {
     const { rows } = await sql<{ body: string; actor_role: string }>`
-      select body::text, actor_role from audit.entry where study_id = ${study.studyId} and action = 'return.submitted'`.execute(study.world.database.owner)
+      select body::text, actor_role from audit.entry where study_id = ${study.studyId} and action = 'return.submitted'`.execute(
+      study.world.database.owner,
+    )
     expect(rows).toHaveLength(1)
     const context = await study.world.as(study.contact)
     const { receipt } = await readReceipt(context, { studyId: study.studyId, number: 1 })
-    const participation = await findParticipation(study.world.system.db, { studyId: study.studyId, personId: context.actor.personId })
+    const participation = await findParticipation(study.world.system.db, {
+      studyId: study.studyId,
+      personId: context.actor.personId,
+    })
     expect(rows[0]?.actor_role).toBe('contact')
     expect(JSON.parse(rows[0]!.body)).toEqual({
       participantId: participation!.participantId,
@@ -74,7 +92,10 @@ describe('a return', () => {
   })
 
   it('queues the mail of its receipt once, to the contact', async () => {
-    const { rows } = await sql`select recipient from vault.mail where kind = 'receipt' and study_id = ${study.studyId}`.execute(study.world.database.owner)
+    const { rows } =
+      await sql`select recipient from vault.mail where kind = 'receipt' and study_id = ${study.studyId}`.execute(
+        study.world.database.owner,
+      )
     expect(rows).toEqual([{ recipient: study.contact }])
   })
 
@@ -92,14 +113,20 @@ describe('a return', () => {
     const context = await study.world.as(study.contact)
     const { submissionKey } = await readSheet(context, { studyId: study.studyId })
     const entries = entriesOf(study.keys, ['412.7', '413,10', '<0.5', '398'])
-    expect(await submitReturn(context, submission({ submissionKey, entries }))).toMatchObject({ outcome: 'received', number: 2 })
+    expect(await submitReturn(context, submission({ submissionKey, entries }))).toMatchObject({
+      outcome: 'received',
+      number: 2,
+    })
     const { receipts } = await readParticipation(context, { studyId: study.studyId })
     expect(receipts.map(({ number }) => number)).toEqual([2, 1])
   })
 
   it('has one key on every page that follows the same return', async () => {
     const context = await study.world.as(study.contact)
-    const [one, two] = [await readSheet(context, { studyId: study.studyId }), await readSheet(context, { studyId: study.studyId })]
+    const [one, two] = [
+      await readSheet(context, { studyId: study.studyId }),
+      await readSheet(context, { studyId: study.studyId }),
+    ]
     expect(one.submissionKey).toBe(two.submissionKey)
     expect(one.submissionKey).not.toBe('one form')
   })
@@ -112,18 +139,27 @@ describe('time', () => {
   it('is the database’s: a clock of the server that runs a year ahead changes nothing', async () => {
     vi.useFakeTimers({ toFake: ['Date'], now: new Date('2028-03-15T00:00:00Z') })
     const context = await study.world.as(study.contact)
-    expect(await submitReturn(context, submission({ submissionKey: 'ahead' }))).toMatchObject({ outcome: 'received' })
+    expect(await submitReturn(context, submission({ submissionKey: 'ahead' }))).toMatchObject({
+      outcome: 'received',
+    })
   })
 
   it('still takes a return in the last instant', async () => {
     await study.world.database.setClock(due)
     const context = await study.world.as(study.contact)
-    expect(await submitReturn(context, submission({ submissionKey: 'last instant' }))).toMatchObject({ outcome: 'received' })
+    expect(await submitReturn(context, submission({ submissionKey: 'last instant' }))).toMatchObject({
+      outcome: 'received',
+    })
   })
 
   it('refuses politely one millisecond later, in the laboratory’s own time, and keeps the draft', async () => {
     const context = await study.world.as(study.contact)
-    await saveDraft(context, { studyId: study.studyId, entries: entriesOf(study.keys, ['1']), remark: 'half done', seenVersion: 0 })
+    await saveDraft(context, {
+      studyId: study.studyId,
+      entries: entriesOf(study.keys, ['1']),
+      remark: 'half done',
+      seenVersion: 0,
+    })
     await study.world.database.setClock('2027-03-14T17:00:00.001Z')
     vi.useFakeTimers({ toFake: ['Date'], now: new Date('2026-01-01T00:00:00Z') })
     const { zone } = await readParticipation(context, { studyId: study.studyId })
@@ -139,7 +175,10 @@ describe('time', () => {
   it('gives the receipt of a return that was made in time, however late it is asked for again', async () => {
     await study.world.database.setClock('2027-03-20T00:00:00Z')
     const context = await study.world.as(study.contact)
-    expect(await submitReturn(context, submission({ submissionKey: 'last instant' }))).toMatchObject({ outcome: 'received', repeated: true })
+    expect(await submitReturn(context, submission({ submissionKey: 'last instant' }))).toMatchObject({
+      outcome: 'received',
+      repeated: true,
+    })
   })
 })
 
@@ -149,26 +188,39 @@ describe('what is missing', () => {
   it('needs a remark, and the refusal says how many', async () => {
     const context = await study.world.as(study.contact)
     const entries = entriesOf(study.keys, ['412.6', '', '398'])
-    await expect(submitReturn(context, submission({ submissionKey: 'gaps', entries }))).rejects.toMatchObject({
-      code: 'gaps-unexplained',
-      field: 'remark',
-      publicMessage: expect.stringContaining('2 of 4'),
-    })
+    await expect(submitReturn(context, submission({ submissionKey: 'gaps', entries }))).rejects.toMatchObject(
+      {
+        code: 'gaps-unexplained',
+        field: 'remark',
+        publicMessage: expect.stringContaining('2 of 4'),
+      },
+    )
     const remark = 'Two specimens broke while they were clamped.'
-    expect(await submitReturn(context, submission({ submissionKey: 'gaps', entries, remark }))).toMatchObject({ outcome: 'received' })
+    expect(await submitReturn(context, submission({ submissionKey: 'gaps', entries, remark }))).toMatchObject(
+      { outcome: 'received' },
+    )
     expect((await readReceipt(context, { studyId: study.studyId, number: 1 })).rows).toHaveLength(2)
   })
 
   it('is everything when nothing was entered', async () => {
     const context = await study.world.as(study.contact)
-    await expect(submitReturn(context, submission({ submissionKey: 'nothing', entries: {} }))).rejects.toMatchObject({ code: 'nothing-entered' })
+    await expect(
+      submitReturn(context, submission({ submissionKey: 'nothing', entries: {} })),
+    ).rejects.toMatchObject({ code: 'nothing-entered' })
   })
 
   it('is not made up for a value that cannot be read: every such place is named and nothing stored', async () => {
     const context = await study.world.as(study.contact)
     const entries = entriesOf(study.keys, ['abc', '1,234', '=1+1', '5'])
     const outcome = await submitReturn(context, submission({ submissionKey: 'faulty', entries }))
-    expect(outcome).toMatchObject({ outcome: 'problems', problems: [{ key: study.keys[0] }, { key: study.keys[1], readings: ['1.234', '1234'] }, { key: study.keys[2] }] })
+    expect(outcome).toMatchObject({
+      outcome: 'problems',
+      problems: [
+        { key: study.keys[0] },
+        { key: study.keys[1], readings: ['1.234', '1234'] },
+        { key: study.keys[2] },
+      ],
+    })
     expect((await readParticipation(context, { studyId: study.studyId })).receipts).toHaveLength(1)
   })
 })
@@ -176,7 +228,11 @@ describe('what is missing', () => {
 describe('whoever does not act for a laboratory of the study', () => {
   beforeAll(freshStudy)
 
-  const refusalOf = (attempt: Promise<unknown>) => attempt.then(() => 'no refusal', (error: unknown) => error)
+  const refusalOf = (attempt: Promise<unknown>) =>
+    attempt.then(
+      () => 'no refusal',
+      (error: unknown) => error,
+    )
 
   it('is told the same of a study as of one that does not exist', async () => {
     const strange = await makeStudy(study.world, 'NT-02')
@@ -206,7 +262,11 @@ describe('whoever does not act for a laboratory of the study', () => {
 
   it('shares no key with it: the same key of two laboratories is two returns', async () => {
     const other = await study.world.as(study.other)
-    expect(await submitReturn(other, submission({ submissionKey: 'mine' }))).toMatchObject({ outcome: 'received', number: 1, repeated: false })
+    expect(await submitReturn(other, submission({ submissionKey: 'mine' }))).toMatchObject({
+      outcome: 'received',
+      number: 1,
+      repeated: false,
+    })
   })
 })
 
@@ -215,9 +275,19 @@ describe('fields that are not the laboratory’s to set', () => {
 
   it('are ignored, in the rows as in the trail', async () => {
     const context = await study.world.as(study.contact)
-    const bait = { role: 'coordinator', excluded: true, code: 'Z99', receivedAt: '2020-01-01', number: 7, participantId: study.studyId }
+    const bait = {
+      role: 'coordinator',
+      excluded: true,
+      code: 'Z99',
+      receivedAt: '2020-01-01',
+      number: 7,
+      participantId: study.studyId,
+    }
     const entries = JSON.parse(
-      JSON.stringify(entriesOf(study.keys, complete)).replace(/^\{/, '{"__proto__":"5","constructor":"6","nowhere|nowhere|1":"7",'),
+      JSON.stringify(entriesOf(study.keys, complete)).replace(
+        /^\{/,
+        '{"__proto__":"5","constructor":"6","nowhere|nowhere|1":"7",',
+      ),
     ) as Record<string, string>
     await submitReturn(context, { ...submission({ submissionKey: 'bait', entries }), ...bait } as Submission)
     const { receipt, rows, view } = await readReceipt(context, { studyId: study.studyId, number: 1 })
@@ -225,9 +295,17 @@ describe('fields that are not the laboratory’s to set', () => {
     expect(receipt.receivedAt).toEqual(new Date(opened))
     expect(view.code).not.toBe('Z99')
     const { rows: entry } = await sql<{ body: string; actor_role: string }>`
-      select body::text, actor_role from audit.entry where study_id = ${study.studyId} and action = 'return.submitted'`.execute(study.world.database.owner)
+      select body::text, actor_role from audit.entry where study_id = ${study.studyId} and action = 'return.submitted'`.execute(
+      study.world.database.owner,
+    )
     expect(entry[0]?.actor_role).toBe('contact')
-    expect(Object.keys(JSON.parse(entry[0]!.body)).sort()).toEqual(['bodyDigest', 'number', 'participantId', 'results', 'returnId'])
+    expect(Object.keys(JSON.parse(entry[0]!.body)).sort()).toEqual([
+      'bodyDigest',
+      'number',
+      'participantId',
+      'results',
+      'returnId',
+    ])
   })
 })
 
@@ -237,7 +315,10 @@ describe('a study that was closed', () => {
   it('takes no return, in words that say what can be done', async () => {
     const context = await study.world.as(study.contact)
     await submitReturn(context, submission({ submissionKey: 'before' }))
-    await closeStudy(await study.world.as(study.world.coordinator), { studyId: study.studyId, reason: 'All laboratories have returned.' })
+    await closeStudy(await study.world.as(study.world.coordinator), {
+      studyId: study.studyId,
+      reason: 'All laboratories have returned.',
+    })
     await expect(submitReturn(context, submission({ submissionKey: 'after' }))).rejects.toMatchObject({
       code: 'not-open',
       publicMessage: expect.stringContaining('Ask the coordinator'),

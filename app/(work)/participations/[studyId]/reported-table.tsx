@@ -14,29 +14,29 @@ interface ReportedTableProps {
 export function ReportedTable({ layout, texts, caption }: ReportedTableProps) {
   const hasLevels = layout.levels.some(({ count }) => count > 1)
   return (
-    <div role="region" aria-label={caption} tabIndex={0} data-scrolls className="overflow-x-auto border bg-sheet">
+    <div role="region" aria-label={caption} tabIndex={0} data-scrolls className="w-fit max-w-full overflow-x-auto border bg-sheet">
       <table className="w-full border-collapse text-small">
         <caption className="sr-only">{caption}</caption>
         <thead>
           <tr className="border-b text-ink-soft">
-            <th scope="col" className="h-9 px-3 text-left font-semibold">Material</th>
-            {hasLevels && <th scope="col" className="h-9 px-3 text-left font-semibold">Test result</th>}
+            <th scope="col" className="h-9 min-w-32 px-4 text-left font-semibold">Material</th>
+            {hasLevels && <th scope="col" className="h-9 min-w-44 px-4 text-left font-semibold">Test result</th>}
             {layout.measurands.map((measurand) => (
-              <th key={measurand.id} scope="col" className="h-9 px-3 text-right font-semibold">{measurandTitle(measurand)}</th>
+              <th key={measurand.id} scope="col" className="h-9 min-w-40 px-4 text-right font-semibold">{measurandTitle(measurand)}</th>
             ))}
           </tr>
         </thead>
         <tbody>
           {listRows(layout).map((row, index) => (
             <tr key={index} className="border-b last:border-b-0">
-              <th scope="row" className="h-9 px-3 text-left font-normal">
+              <th scope="row" className="h-9 px-4 text-left font-normal">
                 {layout.materials.find(({ id }) => id === row.materialId)?.name}
               </th>
-              {hasLevels && <td className="px-3">{nameLevels(layout, row.groups)}</td>}
+              {hasLevels && <td className="px-4">{nameLevels(layout, row.groups)}</td>}
               {layout.measurands.map(({ id }) => {
                 const text = texts[placeKey({ ...row, measurandId: id })]
                 return (
-                  <td key={id} className="px-3 text-right">
+                  <td key={id} className="px-4 text-right">
                     {text?.trim() ? <Figure value={readAs(text)} /> : <span className="text-ink-soft">no result</span>}
                   </td>
                 )

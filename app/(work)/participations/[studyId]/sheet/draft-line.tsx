@@ -5,17 +5,20 @@ interface DraftLineProps {
   draft: DraftStatus
   settled: DraftStatus
   zone: string
+  /** Until when, in words; the margin says it too where there is one beside the sheet. */
+  due: string
   studyId: string
 }
 
 /** One line on where the draft stands. Said aloud once a save, and not while one is under way. */
-export function DraftLine({ draft, settled, zone, studyId }: DraftLineProps) {
+export function DraftLine({ draft, settled, zone, due, studyId }: DraftLineProps) {
   return (
     <div className="text-small text-ink-soft">
       <p aria-hidden="true">{sayDraft(draft, zone)}</p>
       <p role="status" className="sr-only">
         {sayDraft(settled, zone)}
       </p>
+      <p className="margin:hidden">{due}</p>
       {draft.kind === 'signed-out' && (
         <p className="mt-1">
           <a className="prose-link" href={paths.signIn(paths.resultSheet(studyId))} target="_blank" rel="noopener">

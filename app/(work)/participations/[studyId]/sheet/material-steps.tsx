@@ -18,7 +18,6 @@ export function MaterialSteps({ groups, shown, isLive, onShow, children }: Mater
   function go(index: number): void {
     onShow(index)
     heading.current?.focus()
-    heading.current?.scrollIntoView({ block: 'start' })
   }
 
   return (

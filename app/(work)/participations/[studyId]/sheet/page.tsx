@@ -46,6 +46,7 @@ export default async function SheetPage({ params, searchParams }: PageProps) {
         remark={remark}
         draftVersion={draftVersion}
         draftSavedAt={view.draft?.savedAt.toISOString() ?? null}
+        due={`Due ${view.due.text} in ${view.due.zoneText}, ${view.dueDistance}.`}
         problems={look === 'problems' ? listProblems(review) : []}
         action={checkSheetAction}
       />

@@ -39,6 +39,7 @@ interface ResultSheetProps {
   remark: string
   draftVersion: number
   draftSavedAt: string | null
+  due: string
   /** Found by the server in what was sent, for whoever has no scripts. */
   problems: readonly SheetError[]
   action: (previous: FormState, form: FormData) => Promise<FormState>
@@ -158,7 +159,7 @@ export function ResultSheet(props: ResultSheetProps) {
         <SubmitButton pendingLabel="Keeping…" isPending={isLeaving}>
           Check before returning
         </SubmitButton>
-        <DraftLine draft={state.draft} settled={state.settled} zone={zone} studyId={studyId} />
+        <DraftLine draft={state.draft} settled={state.settled} zone={zone} due={props.due} studyId={studyId} />
       </div>
     </form>
   )

@@ -8,7 +8,8 @@ import { schemas } from '../../schemas'
 /** Boundaries and the fields' own headers. */
 const formOverhead = 16 * 1024
 
-const tooLarge = 'The file is larger than 5 MB and was not kept. Send the results alone, without pictures or other sheets.'
+const tooLarge =
+  'The file is larger than 5 MB and was not kept. Send the results alone, without pictures or other sheets.'
 
 /** Takes a file. A page's form is sent on to the preview; a program that asks for JSON gets the id. */
 export const POST = routeHandler({
@@ -29,9 +30,11 @@ export const POST = routeHandler({
 async function readFile(request: Request): Promise<{ fileName: string; bytes: Buffer }> {
   const type = request.headers.get('content-type') ?? ''
   const body = await readBoundedBody(request, { most: largestUpload + formOverhead, refusal: tooLarge })
-  if (!type.startsWith('multipart/form-data')) throw new Refusal('wrong-type', 'Send the file as the form on the page does.')
+  if (!type.startsWith('multipart/form-data'))
+    throw new Refusal('wrong-type', 'Send the file as the form on the page does.')
   const file = (await parseForm(body, type)).get('file')
-  if (!(file instanceof File) || file.name === '') throw new Refusal('file-missing', 'Choose a file first.', 'file')
+  if (!(file instanceof File) || file.name === '')
+    throw new Refusal('file-missing', 'Choose a file first.', 'file')
   return { fileName: file.name, bytes: Buffer.from(await file.arrayBuffer()) }
 }
 
