@@ -14,7 +14,9 @@ export function readEntryFields(fields: Readonly<Record<string, unknown>>): Map<
   return new Map(
     Object.entries(fields).flatMap(([name, value]) => {
       const position = pattern.exec(name)?.[1]
-      return position !== undefined && typeof value === 'string' ? [[Number(position), value.slice(0, 200)] as const] : []
+      return position !== undefined && typeof value === 'string'
+        ? [[Number(position), value.slice(0, 200)] as const]
+        : []
     }),
   )
 }

@@ -22,7 +22,16 @@ interface LaboratoryPageProps {
 }
 
 /** A page of one laboratory in one study: the study above the title, the deadline and the code in the margin. */
-export function LaboratoryPage({ actor, view, title, lead, actions, margin, isStart = false, children }: LaboratoryPageProps) {
+export function LaboratoryPage({
+  actor,
+  view,
+  title,
+  lead,
+  actions,
+  margin,
+  isStart = false,
+  children,
+}: LaboratoryPageProps) {
   const { studyId, study, code, due, dueDistance } = view
   return (
     <PageShell
@@ -58,8 +67,8 @@ export function LaboratoryPage({ actor, view, title, lead, actions, margin, isSt
             }
           >
             <p>
-              It stands for your laboratory wherever results are shown. Keep it to yourselves: with it, anyone could
-              tell which results are yours.
+              It stands for your laboratory wherever results are shown. Keep it to yourselves: with it, anyone
+              could tell which results are yours.
             </p>
           </MarginNote>
         </>

@@ -22,7 +22,9 @@ export function AskForTime({ studyId, isLate, action }: AskForTimeProps) {
   const errors = useMemo(
     () => [
       ...(state.message ? [{ message: state.message }] : []),
-      ...Object.entries(state.errors).flatMap(([field, messages]) => messages.map((message) => ({ field, message }))),
+      ...Object.entries(state.errors).flatMap(([field, messages]) =>
+        messages.map((message) => ({ field, message })),
+      ),
     ],
     [state],
   )
@@ -36,10 +38,21 @@ export function AskForTime({ studyId, isLate, action }: AskForTimeProps) {
         <Field
           name="message"
           label="Ask the coordinator for more time"
-          hint={isLate ? 'Say how much time you need, and why. Until it is granted, nothing can be returned.' : 'If the date cannot be kept, say so early: how much time you need, and why.'}
+          hint={
+            isLate
+              ? 'Say how much time you need, and why. Until it is granted, nothing can be returned.'
+              : 'If the date cannot be kept, say so early: how much time you need, and why.'
+          }
           error={state.errors.message?.join(' ')}
         >
-          {(wiring) => <TextArea {...wiring} defaultValue={typeof typed === 'string' ? typed : ''} rows={3} maxLength={1000} />}
+          {(wiring) => (
+            <TextArea
+              {...wiring}
+              defaultValue={typeof typed === 'string' ? typed : ''}
+              rows={3}
+              maxLength={1000}
+            />
+          )}
         </Field>
       </div>
       <SubmitButton variant={isLate ? 'primary' : 'plain'} pendingLabel="Sending…">

@@ -8,7 +8,10 @@ export function ClosedNotice({ view }: { view: ParticipationView }) {
   if (view.whyNot === 'not-open')
     return (
       <Notice tone="warn" title="The study takes no returns at the moment">
-        <p>What was entered is kept. The coordinator at {view.study.organisation} can say whether results may still count.</p>
+        <p>
+          What was entered is kept. The coordinator at {view.study.organisation} can say whether results may
+          still count.
+        </p>
       </Notice>
     )
   return (

@@ -34,7 +34,11 @@ export function ConfirmReturn({ fields, remark, missing, canReturn, back, action
       <Field
         name="remark"
         label="Remark"
-        hint={missing > 0 ? 'Say in a sentence why results are missing. Name no laboratory and no person.' : 'For the coordinator. Name no laboratory and no person.'}
+        hint={
+          missing > 0
+            ? 'Say in a sentence why results are missing. Name no laboratory and no person.'
+            : 'For the coordinator. Name no laboratory and no person.'
+        }
         error={state.errors.remark?.join(' ')}
         isOptional={missing === 0}
       >
@@ -57,6 +61,8 @@ export function ConfirmReturn({ fields, remark, missing, canReturn, back, action
 }
 
 function listErrors({ errors, message }: FormState): { field?: string; message: string }[] {
-  const fields = Object.entries(errors).flatMap(([field, messages]) => messages.map((each) => ({ field, message: each })))
+  const fields = Object.entries(errors).flatMap(([field, messages]) =>
+    messages.map((each) => ({ field, message: each })),
+  )
   return [...(message ? [{ message }] : []), ...fields]
 }

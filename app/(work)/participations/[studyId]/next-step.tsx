@@ -19,7 +19,11 @@ export function NextStep({ view }: { view: ParticipationView }) {
       )}
       <p>
         <ButtonLink variant="primary" href={paths.resultSheet(studyId)} className="min-h-11 px-5">
-          {draft ? 'Go on with the sheet' : receipts.length > 0 ? 'Replace the return on the sheet' : 'Fill in the sheet'}
+          {draft
+            ? 'Go on with the sheet'
+            : receipts.length > 0
+              ? 'Replace the return on the sheet'
+              : 'Fill in the sheet'}
         </ButtonLink>
       </p>
       <div className="flex flex-wrap items-center gap-x-6 gap-y-2 text-small">

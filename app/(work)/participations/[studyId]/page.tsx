@@ -19,7 +19,14 @@ export default async function ParticipationPage({ params }: { params: Promise<{ 
   const { studyId } = await params
   const view = await notFoundOnAbsence(readParticipation(await requestContext(), { studyId }))
   return (
-    <LaboratoryPage actor={actor} view={view} title={view.study.title} lead={leadOf(view)} margin={<Cautions />} isStart>
+    <LaboratoryPage
+      actor={actor}
+      view={view}
+      title={view.study.title}
+      lead={leadOf(view)}
+      margin={<Cautions />}
+      isStart
+    >
       <ClosedNotice view={view} />
       {view.canReturn && <NextStep view={view} />}
       {view.receipts.length > 0 && (
@@ -32,7 +39,11 @@ export default async function ParticipationPage({ params }: { params: Promise<{ 
       </Section>
       {view.whyNot !== 'not-open' && (
         <Section id="more-time" title="More time">
-          <AskForTime studyId={studyId} isLate={view.whyNot === 'after-deadline'} action={requestExtensionAction} />
+          <AskForTime
+            studyId={studyId}
+            isLate={view.whyNot === 'after-deadline'}
+            action={requestExtensionAction}
+          />
         </Section>
       )}
     </LaboratoryPage>
@@ -41,15 +52,17 @@ export default async function ParticipationPage({ params }: { params: Promise<{ 
 
 function leadOf({ places, due, dueDistance, canReturn }: ParticipationView): string {
   const results = places === 1 ? 'One result' : `${places} results`
-  return canReturn ? `${results} are due on ${due.text} in ${due.zoneText}: ${dueDistance}.` : `${results} were due on ${due.text} in ${due.zoneText}.`
+  return canReturn
+    ? `${results} are due on ${due.text} in ${due.zoneText}: ${dueDistance}.`
+    : `${results} were due on ${due.text} in ${due.zoneText}.`
 }
 
 function Cautions() {
   return (
     <MarginNote title="Before you open the specimens">
       <p>
-        Handle them by the supplier’s safety data sheet, by your local rules, and with the licences your laboratory
-        needs for this material. What this page asks never goes before these.
+        Handle them by the supplier’s safety data sheet, by your local rules, and with the licences your
+        laboratory needs for this material. What this page asks never goes before these.
       </p>
     </MarginNote>
   )

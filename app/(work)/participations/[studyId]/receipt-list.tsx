@@ -23,13 +23,21 @@ export function ReceiptList({ view: { studyId, receipts, zone } }: { view: Parti
             </a>
           ),
         },
-        { key: 'received', header: 'Received', cell: ({ receivedAt }) => <OwnTime at={receivedAt} zone={zone} /> },
+        {
+          key: 'received',
+          header: 'Received',
+          cell: ({ receivedAt }) => <OwnTime at={receivedAt} zone={zone} />,
+        },
         { key: 'source', header: 'By', cell: ({ source }) => (source === 'file' ? 'workbook' : 'sheet') },
         {
           key: 'state',
           header: 'State',
           cell: ({ number }) =>
-            number === receipts[0]?.number ? <Status tone="done">counts</Status> : <Status tone="quiet">replaced</Status>,
+            number === receipts[0]?.number ? (
+              <Status tone="done">counts</Status>
+            ) : (
+              <Status tone="quiet">replaced</Status>
+            ),
         },
       ]}
     />

@@ -14,15 +14,29 @@ interface ReportedTableProps {
 export function ReportedTable({ layout, texts, caption }: ReportedTableProps) {
   const hasLevels = layout.levels.some(({ count }) => count > 1)
   return (
-    <div role="region" aria-label={caption} tabIndex={0} data-scrolls className="w-fit max-w-full overflow-x-auto border bg-sheet">
+    <div
+      role="region"
+      aria-label={caption}
+      tabIndex={0}
+      data-scrolls
+      className="w-fit max-w-full overflow-x-auto border bg-sheet"
+    >
       <table className="w-full border-collapse text-small">
         <caption className="sr-only">{caption}</caption>
         <thead>
           <tr className="border-b text-ink-soft">
-            <th scope="col" className="h-9 min-w-32 px-4 text-left font-semibold">Material</th>
-            {hasLevels && <th scope="col" className="h-9 min-w-44 px-4 text-left font-semibold">Test result</th>}
+            <th scope="col" className="h-9 min-w-32 px-4 text-left font-semibold">
+              Material
+            </th>
+            {hasLevels && (
+              <th scope="col" className="h-9 min-w-44 px-4 text-left font-semibold">
+                Test result
+              </th>
+            )}
             {layout.measurands.map((measurand) => (
-              <th key={measurand.id} scope="col" className="h-9 min-w-40 px-4 text-right font-semibold">{measurandTitle(measurand)}</th>
+              <th key={measurand.id} scope="col" className="h-9 min-w-40 px-4 text-right font-semibold">
+                {measurandTitle(measurand)}
+              </th>
             ))}
           </tr>
         </thead>
@@ -37,7 +51,11 @@ export function ReportedTable({ layout, texts, caption }: ReportedTableProps) {
                 const text = texts[placeKey({ ...row, measurandId: id })]
                 return (
                   <td key={id} className="px-4 text-right">
-                    {text?.trim() ? <Figure value={readAs(text)} /> : <span className="text-ink-soft">no result</span>}
+                    {text?.trim() ? (
+                      <Figure value={readAs(text)} />
+                    ) : (
+                      <span className="text-ink-soft">no result</span>
+                    )}
                   </td>
                 )
               })}

@@ -8,11 +8,20 @@ export function WhatIsAsked({ view: { study, layout, places } }: { view: Partici
       <Item name="Test method">{study.method}</Item>
       {study.purpose && <Item name="Purpose">{study.purpose}</Item>}
       <Item name={layout.measurands.length === 1 ? 'Measurand' : 'Measurands'}>
-        {layout.measurands.map(({ name, unit, decimals }) => `${name}${unit ? ` in ${unit}` : ''}, ${sayDecimals(decimals)}`).join('; ')}
+        {layout.measurands
+          .map(({ name, unit, decimals }) => `${name}${unit ? ` in ${unit}` : ''}, ${sayDecimals(decimals)}`)
+          .join('; ')}
       </Item>
-      <Item name={layout.materials.length === 1 ? 'Material' : 'Materials'}>{layout.materials.map(({ name }) => name).join(', ')}</Item>
+      <Item name={layout.materials.length === 1 ? 'Material' : 'Materials'}>
+        {layout.materials.map(({ name }) => name).join(', ')}
+      </Item>
       <Item name="Of each material">
-        {layout.levels.map(({ name, count }, index) => `${count} × ${name.toLocaleLowerCase('en-GB')}${index === 0 ? '' : ' in each'}`).join(', ')}
+        {layout.levels
+          .map(
+            ({ name, count }, index) =>
+              `${count} × ${name.toLocaleLowerCase('en-GB')}${index === 0 ? '' : ' in each'}`,
+          )
+          .join(', ')}
       </Item>
       <Item name="In all">{places === 1 ? 'one result' : `${places} results`}</Item>
     </dl>

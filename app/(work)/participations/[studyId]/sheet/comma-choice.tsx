@@ -18,7 +18,10 @@ export function CommaChoice({ entries, isLive, onSettle }: CommaChoiceProps) {
   const [first] = open
   if (!first) return null
   const [asDecimal, asThousands] = first.readings
-  const title = open.length === 1 ? `“${first.found}” can be read in two ways` : `${open.length} values, such as “${first.found}”, can be read in two ways`
+  const title =
+    open.length === 1
+      ? `“${first.found}” can be read in two ways`
+      : `${open.length} values, such as “${first.found}”, can be read in two ways`
   return (
     <Notice tone="warn" title={title}>
       {isLive ? (

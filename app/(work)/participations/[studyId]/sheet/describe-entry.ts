@@ -17,13 +17,25 @@ export function describeEntry(text: string, { unit, decimals }: Measurand): Entr
     case 'fault':
       return { kind: 'fault', words: read.message }
     case 'ambiguous':
-      return { kind: 'question', words: `${read.readings[0]} or ${read.readings[1]}?`, readings: read.readings }
+      return {
+        kind: 'question',
+        words: `${read.readings[0]} or ${read.readings[1]}?`,
+        readings: read.readings,
+      }
     case 'censored':
-      return { kind: 'fine', isCoarse: false, words: `Read as ${read.mark === '<' ? 'below' : 'above'} ${withUnit(read.decimal, unit)}.` }
+      return {
+        kind: 'fine',
+        isCoarse: false,
+        words: `Read as ${read.mark === '<' ? 'below' : 'above'} ${withUnit(read.decimal, unit)}.`,
+      }
     case 'number': {
       const given = read.decimal.split('.')[1]?.length ?? 0
       const isCoarse = given < decimals
-      return { kind: 'fine', isCoarse, words: `Read as ${withUnit(read.decimal, unit)}. ${sayDecimals(given, decimals)}`.trim() }
+      return {
+        kind: 'fine',
+        isCoarse,
+        words: `Read as ${withUnit(read.decimal, unit)}. ${sayDecimals(given, decimals)}`.trim(),
+      }
     }
   }
 }
@@ -35,7 +47,9 @@ function withUnit(decimal: string, unit: string): string {
 function sayDecimals(given: number, asked: number): string {
   if (asked === 0) return ''
   if (given < asked) return `${count(given)}, where the method asks for ${asked}: add them if you have them.`
-  return given === asked ? `${count(given)}, as the method asks.` : `${count(given)}, more than the method asks.`
+  return given === asked
+    ? `${count(given)}, as the method asks.`
+    : `${count(given)}, more than the method asks.`
 }
 
 function count(decimals: number): string {

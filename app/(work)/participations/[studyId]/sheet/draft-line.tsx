@@ -21,7 +21,12 @@ export function DraftLine({ draft, settled, zone, due, studyId }: DraftLineProps
       <p className="margin:hidden">{due}</p>
       {draft.kind === 'signed-out' && (
         <p className="mt-1">
-          <a className="prose-link" href={paths.signIn(paths.resultSheet(studyId))} target="_blank" rel="noopener">
+          <a
+            className="prose-link"
+            href={paths.signIn(paths.resultSheet(studyId))}
+            target="_blank"
+            rel="noopener"
+          >
             Sign in again in a second tab
           </a>
           , then go on here.
@@ -52,5 +57,7 @@ export function sayDraft(draft: DraftStatus, zone: string): string {
 }
 
 function clockTime(instant: string, zone: string): string {
-  return new Intl.DateTimeFormat('en-GB', { hour: '2-digit', minute: '2-digit', timeZone: zone }).format(new Date(instant))
+  return new Intl.DateTimeFormat('en-GB', { hour: '2-digit', minute: '2-digit', timeZone: zone }).format(
+    new Date(instant),
+  )
 }

@@ -14,7 +14,11 @@ interface Key {
  * Where a key leads from a place in the grid, or null when the key is not the grid's. While the text of a cell is
  * being edited, the keys that move a caret along a line stay with the text.
  */
-export function gridMove(position: number, key: Key, { rows, columns, isEditing }: GridSize & { isEditing: boolean }): number | null {
+export function gridMove(
+  position: number,
+  key: Key,
+  { rows, columns, isEditing }: GridSize & { isEditing: boolean },
+): number | null {
   const row = Math.floor(position / columns)
   const column = position % columns
   const at = (r: number, c: number) => clamp(r, rows) * columns + clamp(c, columns)
@@ -44,14 +48,19 @@ function clamp(index: number, count: number): number {
 }
 
 /** Which places a pasted block fills from a place on, and how many of its cells find none. */
-export function placeBlock(position: number, block: readonly (readonly string[])[], { rows, columns }: GridSize) {
+export function placeBlock(
+  position: number,
+  block: readonly (readonly string[])[],
+  { rows, columns }: GridSize,
+) {
   const row = Math.floor(position / columns)
   const column = position % columns
   const texts = new Map<number, string>()
   let outside = 0
   block.forEach((cells, down) =>
     cells.forEach((text, across) => {
-      if (row + down < rows && column + across < columns) texts.set((row + down) * columns + column + across, text)
+      if (row + down < rows && column + across < columns)
+        texts.set((row + down) * columns + column + across, text)
       else outside += 1
     }),
   )

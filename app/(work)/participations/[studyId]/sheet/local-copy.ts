@@ -18,7 +18,15 @@ const prefix = 'evenlot.sheet.'
  * The copy of one laboratory's sheet before one return: a copy from before a return does not outlive it. Storage
  * may be full or forbidden; then the server's draft alone has to do.
  */
-export function localCopies({ studyId, code, returns }: { studyId: string; code: string; returns: number }): LocalCopies {
+export function localCopies({
+  studyId,
+  code,
+  returns,
+}: {
+  studyId: string
+  code: string
+  returns: number
+}): LocalCopies {
   const key = `${prefix}${studyId}.${code}.${returns}`
   return {
     read() {
@@ -41,7 +49,8 @@ export function localCopies({ studyId, code, returns }: { studyId: string; code:
 /** After a return nothing of the sheet stays behind in the browser. */
 export function forgetLocalCopies(studyId: string): void {
   try {
-    for (const key of Object.keys(sessionStorage)) if (key.startsWith(`${prefix}${studyId}.`)) sessionStorage.removeItem(key)
+    for (const key of Object.keys(sessionStorage))
+      if (key.startsWith(`${prefix}${studyId}.`)) sessionStorage.removeItem(key)
   } catch {
     // Where storage is forbidden there is nothing to forget.
   }

@@ -58,10 +58,16 @@ function SheetNotes({ studyId }: { studyId: string }) {
   return (
     <>
       <MarginNote title="Like a sheet">
-        <p>Arrows and Enter move, F2 edits, Escape takes a change back, Tab leaves. A block copied from a spreadsheet can be pasted.</p>
+        <p>
+          Arrows and Enter move, F2 edits, Escape takes a change back, Tab leaves. A block copied from a
+          spreadsheet can be pasted.
+        </p>
       </MarginNote>
       <MarginNote title="What to write">
-        <p>Below or above what your method can measure, write &lt; or &gt; before the number. Leave a place empty where there is no result, and say why in the remark.</p>
+        <p>
+          Below or above what your method can measure, write &lt; or &gt; before the number. Leave a place
+          empty where there is no result, and say why in the remark.
+        </p>
         <p>
           <DownloadLink href={participationPaths.filledWorkbookHandler(studyId)} format="XLSX">
             The sheet as a workbook

@@ -48,7 +48,10 @@ export const ResultCell = memo(function ResultCell(props: ResultCellProps) {
             isWrong ? 'border-2 border-madder' : 'border-edge',
           )}
         />
-        <span aria-hidden="true" className="pointer-events-none absolute inset-y-0 right-3 hidden items-center font-mono text-ink-soft max-sm:flex">
+        <span
+          aria-hidden="true"
+          className="pointer-events-none absolute inset-y-0 right-3 hidden items-center font-mono text-ink-soft max-sm:flex"
+        >
           {measurand.unit}
         </span>
       </span>
@@ -75,7 +78,9 @@ export const ResultCell = memo(function ResultCell(props: ResultCellProps) {
           ))}
         </span>
       )}
-      {said.kind === 'fine' && isActive && <span className="text-small text-ink-soft sm:hidden">{said.words}</span>}
+      {said.kind === 'fine' && isActive && (
+        <span className="text-small text-ink-soft sm:hidden">{said.words}</span>
+      )}
     </div>
   )
 })

@@ -135,7 +135,14 @@ export function ResultSheet(props: ResultSheetProps) {
             shown={shown}
             onText={grid.onText}
           />
-          <SheetStatus layout={layout} places={places} entries={state.entries} active={grid.active} announced={announced} isLive={isLive} />
+          <SheetStatus
+            layout={layout}
+            places={places}
+            entries={state.entries}
+            active={grid.active}
+            announced={announced}
+            isLive={isLive}
+          />
         </div>
       </MaterialSteps>
       <Field
@@ -159,7 +166,13 @@ export function ResultSheet(props: ResultSheetProps) {
         <SubmitButton pendingLabel="Keeping…" isPending={isLeaving}>
           Check before returning
         </SubmitButton>
-        <DraftLine draft={state.draft} settled={state.settled} zone={zone} due={props.due} studyId={studyId} />
+        <DraftLine
+          draft={state.draft}
+          settled={state.settled}
+          zone={zone}
+          due={props.due}
+          studyId={studyId}
+        />
       </div>
     </form>
   )
@@ -172,12 +185,19 @@ function textOf(value: string | string[] | undefined): string | undefined {
 }
 
 function serverErrors(sent: FormState, problems: readonly SheetError[]): SheetError[] {
-  const fields = Object.entries(sent.errors).flatMap(([field, messages]) => messages.map((message) => ({ field, message })))
+  const fields = Object.entries(sent.errors).flatMap(([field, messages]) =>
+    messages.map((message) => ({ field, message })),
+  )
   return [...(sent.message ? [{ message: sent.message }] : []), ...fields, ...problems]
 }
 
-function findErrors(layout: ReturnLayout, places: ReturnType<typeof listPlaces>, entries: readonly string[]): SheetError[] {
-  if (entries.every((text) => text.trim() === '')) return [{ field: entryName(0), message: 'No result was entered yet.' }]
+function findErrors(
+  layout: ReturnLayout,
+  places: ReturnType<typeof listPlaces>,
+  entries: readonly string[],
+): SheetError[] {
+  if (entries.every((text) => text.trim() === ''))
+    return [{ field: entryName(0), message: 'No result was entered yet.' }]
   return places.flatMap((place, position) => {
     const measurand = layout.measurands.find(({ id }) => id === place.measurandId)
     const said = measurand && describeEntry(entries[position] ?? '', measurand)

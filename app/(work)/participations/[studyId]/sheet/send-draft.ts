@@ -23,7 +23,9 @@ interface ReplyBody {
 /** Puts a draft to its handler; every way in which that can fail is an answer and not a throw. */
 export function createSendDraft({ address, keys }: { address: string; keys: readonly string[] }): SendDraft {
   return async ({ entries, remark }, seenVersion) => {
-    const byKey = Object.fromEntries(keys.flatMap((key, position) => (entries[position] ? [[key, entries[position]]] : [])))
+    const byKey = Object.fromEntries(
+      keys.flatMap((key, position) => (entries[position] ? [[key, entries[position]]] : [])),
+    )
     let response: Response
     let body: ReplyBody
     try {

@@ -26,7 +26,9 @@ export function SheetStatus({ layout, places, entries, active, announced, isLive
     <div className="sticky bottom-0 flex flex-wrap items-baseline justify-between gap-x-6 border-t bg-sheet px-3 py-2 text-small max-sm:hidden">
       <p>
         <span className="font-semibold">{namePlace(layout, place)}</span>{' '}
-        <span className={isWrong ? 'text-madder' : 'text-ink-soft'}>{said.kind === 'empty' ? 'Empty.' : said.words}</span>
+        <span className={isWrong ? 'text-madder' : 'text-ink-soft'}>
+          {said.kind === 'empty' ? 'Empty.' : said.words}
+        </span>
       </p>
       <p className="font-mono text-ink-soft">
         {filled} of {entries.length}

@@ -39,7 +39,9 @@ export type SheetStore = ReturnType<typeof createSheetStore>
  */
 export function createSheetStore({ initial, send, copies, jitter }: Parts) {
   let version = initial.version
-  const opening: DraftStatus = initial.savedAt ? { kind: 'kept', savedAt: initial.savedAt } : { kind: 'untouched' }
+  const opening: DraftStatus = initial.savedAt
+    ? { kind: 'kept', savedAt: initial.savedAt }
+    : { kind: 'untouched' }
   let state: SheetState = {
     entries: initial.entries,
     remark: initial.remark,
@@ -176,5 +178,7 @@ function settle(text: string, commaIs: 'decimal' | 'thousands'): string {
 }
 
 function isEqual(one: SheetContent, other: SheetContent): boolean {
-  return one.remark === other.remark && one.entries.every((text, position) => text === other.entries[position])
+  return (
+    one.remark === other.remark && one.entries.every((text, position) => text === other.entries[position])
+  )
 }

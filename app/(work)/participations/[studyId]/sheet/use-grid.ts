@@ -1,4 +1,12 @@
-import { useCallback, useRef, useState, type ClipboardEvent, type FocusEvent, type KeyboardEvent, type MouseEvent } from 'react'
+import {
+  useCallback,
+  useRef,
+  useState,
+  type ClipboardEvent,
+  type FocusEvent,
+  type KeyboardEvent,
+  type MouseEvent,
+} from 'react'
 import { fieldId } from '@/app/ui/primitives/field-id'
 import { entryName } from '../../entry-names'
 import { gridMove, placeBlock, type GridSize } from './grid-move'

@@ -13,7 +13,14 @@ interface SheetSource {
 }
 
 /** The sheet of this page, taken up again from this tab's own copy where that is newer. */
-export function useSheet({ studyId, code, returns, keys, draftAddress, initial }: SheetSource): [SheetState, SheetStore] {
+export function useSheet({
+  studyId,
+  code,
+  returns,
+  keys,
+  draftAddress,
+  initial,
+}: SheetSource): [SheetState, SheetStore] {
   const [store] = useState(() =>
     createSheetStore({
       initial,

@@ -31,7 +31,10 @@ export default async function UploadPage({ params, searchParams }: PageProps) {
       lead="The file is read and shown to you first. Nothing in it counts as a result until you confirm."
       margin={
         <MarginNote title="The workbook of this study">
-          <p>It has a place for each of the {view.places} results. Your own table will do too, if it has the same titles.</p>
+          <p>
+            It has a place for each of the {view.places} results. Your own table will do too, if it has the
+            same titles.
+          </p>
           <p>
             <DownloadLink href={participationPaths.workbookHandler(studyId)} format="XLSX">
               Download it empty

@@ -34,7 +34,12 @@ export function UploadForm({ action, problem }: UploadFormProps) {
       className="flex max-w-text flex-col items-start gap-4"
     >
       <ErrorSummary errors={errors} />
-      <Field name="file" label="File of results" hint="A workbook (.xlsx) or a table (.csv), up to 5 MB." error={message}>
+      <Field
+        name="file"
+        label="File of results"
+        hint="A workbook (.xlsx) or a table (.csv), up to 5 MB."
+        error={message}
+      >
         {(wiring) => (
           <input
             {...wiring}
@@ -54,6 +59,7 @@ export function UploadForm({ action, problem }: UploadFormProps) {
 function faultOf({ name, size }: File): string | undefined {
   if (name === '') return 'Choose a file first.'
   if (size === 0) return 'The file is empty. Save the workbook and choose it again.'
-  if (size > mostBytes) return 'The file is larger than 5 MB. Send the results alone, without pictures or other sheets.'
+  if (size > mostBytes)
+    return 'The file is larger than 5 MB. Send the results alone, without pictures or other sheets.'
   return undefined
 }

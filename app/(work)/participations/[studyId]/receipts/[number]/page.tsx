@@ -17,11 +17,17 @@ import { ReceiptFacts } from './receipt-facts'
 
 export const metadata: Metadata = { title: 'Receipt' }
 
-export default async function ReceiptPage({ params }: { params: Promise<{ studyId: string; number: string }> }) {
+export default async function ReceiptPage({
+  params,
+}: {
+  params: Promise<{ studyId: string; number: string }>
+}) {
   const actor = await requireActor()
   const { studyId, number } = await params
   if (!/^[1-9]\d{0,5}$/.test(number)) notFound()
-  const shown = await notFoundOnAbsence(readReceipt(await requestContext(), { studyId, number: Number(number) }))
+  const shown = await notFoundOnAbsence(
+    readReceipt(await requestContext(), { studyId, number: Number(number) }),
+  )
   const { view, receipt, rows, file } = shown
   const isLatest = view.receipts[0]?.number === receipt.number
   return (
@@ -32,12 +38,13 @@ export default async function ReceiptPage({ params }: { params: Promise<{ studyI
       margin={
         <MarginNote title="What happens next">
           <p>
-            A copy of this receipt is on its way by mail. When returns close, the coordinator has the statistics
-            computed and may ask about a single value. What is published names no laboratory.
+            A copy of this receipt is on its way by mail. When returns close, the coordinator has the
+            statistics computed and may ask about a single value. What is published names no laboratory.
           </p>
           {view.canReturn && (
             <p>
-              Until the deadline you can replace this return: <a href={paths.resultSheet(studyId)}>open the sheet</a> or{' '}
+              Until the deadline you can replace this return:{' '}
+              <a href={paths.resultSheet(studyId)}>open the sheet</a> or{' '}
               <a href={paths.resultUpload(studyId)}>send a workbook</a>.
             </p>
           )}
@@ -56,7 +63,10 @@ export default async function ReceiptPage({ params }: { params: Promise<{ studyI
       <ReceiptFacts shown={shown} />
       {file && (
         <Section title="The file" note={`SHA-256 ${file.sha256}`}>
-          <DownloadLink href={participationPaths.fileHandler(studyId, receipt.uploadId ?? '')} format={`${Math.ceil(file.size / 1024)} kB`}>
+          <DownloadLink
+            href={participationPaths.fileHandler(studyId, receipt.uploadId ?? '')}
+            format={`${Math.ceil(file.size / 1024)} kB`}
+          >
             {file.fileName}
           </DownloadLink>
         </Section>

@@ -25,7 +25,10 @@ export const submitSheetAction = formAction({
   input,
   run: submitSheet,
   then: ({ studyId, outcome }) => ({
-    go: outcome.outcome === 'received' ? paths.receipt(studyId, outcome.number) : participationPaths.sheetWithProblems(studyId),
+    go:
+      outcome.outcome === 'received'
+        ? paths.receipt(studyId, outcome.number)
+        : participationPaths.sheetWithProblems(studyId),
   }),
 })
 

@@ -62,7 +62,8 @@ function WhatFollows({ review: { view } }: { review: SheetReview }) {
   return (
     <MarginNote title="What happens next">
       <p>
-        You get a receipt with a number, here and by mail. {last ? `This return takes the place of receipt ${last.receiptNumber}. ` : ''}
+        You get a receipt with a number, here and by mail.{' '}
+        {last ? `This return takes the place of receipt ${last.receiptNumber}. ` : ''}
         Until the deadline a return can be replaced by a later one.
       </p>
     </MarginNote>
@@ -79,12 +80,20 @@ function Findings({ review: { view, read } }: { review: SheetReview }) {
         </Notice>
       )}
       {read.coarse.length > 0 && (
-        <Notice tone="info" title={`${countOf(read.coarse.length)} given with fewer decimals than the method asks for`}>
+        <Notice
+          tone="info"
+          title={`${countOf(read.coarse.length)} given with fewer decimals than the method asks for`}
+        >
           <PlaceList names={read.coarse.map((place) => namePlace(view.layout, place))} />
           <p>They are taken as they are. Go back if your laboratory has more digits.</p>
         </Notice>
       )}
-      {censored > 0 && <Notice tone="info" title={`${countOf(censored)} given as below or above a limit, and kept as such`} />}
+      {censored > 0 && (
+        <Notice
+          tone="info"
+          title={`${countOf(censored)} given as below or above a limit, and kept as such`}
+        />
+      )}
     </>
   )
 }

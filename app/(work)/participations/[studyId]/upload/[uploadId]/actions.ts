@@ -14,7 +14,10 @@ export const submitUploadAction = formAction({
   input: place.extend({ remark: z.string() }),
   run: async (context, input) => ({ ...input, outcome: await submitUpload(context, input) }),
   then: ({ studyId, uploadId, outcome }) => ({
-    go: outcome.outcome === 'received' ? paths.receipt(studyId, outcome.number) : participationPaths.upload(studyId, uploadId),
+    go:
+      outcome.outcome === 'received'
+        ? paths.receipt(studyId, outcome.number)
+        : participationPaths.upload(studyId, uploadId),
   }),
 })
 

@@ -15,16 +15,30 @@ import { UploadWatch } from './upload-watch'
 
 export const metadata: Metadata = { title: 'What was read' }
 
-export default async function UploadedPage({ params }: { params: Promise<{ studyId: string; uploadId: string }> }) {
+export default async function UploadedPage({
+  params,
+}: {
+  params: Promise<{ studyId: string; uploadId: string }>
+}) {
   const actor = await requireActor()
   const { studyId, uploadId } = await params
   const preview = await notFoundOnAbsence(previewUpload(await requestContext(), { studyId, uploadId }))
   const { view, upload } = preview
   return (
-    <LaboratoryPage actor={actor} view={view} title={titleOf(preview)} lead={upload.fileName} margin={<FileNote preview={preview} />}>
+    <LaboratoryPage
+      actor={actor}
+      view={view}
+      title={titleOf(preview)}
+      lead={upload.fileName}
+      margin={<FileNote preview={preview} />}
+    >
       <ClosedNotice view={view} />
       {(upload.stage === 'waiting' || upload.stage === 'reading') && (
-        <UploadWatch address={participationPaths.uploadHandler(studyId, uploadId)} stage={upload.stage} places={view.places} />
+        <UploadWatch
+          address={participationPaths.uploadHandler(studyId, uploadId)}
+          stage={upload.stage}
+          places={view.places}
+        />
       )}
       {upload.stage === 'refused' && (
         <>
@@ -54,7 +68,10 @@ function FileNote({ preview: { view, upload } }: { preview: UploadPreview }) {
     <MarginNote title="The file">
       <p>Kept as it came, for your laboratory alone.</p>
       <p>
-        <DownloadLink href={participationPaths.fileHandler(view.studyId, upload.uploadId)} format={`${Math.ceil(upload.size / 1024)} kB`}>
+        <DownloadLink
+          href={participationPaths.fileHandler(view.studyId, upload.uploadId)}
+          format={`${Math.ceil(upload.size / 1024)} kB`}
+        >
           {upload.fileName}
         </DownloadLink>
       </p>

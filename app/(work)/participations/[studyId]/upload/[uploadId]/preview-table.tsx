@@ -34,9 +34,20 @@ export function PreviewTable({ layout, places, hasEarlier }: PreviewTableProps) 
         { key: 'place', header: 'Place', isRowHeader: true, cell: ({ place }) => namePlace(layout, place) },
         { key: 'read', header: 'Read', kind: 'figure', cell: ({ text }) => <Reported text={text} /> },
         ...(hasEarlier
-          ? [{ key: 'before', header: 'Returned before', kind: 'figure' as const, cell: ({ before }: PreviewedPlace) => <Reported text={before ?? ''} /> }]
+          ? [
+              {
+                key: 'before',
+                header: 'Returned before',
+                kind: 'figure' as const,
+                cell: ({ before }: PreviewedPlace) => <Reported text={before ?? ''} />,
+              },
+            ]
           : []),
-        { key: 'state', header: 'State', cell: ({ state }) => <Status tone={states[state].tone}>{states[state].words}</Status> },
+        {
+          key: 'state',
+          header: 'State',
+          cell: ({ state }) => <Status tone={states[state].tone}>{states[state].words}</Status>,
+        },
         { key: 'cell', header: 'Cell', cell: ({ cell }) => <span className="font-mono">{cell ?? ''}</span> },
       ]}
     />
@@ -46,6 +57,7 @@ export function PreviewTable({ layout, places, hasEarlier }: PreviewTableProps) 
 function Reported({ text }: { text: string }) {
   if (text === '') return <span className="font-sans text-ink-soft">–</span>
   const read = readReportedValue(text)
-  const value = read.kind === 'number' ? read.decimal : read.kind === 'censored' ? read.mark + read.decimal : text
+  const value =
+    read.kind === 'number' ? read.decimal : read.kind === 'censored' ? read.mark + read.decimal : text
   return <Figure value={value} />
 }

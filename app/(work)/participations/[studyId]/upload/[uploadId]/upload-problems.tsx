@@ -34,7 +34,11 @@ export function UploadProblems({ problems }: { problems: readonly CellProblem[] 
       </h2>
       <Notice
         tone="danger"
-        title={problems.length === 1 ? 'One thing has to be mended in the file' : `${problems.length} things have to be mended in the file`}
+        title={
+          problems.length === 1
+            ? 'One thing has to be mended in the file'
+            : `${problems.length} things have to be mended in the file`
+        }
       >
         <p>Nothing of the file was returned. Mend the cells below, save it and send it again.</p>
       </Notice>
@@ -43,16 +47,24 @@ export function UploadProblems({ problems }: { problems: readonly CellProblem[] 
           key={cause}
           caption={`${cause} (${group.length})`}
           rows={group}
-          rowKey={(problem) => `${problem.sheet}!${problem.cell}!${problem.column}!${problem.code}!${problem.message}`}
+          rowKey={(problem) =>
+            `${problem.sheet}!${problem.cell}!${problem.column}!${problem.code}!${problem.message}`
+          }
           columns={[
             {
               key: 'where',
               header: 'Where',
               isRowHeader: true,
-              cell: ({ sheet, cell }) => <span className="font-mono">{cell === null ? sheet : `${sheet}!${cell}`}</span>,
+              cell: ({ sheet, cell }) => (
+                <span className="font-mono">{cell === null ? sheet : `${sheet}!${cell}`}</span>
+              ),
             },
             { key: 'column', header: 'Column', cell: ({ column }) => column ?? '' },
-            { key: 'found', header: 'Found', cell: ({ found, cell }) => (cell === null ? found : found === '' ? 'nothing' : `“${found}”`) },
+            {
+              key: 'found',
+              header: 'Found',
+              cell: ({ found, cell }) => (cell === null ? found : found === '' ? 'nothing' : `“${found}”`),
+            },
             { key: 'wanted', header: 'Wanted', cell: ({ wanted }) => wanted },
             { key: 'advice', header: 'What to do', cell: adviceOf },
           ]}

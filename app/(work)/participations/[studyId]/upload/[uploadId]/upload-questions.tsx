@@ -22,7 +22,10 @@ export function UploadQuestions({ studyId, uploadId, questions }: UploadQuestion
   const [first] = questions
   if (!first) return null
   const [asDecimal, asThousands] = first.readings
-  const title = questions.length === 1 ? 'One value can be read in two ways' : `${questions.length} values can be read in two ways`
+  const title =
+    questions.length === 1
+      ? 'One value can be read in two ways'
+      : `${questions.length} values can be read in two ways`
   return (
     <Notice tone="warn" title={title}>
       <ul className="my-1.5">

@@ -31,13 +31,19 @@ export function UploadResult({ preview, check }: UploadResultProps) {
         </Notice>
       )}
       {!returned && isClean && (
-        <Notice tone="info" title={`${check.values.length} of ${view.places} results were read. Nothing has been returned yet.`}>
+        <Notice
+          tone="info"
+          title={`${check.values.length} of ${view.places} results were read. Nothing has been returned yet.`}
+        >
           {view.receipts.length > 0 && (
             <p>
-              Against receipt {view.receipts[0]?.receiptNumber}: {count('changed')} changed, {count('new')} new, {count('same')} the same.
+              Against receipt {view.receipts[0]?.receiptNumber}: {count('changed')} changed, {count('new')}{' '}
+              new, {count('same')} the same.
             </p>
           )}
-          {view.draft && <p>There is a draft on the sheet too. Returning this file puts it in the draft’s place.</p>}
+          {view.draft && (
+            <p>There is a draft on the sheet too. Returning this file puts it in the draft’s place.</p>
+          )}
         </Notice>
       )}
       <UploadProblems problems={check.problems} />
@@ -54,10 +60,17 @@ export function UploadResult({ preview, check }: UploadResultProps) {
       {check.missing.length > 0 && isClean && (
         <Notice
           tone="warn"
-          title={check.missing.length === 1 ? 'One result is missing; say why in the remark below' : `${check.missing.length} results are missing; say why in the remark below`}
+          title={
+            check.missing.length === 1
+              ? 'One result is missing; say why in the remark below'
+              : `${check.missing.length} results are missing; say why in the remark below`
+          }
         />
       )}
-      <Section title="Place by place" note="As the sheet has them, with what was read from the file beside each.">
+      <Section
+        title="Place by place"
+        note="As the sheet has them, with what was read from the file beside each."
+      >
         <PreviewTable layout={view.layout} places={places} hasEarlier={view.receipts.length > 0} />
       </Section>
       {!returned && isClean && (

@@ -49,8 +49,8 @@ export function UploadWatch({ address, stage: initial, places }: UploadWatchProp
         {words[stage]}
       </p>
       <p className="text-ink-soft">
-        It is then compared with the {places} results that are asked. This takes a few seconds; you can leave the page
-        and come back to it.
+        It is then compared with the {places} results that are asked. This takes a few seconds; you can leave
+        the page and come back to it.
       </p>
       <noscript>
         <meta httpEquiv="refresh" content="3" />
