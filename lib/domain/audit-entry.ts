@@ -86,7 +86,11 @@ export function findBreak(entries: readonly AuditEntry[], head: { sequence: numb
     previousHash = entry.hash
     expected += 1
   }
-  if (head && (head.sequence !== expected - 1 || head.hash !== previousHash))
-    return { sequence: expected, reason: `the chain once reached entry ${head.sequence}, and entries after ${expected - 1} are missing` }
+  const last = expected - 1
+  if (head && head.sequence > last)
+    return { sequence: expected, reason: `the chain once reached entry ${head.sequence}, and entries after ${last} are missing` }
+  if (head && head.sequence < last)
+    return { sequence: head.sequence + 1, reason: `entry ${head.sequence + 1} was added past the end of the chain` }
+  if (head && head.hash !== previousHash) return { sequence: last, reason: `entry ${last} is not the one the chain ended with` }
   return null
 }

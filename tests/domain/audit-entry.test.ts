@@ -94,6 +94,24 @@ describe('a chain', () => {
     expect(findBreak([], head)).toMatchObject({ sequence: 1 })
   })
 
+  it('breaks where an entry was added past the end, however right its digest', () => {
+    const added = chainOf(6)
+    expect(findBreak(added, head)).toEqual({
+      sequence: 6,
+      reason: 'entry 6 was added past the end of the chain',
+    })
+  })
+
+  it('breaks where the last entry was written anew, since the head remembers another', () => {
+    const last = entries.at(-1)
+    if (!last) throw new Error('no last entry')
+    const forged = { ...last, body: canonicalJson({ reason: 'another end' }) }
+    expect(findBreak([...entries.slice(0, -1), { ...forged, hash: hashEntry(forged) }], head)).toEqual({
+      sequence: 5,
+      reason: 'entry 5 is not the one the chain ended with',
+    })
+  })
+
   it('breaks where two entries changed places', () => {
     const [a, b, c, d, e] = entries
     if (!a || !b || !c || !d || !e) throw new Error('too short')

@@ -13,6 +13,7 @@ export async function confirmPublication(context: Context, { studyId, digest }: 
   return changeStudyState(context, {
     studyId,
     action: 'publication.confirm',
+    from: 'in-review',
     to: 'published',
     alongside: async (trx, study, role) => {
       const proposal = await findOpenProposal(trx, studyId)

@@ -11,6 +11,7 @@ export async function sendToReview(context: Context, { studyId }: { studyId: str
   await changeStudyState(context, {
     studyId,
     action: 'study.review',
+    from: 'closed',
     to: 'in-review',
     alongside: async (trx, _study, role) => {
       const analysis = await findCurrentAnalysis(trx, studyId)
@@ -32,6 +33,7 @@ export async function takeBackFromReview(context: Context, { studyId, reason }: 
   await changeStudyState(context, {
     studyId,
     action: 'study.review',
+    from: 'in-review',
     to: 'closed',
     reason,
     alongside: async (trx, _study, role) => {

@@ -5,11 +5,13 @@ import type { Context } from '@/lib/context'
 import type { Role } from '@/lib/domain/actor'
 import { NotFound } from '@/lib/domain/errors'
 import { authorise, type Action } from '@/lib/domain/permissions'
-import { requireStep, type StudyState } from '@/lib/domain/study-states'
+import { requireState, requireStep, type StudyState } from '@/lib/domain/study-states'
 
 interface Step<Result> {
   readonly studyId: string
   readonly action: Action
+  /** Two steps may lead to one state, such as opening and reopening; each has its own beginning. */
+  readonly from: StudyState
   readonly to: StudyState
   readonly reason?: string
   /** What goes with the step, in its transaction; it refuses by throwing. */
@@ -22,6 +24,7 @@ export async function changeStudyState<Result>(context: Context, step: Step<Resu
     const study = await findStudyFor(trx, context.actor, step.studyId, { lock: 'update' })
     if (!study) throw new NotFound('study')
     const role = authorise(context.actor, step.action, study)
+    requireState(study.state, step.from)
     requireStep(study.state, step.to)
     const result = await step.alongside(trx, study, role)
     await insertState(trx, { studyId: step.studyId, state: step.to, personId: context.actor.personId, reason: step.reason })

@@ -13,6 +13,7 @@ export async function closeStudy(context: Context, { studyId, reason }: { studyI
   await changeStudyState(context, {
     studyId,
     action: 'study.close',
+    from: 'open',
     to: 'closed',
     reason,
     alongside: async (trx, study, role) => {

@@ -12,6 +12,7 @@ export async function openStudy(context: Context, { studyId }: { studyId: string
   return changeStudyState(context, {
     studyId,
     action: 'study.open',
+    from: 'draft',
     to: 'open',
     alongside: async (trx, study, role) => {
       requireFuture(study.deadline, await readClock(trx))

@@ -17,6 +17,7 @@ export async function reopenStudy(
   await changeStudyState(context, {
     studyId,
     action: 'study.close',
+    from: 'closed',
     to: 'open',
     reason,
     alongside: async (trx, study, role) => {

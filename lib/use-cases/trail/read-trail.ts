@@ -2,7 +2,7 @@ import { findChainHead, listAuditEntries, listCodesByParticipant } from '@/db/qu
 import { findPersonNames } from '@/db/queries/person-names'
 import { findStudyFor, type StudyRecord } from '@/db/queries/studies'
 import type { Context } from '@/lib/context'
-import { findBreak, type AuditEntry } from '@/lib/domain/audit-entry'
+import { chainStart, findBreak, type AuditEntry } from '@/lib/domain/audit-entry'
 import { NotFound } from '@/lib/domain/errors'
 import { authorise } from '@/lib/domain/permissions'
 
@@ -33,7 +33,8 @@ export async function readTrail(context: Context, { studyId }: { studyId: string
   return {
     study,
     entries: entries.map((entry) => ({ ...entry, actor: actorWords(entry, names) })),
-    verdict: findBreak(entries, head),
+    // Without its head a chain that has entries cannot be known to be whole.
+    verdict: findBreak(entries, head ?? { sequence: 0, hash: chainStart }),
     head: head?.hash ?? null,
     subjects: new Map([...names, ...codes]),
   }
