@@ -67,7 +67,7 @@ export async function inviteAndOpen(
 
   await page.locator('summary', { hasText: 'Send the invitations' }).click()
   await page.getByRole('button', { name: `Send ${laboratories.length} invitations now` }).click()
-  await expect(page.getByText(/^The study is open for returns/i).first()).toBeVisible()
+  await expect(page.getByText(`${laboratories.length} invitations are on their way`)).toBeVisible()
 }
 
 /** Closes the round before its deadline, has the statistics computed and puts them before the committee. */
