@@ -51,7 +51,8 @@ function handler<Params extends ZodType>(
       baseUrl: parts().config.baseUrl,
       run: async () => {
         const schema = (params ?? z.object({})) as Params
-        return run({ request, params: schema.parse(await segment.params) })
+        // A route without a segment in its path is handed no parameters at all.
+        return run({ request, params: schema.parse((await segment.params) ?? {}) })
       },
     })
 }

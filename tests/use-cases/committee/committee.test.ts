@@ -63,7 +63,7 @@ describe('the committee of a study', () => {
   it('lets go of a member, from whom the study is gone at once', async () => {
     const { studyId } = await draft(world)
     await appointCommitteeMember(asCoordinator, { studyId, ...member })
-    const [{ personId }] = (await memberOf(studyId)) as [{ personId: string }]
+    const { personId } = (await memberOf(studyId))[0]!
     expect(
       await auditedBy(world, studyId, () => dismissCommitteeMember(asCoordinator, { studyId, personId })),
     ).toEqual([
