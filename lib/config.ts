@@ -1,3 +1,4 @@
+import { isIP } from 'node:net'
 import { z } from 'zod'
 
 /** What the web server and the worker need to know of the place they run in. */
@@ -9,6 +10,8 @@ export interface Config {
   smtpUrl: string
   mailFrom: string
   port: number
+  /** Addresses of reverse proxies whose word about a client's address is taken. */
+  trustedProxies: string[]
 }
 
 /** Only the starting command holds the owner's login, to migrate; it does not hand it on. */
@@ -36,6 +39,7 @@ export function readConfig(env: Environment): Config {
     smtpUrl: read.SMTP_URL,
     mailFrom: read.MAIL_FROM,
     port: read.PORT,
+    trustedProxies: read.TRUSTED_PROXY,
   }
 }
 
@@ -79,6 +83,13 @@ const productVariables = z.object({
     .min(1, 'Give a port from 1 to 65535.')
     .max(65535, 'Give a port from 1 to 65535.')
     .default(3000),
+  TRUSTED_PROXY: z
+    .string()
+    .default('')
+    .transform((text) => text.split(/[\s,]+/).filter(Boolean))
+    .refine((addresses) => addresses.every((each) => isIP(each) > 0), {
+      message: 'Give the addresses of your reverse proxies, such as 127.0.0.1, 10.0.0.7; or leave it out.',
+    }),
 })
 
 const startVariables = productVariables.extend({

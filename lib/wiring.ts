@@ -16,8 +16,6 @@ export interface Parts {
   readonly jobs: Jobs
   readonly random: Random
   readonly secrets: LinkSecrets
-  /** Addresses of reverse proxies whose word about a client's address is taken. */
-  readonly trustedProxies: readonly string[]
 }
 
 // The server's bundles each hold their own copy of this module; one process must still have one pool.
@@ -26,10 +24,10 @@ const kept = globalThis as { [place]?: Parts }
 
 /** Made at the first call, so that building the product needs no environment. */
 export function parts(): Parts {
-  return (kept[place] ??= makeParts(readConfig(process.env), listTrustedProxies(process.env.TRUSTED_PROXY)))
+  return (kept[place] ??= makeParts(readConfig(process.env)))
 }
 
-export function makeParts(config: Config, trustedProxies: readonly string[] = []): Parts {
+export function makeParts(config: Config): Parts {
   return {
     config: { ...config, baseUrl: new URL(config.baseUrl).origin },
     db: createDatabase(config.databaseUrl, { applicationName: 'evenlot-app' }),
@@ -37,7 +35,6 @@ export function makeParts(config: Config, trustedProxies: readonly string[] = []
     jobs: createJobs(),
     random: { below: (limit) => randomInt(limit), uuid: () => randomUUID() },
     secrets: createLinkSecrets(config.authSecret),
-    trustedProxies,
   }
 }
 
@@ -49,8 +46,4 @@ export function systemContext({ db, jobs, random, secrets }: Parts = parts()): A
 /** Gives the connections back; for commands and for a process that is asked to stop. */
 export async function closeParts({ db, readerDb }: Parts = parts()): Promise<void> {
   await Promise.all([db.destroy(), readerDb.destroy()])
-}
-
-function listTrustedProxies(typed = ''): string[] {
-  return typed.split(/[\s,]+/).filter(Boolean)
 }

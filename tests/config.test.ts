@@ -35,7 +35,15 @@ describe('the environment', () => {
       smtpUrl: complete.SMTP_URL,
       mailFrom: complete.MAIL_FROM,
       port: 8080,
+      trustedProxies: [],
     })
+  })
+
+  it('takes the addresses of reverse proxies, and nothing that is no address', () => {
+    expect(readConfig({ ...complete, TRUSTED_PROXY: '127.0.0.1, 10.0.0.7' }).trustedProxies).toEqual(['127.0.0.1', '10.0.0.7'])
+    expect(faultsOf({ ...complete, TRUSTED_PROXY: 'our-proxy' })).toEqual([
+      'TRUSTED_PROXY: Give the addresses of your reverse proxies, such as 127.0.0.1, 10.0.0.7; or leave it out.',
+    ])
   })
 
   it('never hands the owner login to web and worker', () => {

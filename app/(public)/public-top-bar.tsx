@@ -7,7 +7,6 @@ export function PublicTopBar({ current }: { current?: 'published' }) {
     <TopBar
       links={[
         { name: 'Published', href: paths.published(), isCurrent: current === 'published' },
-        { name: 'Studies', href: paths.studies() },
         { name: 'Sign in', href: paths.signIn() },
       ]}
     />

@@ -49,7 +49,7 @@ export async function invitationAction(_previous: InvitationState, form: FormDat
 
 async function accept(token: string): Promise<InvitationState> {
   const { address } = await answerInvitation(anonymousContext(), { token, answer: 'accepted' })
-  const { trustedProxies } = parts()
+  const { trustedProxies } = parts().config
   try {
     await requestSignInLink(parts(), { address, peer: readPeer(await headers(), trustedProxies) })
   } catch (error) {

@@ -12,6 +12,7 @@ export async function migrateDatabase(ownerUrl: string): Promise<string[]> {
     const { error, results = [] } = await migrator(db).migrateToLatest()
     if (error) throw error
     await installQueues(db)
+    await showRecordToApp(db)
     return results.filter(({ status }) => status === 'Success').map(({ migrationName }) => migrationName)
   } finally {
     await db.destroy()
@@ -25,6 +26,12 @@ export function migrator(db: Kysely<DB>): Migrator {
     // In a schema of its own, so that grants on the product's tables never reach the migrator's.
     migrationTableSchema: 'migrations',
   })
+}
+
+/** The web server says that it is ready only when the database is at the migration it was built for. */
+async function showRecordToApp(db: Kysely<DB>): Promise<void> {
+  await sql`grant usage on schema migrations to app`.execute(db)
+  await sql`grant select on migrations.kysely_migration to app`.execute(db)
 }
 
 /** Migrations grant to these two logins; without them the failure would name a statement instead of the remedy. */

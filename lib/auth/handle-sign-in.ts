@@ -27,7 +27,7 @@ async function signIn(request: Request, parts: Parts): Promise<Response> {
       address: text('address'),
       proof: form.has('token') ? { token: text('token') } : { code: text('code') },
       earlierSession: readSessionCookie(request.headers, parts.config.baseUrl),
-      peer: readPeer(request.headers, parts.trustedProxies),
+      peer: readPeer(request.headers, parts.config.trustedProxies),
     })
     const cookies = [setCookie, ...clearedJourneyCookies(parts.config.baseUrl)]
     return goTo(safePath(next, paths.studies()), cookies)

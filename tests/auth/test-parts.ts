@@ -23,13 +23,13 @@ export function createTestParts(
       smtpUrl: 'smtp://localhost:1',
       mailFrom: 'Evenlot <studies@evenlot.example>',
       port: 3999,
+      trustedProxies,
     },
     db: database.app,
     readerDb: database.reader,
     jobs: createJobs(),
     random: { below: () => 0, uuid: () => randomUUID.call(globalThis.crypto) },
     secrets: createLinkSecrets(authSecret),
-    trustedProxies,
   }
 }
 

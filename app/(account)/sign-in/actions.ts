@@ -22,7 +22,7 @@ const input = z.object({
 export const requestLinkAction = publicFormAction({
   input,
   run: async (_context, { address: typed, next }) => {
-    const peer = readPeer(await headers(), parts().trustedProxies)
+    const peer = readPeer(await headers(), parts().config.trustedProxies)
     const { address } = await requestSignInLink(parts(), { address: typed, peer })
     const jar = await cookies()
     for (const cookie of journeyCookies(

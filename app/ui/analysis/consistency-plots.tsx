@@ -7,8 +7,8 @@ import { consistencyData } from './consistency-data'
 import { noFigure, showStatistic } from './show-quantity'
 
 const words = {
-  h: { title: 'Between laboratories, h', apart: 'means' },
-  k: { title: 'Within laboratories, k', apart: 'scatters' },
+  h: { title: 'Between laboratories, h', one: 'its mean', many: 'their means' },
+  k: { title: 'Within laboratories, k', one: 'its scatter', many: 'their scatter' },
 } as const
 
 /** The two consistency plots of one measurand, each with its table. */
@@ -37,7 +37,9 @@ function summaryOf({ laboratories }: Data, statistic: 'h' | 'k'): string {
   const cells = laboratories.flatMap(({ code, cells }) => cells.flatMap((cell) => (cell?.beyond && cell.beyond !== '5 %' ? [`${code} ${cell.material}`] : [])))
   if (cells.length === 0) return 'No cell lies beyond the 1 % critical value.'
   const names = cells.length > 8 ? `${cells.slice(0, 8).join(', ')} and ${cells.length - 8} more` : cells.join(', ')
-  return `${cells.length === 1 ? 'One cell lies' : `${cells.length} cells lie`} beyond the 1 % critical value by their ${words[statistic].apart}: ${names}.`
+  return cells.length === 1
+    ? `One cell lies beyond the 1 % critical value by ${words[statistic].one}: ${names}.`
+    : `${cells.length} cells lie beyond the 1 % critical value by ${words[statistic].many}: ${names}.`
 }
 
 function ConsistencyTable({ data }: { data: Data }) {

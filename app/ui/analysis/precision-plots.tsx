@@ -4,7 +4,7 @@ import { ChartFrame } from '../charts/chart-frame'
 import { PrecisionBars } from '../charts/precision-bars'
 import { DataTable } from '../primitives/data-table'
 import { Tag } from '../primitives/tag'
-import { showFigures, showPValue } from './show-quantity'
+import { sayPValue, showFigures } from './show-quantity'
 
 /** How the variance of each material splits up. */
 export function VarianceShares({ document }: { document: AnalysisDocument }) {
@@ -94,5 +94,5 @@ export function CellMeans({ material, unit, decimals }: { material: MaterialAnal
 function equalitySummary({ equality }: MaterialAnalysis): string {
   if (equality.pValue === null) return 'The scatter within the laboratories is unknown, so their means cannot be compared.'
   const verdict = equality.pValue < 0.05 ? 'Averages this far apart would be rare' : 'Averages this far apart are usual'
-  return `${verdict} if all laboratories agreed: F gives p = ${showPValue(equality.pValue)}, the range of the means p = ${showPValue(equality.rangePValue)}. The curve is a picture; these two figures decide.`
+  return `${verdict} if all laboratories agreed: F gives ${sayPValue(equality.pValue)}, the range of the means ${sayPValue(equality.rangePValue)}. The curve is a picture; these two figures decide.`
 }

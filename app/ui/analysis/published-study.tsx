@@ -23,7 +23,7 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
       <Statement snapshot={snapshot} measurand={measurand} />
       <PrecisionReport measurand={measurand} />
       <ConsistencyPlots document={measurand.document} />
-      <Section title="Outlier tests" note="A test proposes; a person decides.">
+      <Section title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
         <OutlierTests document={measurand.document} />
       </Section>
       <Section title="Cells set aside" note="By code, with the reason; their results are in the coded data.">

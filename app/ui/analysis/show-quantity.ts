@@ -15,6 +15,12 @@ export function showPValue(value: number | null): string {
   return formatFigure(value < 0.1 ? String(Number(value.toPrecision(2))) : value.toFixed(2))
 }
 
+/** The same within a sentence: "p = 0.012" or "p < 0.0001". */
+export function sayPValue(value: number | null): string {
+  if (value === null) return 'p unknown'
+  return value < 0.0001 ? 'p\u00a0<\u00a00.0001' : `p\u00a0=\u00a0${showPValue(value)}`
+}
+
 /** A mean square, component or deviance to a number of significant figures, written out. */
 export function showFigures(value: number | null, figures = 4): string {
   if (value === null) return noFigure

@@ -51,7 +51,7 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
         <>
           <MeasurandTabs measurands={analysis.measurands} chosen={measurand.measurandId} />
           <ConsistencyPlots document={measurand.document} />
-          <Section title="Outlier tests" note="A test proposes; a person decides.">
+          <Section title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
             <OutlierTests document={measurand.document} />
           </Section>
           <Section title="Cells set aside" note="By the coordinators, each with the reason.">

@@ -37,7 +37,7 @@ export default async function ScrutinyPage({ params, searchParams }: PageProps<'
           <ConsistencyPlots document={measurand.document} />
           <Section
             title="Outlier tests"
-            note="A test proposes; a person decides. Nothing is left out by a test."
+            note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
             actions={
               <>
                 <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`}>Coded results</DownloadLink>

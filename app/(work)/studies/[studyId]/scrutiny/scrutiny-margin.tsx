@@ -40,9 +40,9 @@ function CellNotes({ measurand }: { measurand: MeasurandReview }) {
         <MarginNote key={`${cell.laboratory} ${material}`} title={<><Tag code={cell.laboratory} /> {material}</>}>
           <p>
             This cell lies apart from the others:
-            {h && ` h = ${showStatistic(cell.h)}, beyond ${h}`}
+            {h && ` h\u00a0=\u00a0${showStatistic(cell.h)}, beyond ${h}`}
             {h && k && ' and'}
-            {k && ` k = ${showStatistic(cell.k)}, beyond ${k}`}.
+            {k && ` k\u00a0=\u00a0${showStatistic(cell.k)}, beyond ${k}`}.
           </p>
         </MarginNote>
       ))}
