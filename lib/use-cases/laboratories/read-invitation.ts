@@ -16,11 +16,6 @@ export type InvitationView =
       asked: { measurands: string[]; materials: number; results: number }
     }
 
-export interface InvitationPlace {
-  readonly studyId: string
-  readonly invitationId: string
-}
-
 export async function readInvitation(context: AnonymousContext, { token }: { token: string }): Promise<InvitationView> {
   const found = await locateInvitation(context, token)
   if (!found) return { state: 'unknown' }
