@@ -23,9 +23,11 @@ import { twoSampleBlock } from '@/lib/statistics/document/two-sample-blocks'
  * gives the same document, byte for byte. What cannot be computed is `null` with
  * its reason; no number is ever NaN or infinite.
  *
- * @throws {RangeError} for a text that is no decimal number.
+ * @throws {RangeError} for a text that is no decimal number, for inner levels that
+ *   repeat or take a reserved name, and for a result without a label for each.
  */
 export function analyse(input: AnalysisInput): AnalysisDocument {
+  requireNesting(input)
   const groups = byMeasurandAndMaterial(input.results)
   const measurands = groups.map(({ measurand, materials }) => ({
     measurand,
@@ -60,6 +62,23 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
   }))
   assertFinite(analysed, 'document')
   return analysed
+}
+
+/** Names the analysis itself gives to the ends of the nesting. */
+const RESERVED = ['laboratory', 'replicate', 'residual']
+
+function requireNesting({ nesting, results }: AnalysisInput): void {
+  if (new Set([...nesting, ...RESERVED]).size !== nesting.length + RESERVED.length) {
+    throw new RangeError(
+      `inner levels must differ from each other and from ${RESERVED.join(', ')}: ${nesting.join(', ')}`,
+    )
+  }
+  const odd = results.find(({ groups }) => groups.length !== nesting.length)
+  if (odd !== undefined) {
+    throw new RangeError(
+      `a result of ${odd.laboratory} has ${odd.groups.length} labels for ${nesting.length} inner levels`,
+    )
+  }
 }
 
 function byMeasurand(): never {

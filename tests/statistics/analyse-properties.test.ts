@@ -81,6 +81,16 @@ describe('analyse', () => {
     })
   })
 
+  it('refuses levels and labels that do not fit together', () => {
+    const row = { laboratory: 'A', text: '1', groups: ['1'] }
+    expect(() => analyseRows([row], { nesting: ['residual'] })).toThrow(RangeError)
+    expect(() => analyseRows([{ ...row, groups: ['1', '1'] }], { nesting: ['day', 'day'] })).toThrow(
+      RangeError,
+    )
+    expect(() => analyseRows([row], {})).toThrow('a result of A has 1 labels for 0 inner levels')
+    expect(() => analyseRows([{ ...row, text: '1,5' }], nested)).toThrow(RangeError)
+  })
+
   it('scales with the unit', () => {
     const rows = setRows('syn_nested3', ['day'])
     const scaled = rows.map((row) => ({ ...row, text: `${row.text}e3` }))
@@ -104,7 +114,8 @@ describe('analyse', () => {
     })
     fc.assert(
       fc.property(fc.array(result, { maxLength: 24 }), fc.boolean(), (rows, isNested) => {
-        const document = analyseRows(rows, isNested ? nested : {})
+        const labelled = rows.map((row) => ({ ...row, groups: isNested ? row.groups : [] }))
+        const document = analyseRows(labelled, isNested ? nested : {})
         for (const [path, value] of leaves(document)) {
           if (typeof value === 'number' && !Number.isFinite(value)) throw new Error(`${path} is ${value}`)
         }
