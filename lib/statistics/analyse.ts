@@ -64,8 +64,8 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
   return analysed
 }
 
-/** Names the analysis itself gives to the ends of the nesting. */
-const RESERVED = ['laboratory', 'replicate', 'residual']
+/** Names the analysis itself gives to the outermost and the innermost source of variation. */
+const RESERVED = ['laboratory', 'residual']
 
 function requireNesting({ nesting, results }: AnalysisInput): void {
   if (new Set([...nesting, ...RESERVED]).size !== nesting.length + RESERVED.length) {
