@@ -1,6 +1,6 @@
 import { studyStates, type StudyState } from './study-states'
 
-export const studySorts = ['need', 'name', 'deadline', 'state'] as const
+const studySorts = ['need', 'name', 'deadline', 'state'] as const
 export type StudySort = (typeof studySorts)[number]
 
 export interface StudiesWish {
@@ -46,7 +46,7 @@ export function arrangeStudies<Entry extends ListedStudy>(
 }
 
 /** How soon a study needs the person, the smaller the sooner. */
-export function needOf({ study, as }: ListedStudy, now: Date): number {
+function needOf({ study, as }: ListedStudy, now: Date): number {
   const isOver = study.deadline.dueAt <= now
   if (study.state === 'open' && isOver) return as === 'laboratory' ? 1 : 0
   if (study.state === 'open') return as === 'committee' ? 5 : 2

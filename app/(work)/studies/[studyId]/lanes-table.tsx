@@ -47,7 +47,15 @@ function columns(round: ReturnsAnswer): Column<LaneAnswer>[] {
       key: 'code',
       header: 'Laboratory',
       isRowHeader: true,
-      cell: ({ code }) => <Tag code={code} label="Laboratory" />,
+      cell: (lane) => (
+        <>
+          <Tag code={lane.code} label="Laboratory" />
+          {/* On a narrow screen the column of states lies beyond the edge. */}
+          <span aria-hidden="true" className="mt-0.5 block sm:hidden">
+            <LaneStatus lane={lane} round={round} />
+          </span>
+        </>
+      ),
     },
     { key: 'accepted', header: 'Accepted', cell: ({ acceptedAt }) => <Day at={acceptedAt} zone={zone} /> },
     { key: 'draft', header: 'Draft', cell: ({ draftSavedAt }) => <Day at={draftSavedAt} zone={zone} /> },
@@ -66,12 +74,14 @@ function columns(round: ReturnsAnswer): Column<LaneAnswer>[] {
     {
       key: 'state',
       header: 'State',
-      cell: (lane) => {
-        const { tone, words } = describeLane(lane, round)
-        return <Status tone={tone}>{words}</Status>
-      },
+      cell: (lane) => <LaneStatus lane={lane} round={round} />,
     },
   ]
+}
+
+function LaneStatus({ lane, round }: { lane: LaneAnswer; round: ReturnsAnswer }) {
+  const { tone, words } = describeLane(lane, round)
+  return <Status tone={tone}>{words}</Status>
 }
 
 function Day({ at, zone }: { at: string | null; zone: string }) {

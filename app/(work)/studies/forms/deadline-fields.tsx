@@ -23,7 +23,7 @@ export function DeadlineFields({ answer, zones, begun, hint }: DeadlineFieldsPro
   const choiceError = answer.errorOf('choice')
   return (
     <div className="flex flex-col gap-4">
-      <div className="grid gap-4 sm:grid-cols-2">
+      <div className="grid items-end gap-4 sm:grid-cols-2">
         <FormField answer={answer} name="localTime" label="Day and time" hint={hint}>
           {(wiring) => (
             <TextInput

@@ -30,7 +30,7 @@ export function LayoutRows({ answer, begun }: { answer: FormAnswer; begun: Begun
         most={10}
         spare={1}
         row={(prefix, row, of) => (
-          <div className="grid gap-3 sm:grid-cols-[minmax(0,2fr)_minmax(0,1fr)_6rem_8.5rem]">
+          <div className="grid grid-cols-2 gap-3 max-sm:[&>*:first-child]:col-span-2 sm:grid-cols-[minmax(0,2fr)_minmax(0,1fr)_6rem_8.5rem]">
             <TextCell {...cell(prefix, 'name', { word: 'Name', of }, row.name)} />
             <TextCell {...cell(prefix, 'unit', { word: 'Unit', of }, row.unit)} />
             <TextCell

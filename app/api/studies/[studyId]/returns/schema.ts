@@ -2,7 +2,7 @@ import { z } from 'zod'
 
 const instant = z.iso.datetime({ offset: true })
 
-export const laneAnswer = z.object({
+const laneAnswer = z.object({
   code: z.string(),
   state: z.enum(['returned', 'in draft', 'not begun', 'late']),
   acceptedAt: instant.nullable(),

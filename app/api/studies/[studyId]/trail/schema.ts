@@ -1,7 +1,7 @@
 import { z } from 'zod'
 
 /** An entry as it is hashed, so that whoever holds the file can verify the chain without this service. */
-export const trailEntryAnswer = z.object({
+const trailEntryAnswer = z.object({
   studyId: z.uuid(),
   sequence: z.number().int(),
   at: z.iso.datetime(),
