@@ -25,16 +25,16 @@ export function ReportedTable({ layout, texts, caption }: ReportedTableProps) {
         <caption className="sr-only">{caption}</caption>
         <thead>
           <tr className="border-b text-ink-soft">
-            <th scope="col" className="h-9 min-w-32 px-4 text-left font-semibold">
+            <th scope="col" className="h-9 px-4 sm:min-w-32 text-left font-semibold">
               Material
             </th>
             {hasLevels && (
-              <th scope="col" className="h-9 min-w-44 px-4 text-left font-semibold">
+              <th scope="col" className="h-9 px-4 sm:min-w-44 text-left font-semibold">
                 Test result
               </th>
             )}
             {layout.measurands.map((measurand) => (
-              <th key={measurand.id} scope="col" className="h-9 min-w-40 px-4 text-right font-semibold">
+              <th key={measurand.id} scope="col" className="h-9 px-4 sm:min-w-40 text-right font-semibold">
                 {measurandTitle(measurand)}
               </th>
             ))}

@@ -12,6 +12,8 @@ interface CommaChoiceProps {
 /** Asks once for the whole sheet what the comma is in values that can be read in two ways; guesses nothing. */
 export function CommaChoice({ entries, isLive, onSettle }: CommaChoiceProps) {
   const open = entries.flatMap((text) => {
+    // Every key press asks this of every value; most have no comma at all.
+    if (!text.includes(',')) return []
     const read = readReportedValue(text)
     return read.kind === 'ambiguous' ? [read] : []
   })

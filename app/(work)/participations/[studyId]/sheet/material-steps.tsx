@@ -1,6 +1,6 @@
 import { useRef, type ReactNode } from 'react'
 import { Button } from '@/app/ui/primitives/button'
-import type { MaterialGroup } from './result-table'
+import type { MaterialGroup } from './material-rows'
 
 interface MaterialStepsProps {
   groups: readonly MaterialGroup[]
