@@ -67,12 +67,24 @@ export const studyPlan = z
         seen.set(name, index)
       })
     }
-    if (plan.levels.some((level) => level.name.toLocaleLowerCase('en') === 'laboratory'))
-      context.addIssue({ code: 'custom', path: ['levels'], message: 'The laboratory is always the outermost level; name only the levels within it.' })
+    plan.levels.forEach((level, index) => {
+      const name = level.name.toLocaleLowerCase('en')
+      const isInnermost = index === plan.levels.length - 1
+      if (reservedNames.has(name) || (name === 'replicate' && !isInnermost))
+        context.addIssue({ code: 'custom', path: ['levels', index, 'name'], message: reservedWords(level.name) })
+    })
     const places = plan.measurands.length * plan.materials.length * plan.levels.reduce((product, level) => product * level.count, 1)
     if (places > mostPlaces)
       context.addIssue({ code: 'custom', path: ['levels'], message: `This asks each laboratory for ${places} results; ${mostPlaces} is the most.` })
   })
+
+/** Words that head other columns of a sheet, or rows of an analysis of variance; a level so named would be taken for them. */
+const reservedNames = new Set(['laboratory', 'lab', 'material', 'measurand', 'value', 'result', 'excluded', 'order', 'uncertainty', 'residual'])
+
+function reservedWords(name: string): string {
+  if (name.toLocaleLowerCase('en') === 'laboratory') return 'The laboratory is always the outermost level; name only the levels within it.'
+  return `“${name}” heads another column of the sheet; give the level another name.`
+}
 
 export type StudyPlan = z.infer<typeof studyPlan>
 

@@ -61,7 +61,7 @@ describe('a plan', () => {
   })
 
   it('refuses a level called after the laboratory', () => {
-    expect(faultsOf({ levels: [{ name: 'Laboratory', count: '2' }] }).levels).toMatch(/always the outermost/)
+    expect(faultsOf({ levels: [{ name: 'Laboratory', count: '2' }] })['levels.0.name']).toMatch(/always the outermost/)
   })
 
   it('refuses more results than one return may hold, and says how many it would be', () => {
@@ -117,5 +117,24 @@ describe('a plan', () => {
     expect(faultsOf({ measurands: [{ ...plain.measurands[0], decimals }] })).toHaveProperty(
       'measurands.0.decimals',
     )
+  })
+})
+
+describe('the name of a level', () => {
+  for (const name of ['Laboratory', 'material', 'value', 'Residual'])
+    it(`is refused when it is “${name}”, which heads another column or row`, () => {
+      const levels = [
+        { name, count: '2' },
+        { name: 'replicate', count: '2' },
+      ]
+      expect(Object.keys(faultsOf({ levels }))).toEqual(['levels.0.name'])
+    })
+
+  it('may be “replicate” for the innermost level only', () => {
+    const levels = [
+      { name: 'replicate', count: '2' },
+      { name: 'reading', count: '2' },
+    ]
+    expect(Object.keys(faultsOf({ levels }))).toEqual(['levels.0.name'])
   })
 })
