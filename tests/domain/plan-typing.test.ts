@@ -28,7 +28,7 @@ describe('a plan while it is typed', () => {
     )
   })
 
-  it.each([
+  it.each<Record<string, string>>([
     { 'measurands.0.name': '' },
     { 'levels.0.name': '', 'levels.1.name': '' },
     { 'levels.0.count': 'x', 'levels.1.count': '0' },

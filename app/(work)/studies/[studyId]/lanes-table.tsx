@@ -51,7 +51,7 @@ function columns(round: ReturnsAnswer): Column<LaneAnswer>[] {
         <>
           <Tag code={lane.code} label="Laboratory" />
           {/* On a narrow screen the column of states lies beyond the edge. */}
-          <span aria-hidden="true" className="mt-0.5 block sm:hidden">
+          <span aria-hidden="true" className="mt-0.5 block min-w-32 sm:hidden">
             <LaneStatus lane={lane} round={round} />
           </span>
         </>

@@ -10,7 +10,9 @@ import { deadlineInput } from '../../forms/deadline-input'
 
 /** Changes the plan of a draft. */
 export const planStudyAction = formAction({
-  input: z.object({ studyId: z.uuid() }).and(studyPlan),
+  input: z
+    .object({ studyId: z.uuid(), localTime: deadlineInput.localTime, zone: deadlineInput.zone })
+    .and(studyPlan),
   run: (context, { studyId, ...plan }) => planStudy(context, { studyId, plan }),
   then: ({ studyId }) => ({
     refresh: paths.study(studyId),
