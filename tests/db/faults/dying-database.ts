@@ -58,7 +58,7 @@ function watch(client: pg.PoolClient, { death, said }: { death: Death; said: str
   }
 
   return {
-    query: query as PostgresPoolClient['query'],
+    query: query as unknown as PostgresPoolClient['query'],
     release: () => client.release(isDead),
   }
 }
