@@ -18,7 +18,8 @@ export type AuditFact =
   | { action: 'laboratory.invited'; version: 1; invitationId: string }
   | { action: 'laboratory.re-sent'; version: 1; invitationId: string; link: number }
   | { action: 'laboratory.corrected'; version: 1; invitationId: string; link: number | null }
-  | { action: 'laboratory.accepted'; version: 1; invitationId: string; participantId: string }
+  // Not which code it drew: an entry with both would be the key.
+  | { action: 'laboratory.accepted'; version: 1; invitationId: string }
   | { action: 'laboratory.declined'; version: 1; invitationId: string }
   | { action: 'extension.requested'; version: 1; participantId: string }
   | { action: 'extension.granted'; version: 1; participantId: string; dueAt: string; reason: string }

@@ -35,8 +35,8 @@ export async function answerInvitation(
     }
     const { personId } = await ensurePerson(trx, { address: invitation.address, name: invitation.contactName })
     const code = drawLaboratoryCode(context.random.below, new Set(await listCodes(trx, studyId)))
-    const participantId = await insertParticipant(trx, { studyId, invitationId, code, personId })
-    await recordAudit(trx, { actor: null, role, studyId, fact: { action: 'laboratory.accepted', version: 1, invitationId, participantId } })
+    await insertParticipant(trx, { studyId, invitationId, code, personId })
+    await recordAudit(trx, { actor: null, role, studyId, fact: { action: 'laboratory.accepted', version: 1, invitationId } })
     return { address: invitation.address }
   })
 }
