@@ -17,9 +17,9 @@ export type FittedForm<Coefficients> = Coefficients & {
   q: number
 }
 
-export type Proportional = FittedForm<{ b: number }>
-export type Linear = FittedForm<{ a: number; b: number }>
-export type Power = FittedForm<{ c: number; d: number }>
+type Proportional = FittedForm<{ b: number }>
+type Linear = FittedForm<{ a: number; b: number }>
+type Power = FittedForm<{ c: number; d: number }>
 
 export type FormName = 'proportional' | 'linear' | 'power'
 

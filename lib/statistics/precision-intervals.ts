@@ -4,7 +4,6 @@ import {
   type WeightedMeanSquare,
 } from '@/lib/statistics/combination-interval'
 import { type AnovaRow, weightsFor } from '@/lib/statistics/nested-anova'
-import { RESIDUAL } from '@/lib/statistics/nested-layout'
 
 /** 95 % limits of a standard deviation. */
 export type SdInterval = {
@@ -74,9 +73,4 @@ export function nestedTerms(rows: readonly AnovaRow[], sources: readonly string[
   return rows
     .map(({ ms, df }, index) => ({ weight: weights[index]!, ms, df }))
     .filter(({ weight }) => weight !== 0)
-}
-
-/** The innermost mean square alone: an exact interval. */
-export function residualTerms(rows: readonly AnovaRow[]): WeightedMeanSquare[] {
-  return nestedTerms(rows, [RESIDUAL])
 }
