@@ -44,7 +44,7 @@ const deeds: { [Action in AuditFact['action']]: (fact: Fact<Action>, words: Trai
   'laboratory.re-sent': ({ link }) => `had a laboratory’s link sent again (link ${link})`,
   'laboratory.corrected': ({ link }) =>
     `corrected the contact of an invited laboratory${link === null ? '' : ` (link ${link} was sent)`}`,
-  // Says neither code nor invitation: the two together would be an entry of the key.
+  // Says neither code nor invitation; see the fact.
   'laboratory.accepted': () => 'accepted and drew its code',
   'laboratory.declined': () => 'declined',
   'extension.requested': () => 'asked for more time',
