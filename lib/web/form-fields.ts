@@ -7,7 +7,7 @@ export interface FormFields {
   nameOf(path: readonly PropertyKey[]): string
 }
 
-const mostFields = 5000
+const mostFields = 5100
 const mostSegments = 6
 const forbidden = new Set(['__proto__', 'constructor', 'prototype'])
 

@@ -4,7 +4,7 @@ import { MarginNote } from '@/app/ui/layout/margin'
 import { readParticipation, type ParticipationView } from '@/lib/use-cases/returns/read-participation'
 import { requestContext, requireActor } from '@/lib/web/request-context'
 import { LaboratoryPage } from '../laboratory-page'
-import { notFoundOnAbsence } from '../not-found-on-absence'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { requestExtensionAction } from './actions'
 import { AskForTime } from './ask-for-time'
 import { ClosedNotice } from './closed-notice'
@@ -17,7 +17,7 @@ export const metadata: Metadata = { title: 'Your part in the study' }
 export default async function ParticipationPage({ params }: { params: Promise<{ studyId: string }> }) {
   const actor = await requireActor()
   const { studyId } = await params
-  const view = await notFoundOnAbsence(readParticipation(await requestContext(), { studyId }))
+  const view = await orNotFound(readParticipation(await requestContext(), { studyId }))
   return (
     <LaboratoryPage
       actor={actor}

@@ -1,5 +1,5 @@
 import type { Metadata } from 'next'
-import { notFoundOnAbsence } from '../../not-found-on-absence'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { LaboratoryPage } from '../../laboratory-page'
 import { entryName } from '../../entry-names'
 import { namePlace } from '../../name-place'
@@ -24,7 +24,7 @@ export default async function SheetPage({ params, searchParams }: PageProps) {
   const actor = await requireActor()
   const { studyId } = await params
   const { look } = await searchParams
-  const review = await notFoundOnAbsence(reviewSheet(await requestContext(), { studyId }))
+  const review = await orNotFound(reviewSheet(await requestContext(), { studyId }))
   const { view, entries, remark, draftVersion } = review
   const places = listPlaces(view.layout)
   return (

@@ -5,7 +5,7 @@ import { readParticipation } from '@/lib/use-cases/returns/read-participation'
 import { paths } from '@/lib/web/paths'
 import { requestContext, requireActor } from '@/lib/web/request-context'
 import { LaboratoryPage } from '../../laboratory-page'
-import { notFoundOnAbsence } from '../../not-found-on-absence'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { participationPaths } from '../../participation-paths'
 import { ClosedNotice } from '../closed-notice'
 import { uploadProblem } from './upload-problem'
@@ -22,7 +22,7 @@ export default async function UploadPage({ params, searchParams }: PageProps) {
   const actor = await requireActor()
   const { studyId } = await params
   const { problem } = await searchParams
-  const view = await notFoundOnAbsence(readParticipation(await requestContext(), { studyId }))
+  const view = await orNotFound(readParticipation(await requestContext(), { studyId }))
   return (
     <LaboratoryPage
       actor={actor}

@@ -9,7 +9,7 @@ import { readReceipt } from '@/lib/use-cases/returns/read-receipt'
 import { paths } from '@/lib/web/paths'
 import { requestContext, requireActor } from '@/lib/web/request-context'
 import { LaboratoryPage } from '../../../laboratory-page'
-import { notFoundOnAbsence } from '../../../not-found-on-absence'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { participationPaths } from '../../../participation-paths'
 import { ReportedTable } from '../../reported-table'
 import { ForgetCopies } from './forget-copies'
@@ -25,7 +25,7 @@ export default async function ReceiptPage({
   const actor = await requireActor()
   const { studyId, number } = await params
   if (!/^[1-9]\d{0,5}$/.test(number)) notFound()
-  const shown = await notFoundOnAbsence(
+  const shown = await orNotFound(
     readReceipt(await requestContext(), { studyId, number: Number(number) }),
   )
   const { view, receipt, rows, file } = shown

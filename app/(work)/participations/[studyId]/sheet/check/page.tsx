@@ -2,7 +2,7 @@ import type { Metadata } from 'next'
 import { redirect } from 'next/navigation'
 import { LaboratoryPage } from '../../../laboratory-page'
 import { namePlace } from '../../../name-place'
-import { notFoundOnAbsence } from '../../../not-found-on-absence'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { participationPaths } from '../../../participation-paths'
 import { ClosedNotice } from '../../closed-notice'
 import { ConfirmReturn } from '../../confirm-return'
@@ -21,7 +21,7 @@ export const metadata: Metadata = { title: 'Check before returning' }
 export default async function CheckPage({ params }: { params: Promise<{ studyId: string }> }) {
   const actor = await requireActor()
   const { studyId } = await params
-  const review = await notFoundOnAbsence(reviewSheet(await requestContext(), { studyId }))
+  const review = await orNotFound(reviewSheet(await requestContext(), { studyId }))
   const { view, entries, remark, read, submissionKey } = review
   const last = view.receipts[0]
   // No draft: what stood here has been returned, from this page or from another one.

@@ -7,7 +7,7 @@ import { previewUpload, type UploadPreview } from '@/lib/use-cases/returns/previ
 import { paths } from '@/lib/web/paths'
 import { requestContext, requireActor } from '@/lib/web/request-context'
 import { LaboratoryPage } from '../../../laboratory-page'
-import { notFoundOnAbsence } from '../../../not-found-on-absence'
+import { orNotFound } from '@/lib/web/or-not-found'
 import { participationPaths } from '../../../participation-paths'
 import { ClosedNotice } from '../../closed-notice'
 import { UploadResult } from './upload-result'
@@ -22,7 +22,7 @@ export default async function UploadedPage({
 }) {
   const actor = await requireActor()
   const { studyId, uploadId } = await params
-  const preview = await notFoundOnAbsence(previewUpload(await requestContext(), { studyId, uploadId }))
+  const preview = await orNotFound(previewUpload(await requestContext(), { studyId, uploadId }))
   const { view, upload } = preview
   return (
     <LaboratoryPage
