@@ -70,18 +70,19 @@ export async function listAuditEntries(db: Kysely<DB>, studyId: string): Promise
   }))
 }
 
-export async function findChainHead(db: Kysely<DB>, studyId: string): Promise<{ sequence: number; hash: string } | null> {
+/** Where a chain says it ends. Without its row it says that it never began, which entries then belie. */
+export async function findChainHead(db: Kysely<DB>, studyId: string): Promise<{ sequence: number; hash: string }> {
   const head = await db.selectFrom('audit.chain').select(['sequence', 'hash']).where('study_id', '=', studyId).executeTakeFirst()
-  return head ?? null
+  return head ?? { sequence: 0, hash: chainStart }
 }
 
+/** Every chain of which a head or an entry is left. */
 export async function listChains(db: Kysely<DB>): Promise<string[]> {
-  const rows = await db.selectFrom('audit.chain').select('study_id').orderBy('study_id').execute()
+  const rows = await db
+    .selectFrom('audit.chain')
+    .select('study_id')
+    .union(db.selectFrom('audit.entry').select('study_id'))
+    .orderBy('study_id')
+    .execute()
   return rows.map((row) => row.study_id)
-}
-
-/** The code of each laboratory of a study by its id, to say of whom an entry speaks. */
-export async function listCodesByParticipant(db: Kysely<DB>, studyId: string): Promise<Map<string, string>> {
-  const rows = await db.selectFrom('participant').select(['participant_id', 'code']).where('study_id', '=', studyId).execute()
-  return new Map(rows.map((row) => [row.participant_id, row.code]))
 }

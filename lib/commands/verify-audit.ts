@@ -16,7 +16,9 @@ async function verifyAudit(): Promise<number> {
       const entries = await listAuditEntries(db, studyId)
       const verdict = findBreak(entries, await findChainHead(db, studyId))
       if (verdict) broken += 1
-      console.log(`${studyId} ${verdict ? `broken at entry ${verdict.sequence}: ${verdict.reason}` : `whole, ${entries.length} entries, head ${entries.at(-1)?.hash}`}`)
+      console.log(
+        `${studyId} ${verdict ? `broken at entry ${verdict.sequence}: ${verdict.reason}` : `whole, ${entries.length} entries, head ${entries.at(-1)?.hash}`}`,
+      )
     }
     return broken > 0 ? 1 : 0
   } finally {

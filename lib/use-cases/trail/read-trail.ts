@@ -2,7 +2,7 @@ import { findChainHead, listAuditEntries, listCodesByParticipant } from '@/db/qu
 import { findPersonNames } from '@/db/queries/person-names'
 import { findStudyFor, type StudyRecord } from '@/db/queries/studies'
 import type { Context } from '@/lib/context'
-import { chainStart, findBreak, type AuditEntry } from '@/lib/domain/audit-entry'
+import { findBreak, type AuditEntry } from '@/lib/domain/audit-entry'
 import { NotFound } from '@/lib/domain/errors'
 import { authorise } from '@/lib/domain/permissions'
 
@@ -33,9 +33,8 @@ export async function readTrail(context: Context, { studyId }: { studyId: string
   return {
     study,
     entries: entries.map((entry) => ({ ...entry, actor: actorWords(entry, names) })),
-    // Without its head a chain that has entries cannot be known to be whole.
-    verdict: findBreak(entries, head ?? { sequence: 0, hash: chainStart }),
-    head: head?.hash ?? null,
+    verdict: findBreak(entries, head),
+    head: head.sequence > 0 ? head.hash : null,
     subjects: new Map([...names, ...codes]),
   }
 }
