@@ -86,3 +86,9 @@ export async function listChains(db: Kysely<DB>): Promise<string[]> {
     .execute()
   return rows.map((row) => row.study_id)
 }
+
+/** The codes of a study's laboratories, by participant. */
+export async function listCodesByParticipant(db: Kysely<DB>, studyId: string): Promise<Map<string, string>> {
+  const rows = await db.selectFrom('participant').select(['participant_id', 'code']).where('study_id', '=', studyId).execute()
+  return new Map(rows.map((row) => [row.participant_id, row.code]))
+}
