@@ -1,10 +1,11 @@
 'use server'
 
-import { notFound } from 'next/navigation'
+import { notFound, redirect } from 'next/navigation'
 import { z } from 'zod'
-import { NotFound } from '@/lib/domain/errors'
+import { NotFound, SignInNeeded } from '@/lib/domain/errors'
 import { revealKey } from '@/lib/use-cases/laboratories/read-laboratories'
 import { refuseForeignRequest } from '@/lib/web/form-action'
+import { paths } from '@/lib/web/paths'
 import { requestContext } from '@/lib/web/request-context'
 
 export interface KeyState {
@@ -20,6 +21,7 @@ export async function revealKeyAction(_previous: KeyState, form: FormData): Prom
     return { key: await revealKey(await requestContext(), { studyId: studyId.data }) }
   } catch (error) {
     if (error instanceof NotFound) notFound()
+    if (error instanceof SignInNeeded) redirect(paths.signIn(`${paths.station(studyId.data, 'laboratories')}/key`))
     throw error
   }
 }
