@@ -36,7 +36,7 @@ export const materialPlan = z.object({
 })
 
 export const levelPlan = z.object({
-  name: words('the name of the level', 30),
+  name: words('the name of the level', 30).refine((name) => !/[,;"]/.test(name), 'Leave commas, semicolons and quotation marks out of the name of a level.'),
   count: wholeNumber('Give how many.', 1, 50),
 })
 

@@ -83,7 +83,7 @@ describe('ConsistencyPlot, drawn on the server', () => {
 })
 
 describe('CellMeansPlot', () => {
-  it('starts with its curve at the mean of all, and counts the means within it', () => {
+  it('starts with its curve at the mean of the cell means, and counts the means within it', () => {
     const page = parseMarkup(
       renderToStaticMarkup(
         <CellMeansPlot
@@ -95,14 +95,14 @@ describe('CellMeansPlot', () => {
             { code: 'B05', mean: 419, sd: null, count: 1, isSetAside: true },
           ]}
           grandMean={412}
-          repeatability={{ sd: 2, degreesOfFreedom: 20, replicates: 3 }}
+          reference={{ scale: 2 / Math.sqrt(3), degreesOfFreedom: 20 }}
           halfWidth={2.4}
           decimals={1}
         />,
       ),
     )
     expect(page.querySelector('output')!.textContent).toBe(
-      'at the mean of all, 412.0\u00a0N; 1 of 2 means within 95 %',
+      'at the mean of the cell means, 412.0\u00a0N; 1 of 2 means in the shaded zone',
     )
     expect(page.querySelector('#means')!.innerHTML).toContain(
       'B05: 419.0\u00a0N one result; set aside'.replace('\u00a0', '&nbsp;'),

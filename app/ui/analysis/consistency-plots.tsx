@@ -33,8 +33,9 @@ function ConsistencyFrame({ document, statistic }: { document: AnalysisDocument;
 
 type Data = ReturnType<typeof consistencyData>
 
-function summaryOf({ laboratories }: Data, statistic: 'h' | 'k'): string {
+function summaryOf({ laboratories, criticals }: Data, statistic: 'h' | 'k'): string {
   const cells = laboratories.flatMap(({ code, cells }) => cells.flatMap((cell) => (cell?.beyond && cell.beyond !== '5 %' ? [`${code} ${cell.material}`] : [])))
+  if (criticals.length === 0) return `${statistic} has no critical value here: there are too few laboratories or replicates.`
   if (cells.length === 0) return 'No cell lies beyond the 1 % critical value.'
   const names = cells.length > 8 ? `${cells.slice(0, 8).join(', ')} and ${cells.length - 8} more` : cells.join(', ')
   return cells.length === 1

@@ -20,7 +20,7 @@ export function LevelRelationTable({ document }: { document: AnalysisDocument })
         { key: 'name', header: 'Of', isRowHeader: true, cell: ({ name }) => name },
         { key: 'proportional', header: 's = b m', kind: 'figure', cell: ({ forms }) => `b = ${showFigures(forms.proportional.b, 3)}` },
         { key: 'linear', header: 's = a + b m', kind: 'figure', cell: ({ forms }) => `a = ${showFigures(forms.linear.a, 3)}, b = ${showFigures(forms.linear.b, 3)}` },
-        { key: 'power', header: 'log s = c + d log m', kind: 'figure', cell: ({ forms }) => `c = ${showFigures(forms.power.c, 3)}, d = ${showFigures(forms.power.d, 3)}` },
+        { key: 'power', header: <>log<sub>10</sub> s = c + d log<sub>10</sub> m</>, kind: 'figure', cell: ({ forms }) => `c = ${showFigures(forms.power.c, 3)}, d = ${showFigures(forms.power.d, 3)}` },
         { key: 'proposed', header: 'Fits best', cell: ({ forms }) => proposedWords(forms) },
       ]}
     />

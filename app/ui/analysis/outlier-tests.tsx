@@ -58,8 +58,8 @@ function LevelWord({ level }: { level: OutlierLevel | null }) {
 }
 
 function listTests(document: AnalysisDocument): TestRow[] {
-  return document.materials.flatMap(({ material, cochran, grubbs }) => {
-    const unequal = cochran.generalised.level !== null && cochran.generalised.statistic !== cochran.statistic
+  return document.materials.flatMap(({ material, cells, cochran, grubbs }) => {
+    const unequal = new Set(cells.filter(({ df }) => df > 0).map(({ df }) => df)).size > 1
     const scatter = unequal ? cochran.generalised : cochran
     return [
       {

@@ -7,8 +7,8 @@ export function PrecisionNotes({ limitFactor }: { limitFactor: string }) {
     <>
       <MarginNote title="What the figures mean">
         <p>
-          s<sub>r</sub> is the scatter within one laboratory, s<sub>L</sub> between laboratories, s<sub>R</sub> both together. Two results differ by more
-          than r (one laboratory) or R (two laboratories) in about one case in twenty.
+          s<sub>r</sub> is the scatter under repeatability conditions: one laboratory, shortly one after another. s<sub>L</sub> is what laboratories add, s<sub>R</sub> all of it together; s<sub>I</sub> lets the inner levels named with it vary. Two results differ by more
+          than r (under repeatability conditions) or R (in two laboratories) in about one case in twenty.
         </p>
         <p>The limits are {factor} times the standard deviations. They describe how results agree; they are no specification.</p>
       </MarginNote>

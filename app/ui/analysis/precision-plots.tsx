@@ -23,7 +23,7 @@ export function VarianceShares({ document }: { document: AnalysisDocument }) {
           rowKey={({ name }) => name}
           columns={[
             { key: 'name', header: 'Material', isRowHeader: true, cell: ({ name }) => name },
-            { key: 'within', header: 'Within', kind: 'figure', cell: ({ within }) => showFigures(within) },
+            { key: 'within', header: 'Repeatability', kind: 'figure', cell: ({ within }) => showFigures(within) },
             ...(inner.length > 0
               ? [{ key: 'groups', header: `Between ${inner.join(', ')}`, kind: 'figure' as const, cell: (row: (typeof shares)[number]) => showFigures(row.betweenGroups) }]
               : []),
@@ -53,8 +53,14 @@ function sharesOf({ material, repeatability, betweenLaboratory, anova }: Materia
 /** The cell means of one material under the curve that equal laboratories would follow. */
 export function CellMeans({ material, unit, decimals }: { material: MaterialAnalysis; unit: string; decimals: number }) {
   const { reference } = material.equality
-  const { sd, df } = material.repeatability
-  if (sd === null || df === null || reference.n === null || material.meanOfCellMeans === null) return null
+  const { scale, df } = reference
+  if (material.meanOfCellMeans === null) return null
+  if (!scale || df === null)
+    return (
+      <p className="max-w-text text-ink-soft">
+        {material.material}: {reference.reasons?.scale ?? material.equality.reasons?.f ?? 'there is no scatter within the laboratories to compare their means by.'}
+      </p>
+    )
   const cells = material.cells.flatMap(({ laboratory, mean, sd: cellSd, n }) => (mean === null ? [] : [{ code: laboratory, mean, sd: cellSd, count: n }]))
   const svgId = `means-${material.material.replace(/\W+/g, '-')}`
   return (
@@ -83,7 +89,7 @@ export function CellMeans({ material, unit, decimals }: { material: MaterialAnal
         unit={unit}
         cells={cells}
         grandMean={material.meanOfCellMeans}
-        repeatability={{ sd, degreesOfFreedom: df, replicates: reference.n }}
+        reference={{ scale, degreesOfFreedom: df }}
         {...(reference.halfWidth95 === null ? {} : { halfWidth: reference.halfWidth95 })}
         decimals={decimals + 1}
       />
@@ -92,7 +98,7 @@ export function CellMeans({ material, unit, decimals }: { material: MaterialAnal
 }
 
 function equalitySummary({ equality }: MaterialAnalysis): string {
-  if (equality.pValue === null) return 'The scatter within the laboratories is unknown, so their means cannot be compared.'
+  if (equality.pValue === null) return equality.reasons?.f ?? equality.reasons?.pValue ?? 'The means of the laboratories cannot be compared.'
   const verdict = equality.pValue < 0.05 ? 'Averages this far apart would be rare' : 'Averages this far apart are usual'
   return `${verdict} if all laboratories agreed: F gives ${sayPValue(equality.pValue)}, the range of the means ${sayPValue(equality.rangePValue)}. The curve is a picture; these two figures decide.`
 }

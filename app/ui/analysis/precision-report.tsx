@@ -4,6 +4,7 @@ import { Notice } from '../primitives/notice'
 import { LevelRelationTable } from './level-relation-table'
 import { CellMeans, VarianceShares } from './precision-plots'
 import { IntervalTable, PrecisionTable } from './precision-table'
+import { showFigures } from './show-quantity'
 import { VarianceTables } from './variance-tables'
 
 interface PrecisionReportProps {
@@ -42,8 +43,11 @@ export function PrecisionReport({ measurand }: PrecisionReportProps) {
 
 /** What must be said before a figure is used. */
 function Cautions({ document }: { document: AnalysisDocument }) {
-  const few = document.materials.filter(({ laboratories }) => laboratories < 6).map(({ material }) => material)
-  const censored = document.materials.filter(({ censored: block }) => block.results > 0).map(({ material }) => material)
+  const lost = document.materials.filter(({ censored, mean }) => censored.results > 0 && mean === null)
+  const few = document.materials.filter((each) => each.laboratories < 6 && !lost.includes(each)).map(({ material }) => material)
+  const censored = document.materials.filter((each) => each.censored.results > 0 && !lost.includes(each))
+  const confounded = document.materials.find(({ anova }) => anova.confounded !== null)?.anova.confounded
+  const isNested = document.input.nesting.length > 2
   return (
     <>
       {few.length > 0 && (
@@ -52,8 +56,25 @@ function Cautions({ document }: { document: AnalysisDocument }) {
         </Notice>
       )}
       {censored.length > 0 && (
-        <Notice tone="warn" title={`Results below or above a limit for ${censored.join(', ')}`}>
-          They carry no number and none is put in their place; their cells are left out of the means and the scatter, which makes the spread look smaller than it is.
+        <Notice tone="warn" title={`Results below or above a limit for ${censored.map(({ material }) => material).join(', ')}`}>
+          They carry no number and none is put in their place. Their cells are left out, which makes the spread look smaller than it is and moves the
+          mean away from the limit: leaving out the lowest 5, 10 or 20 % of laboratories lowers their standard deviation by 10, 16 or 24 %.
+        </Notice>
+      )}
+      {lost.map(({ material, median, censored: block }) => (
+        <Notice key={material} tone="warn" title={`No precision figures for ${material}`}>
+          More than a tenth of its cells hold results below or above a limit ({block.cells.length} of them).
+          {median !== null && ` The median of the cells is ${showFigures(median)}.`}
+        </Notice>
+      ))}
+      {confounded && (
+        <Notice tone="warn" title={`No repeatability: ${confounded} and replicate cannot be told apart`}>
+          No innermost group holds two results, so that the innermost figure is an intermediate precision with {confounded} varying.
+        </Notice>
+      )}
+      {isNested && (
+        <Notice tone="info" title="In a nested layout h and Grubbs’ tests are approximate">
+          They judge a laboratory’s mean over all its results; k and Cochran judge its innermost scatter, with exact critical values.
         </Notice>
       )}
     </>

@@ -1,4 +1,4 @@
-import type { AnalysisDocument, MaterialAnalysis } from '@/lib/statistics/analysis-document'
+import type { AnalysisDocument, Interval, MaterialAnalysis } from '@/lib/statistics/analysis-document'
 import { DataTable, type Column } from '../primitives/data-table'
 import { Figure } from '../primitives/figure'
 import { noFigure, showFigures, showInterval, showPercent } from './show-quantity'
@@ -54,6 +54,18 @@ function intermediate({ intermediate: sets }: MaterialAnalysis) {
   ))
 }
 
+/** An interval, with the reason where it is missing or nought, and a mark where it was widened. */
+function IntervalCell({ interval }: { interval: Interval }) {
+  const reason = interval.reasons?.upper ?? interval.reasons?.lower
+  return (
+    <>
+      {showInterval(interval)}
+      {interval.extended && <span className="block font-sans text-ink-soft">widened to the estimate</span>}
+      {reason && <span className="block max-w-44 whitespace-normal text-left font-sans text-ink-soft">{reason}</span>}
+    </>
+  )
+}
+
 /** The 95 % intervals of the standard deviations, with what is said of one that was widened or is missing. */
 export function IntervalTable({ document, unit }: { document: AnalysisDocument; unit: string }) {
   return (
@@ -64,9 +76,9 @@ export function IntervalTable({ document, unit }: { document: AnalysisDocument; 
       rowKey={({ material }) => material}
       columns={[
         { key: 'material', header: 'Material', isRowHeader: true, cell: ({ material }) => material },
-        { key: 'r', header: <>s<sub>r</sub></>, kind: 'figure', cell: (row) => showInterval(row.repeatability.ci95) },
-        { key: 'L', header: <>s<sub>L</sub></>, kind: 'figure', cell: (row) => showInterval(row.betweenLaboratory.ci95) },
-        { key: 'R', header: <>s<sub>R</sub></>, kind: 'figure', cell: (row) => showInterval(row.reproducibility.ci95) },
+        { key: 'r', header: <>s<sub>r</sub></>, kind: 'figure', cell: (row) => <IntervalCell interval={row.repeatability.ci95} /> },
+        { key: 'L', header: <>s<sub>L</sub></>, kind: 'figure', cell: (row) => <IntervalCell interval={row.betweenLaboratory.ci95} /> },
+        { key: 'R', header: <>s<sub>R</sub></>, kind: 'figure', cell: (row) => <IntervalCell interval={row.reproducibility.ci95} /> },
         { key: 'raw', header: <>s<sub>L</sub><sup>2</sup> before cutting at 0</>, kind: 'figure', cell: (row) => showFigures(row.betweenLaboratory.varianceRaw) },
       ]}
     />

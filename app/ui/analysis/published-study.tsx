@@ -31,10 +31,12 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
       </Section>
       <Section title="Recompute it" note={`Analysis ${snapshot.analysis.number} by engine ${snapshot.analysis.engineVersion}.`}>
         <p className="mb-3 max-w-text">
-          The coded results give these figures again by the product’s <code className="font-mono">analyse</code> command
-          {nestOption(measurand)}. Laboratories appear by codes drawn for this study alone; a laboratory that tells others one of its results can be
-          recognised by it.
+          The coded results give these figures again by the product’s own command. Laboratories appear by codes drawn for this study alone; a
+          laboratory that tells others one of its results can be recognised by it.
         </p>
+        <pre className="mb-3 overflow-x-auto border bg-sheet px-3 py-2 font-mono text-small" tabIndex={0}>
+          {analyseCommand(measurand, `results-${chosen + 1}.csv`)}
+        </pre>
         {files && (
           <p className="flex flex-wrap gap-5">
             <DownloadLink href={`${files}/results-${chosen + 1}.csv`} format="CSV">Coded results</DownloadLink>
@@ -48,13 +50,14 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
 
 function Statement({ snapshot, measurand }: { snapshot: PublicationSnapshot; measurand: PublishedMeasurand }) {
   const { input } = measurand.document
+  const returned = countReturned(measurand.csv)
   const layout = snapshot.levels.map(({ name, count }) => `${count} ${name}${count === 1 ? '' : 's'}`).join(' × ')
   return (
     <Section title="Precision statement">
       <div className="flex max-w-text flex-col gap-3">
         <p>
-          {input.laboratories} laboratories tested {snapshot.materials.length} materials by {snapshot.study.method}, {layout} in each cell, and returned{' '}
-          {input.results + input.excluded + input.censored} results for {measurand.name.toLowerCase()}.
+          {returned.laboratories} laboratories tested {snapshot.materials.length} materials by {snapshot.study.method}, {layout} in each cell, and returned{' '}
+          {returned.results} results for {measurand.name.toLowerCase()}.
           {input.excluded > 0 ? ` ${input.excluded} of them were set aside, with the reasons given below.` : ' None was set aside.'}
           {input.censored > 0 ? ` ${input.censored} lay below or above a limit and carry no number.` : ''}
         </p>
@@ -67,7 +70,20 @@ function Statement({ snapshot, measurand }: { snapshot: PublicationSnapshot; mea
   )
 }
 
-function nestOption({ document }: PublishedMeasurand): string {
+/** The command that makes this document from these results; the factor in full, so that every digit agrees. */
+function analyseCommand({ document, hasTrueZero }: PublishedMeasurand, file: string): string {
   const inner = document.input.nesting.slice(1, -1)
-  return inner.length > 0 ? `, with --nest ${inner.join(',')}` : ''
+  const { limitFactor } = document.settings
+  return [
+    `npm run --silent analyse -- ${file}`,
+    ...(inner.length > 0 ? [`--nest "${inner.join(',')}"`] : []),
+    ...(limitFactor === 2.8 ? [] : [`--factor ${limitFactor}`]),
+    ...(hasTrueZero ? [] : ['--no-true-zero']),
+  ].join(' ')
+}
+
+/** What came back, before anything was set aside. */
+function countReturned(csv: string): { results: number; laboratories: number } {
+  const lines = csv.trim().split('\n').slice(1)
+  return { results: lines.length, laboratories: new Set(lines.map((line) => line.split(',')[0])).size }
 }

@@ -12,7 +12,8 @@ export function showStatistic(value: number | null): string {
 export function showPValue(value: number | null): string {
   if (value === null) return noFigure
   if (value < 0.0001) return formatFigure('<0.0001')
-  return formatFigure(value < 0.1 ? String(Number(value.toPrecision(2))) : value.toFixed(2))
+  // Two figures and no fewer: 0.050 is not 0.05, and the limit lies just there.
+  return formatFigure(value < 0.1 ? toDecimalText(value, 2) : value.toFixed(2))
 }
 
 /** The same within a sentence: "p = 0.012" or "p < 0.0001". */
@@ -32,7 +33,14 @@ export function showFigures(value: number | null, figures = 4): string {
 
 /** A share in %, two figures. */
 export function showPercent(value: number | null): string {
-  return value === null ? noFigure : `${showFigures(value, 2)}\u00a0%`
+  if (value === null) return noFigure
+  return `${value === 0 ? '0' : formatFigure(toDecimalText(value, 2))}\u00a0%`
+}
+
+/** Significant figures written out without an exponent. */
+function toDecimalText(value: number, figures: number): string {
+  const rounded = Number(value.toPrecision(figures))
+  return rounded.toFixed(Math.max(0, figures - 1 - Math.floor(Math.log10(rounded))))
 }
 
 export function showInterval(interval: { lower: number | null; upper: number | null }, figures = 3): string {

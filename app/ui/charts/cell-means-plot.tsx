@@ -22,8 +22,8 @@ interface CellMeansPlotProps {
   unit: string
   cells: readonly CellMean[]
   grandMean: number
-  /** The repeatability standard deviation and its degrees of freedom, and how many results make a cell. */
-  repeatability: { sd: number; degreesOfFreedom: number; replicates: number }
+  /** The curve that means of equal laboratories would follow: a t density of this scale and these degrees of freedom. */
+  reference: { scale: number; degreesOfFreedom: number }
   /** Half the width of the central 95 % of the curve, in the unit; its bounds are drawn when it is given. */
   halfWidth?: number
   /** Decimals of the values read out. */
@@ -37,20 +37,21 @@ const curveWidth = 84
 
 /**
  * Cell means with ± s, and beside them the curve that means of equal laboratories would follow: a t density
- * of width s_r/√n. Slid along the axis it asks of any place: could these cells share this mean?
+ * as wide as what lies within the laboratories makes it. Slid along the axis it asks of any place: could these cells share this mean?
  */
 export function CellMeansPlot(props: CellMeansPlotProps) {
   const { svgId, material, unit, cells, grandMean, halfWidth, decimals } = props
   const labelId = useId()
   const [centre, setCentre] = useState(grandMean)
-  const scale = props.repeatability.sd / Math.sqrt(props.repeatability.replicates)
+  const { scale } = props.reference
   const slot = Math.max(44, 810 / Math.max(1, cells.length))
   const innerWidth = slot * cells.length
   const width = innerWidth + margin.left + margin.right
 
   const ends = cells.flatMap((cell) => [cell.mean - (cell.sd ?? 0), cell.mean + (cell.sd ?? 0)])
   const reach = [...ends, grandMean - 4 * scale, grandMean + 4 * scale]
-  const pad = (Math.max(...reach) - Math.min(...reach)) * 0.06
+  // Results without any scatter still need an axis with a length.
+  const pad = (Math.max(...reach) - Math.min(...reach)) * 0.06 || Math.abs(grandMean) * 0.01 || 1
   const low = Math.min(...reach) - pad
   const high = Math.max(...reach) + pad
   const y = (value: number) => margin.top + ((high - value) / (high - low)) * innerHeight
@@ -78,8 +79,8 @@ export function CellMeansPlot(props: CellMeansPlotProps) {
         >
           <title id={`${labelId}-title`}>{`Cell means with ± s, ${material}`}</title>
           <desc id={`${labelId}-description`}>
-            {`${cells.length} laboratories; mean of all ${spell(grandMean)}. The curve shows how means would spread ` +
-              'if laboratories differed by repeatability alone.'}
+            {`${cells.length} laboratories; mean of the cell means ${spell(grandMean)}. The curve shows how means would spread ` +
+              'if laboratories differed by the scatter within them alone.'}
           </desc>
           <Axis ticks={ticks} y={y} right={margin.left + innerWidth} unit={unit} material={material} />
           {halfWidth !== undefined && (
@@ -114,7 +115,7 @@ export function CellMeansPlot(props: CellMeansPlotProps) {
             d={densityPath({
               centre,
               scale,
-              degreesOfFreedom: props.repeatability.degreesOfFreedom,
+              degreesOfFreedom: props.reference.degreesOfFreedom,
               y,
               base: margin.left + innerWidth,
               low,
@@ -144,9 +145,9 @@ export function CellMeansPlot(props: CellMeansPlotProps) {
           className="h-6 min-w-48 flex-1"
         />
         <output htmlFor={`${labelId}-centre`} className="font-mono">
-          {centre === grandMean ? `at the mean of all, ${spell(centre)}` : `at ${spell(centre)}`}
+          {centre === grandMean ? `at the mean of the cell means, ${spell(centre)}` : `at ${spell(centre)}`}
           {halfWidth !== undefined &&
-            `; ${countWithin(cells, centre, halfWidth)} of ${cells.length} means within 95 %`}
+            `; ${countWithin(cells, centre, halfWidth)} of ${cells.length} means in the shaded zone`}
         </output>
       </div>
     </div>

@@ -36,7 +36,7 @@ export function PrecisionBars({ svgId, materials, groupName = 'groups' }: Precis
   const height = top + materials.length * rowHeight + 34
   const hasGroups = materials.some((material) => material.betweenGroups !== null)
   const legend: Pick<Part, 'key' | 'label'>[] = [
-    { key: 'within', label: 'within' },
+    { key: 'within', label: 'repeatability' },
     ...(hasGroups ? [{ key: 'groups' as const, label: `between ${groupName}` }] : []),
     { key: 'laboratories', label: 'between laboratories' },
   ]
