@@ -35,7 +35,7 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
           laboratory that tells others one of its results can be recognised by it.
         </p>
         <pre className="mb-3 overflow-x-auto border bg-sheet px-3 py-2 font-mono text-small" tabIndex={0}>
-          {analyseCommand(measurand, `results-${chosen + 1}.csv`)}
+          {analyseCommand(measurand, `${files ? `${files.split('/').at(-1)}-` : ''}results-${chosen + 1}.csv`)}
         </pre>
         {files && (
           <p className="flex flex-wrap gap-5">
