@@ -25,7 +25,7 @@ export default defineConfig({
           ...shared,
           name: 'unit',
           include: ['tests/**/*.test.{ts,tsx}'],
-          exclude: [...WITH_DATABASE, 'tests/e2e/**'],
+          exclude: [...WITH_DATABASE, 'tests/e2e/**', 'tests/outside/**'],
           testTimeout: 20_000,
         },
       },
@@ -38,6 +38,16 @@ export default defineConfig({
           globalSetup: ['tests/support/global-cluster.ts'],
           testTimeout: 30_000,
           hookTimeout: 60_000,
+        },
+      },
+      {
+        extends: true,
+        test: {
+          ...shared,
+          name: 'outside',
+          // Against R and mpmath, which must be installed.
+          include: ['tests/outside/**/*.test.ts'],
+          testTimeout: 60_000,
         },
       },
     ],

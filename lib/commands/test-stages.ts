@@ -21,6 +21,11 @@ export const stages: readonly Stage[] = [
   { name: 'rules', run: checkImports },
   { name: 'unused', run: (run) => check(run, 'knip/bin/knip.js', ['--no-progress']) },
   { name: 'unit', run: (run) => vitest(run, 'unit') },
+  {
+    name: 'outside',
+    packages: ['r-base-core', 'r-cran-lme4', 'r-cran-mass', 'python3-mpmath'],
+    run: (run) => vitest(run, 'outside'),
+  },
   { name: 'database', packages: ['postgresql'], run: (run) => vitest(run, 'database') },
   { name: 'build', run: checkBuild },
   { name: 'browser', packages: ['postgresql', 'chromium'], run: runBrowserTests },
