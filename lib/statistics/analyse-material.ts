@@ -12,6 +12,7 @@ import {
   scoresBlock,
   truenessBlock,
   varianceOfMean,
+  variancesOfLaboratoryMeans,
 } from '@/lib/statistics/document/comparison-blocks'
 import { cochranBlock, criticalBlock, nestingLevelBlocks } from '@/lib/statistics/document/consistency-blocks'
 import { grubbsBlock } from '@/lib/statistics/document/grubbs-block'
@@ -20,7 +21,7 @@ import { precisionBlocks } from '@/lib/statistics/document/precision-blocks'
 import { remlBlock } from '@/lib/statistics/document/reml-block'
 import { robustBlock } from '@/lib/statistics/document/robust-block'
 import { levelSummaries } from '@/lib/statistics/laboratory-summaries'
-import { buildNestedLayout } from '@/lib/statistics/nested-layout'
+import { buildNestedLayout, requireReplicate } from '@/lib/statistics/nested-layout'
 import { generalMeans } from '@/lib/statistics/one-way-precision'
 import { roundedPrecision } from '@/lib/statistics/rounding'
 
@@ -99,6 +100,9 @@ function analyseCells(one: {
     cellMeans: summaries.map((summary) => summary.mean),
     cellSpreads: summaries.map(({ sd, df }) => ({ sd: sd ?? 0, df })),
     integers: cells.map(({ integers }) => integers),
+    replicates: isNested ? cells.flatMap(innermostGroups) : cells.map(({ integers }) => integers),
+    isNested,
+    requireReplicate: () => requireReplicate(layout),
     step: data.step,
     harmonicCellSize: summaries.length === 0 ? 1 : harmonic(),
     restore,
@@ -114,16 +118,20 @@ function analyseCells(one: {
           uncertainty: given.uncertainty,
         }
   const sigma = settings.sigmas?.[data.material] ?? null
-  const varianceOfCellMean = (n: number): number =>
-    required(precision.betweenLaboratory.variance, 'There is no laboratory component.') +
-    required(precision.repeatability.variance, 'There is no repeatability.') / n
+  const variancesOfCellMeans = once((): number[] => {
+    const between = required(precision.betweenLaboratory.variance, 'There is no laboratory component.')
+    const sizes = summaries.map(({ n }) => n)
+    if (isNested) return variancesOfLaboratoryMeans(layout, anova(), sizes)
+    const within = required(precision.repeatability.variance, 'There is no repeatability.')
+    return sizes.map((n) => between + within / n)
+  })
   const assigned = assignedBlock({
     reference,
     robust: robust.algorithmA,
     mean,
     varianceOfMean: uncertaintyOfMean,
     sigma,
-    varianceOfCellMean,
+    variancesOfCellMeans,
     summaries,
   })
   const uncertainties = new Map(cells.map((cell) => [cell.laboratory, statedUncertainty(cell)]))
@@ -148,6 +156,7 @@ function analyseCells(one: {
     ...precision,
     cells: cellBlocks({
       summaries,
+      requireReplicate: () => requireReplicate(layout),
       restore,
       reference: () => reference?.deviation ?? notAskedFor(),
       scoresOf: (summary) =>
@@ -156,12 +165,12 @@ function analyseCells(one: {
           value: restore(summary.mean),
           assigned,
           laboratories: summaries.length,
-          sigma: () => sigma ?? Math.sqrt(varianceOfCellMean(summary.n)),
+          sigma: () => sigma ?? Math.sqrt(variancesOfCellMeans()[summaries.indexOf(summary)]!),
           uncertainty: uncertainties.get(summary.laboratory) ?? null,
         }),
     }),
     critical: criticalBlock(summaries, isNested),
-    cochran: cochranBlock(summaries, isNested),
+    cochran: cochranBlock(summaries, layout),
     grubbs: grubbsBlock(summaries),
     anova: anovaBlock(anova, layout.confounded),
     reml: remlBlock({ layout, anova, restore }),
@@ -198,6 +207,18 @@ function innermost(wholes: readonly CellSummary[], levels: ReturnType<typeof lev
     sd: replicate?.laboratories[index]!.sd,
     df: replicate?.laboratories[index]!.df ?? 0,
   }))
+}
+
+/** The results of a laboratory that differ by the replicate alone, one list a group. */
+function innermostGroups({ results, integers }: MaterialCell): bigint[][] {
+  const groups = new Map<string, bigint[]>()
+  results.forEach((result, index) => {
+    const key = JSON.stringify(result.groups)
+    const known = groups.get(key)
+    if (known === undefined) groups.set(key, [integers[index]!])
+    else known.push(integers[index]!)
+  })
+  return [...groups.values()]
 }
 
 function meanOf(values: Float64Array): number {

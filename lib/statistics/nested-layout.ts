@@ -1,3 +1,5 @@
+import { NotComputable } from '@/lib/statistics/not-computable'
+
 /**
  * The results of one material as a tree: laboratory, then each inner level,
  * then the single result.
@@ -40,6 +42,15 @@ export type NestedLayout = {
 }
 
 export const RESIDUAL = 'residual'
+
+/** @throws {NotComputable} `confounded` where an inner level stands in the place of the replicate. */
+export function requireReplicate({ confounded, levels }: NestedLayout): void {
+  if (confounded === null || confounded === levels[0]) return
+  throw new NotComputable(
+    'confounded',
+    `No ${confounded} holds two results, so repeatability cannot be told from it.`,
+  )
+}
 
 export function buildNestedLayout(
   levels: readonly string[],

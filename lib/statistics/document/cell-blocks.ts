@@ -11,12 +11,14 @@ const ONE_RESULT = 'The laboratory has no second result.'
 /** One block a laboratory, in the order given. */
 export function cellBlocks(one: {
   summaries: readonly CellSummary[]
+  /** Fails where no two results differ by the replicate alone. */
+  requireReplicate: () => void
   restore: (deviation: number) => number
   /** The accepted reference value as a deviation, or a failure saying that none was given. */
   reference: () => number
   scoresOf: (summary: CellSummary) => ScoresBlock
 }): CellBlock[] {
-  const { summaries, restore } = one
+  const { summaries, requireReplicate, restore } = one
   const hStatistics = once(() => new Map(mandelH(summaries).map(({ laboratory, h }) => [laboratory, h])))
   const kStatistics = kByLaboratory(summaries)
   const pooledDf = summaries.reduce((sum, { df }) => sum + df, 0)
@@ -26,20 +28,27 @@ export function cellBlocks(one: {
     withReasons((attempt) => {
       const { laboratory, n, mean, sd, df } = summary
       const hOfCell = () => hStatistics().get(laboratory)!
-      const kOfCell = () => required(kStatistics().get(laboratory) ?? null, ONE_RESULT)
+      const sdOfCell = () => {
+        requireReplicate()
+        return required(sd ?? null, ONE_RESULT)
+      }
+      const kOfCell = () => {
+        requireReplicate()
+        return required(kStatistics().get(laboratory) ?? null, ONE_RESULT)
+      }
       return {
         laboratory,
         n,
         mean: restore(mean),
-        sd: attempt('sd', () => required(sd ?? null, ONE_RESULT)),
+        sd: attempt('sd', sdOfCell),
         h: attempt('h', hOfCell),
         k: attempt('k', () => kOfCell().k),
         df,
         hPValue: attempt('hPValue', () => mandelHPValue(hOfCell(), summaries.length)),
         kPValue: attempt('kPValue', () => mandelKPValue(kOfCell())),
-        kCritical: kCriticalBlock(df, pooledDf),
+        kCritical: kCriticalBlock(df, pooledDf, requireReplicate),
         bias: attempt('bias', () => mean - one.reference()),
-        generalisedCochran: generalisedOf(summary, { cells: summaries, pooledDf, pooledSquares }),
+        generalisedCochran: generalisedOf({ df, sdOfCell }, { cells: summaries, pooledDf, pooledSquares }),
         scores: one.scoresOf(summary),
       }
     }),
@@ -48,12 +57,12 @@ export function cellBlocks(one: {
 
 /** The generalised Cochran statistic of one cell, with the p-value it would have as the one tested. */
 function generalisedOf(
-  { sd, df }: CellSummary,
+  { df, sdOfCell }: { df: number; sdOfCell: () => number },
   all: { cells: readonly CellSummary[]; pooledDf: number; pooledSquares: number },
 ): CellBlock['generalisedCochran'] {
   return withReasons((attempt) => {
     const own = attempt('statistic', () => {
-      const square = df * required(sd ?? null, ONE_RESULT) ** 2
+      const square = df * sdOfCell() ** 2
       if (all.pooledSquares === 0) throw new NotComputable('no-scatter', 'All replicates agree exactly.')
       const others = all.cells.filter((cell) => cell.df >= 1).length
       if (others < 2) {

@@ -11,6 +11,7 @@ import { type NestedAnova, nestedTest } from '@/lib/statistics/nested-anova'
 import type { NestedLayout } from '@/lib/statistics/nested-layout'
 import { laboratoryFTest, repeatability } from '@/lib/statistics/one-way-precision'
 import { enScore, zPrimeScore, zScore, zetaScore } from '@/lib/statistics/scores'
+import { requireLaboratories } from '@/lib/statistics/spread-of-means'
 import { biasInterval } from '@/lib/statistics/trueness'
 
 /** Variance of the general mean: each component over the number of its groups that the mean holds. */
@@ -23,6 +24,26 @@ export function varianceOfMean(layout: NestedLayout, anova: NestedAnova): number
     variance += anova.components[level]!.variance * squares
   })
   return variance
+}
+
+/**
+ * Variance of each laboratory's mean, in the order given: its own component whole, and each inner one over the
+ * number of its groups that the laboratory's mean holds.
+ */
+export function variancesOfLaboratoryMeans(
+  { strata }: NestedLayout,
+  { components }: NestedAnova,
+  observations: readonly number[],
+): number[] {
+  const laboratoryOf = observations.flatMap((count, laboratory) => new Array<number>(count).fill(laboratory))
+  const variances = observations.map(() => 0)
+  strata.forEach(({ size, firstMember }, level) => {
+    size.forEach((members, group) => {
+      const laboratory = laboratoryOf[firstMember[group]!]!
+      variances[laboratory]! += components[level]!.variance * (members / observations[laboratory]!) ** 2
+    })
+  })
+  return variances
 }
 
 export function truenessBlock(one: {
@@ -73,10 +94,12 @@ export function equalityBlock(one: {
 }): EqualityBlock {
   const { summaries, layout } = one
   const test =
-    layout.levels.length > 1 ? () => nestedYardstick(layout, one.anova()) : () => oneWayYardstick(summaries)
+    layout.levels.length > 1
+      ? () => nestedYardstick(layout, one.anova(), summaries)
+      : () => oneWayYardstick(summaries)
   const curve = () => {
     const { variance, df } =
-      layout.levels.length > 1 ? nestedYardstick(layout, one.anova()) : repeatability(summaries)
+      layout.levels.length > 1 ? nestedYardstick(layout, one.anova(), summaries) : repeatability(summaries)
     return referenceCurve({ variance, df, n: commonSize(summaries) ?? one.harmonicCellSize() })
   }
   return withReasons((attempt) => {
@@ -108,8 +131,8 @@ export function assignedBlock(one: {
   mean: number | null
   varianceOfMean: () => number
   sigma: number | null
-  /** s_L² + s_r²/n, the variance of a cell mean of n results. */
-  varianceOfCellMean: (n: number) => number
+  /** The variance of each laboratory's mean, in the order of `summaries`. */
+  variancesOfCellMeans: () => readonly number[]
   summaries: readonly CellSummary[]
 }): AssignedBlock {
   return withReasons((attempt) => {
@@ -118,13 +141,13 @@ export function assignedBlock(one: {
       value: attempt('value', () => required(value, 'There is no mean.')),
       uncertainty: attempt('uncertainty', uncertainty),
       source,
-      sigma: attempt('sigma', () => one.sigma ?? commonSigma(one)),
+      sigma: attempt('sigma', () => one.sigma ?? commonSigma(one.variancesOfCellMeans())),
       sigmaSource: one.sigma === null ? (one.summaries.length === 0 ? null : 'cell mean') : 'given',
     }
   })
 }
 
-/** Scores of one laboratory; σ is that of a mean of as many results as its own. */
+/** Scores of one laboratory; σ is that of a mean of as many results, nested alike, as its own. */
 export function scoresBlock(one: {
   summary: CellSummary
   value: number
@@ -164,7 +187,12 @@ function oneWayYardstick(summaries: readonly CellSummary[]): Yardstick {
   return { f, laboratoryDf: df1, df: df2, pValue, variance: repeatability(summaries).variance }
 }
 
-function nestedYardstick(layout: NestedLayout, anova: NestedAnova): Yardstick {
+function nestedYardstick(
+  layout: NestedLayout,
+  anova: NestedAnova,
+  summaries: readonly CellSummary[],
+): Yardstick {
+  requireLaboratories(summaries, 2)
   const laboratory = layout.levels[0]!
   const row = required(
     anova.rows.find(({ source }) => source === laboratory) ?? null,
@@ -203,13 +231,12 @@ function assignedValue(one: {
   }
 }
 
-function commonSigma(one: {
-  varianceOfCellMean: (n: number) => number
-  summaries: readonly CellSummary[]
-}): number {
-  const n = required(
-    commonSize(one.summaries),
-    'It differs by cell size; each score uses that of its own cell.',
-  )
-  return Math.sqrt(one.varianceOfCellMean(n))
+function commonSigma(variances: readonly number[]): number {
+  const [first = null, ...others] = variances
+  const variance = required(first, 'There is no result.')
+  // In a nested layout equal sums can differ in their last bits.
+  if (others.some((other) => Math.abs(other - variance) > 1e-12 * variance)) {
+    notComputable('unequal-cells', 'It differs by cell size; each score uses that of its own cell.')
+  }
+  return Math.sqrt(variance)
 }

@@ -17,6 +17,7 @@ import {
 } from '@/lib/statistics/cochran'
 import { notComputable, once, required, withReasons } from '@/lib/statistics/document/attempt'
 import type { LevelSummaries } from '@/lib/statistics/laboratory-summaries'
+import { type NestedLayout, requireReplicate } from '@/lib/statistics/nested-layout'
 import {
   mandelHCritical,
   type MandelK,
@@ -42,11 +43,16 @@ export function criticalBlock(summaries: readonly CellSummary[], isNested: boole
   }
 }
 
-export function kCriticalBlock(df: number, pooledDf: number): Critical {
+/** `requireReplicate` fails where no two results differ by the replicate alone. */
+export function kCriticalBlock(df: number, pooledDf: number, requireReplicate = (): void => {}): Critical {
+  const critical = (alpha: number): number => {
+    requireReplicate()
+    return mandelKCritical({ df, pooledDf, alpha })
+  }
   return withReasons((attempt) => ({
-    '0.005': attempt('0.005', () => mandelKCritical({ df, pooledDf, alpha: 0.005 })),
-    '0.01': attempt('0.01', () => mandelKCritical({ df, pooledDf, alpha: 0.01 })),
-    '0.05': attempt('0.05', () => mandelKCritical({ df, pooledDf, alpha: 0.05 })),
+    '0.005': attempt('0.005', () => critical(0.005)),
+    '0.01': attempt('0.01', () => critical(0.01)),
+    '0.05': attempt('0.05', () => critical(0.05)),
   }))
 }
 
@@ -55,9 +61,13 @@ export function kByLaboratory(summaries: readonly CellSummary[]): () => Readonly
   return once(() => new Map(mandelK(summaries).map((own) => [own.laboratory, own])))
 }
 
-export function cochranBlock(summaries: readonly CellSummary[], isNested: boolean): CochranBlock {
-  const tested = once(() => cochran(summaries))
-  const generalised = generalisedCochranBlock(summaries)
+export function cochranBlock(summaries: readonly CellSummary[], layout: NestedLayout): CochranBlock {
+  const isNested = layout.levels.length > 1
+  const tested = once(() => {
+    requireReplicate(layout)
+    return cochran(summaries)
+  })
+  const generalised = generalisedCochranBlock(summaries, () => requireReplicate(layout))
   return withReasons((attempt) => {
     const test = attempt('statistic', tested)
     return {
@@ -79,8 +89,14 @@ export function cochranBlock(summaries: readonly CellSummary[], isNested: boolea
   })
 }
 
-export function generalisedCochranBlock(summaries: readonly CellSummary[]): GeneralisedCochranBlock {
-  const tested = once(() => generalisedCochran(summaries))
+export function generalisedCochranBlock(
+  summaries: readonly CellSummary[],
+  requireScatter = (): void => {},
+): GeneralisedCochranBlock {
+  const tested = once(() => {
+    requireScatter()
+    return generalisedCochran(summaries)
+  })
   return withReasons((attempt) => {
     const test = attempt('statistic', tested)
     return {

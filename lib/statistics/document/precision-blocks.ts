@@ -10,13 +10,14 @@ import type { CellSummary } from '@/lib/statistics/cells'
 import type { WeightedMeanSquare } from '@/lib/statistics/combination-interval'
 import { type Attempt, notComputable, once, required, withReasons } from '@/lib/statistics/document/attempt'
 import type { NestedAnova } from '@/lib/statistics/nested-anova'
-import { type NestedLayout, RESIDUAL } from '@/lib/statistics/nested-layout'
+import { type NestedLayout, requireReplicate, RESIDUAL } from '@/lib/statistics/nested-layout'
 import {
   betweenLaboratories,
   relativeSdPercent,
   repeatability,
   reproducibility,
 } from '@/lib/statistics/one-way-precision'
+import { requireLaboratories } from '@/lib/statistics/spread-of-means'
 import { nestedTerms, oneWayTerms, sdInterval, sdSatterthwaite } from '@/lib/statistics/precision-intervals'
 
 /** What the precision figures of one material are made from. */
@@ -126,13 +127,7 @@ function intermediateBlock(input: PrecisionInput, varies: string[]): Intermediat
 }
 
 function repeatabilityEstimate({ summaries, layout }: PrecisionInput): Estimate & { df: number } {
-  const { confounded, levels } = layout
-  if (confounded !== null && confounded !== levels[0]) {
-    notComputable(
-      'confounded',
-      `No ${confounded} holds two results, so repeatability cannot be told from it.`,
-    )
-  }
+  requireReplicate(layout)
   const { variance, df } = repeatability(summaries)
   return { raw: variance, variance, df, terms: [{ weight: 1, ms: variance, df }] }
 }
@@ -165,7 +160,8 @@ function termsOfMeans(summaries: readonly CellSummary[]): ReturnType<typeof oneW
   })
 }
 
-function nestedBetween({ layout, anova }: PrecisionInput): Estimate {
+function nestedBetween({ layout, anova, summaries }: PrecisionInput): Estimate {
+  requireLaboratories(summaries, 2)
   const laboratory = layout.levels[0]!
   const { rows, components } = anova()
   const own = required(

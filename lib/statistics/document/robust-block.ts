@@ -1,7 +1,7 @@
 import { algorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
 import type { RobustBlock } from '@/lib/statistics/analysis-document'
-import { required, withReasons } from '@/lib/statistics/document/attempt'
+import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
 import {
   hampelLocation,
   type IntegerCells,
@@ -15,6 +15,11 @@ export type RobustInput = {
   cellMeans: readonly number[]
   cellSpreads: readonly { sd: number; df: number }[]
   integers: IntegerCells
+  /** The results that differ by the replicate alone: the cells, or in a nested layout their innermost groups. */
+  replicates: IntegerCells
+  isNested: boolean
+  /** Fails where no two results differ by the replicate alone. */
+  requireReplicate: () => void
   /** The value of one unit of `integers`. */
   step: number
   harmonicCellSize: number
@@ -24,7 +29,10 @@ export type RobustInput = {
 export function robustBlock(input: RobustInput): RobustBlock {
   const a = algorithmABlock(input)
   const s = withReasons((attempt) => {
-    const found = attempt('sd', () => algorithmS(input.cellSpreads))
+    const found = attempt('sd', () => {
+      input.requireReplicate()
+      return algorithmS(input.cellSpreads)
+    })
     return { sd: found?.sd ?? null, generalised: found?.generalised ?? null }
   })
   return {
@@ -37,13 +45,16 @@ export function robustBlock(input: RobustInput): RobustBlock {
       )
       return { mean: mean === null ? null : input.restore(mean), sd }
     }),
-    reproducibility: robustReproducibility(a.sd, s.sd, input.harmonicCellSize),
+    reproducibility: robustReproducibility(a.sd, s.sd, input),
     qMethod: {
       reproducibility: withReasons((attempt) => ({
         sd: attempt('sd', () => qReproducibility(input.integers, input.step)),
       })),
       repeatability: withReasons((attempt) => ({
-        sd: attempt('sd', () => qRepeatability(input.integers, input.step)),
+        sd: attempt('sd', () => {
+          input.requireReplicate()
+          return qRepeatability(input.replicates, input.step)
+        }),
       })),
     },
   }
@@ -62,15 +73,23 @@ function algorithmABlock({ cellMeans, restore }: RobustInput): RobustBlock['algo
 
 /**
  * The spread of unweighted cell means holds the within part divided by the
- * harmonic mean of the cell sizes; the ordinary n̄ would leave too much.
+ * harmonic mean of the cell sizes; the ordinary n̄ would leave too much. In a
+ * nested layout it holds a part of every inner level besides, of which
+ * Algorithm S says nothing.
  */
 function robustReproducibility(
   meansSd: number | null,
   pooledSd: number | null,
-  harmonicCellSize: number,
+  { harmonicCellSize, isNested }: RobustInput,
 ): RobustBlock['reproducibility'] {
   const words = 'It needs Algorithm A and Algorithm S.'
   const between = (): number => {
+    if (isNested) {
+      notComputable(
+        'nested',
+        'In a nested layout the laboratories cannot be told from the levels inside them this way.',
+      )
+    }
     const variance = required(meansSd, words) ** 2 - required(pooledSd, words) ** 2 / harmonicCellSize
     return Math.max(0, variance)
   }
