@@ -115,11 +115,25 @@ export type GrubbsTestBlock = {
   level: OutlierLevel | null
 } & Reasons
 
+/** Each of the four tests has a level of its own, as if it stood alone. */
 export type GrubbsBlock = {
   high: GrubbsTestBlock
   low: GrubbsTestBlock
   pairHigh: GrubbsTestBlock
   pairLow: GrubbsTestBlock
+  /**
+   * What the tests propose when taken in the order of ISO 5725-2: where an end is beyond 1 %, that mean, and the other
+   * end as tested on the means that remain; otherwise the single tests and the pairs. Empty where nothing is beyond 5 %.
+   */
+  proposed: GrubbsProposal[]
+  /** Neither end is beyond 1 % by itself, and there are laboratories enough for a pair. */
+  pairsConsulted: boolean
+}
+
+export type GrubbsProposal = {
+  laboratories: string[]
+  test: 'high' | 'low' | 'pairHigh' | 'pairLow'
+  level: 'straggler' | 'outlier'
 }
 
 export type FDenominator = {

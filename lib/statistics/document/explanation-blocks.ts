@@ -2,6 +2,7 @@ import type { AnalysedMaterial } from '@/lib/statistics/analyse-material'
 import type { MaterialAnalysis, Noticed, Proposal } from '@/lib/statistics/analysis-document'
 import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
 import { required, withReasons } from '@/lib/statistics/document/attempt'
+import { flaggedCells } from '@/lib/statistics/document/flagged-cells'
 import type { MaterialCell } from '@/lib/statistics/document/material-data'
 import { type Explanation, explanationsOf, type LaboratoryCell } from '@/lib/statistics/explanations'
 import { mandelH, mandelK } from '@/lib/statistics/mandel'
@@ -79,21 +80,6 @@ function cellsByLaboratory(materials: readonly AnalysedMaterial[]): CellsByLabor
     })
   }
   return all
-}
-
-/** Beyond 0.5 % in h or k, or at least a straggler in Cochran's or one of Grubbs' tests. */
-function flaggedCells({ cells, critical, cochran, grubbs }: MaterialAnalysis): string[] {
-  const flagged = new Set<string>()
-  for (const { laboratory, h, k, kCritical } of cells) {
-    const bounds = [critical.h['0.005'], kCritical['0.005']] as const
-    if (h !== null && bounds[0] !== null && Math.abs(h) > bounds[0]) flagged.add(laboratory)
-    if (k !== null && bounds[1] !== null && k > bounds[1]) flagged.add(laboratory)
-  }
-  if (cochran.level !== null && cochran.level !== 'none') flagged.add(cochran.generalised.laboratory!)
-  for (const test of Object.values(grubbs)) {
-    if (test.level !== null && test.level !== 'none') test.laboratories.forEach((one) => flagged.add(one))
-  }
-  return cells.map(({ laboratory }) => laboratory).filter((laboratory) => flagged.has(laboratory))
 }
 
 /** Cells whose results agree in every digit although the others' scatter makes that unlikely. */

@@ -1,21 +1,13 @@
-import type { GrubbsBlock, GrubbsTestBlock } from '@/lib/statistics/analysis-document'
+import type { GrubbsBlock, GrubbsProposal, GrubbsTestBlock } from '@/lib/statistics/analysis-document'
 import type { CellSummary } from '@/lib/statistics/cells'
 import { withReasons } from '@/lib/statistics/document/attempt'
 import { outlierLevel } from '@/lib/statistics/document/consistency-blocks'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
-import { grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
+import { type End, grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
 
-/** The four tests on cell means, each with a level of its own; in which order they count is for a person. */
+/** The four tests on cell means, each with a level of its own, and what they propose in their order. */
 export function grubbsBlock(summaries: readonly CellSummary[]): GrubbsBlock {
-  const single = (end: 'high' | 'low') =>
-    testBlock({
-      test: () => {
-        const { laboratory, statistic, pValue } = grubbsSingle(summaries, end)
-        return { laboratories: [laboratory], statistic, pValue }
-      },
-      critical: (alpha) => grubbsSingleCritical(summaries.length, alpha),
-    })
-  const pair = (end: 'high' | 'low') =>
+  const pair = (end: End) =>
     testBlock({
       test: () => {
         const { laboratories, statistic, pValue } = grubbsPair(summaries, end)
@@ -23,7 +15,58 @@ export function grubbsBlock(summaries: readonly CellSummary[]): GrubbsBlock {
       },
       critical: (alpha) => grubbsPairCritical(summaries.length, alpha),
     })
-  return { high: single('high'), low: single('low'), pairHigh: pair('high'), pairLow: pair('low') }
+  const [high, low] = [singleBlock(summaries, 'high'), singleBlock(summaries, 'low')]
+  const [pairHigh, pairLow] = [pair('high'), pair('low')]
+  return { high, low, pairHigh, pairLow, ...inOrder(summaries, { high, low, pairHigh, pairLow }) }
+}
+
+function singleBlock(summaries: readonly CellSummary[], end: End): GrubbsTestBlock {
+  return testBlock({
+    test: () => {
+      const { laboratory, statistic, pValue } = grubbsSingle(summaries, end)
+      return { laboratories: [laboratory], statistic, pValue }
+    },
+    critical: (alpha) => grubbsSingleCritical(summaries.length, alpha),
+  })
+}
+
+/** ISO 5725-2, 7.3.4: an end beyond 1 % is set aside in thought before the other is looked at, and pairs are then no matter. */
+function inOrder(
+  summaries: readonly CellSummary[],
+  tests: Pick<GrubbsBlock, 'high' | 'low' | 'pairHigh' | 'pairLow'>,
+): Pick<GrubbsBlock, 'proposed' | 'pairsConsulted'> {
+  const { high, low, pairHigh, pairLow } = tests
+  const end = furtherEnd(high, low)
+  if (end === null) {
+    const proposed = [
+      ...proposalOf('high', high),
+      ...proposalOf('low', low),
+      ...proposalOf('pairHigh', pairHigh),
+      ...proposalOf('pairLow', pairLow),
+    ]
+    return { proposed, pairsConsulted: pairHigh.statistic !== null }
+  }
+  const other = end === 'high' ? 'low' : 'high'
+  const [aside] = tests[end].laboratories
+  const remaining = summaries.filter(({ laboratory }) => laboratory !== aside)
+  return {
+    proposed: [...proposalOf(end, tests[end]), ...proposalOf(other, singleBlock(remaining, other))],
+    pairsConsulted: false,
+  }
+}
+
+/** The end beyond 1 %; of two, the one that is further out. */
+function furtherEnd(high: GrubbsTestBlock, low: GrubbsTestBlock): End | null {
+  if (high.level === 'outlier' && low.level === 'outlier') return low.pValue! < high.pValue! ? 'low' : 'high'
+  if (high.level === 'outlier') return 'high'
+  return low.level === 'outlier' ? 'low' : null
+}
+
+function proposalOf(
+  test: GrubbsProposal['test'],
+  { laboratories, level }: GrubbsTestBlock,
+): GrubbsProposal[] {
+  return level === null || level === 'none' ? [] : [{ laboratories, test, level }]
 }
 
 function testBlock(one: {
