@@ -66,7 +66,7 @@ export function CellMeans({ material, unit, decimals }: { material: MaterialAnal
   return (
     <ChartFrame
       level={3}
-      title={`${material.material}: are the laboratories alike?`}
+      title={`Are the laboratories alike on ${material.material}?`}
       summary={equalitySummary(material)}
       svgId={svgId}
       table={

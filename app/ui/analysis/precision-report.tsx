@@ -1,6 +1,7 @@
 import type { AnalysisDocument } from '@/lib/statistics/analysis-document'
 import { Section } from '../layout/section'
 import { Notice } from '../primitives/notice'
+import { withinSentence } from '../primitives/within-sentence'
 import { LevelRelationTable } from './level-relation-table'
 import { CellMeans, VarianceShares } from './precision-plots'
 import { IntervalTable, PrecisionTable } from './precision-table'
@@ -17,20 +18,20 @@ export function PrecisionReport({ measurand }: PrecisionReportProps) {
   return (
     <>
       <Cautions document={document} />
-      <Section title={`Precision, ${name}`} note={`In ${unit}; rounded once, at the end, half to even.`}>
+      <Section id="precision" title={`Precision: ${withinSentence(name)}`} note={`In ${unit}; rounded once, at the end, half to even.`}>
         <PrecisionTable document={document} unit={unit} hasTrueZero={hasTrueZero} />
       </Section>
-      <Section title="95 % intervals" note="Of the standard deviations; how little a study of this size can settle.">
+      <Section id="intervals" title="95 % intervals" note="Of the standard deviations; how little a study of this size can settle.">
         <IntervalTable document={document} unit={unit} />
       </Section>
       <VarianceShares document={document} />
-      <Section title="Analysis of variance" note="Material by material; open one to read it.">
+      <Section id="analysis-of-variance" title="Analysis of variance" note="Material by material; open one to read it.">
         <VarianceTables document={document} unit={unit} />
       </Section>
-      <Section title="Precision against level" note="s by the mean m, in the three forms of ISO 5725-2; the best by its scatter of logarithms is named, a person chooses.">
+      <Section id="level" title="Precision against level" note="s by the mean m, in the three forms of ISO 5725-2; the best by its scatter of logarithms is named, a person chooses.">
         <LevelRelationTable document={document} />
       </Section>
-      <Section title="Laboratory means" note="Each with its standard deviation, and the curve that means of equal laboratories would follow.">
+      <Section id="means" title="Laboratory means" note="Each with its standard deviation, and the curve that means of equal laboratories would follow.">
         <div className="flex flex-col gap-8">
           {document.materials.map((material) => (
             <CellMeans key={material.material} material={material} unit={unit} decimals={decimals} />

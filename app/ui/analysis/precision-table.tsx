@@ -1,7 +1,7 @@
 import type { AnalysisDocument, Interval, MaterialAnalysis } from '@/lib/statistics/analysis-document'
 import { DataTable, type Column } from '../primitives/data-table'
 import { Figure } from '../primitives/figure'
-import { noFigure, showFigures, showInterval, showPercent } from './show-quantity'
+import { noFigure, showFigures, showInterval } from './show-quantity'
 
 /** The precision figures of every material, rounded as a report rounds them. */
 export function PrecisionTable({ document, unit, hasTrueZero }: { document: AnalysisDocument; unit: string; hasTrueZero: boolean }) {
@@ -24,8 +24,8 @@ export function PrecisionTable({ document, unit, hasTrueZero }: { document: Anal
         rounded('reproducibilityLimit', 'Limit R'),
         ...(hasTrueZero
           ? [
-              { key: 'relative-r', header: <>s<sub>r</sub>, %</>, kind: 'figure' as const, cell: (row: MaterialAnalysis) => showPercent(row.repeatability.relative) },
-              { key: 'relative-R', header: <>s<sub>R</sub>, %</>, kind: 'figure' as const, cell: (row: MaterialAnalysis) => showPercent(row.reproducibility.relative) },
+              { key: 'relative-r', header: <>s<sub>r</sub>, %</>, kind: 'figure' as const, cell: (row: MaterialAnalysis) => showFigures(row.repeatability.relative, 2) },
+              { key: 'relative-R', header: <>s<sub>R</sub>, %</>, kind: 'figure' as const, cell: (row: MaterialAnalysis) => showFigures(row.reproducibility.relative, 2) },
             ]
           : []),
       ]}

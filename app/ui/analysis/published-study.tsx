@@ -1,6 +1,8 @@
+import { counted } from '@/lib/domain/count-typed-places'
 import type { PublicationSnapshot, PublishedMeasurand } from '@/lib/domain/publication-snapshot'
 import { Section } from '../layout/section'
 import { DownloadLink } from '../primitives/download-link'
+import { withinSentence } from '../primitives/within-sentence'
 import { ConsistencyPlots } from './consistency-plots'
 import { OutlierTests } from './outlier-tests'
 import { PrecisionReport } from './precision-report'
@@ -23,13 +25,13 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
       <Statement snapshot={snapshot} measurand={measurand} />
       <PrecisionReport measurand={measurand} />
       <ConsistencyPlots document={measurand.document} />
-      <Section title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
+      <Section id="outlier-tests" title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
         <OutlierTests document={measurand.document} />
       </Section>
-      <Section title="Cells set aside" note="By code, with the reason; their results are in the coded data.">
+      <Section id="set-aside" title="Cells set aside" note="By code, with the reason; their results are in the coded data.">
         <SetAsideTable cells={measurand.exclusions} />
       </Section>
-      <Section title="Recompute it" note={`Analysis ${snapshot.analysis.number} by engine ${snapshot.analysis.engineVersion}.`}>
+      <Section id="recompute" title="Recompute it" note={`Analysis ${snapshot.analysis.number} by engine ${snapshot.analysis.engineVersion}.`}>
         <p className="mb-3 max-w-text">
           The coded results give these figures again by the product’s own command. Laboratories appear by codes drawn for this study alone; a
           laboratory that tells others one of its results can be recognised by it.
@@ -51,13 +53,13 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
 function Statement({ snapshot, measurand }: { snapshot: PublicationSnapshot; measurand: PublishedMeasurand }) {
   const { input } = measurand.document
   const returned = countReturned(measurand.csv)
-  const layout = snapshot.levels.map(({ name, count }) => `${count} ${name}${count === 1 ? '' : 's'}`).join(' × ')
+  const layout = snapshot.levels.map(({ name, count }) => counted(count, name)).join(' × ')
   return (
     <Section title="Precision statement">
       <div className="flex max-w-text flex-col gap-3">
         <p>
           {returned.laboratories} laboratories tested {snapshot.materials.length} materials by {snapshot.study.method}, {layout} in each cell, and returned{' '}
-          {returned.results} results for {measurand.name.toLowerCase()}.
+          {returned.results} results for {withinSentence(measurand.name)}.
           {input.excluded > 0 ? ` ${input.excluded} of them were set aside, with the reasons given below.` : ' None was set aside.'}
           {input.censored > 0 ? ` ${input.censored} lay below or above a limit and carry no number.` : ''}
         </p>

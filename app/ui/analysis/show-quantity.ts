@@ -31,12 +31,6 @@ export function showFigures(value: number | null, figures = 4): string {
   return formatFigure(value.toFixed(Math.max(0, figures - 1 - place)))
 }
 
-/** A share in %, two figures. */
-export function showPercent(value: number | null): string {
-  if (value === null) return noFigure
-  return `${value === 0 ? '0' : formatFigure(toDecimalText(value, 2))}\u00a0%`
-}
-
 /** Significant figures written out without an exponent. */
 function toDecimalText(value: number, figures: number): string {
   const rounded = Number(value.toPrecision(figures))

@@ -19,7 +19,7 @@ export function Section({ title, note, actions, id, children }: SectionProps) {
           {note && <p className="text-small text-ink-soft">{note}</p>}
         </div>
         {actions && (
-          <div className="flex flex-wrap gap-2" data-screen-only>
+          <div className="flex flex-wrap gap-x-4 gap-y-2" data-screen-only>
             {actions}
           </div>
         )}

@@ -4,4 +4,6 @@ export const controlLook =
   'aria-[invalid=true]:border-2 aria-[invalid=true]:border-madder ' +
   // Under 16 px some telephones zoom the page when a control takes the focus.
   'pointer-coarse:text-[1rem] ' +
-  'disabled:bg-paper disabled:text-ink-soft read-only:bg-paper'
+  'disabled:bg-paper disabled:text-ink-soft ' +
+  // A select counts as read-only to a style sheet, though it is as open to change as the others.
+  '[&:read-only:not(select)]:bg-paper'

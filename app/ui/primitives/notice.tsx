@@ -9,6 +9,8 @@ interface NoticeProps {
   /** Says the whole matter in a few words; the text below it says what to do. */
   title: ReactNode
   children?: ReactNode
+  /** Stands for the tone, where its usual word would say too little: 'Verified'. */
+  word?: string
   /** Announces itself: for what appears after an action, not for what stands on the page from the start. */
   isLive?: boolean
 }
@@ -22,7 +24,7 @@ const washes: Record<NoticeTone, string> = {
 
 const words: Record<NoticeTone, string> = { info: 'To know', done: 'Done', warn: 'Mind', danger: 'Stopped' }
 
-export function Notice({ tone, title, children, isLive = false }: NoticeProps) {
+export function Notice({ tone, title, word = words[tone], children, isLive = false }: NoticeProps) {
   return (
     <div
       role={isLive ? 'status' : undefined}
@@ -34,7 +36,7 @@ export function Notice({ tone, title, children, isLive = false }: NoticeProps) {
       </span>
       <div className="min-w-0">
         <p className="font-semibold">
-          <span className={toneText[tone]}>{words[tone]}: </span>
+          <span className={toneText[tone]}>{word}: </span>
           {title}
         </p>
         {children && <div className="mt-1 max-w-text">{children}</div>}

@@ -2,6 +2,7 @@ import type { Metadata } from 'next'
 import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
 import { PrecisionNotes } from '@/app/ui/analysis/precision-notes'
 import { PublishedStudy } from '@/app/ui/analysis/published-study'
+import { ReportContents } from '@/app/ui/analysis/report-contents'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { PageShell } from '@/app/ui/layout/page-shell'
 import { showDay } from '@/lib/domain/show-time'
@@ -31,10 +32,11 @@ export default async function PublicationPage({ params, searchParams }: PageProp
       lead={snapshot.study.purpose || undefined}
       margin={
         <>
+          <ReportContents />
           <PrecisionNotes limitFactor={snapshot.study.limitFactor} />
           <MarginNote title="This page is frozen">
             <p>
-              It shows one snapshot, with the digest <span className="break-all font-mono">{digest}</span>. Laboratories appear by code alone.
+              It shows one snapshot, in which laboratories appear by code alone. Its digest is <span className="block break-all font-mono">{digest}</span>
             </p>
           </MarginNote>
           <MarginNote title="Before you test">

@@ -4,6 +4,7 @@ import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
 import { OutlierTests } from '@/app/ui/analysis/outlier-tests'
 import { PrecisionNotes } from '@/app/ui/analysis/precision-notes'
 import { PrecisionReport } from '@/app/ui/analysis/precision-report'
+import { ReportContents } from '@/app/ui/analysis/report-contents'
 import { SetAsideTable } from '@/app/ui/analysis/set-aside-table'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { PageShell } from '@/app/ui/layout/page-shell'
@@ -38,6 +39,7 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
       actions={mayConfirm ? <ButtonLink href={`/committee/${studyId}/confirm`}>Proposal to publish</ButtonLink> : undefined}
       margin={
         <>
+          {measurand && <ReportContents />}
           <MarginNote title="What is kept from this page">
             <p>Every laboratory appears by its code, drawn for this study alone. Who stands behind a code is known to the coordinators only.</p>
           </MarginNote>
@@ -51,14 +53,14 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
         <>
           <MeasurandTabs measurands={analysis.measurands} chosen={measurand.measurandId} />
           <ConsistencyPlots document={measurand.document} />
-          <Section title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
+          <Section id="outlier-tests" title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
             <OutlierTests document={measurand.document} />
           </Section>
-          <Section title="Cells set aside" note="By the coordinators, each with the reason.">
+          <Section id="set-aside" title="Cells set aside" note="By the coordinators, each with the reason.">
             <SetAsideTable cells={measurand.exclusions} />
           </Section>
           <PrecisionReport measurand={measurand} />
-          <Section title="To recompute" note={`Analysis ${analysis.number}, engine ${analysis.engineVersion}, digest ${analysis.digest.slice(0, 16)}…`}>
+          <Section id="recompute" title="Recompute it" note={`Analysis ${analysis.number}, engine ${analysis.engineVersion}, digest ${analysis.digest.slice(0, 16)}…`}>
             <p className="flex flex-wrap gap-5">
               <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`} format="CSV">Coded results</DownloadLink>
               <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`} format="JSON">The analysis</DownloadLink>

@@ -9,7 +9,7 @@ export function ClosedNotice({ view }: { view: ParticipationView }) {
     return (
       <Notice tone="warn" title="The study takes no returns at the moment">
         <p>
-          What was entered is kept. The coordinator at {view.study.organisation} can say whether results may
+          What was entered is kept. The coordinators ({view.study.organisation}) can say whether results may
           still count.
         </p>
       </Notice>

@@ -1,4 +1,6 @@
 import type { ReactNode } from 'react'
+import { withinSentence } from '@/app/ui/primitives/within-sentence'
+import { counted } from '@/lib/domain/count-typed-places'
 import type { ParticipationView } from '@/lib/use-cases/returns/read-participation'
 
 /** The study as the laboratory needs to know it: the method, the materials, how often, with which digits. */
@@ -17,11 +19,8 @@ export function WhatIsAsked({ view: { study, layout, places } }: { view: Partici
       </Item>
       <Item name="Of each material">
         {layout.levels
-          .map(
-            ({ name, count }, index) =>
-              `${count} × ${name.toLocaleLowerCase('en-GB')}${index === 0 ? '' : ' in each'}`,
-          )
-          .join(', ')}
+          .map(({ name, count }) => counted(count, withinSentence(name)))
+          .join(', each with ')}
       </Item>
       <Item name="In all">{places === 1 ? 'one result' : `${places} results`}</Item>
     </dl>

@@ -33,7 +33,7 @@ export const MaterialRows = memo(function MaterialRows(props: MaterialRowsProps)
     <tbody
       role="rowgroup"
       className={clsx(
-        'border-b last:border-b-0 max-sm:block max-sm:border-0',
+        'border-b last:border-b-0 max-sm:block max-sm:border-0 sm:[&>tr:last-child>*]:pb-3',
         isLive && !isShown && 'max-sm:hidden',
       )}
     >

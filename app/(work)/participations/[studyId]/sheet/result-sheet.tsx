@@ -1,5 +1,6 @@
 'use client'
 
+import clsx from 'clsx'
 import { useRouter } from 'next/navigation'
 import { useActionState, useMemo, useState, useTransition, type FormEvent, type MouseEvent } from 'react'
 import { flushSync } from 'react-dom'
@@ -126,7 +127,11 @@ export function ResultSheet(props: ResultSheetProps) {
           flushSync(() => setShown(index))
         }}
       >
-        <div {...grid.handlers} className="border bg-sheet max-sm:border-0 max-sm:bg-transparent">
+        <div
+          {...grid.handlers}
+          // One column of boxes across a wide page would put the name of each far from where it is typed.
+          className={clsx('border bg-sheet max-sm:border-0 max-sm:bg-transparent', columns === 1 && 'max-w-text')}
+        >
           <ResultTable
             layout={layout}
             groups={groups}

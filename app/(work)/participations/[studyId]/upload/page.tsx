@@ -47,7 +47,9 @@ export default async function UploadPage({ params, searchParams }: PageProps) {
       }
     >
       <ClosedNotice view={view} />
-      <UploadForm action={participationPaths.uploadsHandler(studyId)} problem={uploadProblem(problem)} />
+      {view.canReturn && (
+        <UploadForm action={participationPaths.uploadsHandler(studyId)} problem={uploadProblem(problem)} />
+      )}
     </LaboratoryPage>
   )
 }

@@ -90,7 +90,7 @@ function columns({ studyId, state, deadline }: LaboratoriesView['study']): Colum
           <div className="flex items-center justify-end gap-4 py-1" data-screen-only>
             <Link
               href={`${paths.station(studyId, 'laboratories')}?correct=${invitationId}`}
-              className="prose-link inline-block min-h-6"
+              className="prose-link inline-flex min-h-6 items-center"
             >
               Correct <span className="sr-only">the contact of {laboratory}</span>
             </Link>

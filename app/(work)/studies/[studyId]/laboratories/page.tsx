@@ -80,7 +80,7 @@ export default async function LaboratoriesPage({ params, searchParams }: Laborat
         />
       </Section>
       {study.state === 'draft' && <SendInvitations study={study} now={now} count={invitations.length} />}
-      {mayInvite && <InviteSection study={study} zones={zones} />}
+      {mayInvite && <InviteSection key={study.state} study={study} zones={zones} />}
       <CommitteeSection study={study} members={members} />
     </StudyFrame>
   )

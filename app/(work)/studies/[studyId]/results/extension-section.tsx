@@ -55,7 +55,7 @@ function ExtensionCard({ study, lane }: { study: ReturnsView['study']; lane: Ret
   const asked = lane.request && showTime(lane.request.requestedAt, zone)
   const extended = lane.extendedTo && showTime(lane.extendedTo, zone)
   return (
-    <div className="border bg-sheet p-4">
+    <div className="max-w-text border bg-sheet p-4">
       <h3 className="mb-2 flex flex-wrap items-center gap-2 font-semibold">
         <Tag code={lane.code} label="Laboratory" />
         {asked ? 'asks for more time' : 'has not asked for more time'}

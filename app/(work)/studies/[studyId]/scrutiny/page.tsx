@@ -40,8 +40,8 @@ export default async function ScrutinyPage({ params, searchParams }: PageProps<'
             note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
             actions={
               <>
-                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`}>Coded results</DownloadLink>
-                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`}>Analysis</DownloadLink>
+                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`} format="CSV">Coded results</DownloadLink>
+                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`} format="JSON">The analysis</DownloadLink>
               </>
             }
           >

@@ -38,8 +38,8 @@ export default async function ReceiptPage({
       margin={
         <MarginNote title="What happens next">
           <p>
-            A copy of this receipt is on its way by mail. When returns close, the coordinator has the
-            statistics computed and may ask about a single value. What is published names no laboratory.
+            A mail tells you of this receipt. When returns close, the coordinator has the statistics computed
+            and may ask about a single value. What is published names no laboratory.
           </p>
           {view.canReturn && (
             <p>
@@ -52,7 +52,7 @@ export default async function ReceiptPage({
       }
     >
       {isLatest ? (
-        <Notice tone="done" title={`Received: ${rows.length} of ${view.places} results`} />
+        <Notice tone="done" title={`${rows.length} of ${view.places} results were received`} />
       ) : (
         <Notice tone="info" title="A later return has taken the place of this one">
           <a className="prose-link" href={paths.receipt(studyId, view.receipts[0]?.number ?? number)}>
