@@ -3,6 +3,7 @@ import type { MaterialAnalysis, Reasons } from '@/lib/statistics/analysis-docume
 import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
 import { type CellSummary, summariseCells } from '@/lib/statistics/cells'
 import { censoredMedian } from '@/lib/statistics/censored-median'
+import { decimalToNumber, parseDecimal } from '@/lib/statistics/decimal'
 import { anovaBlock } from '@/lib/statistics/document/anova-block'
 import { notComputable, once, OUT_OF_RANGE, required, withReasons } from '@/lib/statistics/document/attempt'
 import { cellBlocks } from '@/lib/statistics/document/cell-blocks'
@@ -114,7 +115,7 @@ function analyseCells(one: {
       ? null
       : {
           deviation: data.deviationOf(given.value),
-          value: Number(given.value),
+          value: decimalToNumber(parseDecimal(given.value)),
           uncertainty: given.uncertainty,
         }
   const sigma = settings.sigmas?.[data.material] ?? null
@@ -241,7 +242,7 @@ function effectiveCellSize(summaries: readonly CellSummary[]): number {
 function statedUncertainty({ results }: MaterialCell): number | null {
   const stated = results.map(({ uncertainty }) => uncertainty ?? null)
   if (stated.some((one) => one === null)) return null
-  return Math.sqrt(stated.reduce((sum: number, one) => sum + one! ** 2, 0) / stated.length)
+  return Math.hypot(...stated.map((one) => one!)) / Math.sqrt(stated.length)
 }
 
 function roundedBlock(

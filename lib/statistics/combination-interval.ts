@@ -1,3 +1,4 @@
+import { binaryScale } from '@/lib/statistics/binary-scale'
 import { chiSquaredQuantileLower, chiSquaredQuantileUpper } from '@/lib/statistics/distributions/chi-squared'
 import { fQuantileLower, fQuantileUpper } from '@/lib/statistics/distributions/f'
 import { NotComputable } from '@/lib/statistics/not-computable'
@@ -8,12 +9,13 @@ export type WeightedMeanSquare = { weight: number; ms: number; df: number }
 /** Limits of a variance, not yet cut at 0. */
 export type CombinationInterval = { estimate: number; lower: number; upper: number }
 
-export type SatterthwaiteLimits = { df: number; lower: number; upper: number | null }
+/** Without limits on next to no degrees of freedom. */
+export type SatterthwaiteLimits = { df: number; lower: number | null; upper: number | null }
 
 /** Each tail of a 95 % interval. */
 const TAIL = 0.025
 
-/** Below this the upper limit is astronomically large and says nothing. */
+/** Below this the limits are astronomically far out, beyond any double in the end, and say nothing. */
 const SMALLEST_USEFUL_DF = 0.05
 
 /**
@@ -25,6 +27,18 @@ const SMALLEST_USEFUL_DF = 0.05
  * negative terms it is Graybill & Wang 1980.
  */
 export function combinationInterval(terms: readonly WeightedMeanSquare[]): CombinationInterval {
+  const { scale, scaled } = nearOne(terms)
+  const { estimate, lower, upper } = intervalOf(scaled)
+  return { estimate: estimate * scale, lower: lower * scale, upper: upper * scale }
+}
+
+/** The same mean squares in a unit in which they can be squared once more. */
+function nearOne(terms: readonly WeightedMeanSquare[]): { scale: number; scaled: WeightedMeanSquare[] } {
+  const scale = binaryScale(terms.map(({ weight, ms }) => weight * ms))
+  return { scale, scaled: terms.map((term) => ({ ...term, ms: term.ms / scale })) }
+}
+
+function intervalOf(terms: readonly WeightedMeanSquare[]): CombinationInterval {
   const positive = terms.filter(({ weight }) => weight > 0).map(limitFactors)
   const negative = terms.filter(({ weight }) => weight < 0).map(limitFactors)
   const estimate =
@@ -57,9 +71,10 @@ export function combinationInterval(terms: readonly WeightedMeanSquare[]): Combi
  * @throws {NotComputable} `not-positive` when the combination is not above 0.
  */
 export function satterthwaiteInterval(terms: readonly WeightedMeanSquare[]): SatterthwaiteLimits {
+  const { scale, scaled } = nearOne(terms)
   let estimate = 0
   let spread = 0
-  for (const { weight, ms, df } of terms) {
+  for (const { weight, ms, df } of scaled) {
     estimate += weight * ms
     spread += (weight * ms) ** 2 / df
   }
@@ -67,10 +82,11 @@ export function satterthwaiteInterval(terms: readonly WeightedMeanSquare[]): Sat
     throw new NotComputable('not-positive', 'The estimated variance is not above 0.')
   }
   const df = estimate ** 2 / spread
+  if (df < SMALLEST_USEFUL_DF) return { df, lower: null, upper: null }
   return {
     df,
-    lower: (df * estimate) / chiSquaredQuantileUpper(TAIL, df),
-    upper: df < SMALLEST_USEFUL_DF ? null : (df * estimate) / chiSquaredQuantileLower(TAIL, df),
+    lower: ((df * estimate) / chiSquaredQuantileUpper(TAIL, df)) * scale,
+    upper: ((df * estimate) / chiSquaredQuantileLower(TAIL, df)) * scale,
   }
 }
 

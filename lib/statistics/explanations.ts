@@ -1,4 +1,5 @@
 import type { ProposalKind } from '@/lib/statistics/analysis-document'
+import { decimalToNumber, parseDecimal, subtractDecimals } from '@/lib/statistics/decimal'
 import { type CellFigures, type Others, surprise } from '@/lib/statistics/surprise'
 
 /**
@@ -172,7 +173,7 @@ function exchangedDigits(cell: LaboratoryCell): Candidate[] {
     kind: 'digits',
     detail: `${text} → ${other}`,
     price,
-    changes: [replaced(cell, index, cell.values[index]! + (Number(other) - Number(text)))],
+    changes: [replaced(cell, index, cell.values[index]! + differenceAsNumber(other, text))],
   }))
 }
 
@@ -186,6 +187,11 @@ function digitExchanges(text: string): string[] {
     ;[characters[before], characters[place]] = [characters[place]!, characters[before]!]
     return [characters.join('')]
   })
+}
+
+/** Exact, and for every way of writing a number that the analysis reads. */
+function differenceAsNumber(one: string, other: string): number {
+  return decimalToNumber(subtractDecimals(parseDecimal(one), parseDecimal(other)))
 }
 
 /** One amount or one factor for all the laboratory's cells, fitted with weights 1/s_ȳ². */

@@ -1,3 +1,4 @@
+import { binaryScale } from '@/lib/statistics/binary-scale'
 import { fUpperTail } from '@/lib/statistics/distributions/f'
 import type { NestedLayout, Stratum } from '@/lib/statistics/nested-layout'
 import { NotComputable } from '@/lib/statistics/not-computable'
@@ -80,20 +81,22 @@ export function nestedTest(rows: readonly AnovaRow[], source: string): NestedTes
 
   const underNoEffect = Object.fromEntries(below.map((row) => [row.source, tested.ems[row.source]!]))
   const weights = weightsFor(below, underNoEffect)
-  let ms = 0
+  const scale = binaryScale(below.map((row, index) => weights[index]! * row.ms))
+  let sum = 0
   let spread = 0
   below.forEach((row, index) => {
-    const part = weights[index]! * row.ms
-    ms += part
+    const part = (weights[index]! * row.ms) / scale
+    sum += part
     spread += part ** 2 / row.df
   })
+  const ms = sum * scale
   if (!(ms > 0)) {
     throw new NotComputable('no-denominator', 'The mean square to test against is not positive.')
   }
 
   const used = weights.filter((weight) => weight !== 0)
   const exact = used.length === 1 && used[0] === 1
-  const df = exact ? below[weights.indexOf(1)]!.df : ms ** 2 / spread
+  const df = exact ? below[weights.indexOf(1)]!.df : sum ** 2 / spread
   const f = tested.ms / ms
   return {
     denominator: {

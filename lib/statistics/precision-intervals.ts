@@ -13,7 +13,7 @@ export type SdInterval = {
   extended: boolean
 }
 
-export type SdSatterthwaite = { df: number; lower: number; upper: number | null }
+export type SdSatterthwaite = { df: number; lower: number | null; upper: number | null }
 
 /**
  * 95 % interval of a standard deviation whose variance is a combination of mean
@@ -36,7 +36,11 @@ export function sdInterval(terms: readonly WeightedMeanSquare[], reportedVarianc
 /** Satterthwaite's interval of the same standard deviation, as a second opinion. */
 export function sdSatterthwaite(terms: readonly WeightedMeanSquare[]): SdSatterthwaite {
   const { df, lower, upper } = satterthwaiteInterval(terms)
-  return { df, lower: Math.sqrt(lower), upper: upper === null ? null : Math.sqrt(upper) }
+  return {
+    df,
+    lower: lower === null ? null : Math.sqrt(lower),
+    upper: upper === null ? null : Math.sqrt(upper),
+  }
 }
 
 /**

@@ -12,7 +12,12 @@ import { NotComputable } from '@/lib/statistics/not-computable'
  */
 export type BiasInterval = { standardUncertainty: number; df: number; lower: number; upper: number }
 
-/** @throws {NotComputable} `too-few-laboratories` below 2; `no-scatter` when the mean has no uncertainty. */
+const MOST_DF = 1e9
+
+/**
+ * @throws {NotComputable} `too-few-laboratories` below 2; `no-scatter` when the mean has no uncertainty;
+ *   `out-of-range` when that of the reference cannot be squared.
+ */
 export function biasInterval(one: {
   bias: number
   laboratories: number
@@ -22,7 +27,11 @@ export function biasInterval(one: {
   if (one.laboratories < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
   if (one.varianceOfMean === 0) throw new NotComputable('no-scatter', 'The results do not differ at all.')
   const together = one.varianceOfMean + one.referenceUncertainty ** 2
-  const df = ((one.laboratories - 1) * together ** 2) / one.varianceOfMean ** 2
+  if (!Number.isFinite(together)) {
+    throw new NotComputable('out-of-range', 'The uncertainty of the reference is too large to be squared.')
+  }
+  // A ratio first: the square of a small variance is no double. From the cap on, t is normal to all its digits.
+  const df = Math.min(MOST_DF, (one.laboratories - 1) * (together / one.varianceOfMean) ** 2)
   const half = tQuantileUpper(0.025, df) * Math.sqrt(together)
   return {
     standardUncertainty: Math.sqrt(one.varianceOfMean),

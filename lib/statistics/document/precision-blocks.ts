@@ -245,11 +245,14 @@ function explainedInterval(estimate: () => Estimate): Interval {
 
 function satterthwaiteBlock(estimate: () => Estimate): SatterthwaiteInterval {
   return withReasons((attempt) => {
-    const found = attempt('lower', () => sdSatterthwaite(estimate().terms))
-    const upper = attempt('upper', () =>
-      found === null ? null : required(found.upper, 'Too few degrees of freedom for an upper limit.'),
-    )
-    return { lower: found?.lower ?? null, upper, df: found?.df ?? null }
+    const found = attempt('df', () => sdSatterthwaite(estimate().terms))
+    if (found === null) return { lower: null, upper: null, df: null }
+    const words = 'Too few degrees of freedom for limits.'
+    return {
+      lower: attempt('lower', () => required(found.lower, words)),
+      upper: attempt('upper', () => required(found.upper, words)),
+      df: found.df,
+    }
   })
 }
 
