@@ -27,7 +27,7 @@ export function OutlierTests({ document }: { document: AnalysisDocument }) {
       isMarked={({ level }) => level === 'outlier' || level === 'straggler'}
       columns={[
         { key: 'material', header: 'Material', isRowHeader: true, cell: ({ material }) => material },
-        { key: 'test', header: 'Test', cell: ({ test }) => test },
+        { key: 'test', header: 'Test', cell: ({ test }) => <span className="block min-w-40">{test}</span> },
         {
           key: 'laboratory',
           header: 'Cell',
@@ -45,7 +45,7 @@ export function OutlierTests({ document }: { document: AnalysisDocument }) {
         { key: 'statistic', header: 'Statistic', kind: 'figure', cell: ({ statistic }) => showStatistic(statistic) },
         { key: 'critical', header: '1 % point', kind: 'figure', cell: ({ critical }) => showStatistic(critical) },
         { key: 'p', header: 'p', kind: 'figure', cell: ({ pValue }) => showPValue(pValue) },
-        { key: 'level', header: 'Level', cell: ({ level }) => <LevelWord level={level} /> },
+        { key: 'level', header: 'Finding', cell: ({ level }) => <LevelWord level={level} /> },
       ]}
     />
   )

@@ -1,4 +1,5 @@
 import { Figure } from '@/app/ui/primitives/figure'
+import { mostDecimals } from '@/app/ui/primitives/most-decimals'
 import { readReportedValue } from '@/lib/domain/reported-value'
 import { listRows, measurandTitle, placeKey, type ReturnLayout } from '@/lib/spreadsheet/layout'
 import { nameLevels } from '../name-place'
@@ -12,6 +13,10 @@ interface ReportedTableProps {
 
 /** What a laboratory reports, row by row as the sheet and the workbook have it; whole on paper. */
 export function ReportedTable({ layout, texts, caption }: ReportedTableProps) {
+  const rows = listRows(layout)
+  const decimals = layout.measurands.map(({ id }) =>
+    mostDecimals(rows.map((row) => readAs(texts[placeKey({ ...row, measurandId: id })] ?? ''))),
+  )
   const hasLevels = layout.levels.some(({ count }) => count > 1)
   return (
     <div
@@ -41,18 +46,18 @@ export function ReportedTable({ layout, texts, caption }: ReportedTableProps) {
           </tr>
         </thead>
         <tbody>
-          {listRows(layout).map((row, index) => (
+          {rows.map((row, index) => (
             <tr key={index} className="border-b last:border-b-0">
               <th scope="row" className="h-9 px-4 text-left font-normal">
                 {layout.materials.find(({ id }) => id === row.materialId)?.name}
               </th>
               {hasLevels && <td className="px-4">{nameLevels(layout, row.groups)}</td>}
-              {layout.measurands.map(({ id }) => {
+              {layout.measurands.map(({ id }, column) => {
                 const text = texts[placeKey({ ...row, measurandId: id })]
                 return (
                   <td key={id} className="px-4 text-right">
                     {text?.trim() ? (
-                      <Figure value={readAs(text)} />
+                      <Figure value={readAs(text)} alignTo={decimals[column] ?? 0} />
                     ) : (
                       <span className="text-ink-soft">no result</span>
                     )}

@@ -58,7 +58,7 @@ export default async function LaboratoriesPage({ params, searchParams }: Laborat
           <MarginNote title="Names and codes apart">
             <p>
               Whoever works with results sees codes, whoever writes to laboratories sees names. When each
-              accepted is not shown here, since the lanes show it by code.
+              accepted is not shown here, since Results shows it by code.
             </p>
           </MarginNote>
           <MarginNote title="Mail">

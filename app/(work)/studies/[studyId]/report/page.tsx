@@ -20,7 +20,7 @@ export default async function ReportPage({ params }: PageProps<'/studies/[studyI
       margin={
         <>
           <MarginNote title="Two people">
-            <p>One proposes, another confirms. The database holds the rule as well.</p>
+            <p>One proposes, another confirms; nobody can do both for one study.</p>
           </MarginNote>
           <MarginNote title="What is published">
             <p>The statement, the coded results and the decisions with their reasons. A text that names a laboratory of the study is stopped before it is frozen.</p>

@@ -71,7 +71,7 @@ export default async function ResultsPage({ params, searchParams }: ResultsPageP
         actions={
           lanes.length > 0 && (
             <DownloadLink href={`/api/studies/${studyId}/returns/csv`} format="CSV">
-              Save the lanes
+              Save this table
             </DownloadLink>
           )
         }

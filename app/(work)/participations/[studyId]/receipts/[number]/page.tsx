@@ -34,7 +34,11 @@ export default async function ReceiptPage({
     <LaboratoryPage
       actor={actor}
       view={view}
-      title={`Receipt ${receipt.receiptNumber}`}
+      title={
+        <>
+          Receipt <span className="whitespace-nowrap">{receipt.receiptNumber}</span>
+        </>
+      }
       margin={
         <MarginNote title="What happens next">
           <p>

@@ -1,5 +1,6 @@
 import { DataTable } from '@/app/ui/primitives/data-table'
 import { Figure } from '@/app/ui/primitives/figure'
+import { mostDecimals } from '@/app/ui/primitives/most-decimals'
 import { Status } from '@/app/ui/primitives/status'
 import type { Tone } from '@/app/ui/primitives/tone'
 import { readReportedValue } from '@/lib/domain/reported-value'
@@ -23,6 +24,8 @@ const states: Record<PreviewState, { tone: Tone; words: string }> = {
 
 /** Every place that is asked, in the order of the sheet, and what the file holds for it. */
 export function PreviewTable({ layout, places, hasEarlier }: PreviewTableProps) {
+  const read = mostDecimals(places.map(({ text }) => readAs(text)))
+  const earlier = mostDecimals(places.map(({ before }) => readAs(before ?? '')))
   return (
     <DataTable
       caption="What was read for each place"
@@ -32,14 +35,14 @@ export function PreviewTable({ layout, places, hasEarlier }: PreviewTableProps) 
       isMarked={({ state }) => state === 'changed'}
       columns={[
         { key: 'place', header: 'Place', isRowHeader: true, cell: ({ place }) => namePlace(layout, place) },
-        { key: 'read', header: 'Read', kind: 'figure', cell: ({ text }) => <Reported text={text} /> },
+        { key: 'read', header: 'Read', kind: 'figure', cell: ({ text }) => <Reported text={text} alignTo={read} /> },
         ...(hasEarlier
           ? [
               {
                 key: 'before',
                 header: 'Returned before',
                 kind: 'figure' as const,
-                cell: ({ before }: PreviewedPlace) => <Reported text={before ?? ''} />,
+                cell: ({ before }: PreviewedPlace) => <Reported text={before ?? ''} alignTo={earlier} />,
               },
             ]
           : []),
@@ -54,10 +57,12 @@ export function PreviewTable({ layout, places, hasEarlier }: PreviewTableProps) 
   )
 }
 
-function Reported({ text }: { text: string }) {
+function Reported({ text, alignTo }: { text: string; alignTo: number }) {
   if (text === '') return <span className="font-sans text-ink-soft">–</span>
+  return <Figure value={readAs(text)} alignTo={alignTo} />
+}
+
+function readAs(text: string): string {
   const read = readReportedValue(text)
-  const value =
-    read.kind === 'number' ? read.decimal : read.kind === 'censored' ? read.mark + read.decimal : text
-  return <Figure value={value} />
+  return read.kind === 'number' ? read.decimal : read.kind === 'censored' ? read.mark + read.decimal : text
 }
