@@ -148,12 +148,10 @@ test(`F-01: of returns cut off by ${kills} kills each is stored whole or not at 
   expect(cut.length, 'returns cut off').toBeGreaterThan(20)
   expect(acknowledged.size, 'returns acknowledged').toBeGreaterThan(laboratories)
   const unanswered = afterKills.length - acknowledged.size
-  test
-    .info()
-    .annotations.push({
-      type: 'figures',
-      description: `${cut.length} cut off, ${acknowledged.size} acknowledged, ${unanswered} stored unanswered`,
-    })
+  test.info().annotations.push({
+    type: 'figures',
+    description: `${cut.length} cut off, ${acknowledged.size} acknowledged, ${unanswered} stored unanswered`,
+  })
 
   const { app } = product.world
   expect(

@@ -111,13 +111,16 @@ function launch({
   )
 }
 
+/** A stand-in for the clock that keeps everything else of the original: the framework copies its own properties. */
 function shiftedDate(offsetMs: number): string {
   return `
+    const now = () => Real.now() + (${offsetMs})
     const Real = Date
-    globalThis.Date = class Date extends Real {
-      constructor(...given) { given.length ? super(...given) : super(Real.now() + (${offsetMs})) }
-      static now() { return Real.now() + (${offsetMs}) }
-    }`
+    globalThis.Date = new Proxy(Real, {
+      construct: (target, given, asked) => Reflect.construct(target, given.length ? given : [now()], asked),
+      apply: () => String(new Real(now())),
+      get: (target, key) => (key === 'now' ? now : Reflect.get(target, key)),
+    })`
 }
 
 async function untilAnswering(child: ChildProcess, base: string): Promise<void> {
