@@ -1,5 +1,5 @@
 import { parseArgs } from 'node:util'
-import { type AnalysisSettings, parseDecimal } from '@/lib/statistics'
+import { type AnalysisSettings, decimalToNumber, parseDecimal } from '@/lib/statistics'
 
 /** What the command line of `analyse` asks for. */
 export type AnalyseOptions = {
@@ -15,7 +15,7 @@ export type AnalyseOptions = {
 export const ANALYSE_USAGE =
   'usage: analyse FILE [--nest operator,day] [--factor 2.8] [--columns laboratory=Lab,value=Conc] [--all] ' +
   '[--measurand NAME] [--reference A=41.5:0.05] [--sigma A=0.6] [--pairs A:B,C:D] [--decimals A=2] ' +
-  '[--homogeneity] | --plan p=8..30,n=2,gamma=2'
+  '[--no-true-zero] [--homogeneity] | --plan p=8..30,n=2,gamma=2'
 
 /** Reads the arguments; each thing that is wrong is one line of `problems`. */
 export function readAnalyseOptions(
@@ -51,6 +51,7 @@ export function readAnalyseOptions(
     decimals: entries('decimals', values.decimals, fault, (text) =>
       /^\d{1,2}$/.test(text) ? Number(text) : null,
     ),
+    trueZero: !(values['no-true-zero'] ?? false),
     homogeneity: values.homogeneity ?? false,
     ...(values.pairs === undefined ? {} : { pairs: readPairs(values.pairs, fault) }),
     ...(plan === undefined || plan === null ? {} : { plan }),
@@ -90,6 +91,7 @@ function parseGiven(args: readonly string[]) {
       sigma: { type: 'string', multiple: true },
       pairs: { type: 'string' },
       decimals: { type: 'string', multiple: true },
+      'no-true-zero': { type: 'boolean' },
       homogeneity: { type: 'boolean' },
       plan: { type: 'string' },
     },
@@ -120,13 +122,12 @@ function above0(text: string): number | null {
 
 function decimal(text: string): number | null {
   try {
-    parseDecimal(text)
+    const value = decimalToNumber(parseDecimal(text))
+    return Number.isFinite(value) ? value : null
   } catch (error) {
     if (error instanceof RangeError) return null
     throw error
   }
-  const value = Number(text)
-  return Number.isFinite(value) ? value : null
 }
 
 /** `A=…` entries; the name may itself hold an equals sign, the value may not. */
@@ -154,7 +155,7 @@ const EXPECTED: Readonly<Record<string, string>> = {
 }
 
 function readReference(text: string): { value: string; uncertainty: number } | null {
-  const [value = '', uncertainty = '0', ...more] = text.split(':')
+  const [value = '', uncertainty = '0', ...more] = text.replaceAll('\u2212', '-').split(':')
   const u = decimal(uncertainty)
   return more.length > 0 || decimal(value) === null || u === null || u < 0 ? null : { value, uncertainty: u }
 }

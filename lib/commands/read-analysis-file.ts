@@ -1,7 +1,7 @@
 import { CsvError, parse } from 'csv-parse/sync'
 import { Refusal } from '@/lib/domain/errors'
 import { readWorkbook } from '@/lib/spreadsheet/read-workbook'
-import { type AnalysisResult, parseDecimal } from '@/lib/statistics'
+import { type AnalysisResult, decimalToNumber, parseDecimal } from '@/lib/statistics'
 
 /** One thing that is wrong with a file or an option, to be shown as one line. */
 export type AnalysisFileProblem = {
@@ -168,7 +168,7 @@ function findColumns(
   problems: AnalysisFileProblem[],
 ): Columns | null {
   const before = problems.length
-  const headings = header.map((heading) => heading.toLowerCase())
+  const headings = header.map((heading) => withoutGuard(heading).toLowerCase())
 
   const find = (role: string): number | null => {
     const names = renamed.has(role) ? [renamed.get(role)!] : (ALIASES[role] ?? [role])
@@ -229,7 +229,7 @@ function readRow(reading: RowReading): AnalysisResult | null {
   const at = (column: number): string => row.values[column] ?? ''
   const label = (column: number): string => {
     if (at(column) === '') problem(reading, column, 'a name')
-    return at(column)
+    return withoutGuard(at(column))
   }
   const isExcluded = columns.excluded !== null && at(columns.excluded) !== '' && !options.keepExcluded
   const value = readValue(reading)
@@ -244,6 +244,11 @@ function readRow(reading: RowReading): AnalysisResult | null {
     uncertainty: columns.uncertainty === null ? null : readUncertainty(reading, columns.uncertainty),
   }
   return problems.length > before ? null : result
+}
+
+/** The product's own files put an apostrophe before a name that a spreadsheet would take for a formula. */
+function withoutGuard(name: string): string {
+  return name.replace(/^'(?=[=+\-@\t\r])/, '')
 }
 
 const EXPECTED_VALUE = 'a decimal number, a limit such as <0.5 or >99, or nothing'
@@ -268,16 +273,18 @@ function optionalNumber(reading: RowReading, column: number, expected: string): 
   const written = reading.row.values[column] ?? ''
   if (written === '') return null
   const text = decimalText(written, reading.table.commaIsDecimal)
-  if (text === null) problem(reading, column, expected)
-  return text === null ? null : Number(text)
+  const value = text === null ? null : decimalToNumber(parseDecimal(text))
+  if (value !== null && Number.isFinite(value)) return value
+  problem(reading, column, expected)
+  return null
 }
 
-/** Beyond this a square no longer fits a double. */
-const LARGEST = 1e150
-
-/** The number as decimal text with a point, or `null` where it is none. */
+/**
+ * The number as decimal text with a point and an ASCII minus, or `null` where it is none. How large it is, is for the
+ * analysis to judge, which has better words for it.
+ */
 function decimalText(written: string, commaIsDecimal: boolean): string | null {
-  const text = commaIsDecimal ? written.replace(',', '.') : written
+  const text = (commaIsDecimal ? written.replace(',', '.') : written).replaceAll('\u2212', '-')
   if (commaIsDecimal && written.includes(',') && written.includes('.')) return null
   try {
     parseDecimal(text)
@@ -285,7 +292,7 @@ function decimalText(written: string, commaIsDecimal: boolean): string | null {
     if (error instanceof RangeError) return null
     throw error
   }
-  return Math.abs(Number(text.replace('\u2212', '-'))) < LARGEST ? text : null
+  return text
 }
 
 function problem({ row, table, problems }: RowReading, column: number, expected: string): void {
