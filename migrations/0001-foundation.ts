@@ -2,7 +2,18 @@
 import { sql, type Kysely } from 'kysely'
 
 export async function up(db: Kysely<unknown>): Promise<void> {
-  for (const statements of [clock, people, studies, laboratories, results, analyses, publications, outbox, trail, grants]) {
+  for (const statements of [
+    clock,
+    people,
+    studies,
+    laboratories,
+    results,
+    analyses,
+    publications,
+    outbox,
+    trail,
+    grants,
+  ]) {
     await sql.raw(statements).execute(db)
   }
 }

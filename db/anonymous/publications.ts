@@ -12,14 +12,24 @@ function selectPublished(reader: Kysely<DB>) {
   return reader
     .selectFrom('publication')
     .innerJoin('publication_proposal as proposal', (join) =>
-      join.onRef('proposal.study_id', '=', 'publication.study_id').onRef('proposal.proposal_id', '=', 'publication.proposal_id'),
+      join
+        .onRef('proposal.study_id', '=', 'publication.study_id')
+        .onRef('proposal.proposal_id', '=', 'publication.proposal_id'),
     )
-    .select(['publication.slug', 'publication.published_on as publishedOn', 'proposal.snapshot', 'proposal.digest'])
+    .select([
+      'publication.slug',
+      'publication.published_on as publishedOn',
+      'proposal.snapshot',
+      'proposal.digest',
+    ])
 }
 
 /** Everything published, the newest first. */
 export async function listPublished(reader: Kysely<DB>): Promise<PublishedRow[]> {
-  const rows = await selectPublished(reader).orderBy('publication.published_on', 'desc').orderBy('publication.slug').execute()
+  const rows = await selectPublished(reader)
+    .orderBy('publication.published_on', 'desc')
+    .orderBy('publication.slug')
+    .execute()
   return rows.map((row) => ({ ...row, publishedOn: String(row.publishedOn) }))
 }
 

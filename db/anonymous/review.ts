@@ -15,7 +15,10 @@ export interface AnonymousStudy {
   readonly state: StudyState
 }
 
-export async function findAnonymousStudy(reader: Kysely<DB>, studyId: string): Promise<AnonymousStudy | undefined> {
+export async function findAnonymousStudy(
+  reader: Kysely<DB>,
+  studyId: string,
+): Promise<AnonymousStudy | undefined> {
   const row = await reader
     .selectFrom('study')
     .innerJoin('organisation', 'organisation.organisation_id', 'study.organisation_id')
@@ -57,7 +60,12 @@ export async function listAnonymousMaterials(reader: Kysely<DB>, studyId: string
 }
 
 export async function listAnonymousLevels(reader: Kysely<DB>, studyId: string) {
-  return reader.selectFrom('nesting_level').where('study_id', '=', studyId).orderBy('position').select(['name', 'count']).execute()
+  return reader
+    .selectFrom('nesting_level')
+    .where('study_id', '=', studyId)
+    .orderBy('position')
+    .select(['name', 'count'])
+    .execute()
 }
 
 export interface AnonymousAnalysis {
@@ -68,7 +76,10 @@ export interface AnonymousAnalysis {
   readonly documents: readonly { measurandId: string; csv: string; inputDigest: string; document: string }[]
 }
 
-export async function findAnonymousAnalysis(reader: Kysely<DB>, studyId: string): Promise<AnonymousAnalysis | undefined> {
+export async function findAnonymousAnalysis(
+  reader: Kysely<DB>,
+  studyId: string,
+): Promise<AnonymousAnalysis | undefined> {
   const analysis = await reader
     .selectFrom('analysis')
     .where('study_id', '=', studyId)
@@ -95,17 +106,26 @@ export interface AnonymousExclusion {
 }
 
 /** The cells set aside now, by code, in the order of the codes. */
-export async function listAnonymousExclusions(reader: Kysely<DB>, studyId: string): Promise<AnonymousExclusion[]> {
+export async function listAnonymousExclusions(
+  reader: Kysely<DB>,
+  studyId: string,
+): Promise<AnonymousExclusion[]> {
   return reader
     .selectFrom('exclusion')
     .innerJoin('participant', (join) =>
-      join.onRef('participant.study_id', '=', 'exclusion.study_id').onRef('participant.participant_id', '=', 'exclusion.participant_id'),
+      join
+        .onRef('participant.study_id', '=', 'exclusion.study_id')
+        .onRef('participant.participant_id', '=', 'exclusion.participant_id'),
     )
     .innerJoin('material', (join) =>
-      join.onRef('material.study_id', '=', 'exclusion.study_id').onRef('material.material_id', '=', 'exclusion.material_id'),
+      join
+        .onRef('material.study_id', '=', 'exclusion.study_id')
+        .onRef('material.material_id', '=', 'exclusion.material_id'),
     )
     .leftJoin('exclusion_lifted as lifted', (join) =>
-      join.onRef('lifted.study_id', '=', 'exclusion.study_id').onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
+      join
+        .onRef('lifted.study_id', '=', 'exclusion.study_id')
+        .onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
     )
     .where('exclusion.study_id', '=', studyId)
     .where('lifted.exclusion_id', 'is', null)

@@ -3,17 +3,24 @@ import type { DB } from '@/db/tables'
 import type { CodedResult } from '@/lib/domain/coded-results'
 
 /** The results of each laboratory's latest return for one measurand, with the cells set aside marked. */
-export async function listCodedResults(db: Kysely<DB>, { studyId, measurandId }: { studyId: string; measurandId: string }): Promise<CodedResult[]> {
+export async function listCodedResults(
+  db: Kysely<DB>,
+  { studyId, measurandId }: { studyId: string; measurandId: string },
+): Promise<CodedResult[]> {
   const rows = await db
     .selectFrom('test_result as result')
     .innerJoin('result_return as each', (join) =>
       join.onRef('each.study_id', '=', 'result.study_id').onRef('each.return_id', '=', 'result.return_id'),
     )
     .innerJoin('participant', (join) =>
-      join.onRef('participant.study_id', '=', 'each.study_id').onRef('participant.participant_id', '=', 'each.participant_id'),
+      join
+        .onRef('participant.study_id', '=', 'each.study_id')
+        .onRef('participant.participant_id', '=', 'each.participant_id'),
     )
     .innerJoin('material', (join) =>
-      join.onRef('material.study_id', '=', 'result.study_id').onRef('material.material_id', '=', 'result.material_id'),
+      join
+        .onRef('material.study_id', '=', 'result.study_id')
+        .onRef('material.material_id', '=', 'result.material_id'),
     )
     .where('result.study_id', '=', studyId)
     .where('result.measurand_id', '=', measurandId)
@@ -40,7 +47,9 @@ export async function listCodedResults(db: Kysely<DB>, { studyId, measurandId }:
           select
             .selectFrom('exclusion')
             .leftJoin('exclusion_lifted as lifted', (join) =>
-              join.onRef('lifted.study_id', '=', 'exclusion.study_id').onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
+              join
+                .onRef('lifted.study_id', '=', 'exclusion.study_id')
+                .onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
             )
             .whereRef('exclusion.study_id', '=', 'result.study_id')
             .whereRef('exclusion.participant_id', '=', 'each.participant_id')
@@ -55,10 +64,17 @@ export async function listCodedResults(db: Kysely<DB>, { studyId, measurandId }:
     .orderBy('material.position')
     .orderBy('result.place')
     .execute()
-  return rows.map((row) => ({ ...row, censored: row.censored as CodedResult['censored'], excluded: Boolean(row.excluded) }))
+  return rows.map((row) => ({
+    ...row,
+    censored: row.censored as CodedResult['censored'],
+    excluded: Boolean(row.excluded),
+  }))
 }
 
-export async function insertAnalysisRequest(trx: Transaction<DB>, { studyId, personId }: { studyId: string; personId: string }): Promise<number> {
+export async function insertAnalysisRequest(
+  trx: Transaction<DB>,
+  { studyId, personId }: { studyId: string; personId: string },
+): Promise<number> {
   const { number } = await trx
     .insertInto('analysis_request')
     .values((values) => ({
@@ -75,11 +91,16 @@ export async function insertAnalysisRequest(trx: Transaction<DB>, { studyId, per
 }
 
 /** The latest request and whether its analysis is there. */
-export async function findAnalysisProgress(db: Kysely<DB>, studyId: string): Promise<{ number: number; requestedAt: Date; done: boolean } | undefined> {
+export async function findAnalysisProgress(
+  db: Kysely<DB>,
+  studyId: string,
+): Promise<{ number: number; requestedAt: Date; done: boolean } | undefined> {
   const row = await db
     .selectFrom('analysis_request as request')
     .leftJoin('analysis', (join) =>
-      join.onRef('analysis.study_id', '=', 'request.study_id').onRef('analysis.number', '=', 'request.number'),
+      join
+        .onRef('analysis.study_id', '=', 'request.study_id')
+        .onRef('analysis.number', '=', 'request.number'),
     )
     .where('request.study_id', '=', studyId)
     .orderBy('request.number', 'desc')
@@ -89,16 +110,25 @@ export async function findAnalysisProgress(db: Kysely<DB>, studyId: string): Pro
   return row && { number: row.number, requestedAt: row.requestedAt, done: row.analysisId !== null }
 }
 
-export async function findAnalysisRequest(db: Kysely<DB>, { studyId, number }: { studyId: string; number: number }) {
+export async function findAnalysisRequest(
+  db: Kysely<DB>,
+  { studyId, number }: { studyId: string; number: number },
+) {
   return db
     .selectFrom('analysis_request as request')
     .leftJoin('analysis', (join) =>
-      join.onRef('analysis.study_id', '=', 'request.study_id').onRef('analysis.number', '=', 'request.number'),
+      join
+        .onRef('analysis.study_id', '=', 'request.study_id')
+        .onRef('analysis.number', '=', 'request.number'),
     )
     .innerJoin('study', 'study.study_id', 'request.study_id')
     .where('request.study_id', '=', studyId)
     .where('request.number', '=', number)
-    .select(['request.requested_by as requestedBy', 'analysis.analysis_id as analysisId', 'study.limit_factor as limitFactor'])
+    .select([
+      'request.requested_by as requestedBy',
+      'analysis.analysis_id as analysisId',
+      'study.limit_factor as limitFactor',
+    ])
     .executeTakeFirst()
 }
 
@@ -159,14 +189,29 @@ export async function findLatestAnalysis(db: Kysely<DB>, studyId: string) {
   return { ...analysis, inputs: new Map(inputs.map((each) => [each.measurandId, each.inputDigest])) }
 }
 
-export async function findParticipantByCode(db: Kysely<DB>, { studyId, code }: { studyId: string; code: string }): Promise<string | undefined> {
-  const row = await db.selectFrom('participant').select('participant_id').where('study_id', '=', studyId).where('code', '=', code).executeTakeFirst()
+export async function findParticipantByCode(
+  db: Kysely<DB>,
+  { studyId, code }: { studyId: string; code: string },
+): Promise<string | undefined> {
+  const row = await db
+    .selectFrom('participant')
+    .select('participant_id')
+    .where('study_id', '=', studyId)
+    .where('code', '=', code)
+    .executeTakeFirst()
   return row?.participant_id
 }
 
 export async function insertExclusion(
   trx: Transaction<DB>,
-  row: { studyId: string; participantId: string; measurandId: string; materialId: string; reason: string; personId: string },
+  row: {
+    studyId: string
+    participantId: string
+    measurandId: string
+    materialId: string
+    reason: string
+    personId: string
+  },
 ): Promise<string> {
   const { exclusion_id } = await trx
     .insertInto('exclusion')
@@ -190,7 +235,9 @@ export async function findStandingExclusion(
   const row = await db
     .selectFrom('exclusion')
     .leftJoin('exclusion_lifted as lifted', (join) =>
-      join.onRef('lifted.study_id', '=', 'exclusion.study_id').onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
+      join
+        .onRef('lifted.study_id', '=', 'exclusion.study_id')
+        .onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
     )
     .where('exclusion.study_id', '=', cell.studyId)
     .where('exclusion.participant_id', '=', cell.participantId)
@@ -208,6 +255,11 @@ export async function insertExclusionLifted(
 ): Promise<void> {
   await trx
     .insertInto('exclusion_lifted')
-    .values({ study_id: row.studyId, exclusion_id: row.exclusionId, reason: row.reason, lifted_by: row.personId })
+    .values({
+      study_id: row.studyId,
+      exclusion_id: row.exclusionId,
+      reason: row.reason,
+      lifted_by: row.personId,
+    })
     .execute()
 }

@@ -1,11 +1,22 @@
 import { sql, type Kysely, type Transaction } from 'kysely'
 import type { DB } from '@/db/tables'
-import { canonicalJson, chainStart, hashEntry, type AuditEntry, type AuditFact } from '@/lib/domain/audit-entry'
+import {
+  canonicalJson,
+  chainStart,
+  hashEntry,
+  type AuditEntry,
+  type AuditFact,
+} from '@/lib/domain/audit-entry'
 
 /** Appends to a study's chain in the caller's transaction; the chain's own row serialises appends. */
 export async function insertAuditEntry(
   trx: Transaction<DB>,
-  { studyId, actorId, actorRole, fact }: { studyId: string; actorId: string | null; actorRole: string; fact: AuditFact },
+  {
+    studyId,
+    actorId,
+    actorRole,
+    fact,
+  }: { studyId: string; actorId: string | null; actorRole: string; fact: AuditFact },
 ): Promise<void> {
   await trx
     .insertInto('audit.chain')
@@ -46,13 +57,28 @@ export async function insertAuditEntry(
       hash,
     })
     .execute()
-  await trx.updateTable('audit.chain').set({ sequence: entry.sequence, hash }).where('study_id', '=', studyId).execute()
+  await trx
+    .updateTable('audit.chain')
+    .set({ sequence: entry.sequence, hash })
+    .where('study_id', '=', studyId)
+    .execute()
 }
 
 export async function listAuditEntries(db: Kysely<DB>, studyId: string): Promise<AuditEntry[]> {
   const rows = await db
     .selectFrom('audit.entry')
-    .select(['study_id', 'sequence', 'at', 'actor_id', 'actor_role', 'action', 'version', 'body', 'previous_hash', 'hash'])
+    .select([
+      'study_id',
+      'sequence',
+      'at',
+      'actor_id',
+      'actor_role',
+      'action',
+      'version',
+      'body',
+      'previous_hash',
+      'hash',
+    ])
     .where('study_id', '=', studyId)
     .orderBy('sequence')
     .execute()
@@ -71,8 +97,15 @@ export async function listAuditEntries(db: Kysely<DB>, studyId: string): Promise
 }
 
 /** Where a chain says it ends. Without its row it says that it never began, which entries then belie. */
-export async function findChainHead(db: Kysely<DB>, studyId: string): Promise<{ sequence: number; hash: string }> {
-  const head = await db.selectFrom('audit.chain').select(['sequence', 'hash']).where('study_id', '=', studyId).executeTakeFirst()
+export async function findChainHead(
+  db: Kysely<DB>,
+  studyId: string,
+): Promise<{ sequence: number; hash: string }> {
+  const head = await db
+    .selectFrom('audit.chain')
+    .select(['sequence', 'hash'])
+    .where('study_id', '=', studyId)
+    .executeTakeFirst()
   return head ?? { sequence: 0, hash: chainStart }
 }
 
@@ -89,6 +122,10 @@ export async function listChains(db: Kysely<DB>): Promise<string[]> {
 
 /** The codes of a study's laboratories, by participant. */
 export async function listCodesByParticipant(db: Kysely<DB>, studyId: string): Promise<Map<string, string>> {
-  const rows = await db.selectFrom('participant').select(['participant_id', 'code']).where('study_id', '=', studyId).execute()
+  const rows = await db
+    .selectFrom('participant')
+    .select(['participant_id', 'code'])
+    .where('study_id', '=', studyId)
+    .execute()
   return new Map(rows.map((row) => [row.participant_id, row.code]))
 }

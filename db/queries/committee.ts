@@ -31,7 +31,10 @@ export async function writeCommitteeMember(
     .execute()
 }
 
-export async function deleteCommitteeMember(trx: Transaction<DB>, { studyId, personId }: { studyId: string; personId: string }): Promise<boolean> {
+export async function deleteCommitteeMember(
+  trx: Transaction<DB>,
+  { studyId, personId }: { studyId: string; personId: string },
+): Promise<boolean> {
   const deleted = await trx
     .deleteFrom('vault.committee_member')
     .where('study_id', '=', studyId)
@@ -41,7 +44,10 @@ export async function deleteCommitteeMember(trx: Transaction<DB>, { studyId, per
 }
 
 /** Whether a person acts for a laboratory of the study. */
-export async function actsForLaboratory(db: Kysely<DB>, { studyId, personId }: { studyId: string; personId: string }): Promise<boolean> {
+export async function actsForLaboratory(
+  db: Kysely<DB>,
+  { studyId, personId }: { studyId: string; personId: string },
+): Promise<boolean> {
   const row = await db
     .selectFrom('vault.contact')
     .where('study_id', '=', studyId)

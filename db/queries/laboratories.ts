@@ -18,11 +18,17 @@ export interface InvitationRecord {
 
 /** Who is invited to a study, by name: for the coordinator alone. Codes are not here; see readKey. */
 export async function listInvitations(db: Kysely<DB>, studyId: string): Promise<InvitationRecord[]> {
-  const rows = await selectInvitations(db).where('invitation.study_id', '=', studyId).orderBy('laboratory.name').execute()
+  const rows = await selectInvitations(db)
+    .where('invitation.study_id', '=', studyId)
+    .orderBy('laboratory.name')
+    .execute()
   return rows.map(toInvitation)
 }
 
-export async function findInvitation(db: Kysely<DB>, { studyId, invitationId }: { studyId: string; invitationId: string }): Promise<InvitationRecord | undefined> {
+export async function findInvitation(
+  db: Kysely<DB>,
+  { studyId, invitationId }: { studyId: string; invitationId: string },
+): Promise<InvitationRecord | undefined> {
   const row = await selectInvitations(db)
     .where('invitation.study_id', '=', studyId)
     .where('invitation.invitation_id', '=', invitationId)
@@ -39,10 +45,14 @@ function selectInvitations(db: Kysely<DB>) {
         .onRef('laboratory.laboratory_id', '=', 'invitation.laboratory_id'),
     )
     .leftJoin('vault.invitation_answer as answer', (join) =>
-      join.onRef('answer.study_id', '=', 'invitation.study_id').onRef('answer.invitation_id', '=', 'invitation.invitation_id'),
+      join
+        .onRef('answer.study_id', '=', 'invitation.study_id')
+        .onRef('answer.invitation_id', '=', 'invitation.invitation_id'),
     )
     .leftJoin('vault.identity as identity', (join) =>
-      join.onRef('identity.study_id', '=', 'invitation.study_id').onRef('identity.invitation_id', '=', 'invitation.invitation_id'),
+      join
+        .onRef('identity.study_id', '=', 'invitation.study_id')
+        .onRef('identity.invitation_id', '=', 'invitation.invitation_id'),
     )
     .leftJoinLateral(
       (from) =>
@@ -73,7 +83,9 @@ function selectInvitations(db: Kysely<DB>) {
     ])
 }
 
-function toInvitation(row: Awaited<ReturnType<ReturnType<typeof selectInvitations>['executeTakeFirstOrThrow']>>): InvitationRecord {
+function toInvitation(
+  row: Awaited<ReturnType<ReturnType<typeof selectInvitations>['executeTakeFirstOrThrow']>>,
+): InvitationRecord {
   return {
     invitationId: row.invitation_id,
     laboratoryId: row.laboratory_id,
@@ -86,14 +98,20 @@ function toInvitation(row: Awaited<ReturnType<ReturnType<typeof selectInvitation
     answer: row.answer as InvitationRecord['answer'],
     answeredAt: row.answered_at,
     participantId: row.participant_id,
-    lastLink: row.number !== null && row.issued_at !== null ? { number: row.number, issuedAt: row.issued_at } : null,
+    lastLink:
+      row.number !== null && row.issued_at !== null ? { number: row.number, issuedAt: row.issued_at } : null,
   }
 }
 
 /** The organisation's laboratory of this name, made when it is new. */
 export async function upsertLaboratory(
   trx: Transaction<DB>,
-  { organisationId, name, city, country }: { organisationId: string; name: string; city: string; country: string },
+  {
+    organisationId,
+    name,
+    city,
+    country,
+  }: { organisationId: string; name: string; city: string; country: string },
 ): Promise<string> {
   const { laboratory_id } = await trx
     .insertInto('vault.laboratory')
@@ -106,7 +124,15 @@ export async function upsertLaboratory(
 
 export async function insertInvitation(
   trx: Transaction<DB>,
-  row: { studyId: string; organisationId: string; laboratoryId: string; address: string; contactName: string; zone: string; personId: string },
+  row: {
+    studyId: string
+    organisationId: string
+    laboratoryId: string
+    address: string
+    contactName: string
+    zone: string
+    personId: string
+  },
 ): Promise<string> {
   const { invitation_id } = await trx
     .insertInto('vault.invitation')
@@ -174,7 +200,14 @@ export async function findInvitationLink(
         .as('superseded'),
     )
     .executeTakeFirst()
-  return row && { studyId: row.study_id, invitationId: row.invitation_id, number: row.number, superseded: Boolean(row.superseded) }
+  return (
+    row && {
+      studyId: row.study_id,
+      invitationId: row.invitation_id,
+      number: row.number,
+      superseded: Boolean(row.superseded),
+    }
+  )
 }
 
 /** What an invitation's page may say without a sign-in: the study, who asks, until when. No laboratory. */
@@ -207,7 +240,11 @@ export async function findInvitedStudy(db: Kysely<DB>, studyId: string) {
 /** Records the answer; undefined when the invitation was answered before. */
 export async function insertInvitationAnswer(
   trx: Transaction<DB>,
-  { studyId, invitationId, answer }: { studyId: string; invitationId: string; answer: 'accepted' | 'declined' },
+  {
+    studyId,
+    invitationId,
+    answer,
+  }: { studyId: string; invitationId: string; answer: 'accepted' | 'declined' },
 ): Promise<boolean> {
   const inserted = await trx
     .insertInto('vault.invitation_answer')
@@ -226,7 +263,12 @@ export async function listCodes(db: Kysely<DB>, studyId: string): Promise<string
 /** Gives an accepted invitation its code and its first contact. */
 export async function insertParticipant(
   trx: Transaction<DB>,
-  { studyId, invitationId, code, personId }: { studyId: string; invitationId: string; code: string; personId: string },
+  {
+    studyId,
+    invitationId,
+    code,
+    personId,
+  }: { studyId: string; invitationId: string; code: string; personId: string },
 ): Promise<string> {
   const { participant_id } = await trx
     .insertInto('participant')
@@ -237,19 +279,29 @@ export async function insertParticipant(
     .insertInto('vault.identity')
     .values({ study_id: studyId, participant_id, invitation_id: invitationId })
     .execute()
-  await trx.insertInto('vault.contact').values({ study_id: studyId, participant_id, person_id: personId }).execute()
+  await trx
+    .insertInto('vault.contact')
+    .values({ study_id: studyId, participant_id, person_id: personId })
+    .execute()
   return participant_id
 }
 
 /** Which laboratory stands behind which code. Every caller writes an audit entry. */
-export async function readKey(db: Kysely<DB>, studyId: string): Promise<{ code: string; laboratory: string; invitationId: string }[]> {
+export async function readKey(
+  db: Kysely<DB>,
+  studyId: string,
+): Promise<{ code: string; laboratory: string; invitationId: string }[]> {
   return db
     .selectFrom('participant')
     .innerJoin('vault.identity as identity', (join) =>
-      join.onRef('identity.study_id', '=', 'participant.study_id').onRef('identity.participant_id', '=', 'participant.participant_id'),
+      join
+        .onRef('identity.study_id', '=', 'participant.study_id')
+        .onRef('identity.participant_id', '=', 'participant.participant_id'),
     )
     .innerJoin('vault.invitation as invitation', (join) =>
-      join.onRef('invitation.study_id', '=', 'identity.study_id').onRef('invitation.invitation_id', '=', 'identity.invitation_id'),
+      join
+        .onRef('invitation.study_id', '=', 'identity.study_id')
+        .onRef('invitation.invitation_id', '=', 'identity.invitation_id'),
     )
     .innerJoin('vault.laboratory as laboratory', (join) =>
       join
@@ -265,5 +317,7 @@ export async function readKey(db: Kysely<DB>, studyId: string): Promise<{ code: 
 /** Everything that names a laboratory of the study: to hold a free text against before it is stored. */
 export async function listIdentifyingWords(db: Kysely<DB>, studyId: string): Promise<string[]> {
   const rows = await selectInvitations(db).where('invitation.study_id', '=', studyId).execute()
-  return rows.flatMap((row) => [row.name, row.city, row.address, row.address.split('@')[1] ?? '', row.contact_name]).filter((word) => word.length >= 3)
+  return rows
+    .flatMap((row) => [row.name, row.city, row.address, row.address.split('@')[1] ?? '', row.contact_name])
+    .filter((word) => word.length >= 3)
 }

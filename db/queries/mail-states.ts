@@ -9,7 +9,10 @@ export interface MailState {
 }
 
 /** What became of a study's mails of one kind, the earliest first. */
-export async function listMailStates(db: Kysely<DB>, { studyId, kind }: { studyId: string; kind: string }): Promise<MailState[]> {
+export async function listMailStates(
+  db: Kysely<DB>,
+  { studyId, kind }: { studyId: string; kind: string },
+): Promise<MailState[]> {
   const rows = await db
     .selectFrom('vault.mail as mail')
     .leftJoinLateral(

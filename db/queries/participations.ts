@@ -18,13 +18,19 @@ export async function findParticipation(
   return db
     .selectFrom('vault.contact as contact')
     .innerJoin('participant', (join) =>
-      join.onRef('participant.study_id', '=', 'contact.study_id').onRef('participant.participant_id', '=', 'contact.participant_id'),
+      join
+        .onRef('participant.study_id', '=', 'contact.study_id')
+        .onRef('participant.participant_id', '=', 'contact.participant_id'),
     )
     .innerJoin('vault.identity as identity', (join) =>
-      join.onRef('identity.study_id', '=', 'contact.study_id').onRef('identity.participant_id', '=', 'contact.participant_id'),
+      join
+        .onRef('identity.study_id', '=', 'contact.study_id')
+        .onRef('identity.participant_id', '=', 'contact.participant_id'),
     )
     .innerJoin('vault.invitation as invitation', (join) =>
-      join.onRef('invitation.study_id', '=', 'identity.study_id').onRef('invitation.invitation_id', '=', 'identity.invitation_id'),
+      join
+        .onRef('invitation.study_id', '=', 'identity.study_id')
+        .onRef('invitation.invitation_id', '=', 'identity.invitation_id'),
     )
     .innerJoin('vault.laboratory as laboratory', (join) =>
       join
@@ -53,7 +59,10 @@ export interface DraftRecord {
   readonly savedAt: Date
 }
 
-export async function findDraft(db: Kysely<DB>, { studyId, participantId }: { studyId: string; participantId: string }): Promise<DraftRecord | undefined> {
+export async function findDraft(
+  db: Kysely<DB>,
+  { studyId, participantId }: { studyId: string; participantId: string },
+): Promise<DraftRecord | undefined> {
   const row = await db
     .selectFrom('vault.draft')
     .where('study_id', '=', studyId)
@@ -66,12 +75,24 @@ export async function findDraft(db: Kysely<DB>, { studyId, participantId }: { st
 /** Writes the draft if it still has the version the writer saw; undefined when another page wrote meanwhile. */
 export async function writeDraft(
   trx: Transaction<DB>,
-  draft: { studyId: string; participantId: string; entries: Record<string, string>; remark: string; seenVersion: number; personId: string },
+  draft: {
+    studyId: string
+    participantId: string
+    entries: Record<string, string>
+    remark: string
+    seenVersion: number
+    personId: string
+  },
 ): Promise<{ version: number; savedAt: Date } | undefined> {
   const columns = { entries: JSON.stringify(draft.entries), remark: draft.remark, saved_by: draft.personId }
   return trx
     .insertInto('vault.draft')
-    .values({ study_id: draft.studyId, participant_id: draft.participantId, version: draft.seenVersion + 1, ...columns })
+    .values({
+      study_id: draft.studyId,
+      participant_id: draft.participantId,
+      version: draft.seenVersion + 1,
+      ...columns,
+    })
     .onConflict((conflict) =>
       conflict
         .columns(['study_id', 'participant_id'])
@@ -82,8 +103,15 @@ export async function writeDraft(
     .executeTakeFirst()
 }
 
-export async function deleteDraft(trx: Transaction<DB>, { studyId, participantId }: { studyId: string; participantId: string }): Promise<void> {
-  await trx.deleteFrom('vault.draft').where('study_id', '=', studyId).where('participant_id', '=', participantId).execute()
+export async function deleteDraft(
+  trx: Transaction<DB>,
+  { studyId, participantId }: { studyId: string; participantId: string },
+): Promise<void> {
+  await trx
+    .deleteFrom('vault.draft')
+    .where('study_id', '=', studyId)
+    .where('participant_id', '=', participantId)
+    .execute()
 }
 
 export async function insertExtensionRequest(
@@ -92,7 +120,12 @@ export async function insertExtensionRequest(
 ): Promise<string> {
   const { request_id } = await trx
     .insertInto('vault.extension_request')
-    .values({ study_id: row.studyId, participant_id: row.participantId, message: row.message, requested_by: row.personId })
+    .values({
+      study_id: row.studyId,
+      participant_id: row.participantId,
+      message: row.message,
+      requested_by: row.personId,
+    })
     .returning('request_id')
     .executeTakeFirstOrThrow()
   return request_id
@@ -122,7 +155,10 @@ export async function insertExtension(
 }
 
 /** Where the contacts of a laboratory read their mail. */
-export async function listContactAddresses(db: Kysely<DB>, { studyId, participantId }: { studyId: string; participantId: string }): Promise<{ personId: string; address: string }[]> {
+export async function listContactAddresses(
+  db: Kysely<DB>,
+  { studyId, participantId }: { studyId: string; participantId: string },
+): Promise<{ personId: string; address: string }[]> {
   return db
     .selectFrom('vault.contact as contact')
     .innerJoin('vault.User as person', 'person.id', 'contact.person_id')

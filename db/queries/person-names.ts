@@ -1,7 +1,10 @@
 import type { Kysely } from 'kysely'
 import type { DB } from '@/db/tables'
 
-export async function findPersonNames(db: Kysely<DB>, personIds: readonly string[]): Promise<Map<string, string>> {
+export async function findPersonNames(
+  db: Kysely<DB>,
+  personIds: readonly string[],
+): Promise<Map<string, string>> {
   if (personIds.length === 0) return new Map()
   const rows = await db
     .selectFrom('vault.User')

@@ -17,10 +17,14 @@ export async function findOpenProposal(db: Kysely<DB>, studyId: string): Promise
     .selectFrom('publication_proposal as proposal')
     .innerJoin('vault.User as person', 'person.id', 'proposal.proposed_by')
     .leftJoin('publication_proposal_withdrawn as withdrawn', (join) =>
-      join.onRef('withdrawn.study_id', '=', 'proposal.study_id').onRef('withdrawn.proposal_id', '=', 'proposal.proposal_id'),
+      join
+        .onRef('withdrawn.study_id', '=', 'proposal.study_id')
+        .onRef('withdrawn.proposal_id', '=', 'proposal.proposal_id'),
     )
     .leftJoin('publication', (join) =>
-      join.onRef('publication.study_id', '=', 'proposal.study_id').onRef('publication.proposal_id', '=', 'proposal.proposal_id'),
+      join
+        .onRef('publication.study_id', '=', 'proposal.study_id')
+        .onRef('publication.proposal_id', '=', 'proposal.proposal_id'),
     )
     .where('proposal.study_id', '=', studyId)
     .where('withdrawn.proposal_id', 'is', null)
@@ -44,7 +48,13 @@ export async function insertProposal(
 ): Promise<string> {
   const { proposal_id } = await trx
     .insertInto('publication_proposal')
-    .values({ study_id: row.studyId, analysis_id: row.analysisId, snapshot: row.snapshot, digest: row.digest, proposed_by: row.personId })
+    .values({
+      study_id: row.studyId,
+      analysis_id: row.analysisId,
+      snapshot: row.snapshot,
+      digest: row.digest,
+      proposed_by: row.personId,
+    })
     .returning('proposal_id')
     .executeTakeFirstOrThrow()
   return proposal_id
@@ -56,7 +66,12 @@ export async function insertProposalWithdrawn(
 ): Promise<void> {
   await trx
     .insertInto('publication_proposal_withdrawn')
-    .values({ study_id: row.studyId, proposal_id: row.proposalId, reason: row.reason, withdrawn_by: row.personId })
+    .values({
+      study_id: row.studyId,
+      proposal_id: row.proposalId,
+      reason: row.reason,
+      withdrawn_by: row.personId,
+    })
     .execute()
 }
 
@@ -65,7 +80,11 @@ export async function insertPublication(
   trx: Transaction<DB>,
   row: { studyId: string; proposalId: string; slug: string; proposedBy: string; personId: string },
 ): Promise<string> {
-  const taken = await trx.selectFrom('publication').select('slug').where('slug', 'like', `${row.slug}%`).execute()
+  const taken = await trx
+    .selectFrom('publication')
+    .select('slug')
+    .where('slug', 'like', `${row.slug}%`)
+    .execute()
   const slugs = new Set(taken.map(({ slug }) => slug))
   let slug = row.slug
   for (let number = 2; slugs.has(slug); number += 1) slug = `${row.slug}-${number}`

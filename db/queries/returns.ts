@@ -30,11 +30,16 @@ const receiptColumns = [
   'receipt.remark',
 ] as const
 
-function selectReceipts(db: Kysely<DB>, { studyId, participantId }: { studyId: string; participantId: string }) {
+function selectReceipts(
+  db: Kysely<DB>,
+  { studyId, participantId }: { studyId: string; participantId: string },
+) {
   return db
     .selectFrom('vault.receipt as receipt')
     .innerJoin('result_return', (join) =>
-      join.onRef('result_return.study_id', '=', 'receipt.study_id').onRef('result_return.return_id', '=', 'receipt.return_id'),
+      join
+        .onRef('result_return.study_id', '=', 'receipt.study_id')
+        .onRef('result_return.return_id', '=', 'receipt.return_id'),
     )
     .where('receipt.study_id', '=', studyId)
     .where('receipt.participant_id', '=', participantId)
@@ -43,7 +48,10 @@ function selectReceipts(db: Kysely<DB>, { studyId, participantId }: { studyId: s
 }
 
 /** A laboratory's own returns, the latest first. */
-export async function listReceipts(db: Kysely<DB>, place: { studyId: string; participantId: string }): Promise<ReceiptRecord[]> {
+export async function listReceipts(
+  db: Kysely<DB>,
+  place: { studyId: string; participantId: string },
+): Promise<ReceiptRecord[]> {
   return selectReceipts(db, place).orderBy('result_return.number', 'desc').execute()
 }
 
@@ -66,7 +74,15 @@ export async function insertReturn(
     source: 'sheet' | 'file'
     uploadId: string | null
     remark: string
-    results: readonly { measurandId: string; materialId: string; groups: readonly number[]; value: string; censored: '<' | '>' | null; text: string; cell: string | null }[]
+    results: readonly {
+      measurandId: string
+      materialId: string
+      groups: readonly number[]
+      value: string
+      censored: '<' | '>' | null
+      text: string
+      cell: string | null
+    }[]
   },
 ): Promise<{ returnId: string; number: number }> {
   const { return_id: returnId, number } = await trx
@@ -117,17 +133,28 @@ export async function insertReturn(
 }
 
 /** What a laboratory reported in one of its returns, as it was typed. */
-export async function listReportedTexts(db: Kysely<DB>, { studyId, returnId }: { studyId: string; returnId: string }): Promise<ReportedRow[]> {
+export async function listReportedTexts(
+  db: Kysely<DB>,
+  { studyId, returnId }: { studyId: string; returnId: string },
+): Promise<ReportedRow[]> {
   const rows = await db
     .selectFrom('vault.reported_text')
     .where('study_id', '=', studyId)
     .where('return_id', '=', returnId)
     .select(['measurand_id', 'material_id', 'place', 'text'])
     .execute()
-  return rows.map((row) => ({ measurandId: row.measurand_id, materialId: row.material_id, groups: row.place, text: row.text }))
+  return rows.map((row) => ({
+    measurandId: row.measurand_id,
+    materialId: row.material_id,
+    groups: row.place,
+    text: row.text,
+  }))
 }
 
-export async function countReturns(db: Kysely<DB>, studyId: string): Promise<{ returned: number; expected: number }> {
+export async function countReturns(
+  db: Kysely<DB>,
+  studyId: string,
+): Promise<{ returned: number; expected: number }> {
   const row = await db
     .selectFrom('participant')
     .leftJoin('result_return', (join) =>
@@ -165,23 +192,33 @@ export async function listReturnProgress(db: Kysely<DB>, studyId: string): Promi
   const rows = await db
     .selectFrom('participant')
     .innerJoin('vault.identity as identity', (join) =>
-      join.onRef('identity.study_id', '=', 'participant.study_id').onRef('identity.participant_id', '=', 'participant.participant_id'),
+      join
+        .onRef('identity.study_id', '=', 'participant.study_id')
+        .onRef('identity.participant_id', '=', 'participant.participant_id'),
     )
     .innerJoin('vault.invitation as invitation', (join) =>
-      join.onRef('invitation.study_id', '=', 'identity.study_id').onRef('invitation.invitation_id', '=', 'identity.invitation_id'),
+      join
+        .onRef('invitation.study_id', '=', 'identity.study_id')
+        .onRef('invitation.invitation_id', '=', 'identity.invitation_id'),
     )
     .leftJoin('vault.invitation_answer as answer', (join) =>
-      join.onRef('answer.study_id', '=', 'invitation.study_id').onRef('answer.invitation_id', '=', 'invitation.invitation_id'),
+      join
+        .onRef('answer.study_id', '=', 'invitation.study_id')
+        .onRef('answer.invitation_id', '=', 'invitation.invitation_id'),
     )
     .leftJoin('vault.draft as draft', (join) =>
-      join.onRef('draft.study_id', '=', 'participant.study_id').onRef('draft.participant_id', '=', 'participant.participant_id'),
+      join
+        .onRef('draft.study_id', '=', 'participant.study_id')
+        .onRef('draft.participant_id', '=', 'participant.participant_id'),
     )
     .leftJoinLateral(
       (from) =>
         from
           .selectFrom('vault.receipt as receipt')
           .innerJoin('result_return as each', (join) =>
-            join.onRef('each.study_id', '=', 'receipt.study_id').onRef('each.return_id', '=', 'receipt.return_id'),
+            join
+              .onRef('each.study_id', '=', 'receipt.study_id')
+              .onRef('each.return_id', '=', 'receipt.return_id'),
           )
           .whereRef('receipt.study_id', '=', 'participant.study_id')
           .whereRef('receipt.participant_id', '=', 'participant.participant_id')
@@ -197,7 +234,10 @@ export async function listReturnProgress(db: Kysely<DB>, studyId: string): Promi
           .selectFrom('vault.extension as extension')
           .whereRef('extension.study_id', '=', 'participant.study_id')
           .whereRef('extension.participant_id', '=', 'participant.participant_id')
-          .select((select) => [select.fn.max('extension.due_at').as('due_at'), select.fn.max('extension.granted_at').as('granted_at')])
+          .select((select) => [
+            select.fn.max('extension.due_at').as('due_at'),
+            select.fn.max('extension.granted_at').as('granted_at'),
+          ])
           .as('extension'),
       (join) => join.onTrue(),
     )
@@ -229,8 +269,12 @@ export async function listReturnProgress(db: Kysely<DB>, studyId: string): Promi
       'request.request_id',
       'request.message',
       'request.requested_at',
-      sql<number>`(select count(*) from jsonb_each_text(draft.entries) where value <> '')`.as('draft_entries'),
-      sql<number>`(select count(*) from test_result where test_result.study_id = participant.study_id and test_result.return_id = last.return_id)`.as('results'),
+      sql<number>`(select count(*) from jsonb_each_text(draft.entries) where value <> '')`.as(
+        'draft_entries',
+      ),
+      sql<number>`(select count(*) from test_result where test_result.study_id = participant.study_id and test_result.return_id = last.return_id)`.as(
+        'results',
+      ),
     ])
     .execute()
   return rows.map((row) => ({
@@ -246,7 +290,10 @@ export async function listReturnProgress(db: Kysely<DB>, studyId: string): Promi
     zone: row.zone,
     extendedTo: row.due_at,
     request:
-      row.request_id && row.message !== null && row.requested_at && !(row.granted_at && row.granted_at > row.requested_at)
+      row.request_id &&
+      row.message !== null &&
+      row.requested_at &&
+      !(row.granted_at && row.granted_at > row.requested_at)
         ? { requestId: row.request_id, message: row.message, requestedAt: row.requested_at }
         : null,
   }))

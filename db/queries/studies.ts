@@ -20,7 +20,13 @@ export interface StudyRecord {
 }
 
 export interface StudyLayoutRecord {
-  readonly measurands: readonly { measurandId: string; name: string; unit: string; decimals: number; hasTrueZero: boolean }[]
+  readonly measurands: readonly {
+    measurandId: string
+    name: string
+    unit: string
+    decimals: number
+    hasTrueZero: boolean
+  }[]
   readonly materials: readonly { materialId: string; name: string; description: string }[]
   readonly levels: readonly { name: string; count: number }[]
 }
@@ -39,18 +45,28 @@ export async function findStudyFor(
 }
 
 /** Holds a study's row to the end of the transaction. */
-export async function lockStudy(db: Kysely<DB>, studyId: string, strength: 'share' | 'update' = 'update'): Promise<void> {
+export async function lockStudy(
+  db: Kysely<DB>,
+  studyId: string,
+  strength: 'share' | 'update' = 'update',
+): Promise<void> {
   const row = db.selectFrom('study').select('study_id').where('study_id', '=', studyId)
   await (strength === 'share' ? row.forShare() : row.forUpdate()).execute()
 }
 
 /** Every study within the actor's sight, the newest state first. */
 export async function listStudiesFor(db: Kysely<DB>, actor: Actor): Promise<StudyRecord[]> {
-  const rows = await selectStudies(db, actor).orderBy('state.entered_at', 'desc').orderBy('study.short_name').execute()
+  const rows = await selectStudies(db, actor)
+    .orderBy('state.entered_at', 'desc')
+    .orderBy('study.short_name')
+    .execute()
   return rows.map(toStudy)
 }
 
-export async function listOrganisationNames(db: Kysely<DB>, organisationIds: readonly string[]): Promise<{ organisationId: string; name: string }[]> {
+export async function listOrganisationNames(
+  db: Kysely<DB>,
+  organisationIds: readonly string[],
+): Promise<{ organisationId: string; name: string }[]> {
   if (organisationIds.length === 0) return []
   return db
     .selectFrom('organisation')
@@ -148,7 +164,12 @@ export async function readLayout(db: Kysely<DB>, studyId: string): Promise<Study
       .where('study_id', '=', studyId)
       .orderBy('position')
       .execute(),
-    db.selectFrom('nesting_level').select(['name', 'count']).where('study_id', '=', studyId).orderBy('position').execute(),
+    db
+      .selectFrom('nesting_level')
+      .select(['name', 'count'])
+      .where('study_id', '=', studyId)
+      .orderBy('position')
+      .execute(),
   ])
   return { measurands, materials, levels }
 }
@@ -170,7 +191,13 @@ export async function updateStudy(trx: Transaction<DB>, studyId: string, plan: S
 }
 
 function planColumns(plan: StudyPlan) {
-  return { short_name: plan.shortName, title: plan.title, method: plan.method, purpose: plan.purpose, limit_factor: plan.limitFactor }
+  return {
+    short_name: plan.shortName,
+    title: plan.title,
+    method: plan.method,
+    purpose: plan.purpose,
+    limit_factor: plan.limitFactor,
+  }
 }
 
 /** Puts the layout of a plan in place of whatever a draft had. */
@@ -193,17 +220,36 @@ export async function replaceLayout(trx: Transaction<DB>, studyId: string, plan:
     .execute()
   await trx
     .insertInto('material')
-    .values(plan.materials.map((each, position) => ({ study_id: studyId, position, name: each.name, description: each.description })))
+    .values(
+      plan.materials.map((each, position) => ({
+        study_id: studyId,
+        position,
+        name: each.name,
+        description: each.description,
+      })),
+    )
     .execute()
   await trx
     .insertInto('nesting_level')
-    .values(plan.levels.map((each, position) => ({ study_id: studyId, position, name: each.name, count: each.count })))
+    .values(
+      plan.levels.map((each, position) => ({
+        study_id: studyId,
+        position,
+        name: each.name,
+        count: each.count,
+      })),
+    )
     .execute()
 }
 
 export async function insertState(
   trx: Transaction<DB>,
-  { studyId, state, personId, reason }: { studyId: string; state: StudyState; personId: string; reason?: string },
+  {
+    studyId,
+    state,
+    personId,
+    reason,
+  }: { studyId: string; state: StudyState; personId: string; reason?: string },
 ): Promise<void> {
   await trx
     .insertInto('study_state')
@@ -220,7 +266,10 @@ export async function insertState(
     .execute()
 }
 
-export async function insertDeadline(trx: Transaction<DB>, { studyId, deadline, personId }: { studyId: string; deadline: Deadline; personId: string }): Promise<void> {
+export async function insertDeadline(
+  trx: Transaction<DB>,
+  { studyId, deadline, personId }: { studyId: string; deadline: Deadline; personId: string },
+): Promise<void> {
   await trx
     .insertInto('study_deadline')
     .values((values) => ({

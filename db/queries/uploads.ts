@@ -19,7 +19,14 @@ interface UploadPlace {
 
 export async function insertUpload(
   trx: Transaction<DB>,
-  row: { studyId: string; participantId: string; fileName: string; bytes: Buffer; sha256: string; personId: string },
+  row: {
+    studyId: string
+    participantId: string
+    fileName: string
+    bytes: Buffer
+    sha256: string
+    personId: string
+  },
 ): Promise<string> {
   const { upload_id } = await trx
     .insertInto('vault.upload')
@@ -37,13 +44,22 @@ export async function insertUpload(
 }
 
 /** The record of an upload without its bytes, within one laboratory. */
-export async function findUpload(db: Kysely<DB>, { studyId, uploadId, participantId }: UploadPlace & { participantId: string }) {
+export async function findUpload(
+  db: Kysely<DB>,
+  { studyId, uploadId, participantId }: UploadPlace & { participantId: string },
+) {
   return db
     .selectFrom('vault.upload')
     .where('study_id', '=', studyId)
     .where('upload_id', '=', uploadId)
     .where('participant_id', '=', participantId)
-    .select(['upload_id as uploadId', 'file_name as fileName', 'sha256', 'uploaded_at as uploadedAt', sql<number>`octet_length(bytes)`.as('size')])
+    .select([
+      'upload_id as uploadId',
+      'file_name as fileName',
+      'sha256',
+      'uploaded_at as uploadedAt',
+      sql<number>`octet_length(bytes)`.as('size'),
+    ])
     .executeTakeFirst()
 }
 
@@ -57,7 +73,10 @@ export async function unscopedReadUploadBytes(db: Kysely<DB>, { studyId, uploadI
     .executeTakeFirst()
 }
 
-export async function countRecentUploads(db: Kysely<DB>, { studyId, participantId }: { studyId: string; participantId: string }): Promise<number> {
+export async function countRecentUploads(
+  db: Kysely<DB>,
+  { studyId, participantId }: { studyId: string; participantId: string },
+): Promise<number> {
   const { count } = await db
     .selectFrom('vault.upload')
     .where('study_id', '=', studyId)
@@ -68,7 +87,10 @@ export async function countRecentUploads(db: Kysely<DB>, { studyId, participantI
   return count
 }
 
-export async function insertUploadCheck(trx: Transaction<DB>, { studyId, uploadId, decimalMark }: UploadPlace & { decimalMark: 'comma' | 'point' | null }): Promise<number> {
+export async function insertUploadCheck(
+  trx: Transaction<DB>,
+  { studyId, uploadId, decimalMark }: UploadPlace & { decimalMark: 'comma' | 'point' | null },
+): Promise<number> {
   const { number } = await trx
     .insertInto('vault.upload_check')
     .values((values) => ({
@@ -87,7 +109,10 @@ export async function insertUploadCheck(trx: Transaction<DB>, { studyId, uploadI
 }
 
 /** The latest check of an upload. */
-export async function findUploadCheck(db: Kysely<DB>, { studyId, uploadId, number }: UploadPlace & { number?: number }): Promise<UploadCheckRecord | undefined> {
+export async function findUploadCheck(
+  db: Kysely<DB>,
+  { studyId, uploadId, number }: UploadPlace & { number?: number },
+): Promise<UploadCheckRecord | undefined> {
   return db
     .selectFrom('vault.upload_check')
     .where('study_id', '=', studyId)
@@ -108,7 +133,10 @@ export async function findUploadCheck(db: Kysely<DB>, { studyId, uploadId, numbe
     .executeTakeFirst()
 }
 
-export async function markCheckStarted(db: Kysely<DB>, { studyId, uploadId, number }: UploadPlace & { number: number }): Promise<void> {
+export async function markCheckStarted(
+  db: Kysely<DB>,
+  { studyId, uploadId, number }: UploadPlace & { number: number },
+): Promise<void> {
   await db
     .updateTable('vault.upload_check')
     .set({ started_at: sql`clock_now()` })
@@ -120,7 +148,13 @@ export async function markCheckStarted(db: Kysely<DB>, { studyId, uploadId, numb
 
 export async function finishUploadCheck(
   db: Kysely<DB>,
-  check: UploadPlace & { number: number; outcome: 'checked' | 'refused'; code: string | null; message: string | null; report: unknown },
+  check: UploadPlace & {
+    number: number
+    outcome: 'checked' | 'refused'
+    code: string | null
+    message: string | null
+    report: unknown
+  },
 ): Promise<void> {
   await db
     .updateTable('vault.upload_check')

@@ -16,7 +16,16 @@ import { sendToReview } from '@/lib/use-cases/reviews/send-to-review'
 import { closeStudy } from '@/lib/use-cases/studies/close-study'
 import { readReview } from '@/lib/use-cases/reviews/read-review'
 import { randomNumbers } from './random-numbers'
-import { analyseNow, codeOf, draftStudy, finishAnalysis, layoutOf, openAndAnswer, planWith, returnAs } from './stage-study'
+import {
+  analyseNow,
+  codeOf,
+  draftStudy,
+  finishAnalysis,
+  layoutOf,
+  openAndAnswer,
+  planWith,
+  returnAs,
+} from './stage-study'
 import { laboratories, organisationName, people } from './twine-people'
 import { inventResults, twineNames, type Habit } from './twine-results'
 import { buildWorld, type World } from './world'
@@ -25,7 +34,9 @@ import { buildWorld, type World } from './world'
 export const demonstrationPeople = [
   ...Object.values(people),
   ...[laboratories[0], laboratories[10]].flatMap((laboratory) =>
-    laboratory ? [{ name: laboratory.contactName, address: laboratory.address, role: 'contact of a laboratory' }] : [],
+    laboratory
+      ? [{ name: laboratory.contactName, address: laboratory.address, role: 'contact of a laboratory' }]
+      : [],
   ),
 ]
 
@@ -34,7 +45,10 @@ const { ines, tobin } = people
 
 const force = { name: 'Breaking force', unit: 'N', decimals: 1, hasTrueZero: true }
 const density = { name: 'Linear density', unit: 'ktex', decimals: 3, hasTrueZero: true }
-const fiveTwines = twineNames.map((name) => ({ name, description: `Twine of ${name} fibre, one lot, spooled and cut in one day` }))
+const fiveTwines = twineNames.map((name) => ({
+  name,
+  description: `Twine of ${name} fibre, one lot, spooled and cut in one day`,
+}))
 const byDays = [
   { name: 'day', count: 2 },
   { name: 'replicate', count: 2 },
@@ -45,7 +59,15 @@ const byDays = [
  * people take, with the clock set back to when they took them. Codes are drawn as always, so that they differ
  * from one start to the next; the results do not.
  */
-export async function seedDemonstrationWorld({ app, owner, authSecret }: { app: Kysely<DB>; owner: Kysely<DB>; authSecret: string }): Promise<void> {
+export async function seedDemonstrationWorld({
+  app,
+  owner,
+  authSecret,
+}: {
+  app: Kysely<DB>
+  owner: Kysely<DB>
+  authSecret: string
+}): Promise<void> {
   const world = buildWorld({ app, owner, authSecret, jobs: nothingQueued })
   const now = new Date()
   try {
@@ -106,8 +128,16 @@ interface Round {
 async function playRound(world: World, now: Date, round: Round): Promise<string> {
   const ago = (days: number) => new Date(now.getTime() - days * day)
   await world.travel(ago(round.began))
-  const { studyId, invitationIds } = await draftStudy(world, { coordinator: ines.address, plan: planOf(round, now), laboratories })
-  for (const [person, role] of [[people.marit, 'chair'], [people.juno, 'member'], [people.leda, 'observer']] as const)
+  const { studyId, invitationIds } = await draftStudy(world, {
+    coordinator: ines.address,
+    plan: planOf(round, now),
+    laboratories,
+  })
+  for (const [person, role] of [
+    [people.marit, 'chair'],
+    [people.juno, 'member'],
+    [people.leda, 'observer'],
+  ] as const)
     await appointCommitteeMember(await world.as(ines.address), { studyId, ...person, role })
   await openAndAnswer(world, {
     coordinator: ines.address,
@@ -120,8 +150,10 @@ async function playRound(world: World, now: Date, round: Round): Promise<string>
     const habit = round.habits?.[index]
     const entries = inventResults(layout, numbers, habit)
     if (round.returned && !round.returned.includes(index)) continue
-    await world.travel(ago(Math.max(round.due, 0) + 2 + (index * 7) % 11))
-    const remark = habit?.missing ? `The specimens of ${habit.missing} were damaged on arrival and could not be tested.` : ''
+    await world.travel(ago(Math.max(round.due, 0) + 2 + ((index * 7) % 11)))
+    const remark = habit?.missing
+      ? `The specimens of ${habit.missing} were damaged on arrival and could not be tested.`
+      : ''
     await returnAs(world, { contact: laboratory.address, studyId, entries, remark })
   }
   return studyId
@@ -132,7 +164,8 @@ function planOf(round: Round, now: Date) {
   return planWith({
     shortName: round.shortName,
     title: round.title,
-    purpose: 'To learn how far two results on one twine may differ within a laboratory and between laboratories.',
+    purpose:
+      'To learn how far two results on one twine may differ within a laboratory and between laboratories.',
     measurands: round.measurands ?? [force],
     materials: fiveTwines,
     levels: round.nested ? byDays : [{ name: 'replicate', count: 3 }],
@@ -150,7 +183,11 @@ async function published(world: World, now: Date): Promise<void> {
     due: 250,
     measurands: [force, density],
     // One laboratory apart throughout, one cell that scatters, one material missing.
-    habits: { 4: { forceShare: 0.12 }, 7: { scatter: { material: 'coir', times: 3.1 } }, 10: { missing: 'jute' } },
+    habits: {
+      4: { forceShare: 0.12 },
+      7: { scatter: { material: 'coir', times: 3.1 } },
+      10: { missing: 'jute' },
+    },
   })
   await sendToReview(await world.as(ines.address), { studyId })
   await world.travel(new Date(now.getTime() - 200 * day))
@@ -252,7 +289,12 @@ async function collecting(world: World, now: Date): Promise<void> {
   if (!drafting || !asking) throw new Error('the list of laboratories is short')
   await world.travel(new Date(now.getTime() - 0.4 * day))
   const entries = Object.entries(inventResults(layout, randomNumbers(20260399))).slice(0, 9)
-  await saveDraft(await world.as(drafting.address), { studyId, entries: Object.fromEntries(entries), remark: '', seenVersion: 0 })
+  await saveDraft(await world.as(drafting.address), {
+    studyId,
+    entries: Object.fromEntries(entries),
+    remark: '',
+    seenVersion: 0,
+  })
   await requestExtension(await world.as(asking.address), {
     studyId,
     message: 'Our testing machine is with the calibration service until Thursday; four more days would do.',
@@ -263,14 +305,26 @@ async function inviting(world: World, now: Date): Promise<void> {
   await world.travel(new Date(now.getTime() - 4 * day))
   const { studyId, invitationIds } = await draftStudy(world, {
     coordinator: tobin.address,
-    plan: planOf({ shortName: 'NT-26', title: 'Breaking force of tarred twine', seed: 0, began: 4, due: -40, nested: true }, now),
+    plan: planOf(
+      {
+        shortName: 'NT-26',
+        title: 'Breaking force of tarred twine',
+        seed: 0,
+        began: 4,
+        due: -40,
+        nested: true,
+      },
+      now,
+    ),
     laboratories,
   })
   await world.travel(new Date(now.getTime() - 3 * day))
   await openAndAnswer(world, {
     coordinator: tobin.address,
     studyId,
-    answers: invitationIds.slice(0, 8).map((invitationId, index) => ({ invitationId, answer: index === 5 ? 'declined' : 'accepted' })),
+    answers: invitationIds
+      .slice(0, 8)
+      .map((invitationId, index) => ({ invitationId, answer: index === 5 ? 'declined' : 'accepted' })),
   })
 }
 
@@ -278,7 +332,17 @@ async function planning(world: World, now: Date): Promise<void> {
   await world.travel(new Date(now.getTime() - day))
   await draftStudy(world, {
     coordinator: ines.address,
-    plan: planOf({ shortName: 'NT-27', title: 'Breaking force and linear density of hay-bale twine', seed: 0, began: 1, due: -90, measurands: [force, density] }, now),
+    plan: planOf(
+      {
+        shortName: 'NT-27',
+        title: 'Breaking force and linear density of hay-bale twine',
+        seed: 0,
+        began: 1,
+        due: -90,
+        measurands: [force, density],
+      },
+      now,
+    ),
     laboratories: laboratories.slice(0, 6),
   })
 }

@@ -33,50 +33,87 @@ export function planWith(fields: Partial<Record<keyof StudyPlan, unknown>>): Stu
 /** Makes a draft with its laboratories named. */
 export async function draftStudy(
   world: World,
-  { coordinator, plan, laboratories }: { coordinator: string; plan: StudyPlan; laboratories: readonly LaboratoryInvitation[] },
+  {
+    coordinator,
+    plan,
+    laboratories,
+  }: { coordinator: string; plan: StudyPlan; laboratories: readonly LaboratoryInvitation[] },
 ): Promise<{ studyId: string; invitationIds: string[] }> {
   const context = await world.as(coordinator)
   const organisationId = context.actor.organisations[0]?.organisationId
   if (!organisationId) throw new Error(`${coordinator} belongs to no organisation`)
   const { studyId } = await createStudy(context, { organisationId, plan })
   const invitationIds: string[] = []
-  for (const laboratory of laboratories) invitationIds.push((await inviteLaboratory(context, { studyId, ...laboratory })).invitationId)
+  for (const laboratory of laboratories)
+    invitationIds.push((await inviteLaboratory(context, { studyId, ...laboratory })).invitationId)
   return { studyId, invitationIds }
 }
 
 /** Opens a draft and answers for the laboratories by the latest link of each. */
 export async function openAndAnswer(
   world: World,
-  { coordinator, studyId, answers }: { coordinator: string; studyId: string; answers: readonly { invitationId: string; answer: 'accepted' | 'declined' }[] },
+  {
+    coordinator,
+    studyId,
+    answers,
+  }: {
+    coordinator: string
+    studyId: string
+    answers: readonly { invitationId: string; answer: 'accepted' | 'declined' }[]
+  },
 ): Promise<void> {
   await openStudy(await world.as(coordinator), { studyId })
-  for (const { invitationId, answer } of answers) await answerInvitation(world.system, { token: await invitationToken(world, { studyId, invitationId }), answer })
+  for (const { invitationId, answer } of answers)
+    await answerInvitation(world.system, {
+      token: await invitationToken(world, { studyId, invitationId }),
+      answer,
+    })
 }
 
 /** The token that the latest mail to this laboratory carries. */
-export async function invitationToken(world: World, place: { studyId: string; invitationId: string }): Promise<string> {
+export async function invitationToken(
+  world: World,
+  place: { studyId: string; invitationId: string },
+): Promise<string> {
   const invitation = await findInvitation(world.system.db, place)
   if (!invitation?.lastLink) throw new Error('no link was issued')
   const row = `${place.invitationId}.${invitation.lastLink.number}`
   return `${row}.${world.system.secrets.token('invitation', row)}`
 }
 
-export async function layoutOf(world: World, { studyId, shortName }: { studyId: string; shortName: string }): Promise<ReturnLayout> {
+export async function layoutOf(
+  world: World,
+  { studyId, shortName }: { studyId: string; shortName: string },
+): Promise<ReturnLayout> {
   return toReturnLayout(shortName, await readLayout(world.system.db, studyId))
 }
 
 /** Returns results as a laboratory's contact. */
 export async function returnAs(
   world: World,
-  { contact, studyId, entries, remark = '' }: { contact: string; studyId: string; entries: Record<string, string>; remark?: string },
+  {
+    contact,
+    studyId,
+    entries,
+    remark = '',
+  }: { contact: string; studyId: string; entries: Record<string, string>; remark?: string },
 ): Promise<void> {
   const context = await world.as(contact)
-  const outcome = await submitReturn(context, { studyId, submissionKey: context.random.uuid(), entries, remark })
-  if (outcome.outcome !== 'received') throw new Error(`the return of ${contact} has problems: ${JSON.stringify(outcome.problems)}`)
+  const outcome = await submitReturn(context, {
+    studyId,
+    submissionKey: context.random.uuid(),
+    entries,
+    remark,
+  })
+  if (outcome.outcome !== 'received')
+    throw new Error(`the return of ${contact} has problems: ${JSON.stringify(outcome.problems)}`)
 }
 
 /** Has the analysis made here and now, as the worker would. */
-export async function analyseNow(world: World, { coordinator, studyId }: { coordinator: string; studyId: string }): Promise<void> {
+export async function analyseNow(
+  world: World,
+  { coordinator, studyId }: { coordinator: string; studyId: string },
+): Promise<void> {
   const { number } = await requestAnalysis(await world.as(coordinator), { studyId })
   await makeAnalysis(world.system, { studyId, number })
 }
@@ -88,7 +125,10 @@ export async function finishAnalysis(world: World, studyId: string): Promise<voi
 }
 
 /** The code a contact's laboratory has in a study. */
-export async function codeOf(world: World, { contact, studyId }: { contact: string; studyId: string }): Promise<string> {
+export async function codeOf(
+  world: World,
+  { contact, studyId }: { contact: string; studyId: string },
+): Promise<string> {
   const { actor } = await world.as(contact)
   const participation = await findParticipation(world.system.db, { studyId, personId: actor.personId })
   if (!participation) throw new Error(`${contact} takes no part`)

@@ -28,7 +28,11 @@ export interface Habit {
 export const twineNames = Object.keys(twines)
 
 /** One laboratory's invented results for a layout of twines, as typed text by place. */
-export function inventResults(layout: ReturnLayout, numbers: RandomNumbers, habit: Habit = {}): Record<string, string> {
+export function inventResults(
+  layout: ReturnLayout,
+  numbers: RandomNumbers,
+  habit: Habit = {},
+): Record<string, string> {
   const entries: Record<string, string> = {}
   const shifts = new Map<string, number>()
   const shiftOf = (key: string, share: number) => {
@@ -49,9 +53,12 @@ export function inventResults(layout: ReturnLayout, numbers: RandomNumbers, habi
     const day = place.groups.length > 1 ? shiftOf(`${cell} ${place.groups[0]}`, shares.day) : 0
     const times = isForce && habit.scatter?.material === material.name ? habit.scatter.times : 1
     const within = times * (isForce ? shares.within : shares.within / 3) * numbers.normal()
-    const value = (isForce ? twine.force : twine.density) * (1 + between + day + within + (isForce ? (habit.forceShare ?? 0) : 0))
+    const value =
+      (isForce ? twine.force : twine.density) *
+      (1 + between + day + within + (isForce ? (habit.forceShare ?? 0) : 0))
     if (habit.missing === material.name) continue
-    const isCensored = habit.censored?.material === material.name && isForce && place.groups.every((group) => group === 1)
+    const isCensored =
+      habit.censored?.material === material.name && isForce && place.groups.every((group) => group === 1)
     entries[placeKey(place)] = isCensored ? `<${habit.censored?.limit}` : value.toFixed(measurand.decimals)
   }
   return entries

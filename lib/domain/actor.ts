@@ -26,7 +26,8 @@ export function rolesTowards(actor: Actor | null, target: Target): ReadonlySet<R
   for (const { organisationId, role } of actor.organisations)
     if (organisationId === target.organisationId) roles.add(role)
   for (const { studyId, participantId } of actor.laboratories)
-    if (studyId === target.studyId && (!target.participantId || participantId === target.participantId)) roles.add('contact')
+    if (studyId === target.studyId && (!target.participantId || participantId === target.participantId))
+      roles.add('contact')
   for (const { studyId, role } of actor.committees) if (studyId === target.studyId) roles.add(role)
   return roles
 }

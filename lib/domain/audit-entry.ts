@@ -27,11 +27,34 @@ export type AuditFact =
   | { action: 'committee.dismissed'; version: 1; personId: string }
   | { action: 'key.read'; version: 1; codes: number }
   | { action: 'upload.received'; version: 1; participantId: string; uploadId: string; sha256: string }
-  | { action: 'return.submitted'; version: 1; participantId: string; returnId: string; number: number; results: number; bodyDigest: string }
-  | { action: 'cell.excluded'; version: 1; exclusionId: string; participantId: string; measurandId: string; materialId: string; reason: string }
+  | {
+      action: 'return.submitted'
+      version: 1
+      participantId: string
+      returnId: string
+      number: number
+      results: number
+      bodyDigest: string
+    }
+  | {
+      action: 'cell.excluded'
+      version: 1
+      exclusionId: string
+      participantId: string
+      measurandId: string
+      materialId: string
+      reason: string
+    }
   | { action: 'cell.taken-back'; version: 1; exclusionId: string; reason: string }
   | { action: 'analysis.requested'; version: 1; number: number }
-  | { action: 'analysis.made'; version: 1; analysisId: string; number: number; digest: string; engineVersion: string }
+  | {
+      action: 'analysis.made'
+      version: 1
+      analysisId: string
+      number: number
+      digest: string
+      engineVersion: string
+    }
   | { action: 'publication.proposed'; version: 1; proposalId: string; analysisId: string; digest: string }
   | { action: 'publication.proposal-withdrawn'; version: 1; proposalId: string; reason: string }
   | { action: 'publication.confirmed'; version: 1; proposalId: string; digest: string; slug: string }
@@ -60,7 +83,16 @@ export const houseChain = '00000000-0000-0000-0000-000000000000'
 
 /** SHA-256 over the previous hash and every field of the entry, so that none can be changed unseen. */
 export function hashEntry(entry: Omit<AuditEntry, 'hash'>): string {
-  const content = [entry.studyId, entry.sequence, entry.at, entry.actorId, entry.actorRole, entry.action, entry.version, entry.body]
+  const content = [
+    entry.studyId,
+    entry.sequence,
+    entry.at,
+    entry.actorId,
+    entry.actorRole,
+    entry.action,
+    entry.version,
+    entry.body,
+  ]
   return createHash('sha256').update(entry.previousHash).update(canonicalJson(content)).digest('hex')
 }
 
@@ -77,21 +109,33 @@ export function canonicalJson(value: unknown): string {
 }
 
 /** The first entry at which a chain breaks, with the reason, or null when it holds. */
-export function findBreak(entries: readonly AuditEntry[], head: { sequence: number; hash: string } | null): { sequence: number; reason: string } | null {
+export function findBreak(
+  entries: readonly AuditEntry[],
+  head: { sequence: number; hash: string } | null,
+): { sequence: number; reason: string } | null {
   let previousHash = chainStart
   let expected = 1
   for (const entry of entries) {
     if (entry.sequence !== expected) return { sequence: expected, reason: `entry ${expected} is missing` }
-    if (entry.previousHash !== previousHash) return { sequence: expected, reason: `entry ${expected} does not follow the one before it` }
-    if (hashEntry(entry) !== entry.hash) return { sequence: expected, reason: `entry ${expected} was changed` }
+    if (entry.previousHash !== previousHash)
+      return { sequence: expected, reason: `entry ${expected} does not follow the one before it` }
+    if (hashEntry(entry) !== entry.hash)
+      return { sequence: expected, reason: `entry ${expected} was changed` }
     previousHash = entry.hash
     expected += 1
   }
   const last = expected - 1
   if (head && head.sequence > last)
-    return { sequence: expected, reason: `the chain once reached entry ${head.sequence}, and entries after ${last} are missing` }
+    return {
+      sequence: expected,
+      reason: `the chain once reached entry ${head.sequence}, and entries after ${last} are missing`,
+    }
   if (head && head.sequence < last)
-    return { sequence: head.sequence + 1, reason: `entry ${head.sequence + 1} was added past the end of the chain` }
-  if (head && head.hash !== previousHash) return { sequence: last, reason: `entry ${last} is not the one the chain ended with` }
+    return {
+      sequence: head.sequence + 1,
+      reason: `entry ${head.sequence + 1} was added past the end of the chain`,
+    }
+  if (head && head.hash !== previousHash)
+    return { sequence: last, reason: `entry ${last} is not the one the chain ended with` }
   return null
 }

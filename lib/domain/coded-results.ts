@@ -15,8 +15,18 @@ export interface CodedResult {
  * The coded results as the CSV that the `analyse` command reads: the same rows give the same bytes, and its
  * SHA-256 is the digest of an analysis's input.
  */
-export function codedResultsCsv(levels: readonly { name: string }[], results: readonly CodedResult[]): string {
-  const header = ['laboratory', 'material', ...levels.slice(0, -1).map(({ name }) => name), 'replicate', 'value', 'excluded']
+export function codedResultsCsv(
+  levels: readonly { name: string }[],
+  results: readonly CodedResult[],
+): string {
+  const header = [
+    'laboratory',
+    'material',
+    ...levels.slice(0, -1).map(({ name }) => name),
+    'replicate',
+    'value',
+    'excluded',
+  ]
   const lines = results.map(({ code, material, groups, value, censored, excluded }) => [
     code,
     material,

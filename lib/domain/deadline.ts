@@ -57,7 +57,11 @@ function badTime(): Refusal {
 
 function requireZone(zone: string): void {
   if (!isTimeZone(zone))
-    throw new Refusal('bad-zone', `“${zone}” is not a time zone known here; choose one such as Europe/Lisbon.`, 'zone')
+    throw new Refusal(
+      'bad-zone',
+      `“${zone}” is not a time zone known here; choose one such as Europe/Lisbon.`,
+      'zone',
+    )
 }
 
 function clockTime(time: { hour: number; minute: number }): string {

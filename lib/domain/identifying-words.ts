@@ -3,7 +3,10 @@ export function findIdentifyingWord(text: string, words: readonly string[]): str
   const folded = ` ${fold(text)} `
   return words.find((word) => {
     const sought = fold(word)
-    return sought.length >= 3 && new RegExp(`(?<![\\p{L}\\p{N}])${escape(sought)}(?![\\p{L}\\p{N}])`, 'u').test(folded)
+    return (
+      sought.length >= 3 &&
+      new RegExp(`(?<![\\p{L}\\p{N}])${escape(sought)}(?![\\p{L}\\p{N}])`, 'u').test(folded)
+    )
   })
 }
 

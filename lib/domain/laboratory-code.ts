@@ -10,7 +10,10 @@ export const codeCount = letters.length * digits.length * digits.length
  * @param randomBelow a uniform integer from 0 to below its argument; the system's random source outside tests
  * @param taken codes of the study already given away
  */
-export function drawLaboratoryCode(randomBelow: (limit: number) => number, taken: ReadonlySet<string>): string {
+export function drawLaboratoryCode(
+  randomBelow: (limit: number) => number,
+  taken: ReadonlySet<string>,
+): string {
   if (taken.size >= codeCount / 2) throw new RangeError('too many laboratories for three-place codes')
   for (;;) {
     const number = randomBelow(codeCount)

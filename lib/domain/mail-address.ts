@@ -10,7 +10,8 @@ import { Refusal } from './errors'
  * @throws {Refusal} `bad-address`
  */
 export function readMailAddress(typed: string, field = 'address'): string {
-  const refuse = () => new Refusal('bad-address', 'Give one mail address, such as name@laboratory.example.', field)
+  const refuse = () =>
+    new Refusal('bad-address', 'Give one mail address, such as name@laboratory.example.', field)
   if (typed.length > 254) throw refuse()
   const text = typed.trim()
   const address = text.normalize('NFKC')
@@ -23,6 +24,7 @@ export function readMailAddress(typed: string, field = 'address'): string {
   const local = match[1].toLowerCase()
   const domain = domainToASCII(match[2].toLowerCase())
   if (local.startsWith('.') || local.endsWith('.') || local.includes('..')) throw refuse()
-  if (!/^(?:[a-z0-9](?:[a-z0-9-]{0,61}[a-z0-9])?\.)+[a-z](?:[a-z0-9-]{0,61}[a-z0-9])$/.test(domain)) throw refuse()
+  if (!/^(?:[a-z0-9](?:[a-z0-9-]{0,61}[a-z0-9])?\.)+[a-z](?:[a-z0-9-]{0,61}[a-z0-9])$/.test(domain))
+    throw refuse()
   return `${local}@${domain}`
 }

@@ -32,7 +32,10 @@ export const permissions = {
   'extension.request': { phrase: 'ask the coordinator for more time', roles: ['contact'] },
   'analysis.run': { phrase: 'have the statistics computed', roles: coordinators },
   'cell.exclude': { phrase: 'set a cell aside, or take it back in', roles: coordinators },
-  'review.read': { phrase: 'read the coded results and the consistency plots', roles: [...coordinators, ...committee] },
+  'review.read': {
+    phrase: 'read the coded results and the consistency plots',
+    roles: [...coordinators, ...committee],
+  },
   'publication.propose': { phrase: 'propose publication, or withdraw the proposal', roles: coordinators },
   'publication.confirm': { phrase: "confirm another person's proposal", roles: [...coordinators, 'chair'] },
   'publication.read': { phrase: 'read what is published', roles: ['anyone'] },

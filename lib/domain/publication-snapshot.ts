@@ -28,7 +28,11 @@ export interface PublishedMeasurand {
   readonly document: AnalysisDocument
   /** The coded results from which the document can be computed again. */
   readonly csv: string
-  readonly exclusions: readonly { readonly code: string; readonly material: string; readonly reason: string }[]
+  readonly exclusions: readonly {
+    readonly code: string
+    readonly material: string
+    readonly reason: string
+  }[]
 }
 
 /** An address part made of a study's short name: "HC-27" → "hc-27". */

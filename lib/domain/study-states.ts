@@ -31,10 +31,12 @@ export function stateWords(state: StudyState): string {
 
 /** @throws {Refusal} `wrong-state` when the course of a study has no such step. */
 export function requireStep(from: StudyState, to: StudyState): void {
-  if (!steps[from].includes(to)) throw new Refusal('wrong-state', `The study ${words[from]}; this step is not open from there.`)
+  if (!steps[from].includes(to))
+    throw new Refusal('wrong-state', `The study ${words[from]}; this step is not open from there.`)
 }
 
 /** @throws {Refusal} `wrong-state` unless the study is in one of the states named. */
 export function requireState(state: StudyState, ...allowed: readonly StudyState[]): void {
-  if (!allowed.includes(state)) throw new Refusal('wrong-state', `The study ${words[state]}, so this cannot be changed now.`)
+  if (!allowed.includes(state))
+    throw new Refusal('wrong-state', `The study ${words[state]}, so this cannot be changed now.`)
 }

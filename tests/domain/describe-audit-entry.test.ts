@@ -97,10 +97,7 @@ const sentences: [AuditFact, string][] = [
     { action: 'laboratory.corrected', version: 1, invitationId: 'v', link: 2 },
     'corrected the contact of an invited laboratory (link 2 was sent).',
   ],
-  [
-    { action: 'laboratory.accepted', version: 1, invitationId: 'v' },
-    'accepted and drew its code.',
-  ],
+  [{ action: 'laboratory.accepted', version: 1, invitationId: 'v' }, 'accepted and drew its code.'],
   [{ action: 'laboratory.declined', version: 1, invitationId: 'v' }, 'declined.'],
   [{ action: 'extension.requested', version: 1, participantId: 'p-1' }, 'asked for more time.'],
   [

@@ -61,7 +61,9 @@ describe('a plan', () => {
   })
 
   it('refuses a level called after the laboratory', () => {
-    expect(faultsOf({ levels: [{ name: 'Laboratory', count: '2' }] })['levels.0.name']).toMatch(/always the outermost/)
+    expect(faultsOf({ levels: [{ name: 'Laboratory', count: '2' }] })['levels.0.name']).toMatch(
+      /always the outermost/,
+    )
   })
 
   it('refuses more results than one return may hold, and says how many it would be', () => {

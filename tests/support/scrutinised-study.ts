@@ -11,7 +11,10 @@ export const observer = 'observer@committee.example'
 export const contacts = laboratories.slice(0, 4).map(({ address }) => address)
 
 /** A study of four laboratories and two twines, returned, closed and analysed; with a chair and an observer. */
-export async function scrutinisedStudy(world: TestWorld, { shortName = 'NT-01' } = {}): Promise<{ studyId: string }> {
+export async function scrutinisedStudy(
+  world: TestWorld,
+  { shortName = 'NT-01' } = {},
+): Promise<{ studyId: string }> {
   const coordinator = world.coordinator
   const { studyId, invitationIds } = await draftStudy(world, {
     coordinator,
@@ -20,7 +23,12 @@ export async function scrutinisedStudy(world: TestWorld, { shortName = 'NT-01' }
   })
   const context = await world.as(coordinator)
   await appointCommitteeMember(context, { studyId, name: 'The Chair', address: chair, role: 'chair' })
-  await appointCommitteeMember(context, { studyId, name: 'The Observer', address: observer, role: 'observer' })
+  await appointCommitteeMember(context, {
+    studyId,
+    name: 'The Observer',
+    address: observer,
+    role: 'observer',
+  })
   await openAndAnswer(world, {
     coordinator,
     studyId,
@@ -28,7 +36,8 @@ export async function scrutinisedStudy(world: TestWorld, { shortName = 'NT-01' }
   })
   const layout = await layoutOf(world, { studyId, shortName })
   const numbers = randomNumbers(7)
-  for (const contact of contacts) await returnAs(world, { contact, studyId, entries: inventResults(layout, numbers) })
+  for (const contact of contacts)
+    await returnAs(world, { contact, studyId, entries: inventResults(layout, numbers) })
   await closeStudy(context, { studyId, reason: 'All four laboratories have returned.' })
   await analyseNow(world, { coordinator, studyId })
   return { studyId }

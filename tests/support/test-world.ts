@@ -37,7 +37,11 @@ export async function createTestWorld({ now, seed = 1 }: { now: string; seed?: n
     const other = await ensurePerson(trx, { address: second, name: 'Second Coordinator' })
     for (const role of ['administrator', 'coordinator'] as const)
       await insertOrganisationMember(trx, { organisationId: made, personId: first.personId, role })
-    await insertOrganisationMember(trx, { organisationId: made, personId: other.personId, role: 'coordinator' })
+    await insertOrganisationMember(trx, {
+      organisationId: made,
+      personId: other.personId,
+      role: 'coordinator',
+    })
     return made
   })
   return { ...world, database, organisationId, coordinator, second, destroy: () => database.destroy() }

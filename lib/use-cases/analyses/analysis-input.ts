@@ -20,7 +20,14 @@ export async function gatherInputs(db: Kysely<DB>, studyId: string): Promise<Mea
   for (const { measurandId, hasTrueZero } of measurands) {
     const results = await listCodedResults(db, { studyId, measurandId })
     const csv = codedResultsCsv(levels, results)
-    inputs.push({ measurandId, hasTrueZero, nesting: levels.slice(0, -1).map(({ name }) => name), results, csv, digest: digestText(csv) })
+    inputs.push({
+      measurandId,
+      hasTrueZero,
+      nesting: levels.slice(0, -1).map(({ name }) => name),
+      results,
+      csv,
+      digest: digestText(csv),
+    })
   }
   return inputs
 }

@@ -12,7 +12,10 @@ import { gatherInputs, type MeasurandInput } from './analysis-input'
  * Computes a requested analysis and keeps it as a snapshot. Running twice is harmless: what is made stays.
  * The study's row is held for reading only while the input is gathered; the computing holds nothing.
  */
-export async function makeAnalysis(context: AnonymousContext, { studyId, number }: { studyId: string; number: number }): Promise<void> {
+export async function makeAnalysis(
+  context: AnonymousContext,
+  { studyId, number }: { studyId: string; number: number },
+): Promise<void> {
   const request = await findAnalysisRequest(context.db, { studyId, number })
   if (!request || request.analysisId) return
   const limitFactor = request.limitFactor === '2.77' ? 1.96 * Math.SQRT2 : Number(request.limitFactor)
@@ -27,12 +30,25 @@ export async function makeAnalysis(context: AnonymousContext, { studyId, number 
     document: JSON.stringify(analyseMeasurand(input, limitFactor)),
   }))
   const settings = canonicalJson({ limitFactor })
-  const digest = digestText(canonicalJson([engineVersion, settings, documents.map(({ inputDigest, document }) => [inputDigest, digestText(document)])]))
+  const digest = digestText(
+    canonicalJson([
+      engineVersion,
+      settings,
+      documents.map(({ inputDigest, document }) => [inputDigest, digestText(document)]),
+    ]),
+  )
   await context.db.transaction().execute(async (trx) => {
     await lockStudy(trx, studyId)
     const again = await findAnalysisRequest(trx, { studyId, number })
     if (!again || again.analysisId) return
-    const analysisId = await insertAnalysis(trx, { studyId, number, engineVersion, settings, digest, documents })
+    const analysisId = await insertAnalysis(trx, {
+      studyId,
+      number,
+      engineVersion,
+      settings,
+      digest,
+      documents,
+    })
     await recordAudit(trx, {
       actor: null,
       role: 'server',

@@ -13,6 +13,10 @@ export async function refuseIdentifyingWords(
   for (const { field, text } of texts) {
     const word = findIdentifyingWord(text, words)
     if (word)
-      throw new Refusal('names-a-laboratory', `“${word}” could tell which laboratory this is about. Write of laboratories by their codes alone.`, field)
+      throw new Refusal(
+        'names-a-laboratory',
+        `“${word}” could tell which laboratory this is about. Write of laboratories by their codes alone.`,
+        field,
+      )
   }
 }

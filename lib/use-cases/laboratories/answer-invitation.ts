@@ -1,4 +1,10 @@
-import { findInvitation, findInvitedStudy, insertInvitationAnswer, insertParticipant, listCodes } from '@/db/queries/laboratories'
+import {
+  findInvitation,
+  findInvitedStudy,
+  insertInvitationAnswer,
+  insertParticipant,
+  listCodes,
+} from '@/db/queries/laboratories'
 import { ensurePerson } from '@/db/queries/people'
 import { lockStudy } from '@/db/queries/studies'
 import type { AnonymousContext } from '@/lib/context'
@@ -21,22 +27,42 @@ export async function answerInvitation(
   const { studyId, invitationId, superseded } = found.link
   return context.db.transaction().execute(async (trx) => {
     await lockStudy(trx, studyId)
-    const [invitation, study] = [await findInvitation(trx, { studyId, invitationId }), await findInvitedStudy(trx, studyId)]
+    const [invitation, study] = [
+      await findInvitation(trx, { studyId, invitationId }),
+      await findInvitedStudy(trx, studyId),
+    ]
     if (!invitation || !study) throw new NotFound('invitation')
-    if (superseded) throw new Refusal('superseded', 'A newer link has taken the place of this one. Use the latest mail.')
+    if (superseded)
+      throw new Refusal('superseded', 'A newer link has taken the place of this one. Use the latest mail.')
     if (study.state !== 'open' || study.now > study.dueAt)
-      throw new Refusal('closed', 'The deadline of this study has passed, so the invitation can no longer be answered.')
+      throw new Refusal(
+        'closed',
+        'The deadline of this study has passed, so the invitation can no longer be answered.',
+      )
     const role = 'invited laboratory'
     if (!(await insertInvitationAnswer(trx, { studyId, invitationId, answer })))
       throw new Refusal('already-answered', `This invitation was ${invitation.answer ?? 'answered'} before.`)
     if (answer === 'declined') {
-      await recordAudit(trx, { actor: null, role, studyId, fact: { action: 'laboratory.declined', version: 1, invitationId } })
+      await recordAudit(trx, {
+        actor: null,
+        role,
+        studyId,
+        fact: { action: 'laboratory.declined', version: 1, invitationId },
+      })
       return { address: invitation.address }
     }
-    const { personId } = await ensurePerson(trx, { address: invitation.address, name: invitation.contactName })
+    const { personId } = await ensurePerson(trx, {
+      address: invitation.address,
+      name: invitation.contactName,
+    })
     const code = drawLaboratoryCode(context.random.below, new Set(await listCodes(trx, studyId)))
     await insertParticipant(trx, { studyId, invitationId, code, personId })
-    await recordAudit(trx, { actor: null, role, studyId, fact: { action: 'laboratory.accepted', version: 1, invitationId } })
+    await recordAudit(trx, {
+      actor: null,
+      role,
+      studyId,
+      fact: { action: 'laboratory.accepted', version: 1, invitationId },
+    })
     return { address: invitation.address }
   })
 }

@@ -15,7 +15,13 @@ import { requireFuture } from '../studies/plan-rules'
 /** Gives one laboratory more time than the others; the coordinator knows it by its code alone here. */
 export async function grantExtension(
   context: Context,
-  { studyId, code, localTime, choice, reason }: { studyId: string; code: string; localTime: string; choice?: 'earlier' | 'later'; reason: string },
+  {
+    studyId,
+    code,
+    localTime,
+    choice,
+    reason,
+  }: { studyId: string; code: string; localTime: string; choice?: 'earlier' | 'later'; reason: string },
 ): Promise<void> {
   requireReason(reason)
   await context.db.transaction().execute(async (trx) => {
@@ -28,7 +34,13 @@ export async function grantExtension(
     const { participantId } = lane
     const deadline = readDeadline(localTime, study.deadline.zone, choice)
     requireFuture(deadline, await readClock(trx))
-    const number = await insertExtension(trx, { studyId, participantId, dueAt: deadline.at, reason, personId: context.actor.personId })
+    const number = await insertExtension(trx, {
+      studyId,
+      participantId,
+      dueAt: deadline.at,
+      reason,
+      personId: context.actor.personId,
+    })
     await recordAudit(trx, {
       actor: context.actor,
       role,

@@ -13,7 +13,12 @@ import { recordAudit } from '../record-audit'
 import { issueInvitationLink } from './issue-invitation-link'
 
 const line = (what: string) =>
-  z.string().trim().min(1, `Give ${what}.`).max(120, `Keep ${what} within 120 characters.`).refine((text) => !/[\p{Cc}\p{Cf}]/u.test(text), `Leave control characters out of ${what}.`)
+  z
+    .string()
+    .trim()
+    .min(1, `Give ${what}.`)
+    .max(120, `Keep ${what} within 120 characters.`)
+    .refine((text) => !/[\p{Cc}\p{Cf}]/u.test(text), `Leave control characters out of ${what}.`)
 
 export const laboratoryInvitation = z.object({
   laboratory: line('the name of the laboratory'),
@@ -72,9 +77,22 @@ async function inviteAll(
   const invited: { invitationId: string; mailed: boolean }[] = []
   for (const { laboratory: name, city, country, contactName, address, zone } of invitations) {
     const laboratoryId = await upsertLaboratory(trx, { organisationId, name, city, country })
-    const row = { studyId, organisationId, laboratoryId, address, contactName, zone, personId: actor.personId }
+    const row = {
+      studyId,
+      organisationId,
+      laboratoryId,
+      address,
+      contactName,
+      zone,
+      personId: actor.personId,
+    }
     const invitationId = await insertInvitation(trx, row)
-    await recordAudit(trx, { actor, role, studyId, fact: { action: 'laboratory.invited', version: 1, invitationId } })
+    await recordAudit(trx, {
+      actor,
+      role,
+      studyId,
+      fact: { action: 'laboratory.invited', version: 1, invitationId },
+    })
     if (mailed) await issueInvitationLink(trx, context, { studyId, invitationId })
     invited.push({ invitationId, mailed })
   }

@@ -16,14 +16,26 @@ export type InvitationView =
       asked: { measurands: string[]; materials: number; results: number }
     }
 
-export async function readInvitation(context: AnonymousContext, { token }: { token: string }): Promise<InvitationView> {
+export async function readInvitation(
+  context: AnonymousContext,
+  { token }: { token: string },
+): Promise<InvitationView> {
   const found = await locateInvitation(context, token)
   if (!found) return { state: 'unknown' }
   const { link, invitation, study } = found
   const layout = await readLayout(context.db, link.studyId)
-  const perMaterial = layout.levels.reduce((product, level) => product * level.count, layout.measurands.length)
+  const perMaterial = layout.levels.reduce(
+    (product, level) => product * level.count,
+    layout.measurands.length,
+  )
   return {
-    state: invitation.answer ?? (link.superseded ? 'superseded' : study.state !== 'open' || study.now > study.dueAt ? 'closed' : 'open'),
+    state:
+      invitation.answer ??
+      (link.superseded
+        ? 'superseded'
+        : study.state !== 'open' || study.now > study.dueAt
+          ? 'closed'
+          : 'open'),
     study: {
       shortName: study.shortName,
       title: study.title,
@@ -46,6 +58,9 @@ export async function locateInvitation(context: AnonymousContext, token: string)
   if (!parsed?.[1] || !parsed[2]) return undefined
   const link = await findInvitationLink(context.db, context.secrets.hash(parsed[2]))
   if (!link || `${link.invitationId}.${link.number}` !== parsed[1]) return undefined
-  const [invitation, study] = await Promise.all([findInvitation(context.db, link), findInvitedStudy(context.db, link.studyId)])
+  const [invitation, study] = await Promise.all([
+    findInvitation(context.db, link),
+    findInvitedStudy(context.db, link.studyId),
+  ])
   return invitation && study ? { link, invitation, study } : undefined
 }

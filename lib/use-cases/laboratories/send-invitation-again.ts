@@ -8,7 +8,10 @@ import { recordAudit } from '../record-audit'
 import { issueInvitationLink } from './issue-invitation-link'
 
 /** Mails a new link to an invited laboratory that has not answered. The earlier link then says it was replaced. */
-export async function sendInvitationAgain(context: Context, { studyId, invitationId }: { studyId: string; invitationId: string }): Promise<void> {
+export async function sendInvitationAgain(
+  context: Context,
+  { studyId, invitationId }: { studyId: string; invitationId: string },
+): Promise<void> {
   await context.db.transaction().execute(async (trx) => {
     const study = await findStudyFor(trx, context.actor, studyId, { lock: 'update' })
     if (!study) throw new NotFound('study')
@@ -16,7 +19,11 @@ export async function sendInvitationAgain(context: Context, { studyId, invitatio
     requireState(study.state, 'open')
     const invitation = await findInvitation(trx, { studyId, invitationId })
     if (!invitation) throw new NotFound('invitation')
-    if (invitation.answer) throw new Refusal('already-answered', `This laboratory has ${invitation.answer} the invitation already.`)
+    if (invitation.answer)
+      throw new Refusal(
+        'already-answered',
+        `This laboratory has ${invitation.answer} the invitation already.`,
+      )
     const { number } = await issueInvitationLink(trx, context, { studyId, invitationId })
     await recordAudit(trx, {
       actor: context.actor,

@@ -15,22 +15,41 @@ import { refuseIdentifyingWords } from '../analyses/refuse-identifying-words'
 import { recordAudit } from '../record-audit'
 
 /** Freezes what would be published and asks a second person to confirm it; nothing is public yet. */
-export async function proposePublication(context: Context, { studyId }: { studyId: string }): Promise<{ proposalId: string }> {
+export async function proposePublication(
+  context: Context,
+  { studyId }: { studyId: string },
+): Promise<{ proposalId: string }> {
   return context.db.transaction().execute(async (trx) => {
     const study = await findStudyFor(trx, context.actor, studyId, { lock: 'update' })
     if (!study) throw new NotFound('study')
     const role = authorise(context.actor, 'publication.propose', study)
     requireState(study.state, 'in-review')
-    if (await findOpenProposal(trx, studyId)) throw new Refusal('already-proposed', 'Publication is proposed already and waits for a second person.')
+    if (await findOpenProposal(trx, studyId))
+      throw new Refusal('already-proposed', 'Publication is proposed already and waits for a second person.')
     const analysis = await findCurrentAnalysis(trx, studyId)
-    if (!analysis?.upToDate) throw new Refusal('analysis-stale', 'The analysis no longer matches the returns. Take the study back and compute it again.')
+    if (!analysis?.upToDate)
+      throw new Refusal(
+        'analysis-stale',
+        'The analysis no longer matches the returns. Take the study back and compute it again.',
+      )
     const snapshot = await freeze(trx, study)
     await refuseIdentifyingWords(trx, { studyId, texts: freeTexts(snapshot) })
     const text = JSON.stringify(snapshot)
     const digest = digestText(text)
     const { analysisId } = analysis
-    const proposalId = await insertProposal(trx, { studyId, analysisId, snapshot: text, digest, personId: context.actor.personId })
-    await recordAudit(trx, { actor: context.actor, role, studyId, fact: { action: 'publication.proposed', version: 1, proposalId, analysisId, digest } })
+    const proposalId = await insertProposal(trx, {
+      studyId,
+      analysisId,
+      snapshot: text,
+      digest,
+      personId: context.actor.personId,
+    })
+    await recordAudit(trx, {
+      actor: context.actor,
+      role,
+      studyId,
+      fact: { action: 'publication.proposed', version: 1, proposalId, analysisId, digest },
+    })
     return { proposalId }
   })
 }
@@ -67,7 +86,12 @@ async function freeze(trx: Transaction<DB>, study: StudyRecord): Promise<Publica
 }
 
 /** Every text of a snapshot that a person typed. */
-function freeTexts({ study, materials, levels, measurands }: PublicationSnapshot): { field: string; text: string }[] {
+function freeTexts({
+  study,
+  materials,
+  levels,
+  measurands,
+}: PublicationSnapshot): { field: string; text: string }[] {
   return [
     { field: 'title', text: study.title },
     { field: 'method', text: study.method },
@@ -75,6 +99,8 @@ function freeTexts({ study, materials, levels, measurands }: PublicationSnapshot
     ...materials.map(({ name, description }) => ({ field: 'materials', text: `${name} ${description}` })),
     ...levels.map(({ name }) => ({ field: 'levels', text: name })),
     ...measurands.map(({ name }) => ({ field: 'measurands', text: name })),
-    ...measurands.flatMap(({ exclusions }) => exclusions.map(({ reason }) => ({ field: 'reason', text: reason }))),
+    ...measurands.flatMap(({ exclusions }) =>
+      exclusions.map(({ reason }) => ({ field: 'reason', text: reason })),
+    ),
   ]
 }

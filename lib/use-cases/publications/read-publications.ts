@@ -17,7 +17,10 @@ export async function listPublications({ reader }: ReaderContext): Promise<Publi
 }
 
 /** One published study, as it was frozen. @throws {NotFound} */
-export async function readPublication({ reader }: ReaderContext, { slug }: { slug: string }): Promise<Publication> {
+export async function readPublication(
+  { reader }: ReaderContext,
+  { slug }: { slug: string },
+): Promise<Publication> {
   const row = await findPublished(reader, slug)
   if (!row) throw new NotFound('publication')
   return toPublication(row)

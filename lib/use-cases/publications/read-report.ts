@@ -9,7 +9,13 @@ import { findCurrentAnalysis } from '../analyses/analysis-input'
 export interface ReportView {
   readonly study: StudyRecord
   readonly analysis: { number: number; digest: string; upToDate: boolean } | null
-  readonly proposal: { digest: string; proposedAt: Date; proposer: string; isOwn: boolean; snapshot: PublicationSnapshot } | null
+  readonly proposal: {
+    digest: string
+    proposedAt: Date
+    proposer: string
+    isOwn: boolean
+    snapshot: PublicationSnapshot
+  } | null
   readonly publication: { slug: string; confirmedAt: Date; proposer: string; confirmer: string } | null
   readonly mayPropose: boolean
   readonly mayConfirm: boolean
@@ -28,7 +34,9 @@ export async function readReport(context: Context, { studyId }: { studyId: strin
   const isOwn = proposal?.proposedBy === context.actor.personId
   return {
     study,
-    analysis: analysis ? { number: analysis.number, digest: analysis.digest, upToDate: analysis.upToDate } : null,
+    analysis: analysis
+      ? { number: analysis.number, digest: analysis.digest, upToDate: analysis.upToDate }
+      : null,
     proposal: proposal
       ? {
           digest: proposal.digest,
@@ -39,7 +47,11 @@ export async function readReport(context: Context, { studyId }: { studyId: strin
         }
       : null,
     publication: publication
-      ? { ...publication, proposer: publication.proposer ?? 'a coordinator', confirmer: publication.confirmer ?? 'a second person' }
+      ? {
+          ...publication,
+          proposer: publication.proposer ?? 'a coordinator',
+          confirmer: publication.confirmer ?? 'a second person',
+        }
       : null,
     mayPropose: permittedRole(context.actor, 'publication.propose', study) !== undefined,
     mayConfirm: !isOwn,

@@ -10,7 +10,10 @@ import { requireState } from '@/lib/domain/study-states'
 import { recordAudit } from '../record-audit'
 
 /** Withdraws a proposal that nobody has confirmed. */
-export async function withdrawProposal(context: Context, { studyId, reason }: { studyId: string; reason: string }): Promise<void> {
+export async function withdrawProposal(
+  context: Context,
+  { studyId, reason }: { studyId: string; reason: string },
+): Promise<void> {
   requireReason(reason)
   await context.db.transaction().execute(async (trx) => {
     const study = await findStudyFor(trx, context.actor, studyId, { lock: 'update' })
@@ -30,7 +33,12 @@ export async function withdrawOpenProposal(
   const proposal = await findOpenProposal(trx, studyId)
   if (!proposal) return false
   const { proposalId } = proposal
-  await insertProposalWithdrawn(trx, { studyId, proposalId, reason: reason.trim(), personId: context.actor.personId })
+  await insertProposalWithdrawn(trx, {
+    studyId,
+    proposalId,
+    reason: reason.trim(),
+    personId: context.actor.personId,
+  })
   await recordAudit(trx, {
     actor: context.actor,
     role,

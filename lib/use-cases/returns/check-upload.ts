@@ -1,4 +1,9 @@
-import { findUploadCheck, finishUploadCheck, markCheckStarted, unscopedReadUploadBytes } from '@/db/queries/uploads'
+import {
+  findUploadCheck,
+  finishUploadCheck,
+  markCheckStarted,
+  unscopedReadUploadBytes,
+} from '@/db/queries/uploads'
 import { findInvitedStudy } from '@/db/queries/laboratories'
 import { readLayout } from '@/db/queries/studies'
 import type { AnonymousContext } from '@/lib/context'
@@ -24,6 +29,19 @@ export async function checkUploadedFile(
     ...(check.decimalMark ? { decimalMark: check.decimalMark } : {}),
   })
   if (result.outcome === 'refused')
-    await finishUploadCheck(context.db, { ...place, outcome: 'refused', code: result.code, message: result.message, report: null })
-  else await finishUploadCheck(context.db, { ...place, outcome: 'checked', code: null, message: null, report: result.check })
+    await finishUploadCheck(context.db, {
+      ...place,
+      outcome: 'refused',
+      code: result.code,
+      message: result.message,
+      report: null,
+    })
+  else
+    await finishUploadCheck(context.db, {
+      ...place,
+      outcome: 'checked',
+      code: null,
+      message: null,
+      report: result.check,
+    })
 }

@@ -25,7 +25,11 @@ export interface ReadEntries {
 }
 
 /** Reads every place of a return at once, by the one reader for reported values; places it does not know are ignored. */
-export function readEntries(layout: ReturnLayout, entries: Readonly<Record<string, string>>, decimalMark?: DecimalMark): ReadEntries {
+export function readEntries(
+  layout: ReturnLayout,
+  entries: Readonly<Record<string, string>>,
+  decimalMark?: DecimalMark,
+): ReadEntries {
   const results: ReadEntry[] = []
   const missing: Place[] = []
   const problems: EntryProblem[] = []
@@ -36,12 +40,18 @@ export function readEntries(layout: ReturnLayout, entries: Readonly<Record<strin
     const read = readReportedValue(text, decimalMark ? { decimalMark } : undefined)
     if (read.kind === 'missing') missing.push(place)
     else if (read.kind === 'fault') problems.push({ key, found: text, message: read.message })
-    else if (read.kind === 'ambiguous') problems.push({ key, found: text, message: read.message, readings: read.readings })
+    else if (read.kind === 'ambiguous')
+      problems.push({ key, found: text, message: read.message, readings: read.readings })
     else {
       const measurand = layout.measurands.find(({ id }) => id === place.measurandId)
       const decimals = read.decimal.split('.')[1]?.length ?? 0
       if (measurand && read.kind === 'number' && decimals < measurand.decimals) coarse.push(place)
-      results.push({ place, value: read.decimal, censored: read.kind === 'censored' ? read.mark : null, text: text.trim() })
+      results.push({
+        place,
+        value: read.decimal,
+        censored: read.kind === 'censored' ? read.mark : null,
+        text: text.trim(),
+      })
     }
   }
   return { results, missing, problems, coarse }

@@ -26,7 +26,10 @@ export interface ParticipationView {
 }
 
 /** A laboratory's own page of a study: what is asked, until when in its own time, and what it has returned. */
-export async function readParticipation(context: Context, { studyId }: { studyId: string }): Promise<ParticipationView> {
+export async function readParticipation(
+  context: Context,
+  { studyId }: { studyId: string },
+): Promise<ParticipationView> {
   const own = await ownParticipation(context.db, context, { studyId, action: 'return.read' })
   const { study, participation } = own
   const place = { studyId, participantId: participation.participantId }
@@ -63,7 +66,8 @@ export async function readSheet(context: Context, { studyId }: { studyId: string
   const last = view.receipts[0]
   const entries: Record<string, string> = { ...(view.draft?.entries ?? {}) }
   if (!view.draft && last) {
-    for (const row of await listReportedTexts(context.db, { studyId, returnId: last.returnId })) entries[placeKey(row)] = row.text
+    for (const row of await listReportedTexts(context.db, { studyId, returnId: last.returnId }))
+      entries[placeKey(row)] = row.text
   }
   return {
     view,

@@ -13,15 +13,27 @@ export interface ReceiptView {
 }
 
 /** One of a laboratory's own returns, as it was received. */
-export async function readReceipt(context: Context, { studyId, number }: { studyId: string; number: number }): Promise<ReceiptView> {
+export async function readReceipt(
+  context: Context,
+  { studyId, number }: { studyId: string; number: number },
+): Promise<ReceiptView> {
   const { participation } = await ownParticipation(context.db, context, { studyId, action: 'return.read' })
   const { participantId } = participation
-  const receipt = (await listReceipts(context.db, { studyId, participantId })).find((each) => each.number === number)
+  const receipt = (await listReceipts(context.db, { studyId, participantId })).find(
+    (each) => each.number === number,
+  )
   if (!receipt) throw new NotFound('receipt')
   const [view, rows, upload] = await Promise.all([
     readParticipation(context, { studyId }),
     listReportedTexts(context.db, { studyId, returnId: receipt.returnId }),
-    receipt.uploadId ? findUpload(context.db, { studyId, participantId, uploadId: receipt.uploadId }) : undefined,
+    receipt.uploadId
+      ? findUpload(context.db, { studyId, participantId, uploadId: receipt.uploadId })
+      : undefined,
   ])
-  return { view, receipt, rows, file: upload ? { fileName: upload.fileName, sha256: upload.sha256, size: upload.size } : null }
+  return {
+    view,
+    receipt,
+    rows,
+    file: upload ? { fileName: upload.fileName, sha256: upload.sha256, size: upload.size } : null,
+  }
 }

@@ -17,9 +17,14 @@ export interface UploadView {
 }
 
 /** How far the reading of a laboratory's own file has come, and what it found. */
-export async function readUpload(context: Context, { studyId, uploadId }: { studyId: string; uploadId: string }): Promise<UploadView> {
+export async function readUpload(
+  context: Context,
+  { studyId, uploadId }: { studyId: string; uploadId: string },
+): Promise<UploadView> {
   const { participation } = await ownParticipation(context.db, context, { studyId, action: 'return.upload' })
-  const upload = isUuid(uploadId) ? await findUpload(context.db, { studyId, uploadId, participantId: participation.participantId }) : undefined
+  const upload = isUuid(uploadId)
+    ? await findUpload(context.db, { studyId, uploadId, participantId: participation.participantId })
+    : undefined
   const check = upload && (await findUploadCheck(context.db, { studyId, uploadId }))
   if (!upload || !check) throw new NotFound('upload')
   return {
@@ -35,7 +40,10 @@ export async function readUpload(context: Context, { studyId, uploadId }: { stud
 }
 
 /** The file as the laboratory sent it, for the laboratory itself. */
-export async function downloadUpload(context: Context, { studyId, uploadId }: { studyId: string; uploadId: string }): Promise<{ fileName: string; bytes: Buffer }> {
+export async function downloadUpload(
+  context: Context,
+  { studyId, uploadId }: { studyId: string; uploadId: string },
+): Promise<{ fileName: string; bytes: Buffer }> {
   await readUpload(context, { studyId, uploadId })
   const file = await unscopedReadUploadBytes(context.db, { studyId, uploadId })
   if (!file) throw new NotFound('upload')

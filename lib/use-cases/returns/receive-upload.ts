@@ -13,14 +13,24 @@ export async function receiveUpload(
   context: Context,
   { studyId, fileName, bytes }: { studyId: string; fileName: string; bytes: Buffer },
 ): Promise<{ uploadId: string; sha256: string }> {
-  if (bytes.length === 0) throw new Refusal('file-empty', 'The file is empty. Save the workbook and choose it again.', 'file')
-  if (bytes.length > largestUpload) throw new Refusal('file-too-large', 'The file is larger than 5 MB. Send the results alone, without pictures or other sheets.', 'file')
+  if (bytes.length === 0)
+    throw new Refusal('file-empty', 'The file is empty. Save the workbook and choose it again.', 'file')
+  if (bytes.length > largestUpload)
+    throw new Refusal(
+      'file-too-large',
+      'The file is larger than 5 MB. Send the results alone, without pictures or other sheets.',
+      'file',
+    )
   const sha256 = createHash('sha256').update(bytes).digest('hex')
   return context.db.transaction().execute(async (trx) => {
     const { participation, role } = await ownParticipation(trx, context, { studyId, action: 'return.upload' })
     const { participantId } = participation
     if ((await countRecentUploads(trx, { studyId, participantId })) >= uploadsAnHour)
-      throw new Refusal('too-many-files', 'Thirty files came within an hour. Wait a little, or enter the results on screen.', 'file')
+      throw new Refusal(
+        'too-many-files',
+        'Thirty files came within an hour. Wait a little, or enter the results on screen.',
+        'file',
+      )
     const uploadId = await insertUpload(trx, {
       studyId,
       participantId,
@@ -30,7 +40,12 @@ export async function receiveUpload(
       personId: context.actor.personId,
     })
     const number = await insertUploadCheck(trx, { studyId, uploadId, decimalMark: null })
-    await recordAudit(trx, { actor: context.actor, role, studyId, fact: { action: 'upload.received', version: 1, participantId, uploadId, sha256 } })
+    await recordAudit(trx, {
+      actor: context.actor,
+      role,
+      studyId,
+      fact: { action: 'upload.received', version: 1, participantId, uploadId, sha256 },
+    })
     await context.jobs.enqueue(trx, 'upload.check', { studyId, uploadId, number })
     return { uploadId, sha256 }
   })
@@ -43,7 +58,8 @@ export async function recheckUpload(
 ): Promise<void> {
   await context.db.transaction().execute(async (trx) => {
     const { participation } = await ownParticipation(trx, context, { studyId, action: 'return.upload' })
-    if (!(await findUpload(trx, { studyId, uploadId, participantId: participation.participantId }))) throw new NotFound('upload')
+    if (!(await findUpload(trx, { studyId, uploadId, participantId: participation.participantId })))
+      throw new NotFound('upload')
     const number = await insertUploadCheck(trx, { studyId, uploadId, decimalMark })
     await context.jobs.enqueue(trx, 'upload.check', { studyId, uploadId, number })
   })

@@ -5,7 +5,12 @@ import type { ReturnLayout } from '@/lib/spreadsheet/layout'
 export function toReturnLayout(shortName: string, layout: StudyLayoutRecord): ReturnLayout {
   return {
     studyShortName: shortName,
-    measurands: layout.measurands.map(({ measurandId, name, unit, decimals }) => ({ id: measurandId, name, unit, decimals })),
+    measurands: layout.measurands.map(({ measurandId, name, unit, decimals }) => ({
+      id: measurandId,
+      name,
+      unit,
+      decimals,
+    })),
     materials: layout.materials.map(({ materialId, name }) => ({ id: materialId, name })),
     levels: layout.levels,
   }

@@ -15,7 +15,12 @@ export interface DraftInput {
 
 export type DraftOutcome =
   | { outcome: 'kept'; version: number; savedAt: Date }
-  | { outcome: 'changed-elsewhere'; version: number; entries: Readonly<Record<string, string>>; remark: string }
+  | {
+      outcome: 'changed-elsewhere'
+      version: number
+      entries: Readonly<Record<string, string>>
+      remark: string
+    }
 
 /** Keeps what was typed, faults and all; a draft changed on another page is shown, never overwritten. */
 export async function saveDraft(context: Context, input: DraftInput): Promise<DraftOutcome> {
@@ -25,12 +30,26 @@ export async function saveDraft(context: Context, input: DraftInput): Promise<Dr
     const { participantId } = participation
     const keys = listPlaces(toReturnLayout(study.shortName, await readLayout(trx, studyId))).map(placeKey)
     const entries = Object.fromEntries(
-      keys.filter((key) => Object.hasOwn(input.entries, key)).map((key) => [key, String(input.entries[key]).slice(0, 200)]),
+      keys
+        .filter((key) => Object.hasOwn(input.entries, key))
+        .map((key) => [key, String(input.entries[key]).slice(0, 200)]),
     )
     const remark = input.remark.slice(0, 2000)
-    const kept = await writeDraft(trx, { studyId, participantId, entries, remark, seenVersion, personId: context.actor.personId })
+    const kept = await writeDraft(trx, {
+      studyId,
+      participantId,
+      entries,
+      remark,
+      seenVersion,
+      personId: context.actor.personId,
+    })
     if (kept) return { outcome: 'kept', ...kept }
     const other = await findDraft(trx, { studyId, participantId })
-    return { outcome: 'changed-elsewhere', version: other?.version ?? 0, entries: other?.entries ?? {}, remark: other?.remark ?? '' }
+    return {
+      outcome: 'changed-elsewhere',
+      version: other?.version ?? 0,
+      entries: other?.entries ?? {},
+      remark: other?.remark ?? '',
+    }
   })
 }

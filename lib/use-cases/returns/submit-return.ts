@@ -56,11 +56,17 @@ function isCollision(error: unknown): boolean {
   return (
     error instanceof Error &&
     'constraint' in error &&
-    ['receipt_key_unique', 'result_return_number_unique', 'receipt_number_unique'].includes(String(error.constraint))
+    ['receipt_key_unique', 'result_return_number_unique', 'receipt_number_unique'].includes(
+      String(error.constraint),
+    )
   )
 }
 
-async function storeReturn(trx: Transaction<DB>, context: Context, submission: Submission): Promise<SubmissionOutcome> {
+async function storeReturn(
+  trx: Transaction<DB>,
+  context: Context,
+  submission: Submission,
+): Promise<SubmissionOutcome> {
   const { studyId, submissionKey } = submission
   const own = await ownParticipation(trx, context, { studyId, action: 'return.submit', lock: 'share' })
   const { participantId } = own.participation
@@ -72,10 +78,17 @@ async function storeReturn(trx: Transaction<DB>, context: Context, submission: S
         'key-reused',
         `This form was already returned with other values, as receipt ${earlier.receiptNumber}. Open the sheet afresh to replace that return.`,
       )
-    return { outcome: 'received', number: earlier.number, receiptNumber: earlier.receiptNumber, receivedAt: earlier.receivedAt, repeated: true }
+    return {
+      outcome: 'received',
+      number: earlier.number,
+      receiptNumber: earlier.receiptNumber,
+      receivedAt: earlier.receivedAt,
+      repeated: true,
+    }
   }
   await requireInTime(trx, own)
-  if (submission.upload) await requireOwnUpload(trx, { studyId, participantId, uploadId: submission.upload.uploadId })
+  if (submission.upload)
+    await requireOwnUpload(trx, { studyId, participantId, uploadId: submission.upload.uploadId })
   const layout = toReturnLayout(own.study.shortName, await readLayout(trx, studyId))
   const read = readEntries(layout, submission.entries, submission.decimalMark)
   if (read.problems.length > 0) return { outcome: 'problems', problems: read.problems }
@@ -102,7 +115,15 @@ async function storeReturn(trx: Transaction<DB>, context: Context, submission: S
     actor: context.actor,
     role: own.role,
     studyId,
-    fact: { action: 'return.submitted', version: 1, participantId, returnId, number, results: read.results.length, bodyDigest },
+    fact: {
+      action: 'return.submitted',
+      version: 1,
+      participantId,
+      returnId,
+      number,
+      results: read.results.length,
+      bodyDigest,
+    },
   })
   for (const { address, personId } of await listContactAddresses(trx, { studyId, participantId })) {
     await queueMail(trx, context.jobs, {
@@ -120,7 +141,10 @@ async function storeReturn(trx: Transaction<DB>, context: Context, submission: S
 
 async function requireInTime(trx: Transaction<DB>, own: OwnParticipation): Promise<void> {
   if (own.study.state !== 'open')
-    throw new Refusal('not-open', `The study ${describeState(own.study.state)}. Nothing was stored; what you entered is still here. Ask the coordinator if your results should still count.`)
+    throw new Refusal(
+      'not-open',
+      `The study ${describeState(own.study.state)}. Nothing was stored; what you entered is still here. Ask the coordinator if your results should still count.`,
+    )
   const dueAt = ownDeadline(own)
   const now = await readClock(trx)
   if (now <= dueAt) return
@@ -131,16 +155,25 @@ async function requireInTime(trx: Transaction<DB>, own: OwnParticipation): Promi
   )
 }
 
-async function requireOwnUpload(trx: Transaction<DB>, place: { studyId: string; participantId: string; uploadId: string }): Promise<void> {
+async function requireOwnUpload(
+  trx: Transaction<DB>,
+  place: { studyId: string; participantId: string; uploadId: string },
+): Promise<void> {
   const upload = await findUpload(trx, place)
   const check = upload && (await findUploadCheck(trx, place))
   if (!check) throw new NotFound('upload')
-  if (check.outcome !== 'checked') throw new Refusal('not-checked', 'This file has not been read through yet. Wait for the preview, then confirm.')
+  if (check.outcome !== 'checked')
+    throw new Refusal(
+      'not-checked',
+      'This file has not been read through yet. Wait for the preview, then confirm.',
+    )
 }
 
 function requireComplete(read: ReadEntries, remark: string): void {
-  if (read.results.length === 0) throw new Refusal('nothing-entered', 'No result was entered, so there is nothing to return.')
-  if (remark.length > 2000) throw new Refusal('remark-too-long', 'Keep the remark within 2000 characters.', 'remark')
+  if (read.results.length === 0)
+    throw new Refusal('nothing-entered', 'No result was entered, so there is nothing to return.')
+  if (remark.length > 2000)
+    throw new Refusal('remark-too-long', 'Keep the remark within 2000 characters.', 'remark')
   if (read.missing.length > 0 && remark.trim().length < 10)
     throw new Refusal(
       'gaps-unexplained',
@@ -152,13 +185,21 @@ function requireComplete(read: ReadEntries, remark: string): void {
 function digestOf({ entries, decimalMark, upload, remark }: Submission): string {
   const typed = Object.fromEntries(Object.entries(entries).filter(([, text]) => text.trim() !== ''))
   return createHash('sha256')
-    .update(canonicalJson({ entries: typed, decimalMark: decimalMark ?? null, uploadId: upload?.uploadId ?? null, remark: remark.trim() }))
+    .update(
+      canonicalJson({
+        entries: typed,
+        decimalMark: decimalMark ?? null,
+        uploadId: upload?.uploadId ?? null,
+        remark: remark.trim(),
+      }),
+    )
     .digest('hex')
 }
 
 /** Drawn, not counted: a running number would tell one laboratory how many returned before it. */
 function drawReceiptNumber({ random }: Context): string {
   const signs = 'BCDFGHJKLMNPQRSTVWXZ23456789'
-  const draw = (length: number) => Array.from({ length }, () => signs.charAt(random.below(signs.length))).join('')
+  const draw = (length: number) =>
+    Array.from({ length }, () => signs.charAt(random.below(signs.length))).join('')
   return `${draw(4)}-${draw(4)}-${draw(4)}`
 }

@@ -14,12 +14,18 @@ export async function submitUpload(
 ): Promise<SubmissionOutcome> {
   const { check } = await readUpload(context, { studyId, uploadId })
   if (!check || check.problems.length > 0 || check.questions.length > 0)
-    throw new Refusal('file-has-problems', 'The file still has problems or open questions. Mend them in the workbook and send it again.')
+    throw new Refusal(
+      'file-has-problems',
+      'The file still has problems or open questions. Mend them in the workbook and send it again.',
+    )
   return submitReturn(context, {
     studyId,
     submissionKey: uploadId,
     entries: Object.fromEntries(check.values.map(({ key, text }) => [key, text])),
-    upload: { uploadId, cells: Object.fromEntries(check.values.map(({ key, cell, typed }) => [key, { cell, typed }])) },
+    upload: {
+      uploadId,
+      cells: Object.fromEntries(check.values.map(({ key, cell, typed }) => [key, { cell, typed }])),
+    },
     remark,
   })
 }

@@ -27,7 +27,10 @@ export async function watchReturns(context: Context, { studyId }: { studyId: str
     readLayout(context.db, studyId),
     listReturnProgress(context.db, studyId),
   ])
-  const lanes = progress.map((each) => ({ ...each, state: laneState(each, { now, dueAt: study.deadline.dueAt }) }))
+  const lanes = progress.map((each) => ({
+    ...each,
+    state: laneState(each, { now, dueAt: study.deadline.dueAt }),
+  }))
   return {
     study,
     now,

@@ -28,19 +28,28 @@ export interface ReviewView {
   readonly study: AnonymousStudy
   readonly levels: readonly { name: string; count: number }[]
   readonly materials: readonly { materialId: string; name: string; description: string }[]
-  readonly analysis: { number: number; engineVersion: string; digest: string; measurands: readonly MeasurandReview[] } | null
+  readonly analysis: {
+    number: number
+    engineVersion: string
+    digest: string
+    measurands: readonly MeasurandReview[]
+  } | null
 }
 
 /**
  * The coded results of a study and their statistics, as its committee reads them. A committee sees them once
  * they are put before it; a coordinator from the first analysis on, by the same words and codes.
  */
-export async function readReview(context: ReaderContext, { studyId }: { studyId: string }): Promise<ReviewView> {
+export async function readReview(
+  context: ReaderContext,
+  { studyId }: { studyId: string },
+): Promise<ReviewView> {
   const { reader, actor } = context
   const study = await findAnonymousStudy(reader, studyId)
   if (!study) throw new NotFound('study')
   const role = authorise(actor, 'review.read', study)
-  const committeeWaits = !['in-review', 'published'].includes(study.state) && !['administrator', 'coordinator'].includes(role)
+  const committeeWaits =
+    !['in-review', 'published'].includes(study.state) && !['administrator', 'coordinator'].includes(role)
   const [levels, materials, measurands, analysis, exclusions] = await Promise.all([
     listAnonymousLevels(reader, studyId),
     listAnonymousMaterials(reader, studyId),

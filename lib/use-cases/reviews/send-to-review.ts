@@ -15,8 +15,13 @@ export async function sendToReview(context: Context, { studyId }: { studyId: str
     to: 'in-review',
     alongside: async (trx, _study, role) => {
       const analysis = await findCurrentAnalysis(trx, studyId)
-      if (!analysis) throw new Refusal('analysis-missing', 'Have the statistics computed first: the committee reads them.')
-      if (!analysis.upToDate) throw new Refusal('analysis-stale', 'Returns or decisions have changed since the last analysis. Have it computed again first.')
+      if (!analysis)
+        throw new Refusal('analysis-missing', 'Have the statistics computed first: the committee reads them.')
+      if (!analysis.upToDate)
+        throw new Refusal(
+          'analysis-stale',
+          'Returns or decisions have changed since the last analysis. Have it computed again first.',
+        )
       await recordAudit(trx, {
         actor: context.actor,
         role,
@@ -28,7 +33,10 @@ export async function sendToReview(context: Context, { studyId }: { studyId: str
 }
 
 /** Takes a study back from its committee to scrutiny; a standing proposal to publish falls with it. */
-export async function takeBackFromReview(context: Context, { studyId, reason }: { studyId: string; reason: string }): Promise<void> {
+export async function takeBackFromReview(
+  context: Context,
+  { studyId, reason }: { studyId: string; reason: string },
+): Promise<void> {
   requireReason(reason)
   await changeStudyState(context, {
     studyId,
@@ -38,7 +46,12 @@ export async function takeBackFromReview(context: Context, { studyId, reason }: 
     reason,
     alongside: async (trx, _study, role) => {
       await withdrawOpenProposal(trx, context, { studyId, role, reason })
-      await recordAudit(trx, { actor: context.actor, role, studyId, fact: { action: 'study.taken-back', version: 1, reason } })
+      await recordAudit(trx, {
+        actor: context.actor,
+        role,
+        studyId,
+        fact: { action: 'study.taken-back', version: 1, reason },
+      })
     },
   })
 }

@@ -27,7 +27,12 @@ export async function changeStudyState<Result>(context: Context, step: Step<Resu
     requireState(study.state, step.from)
     requireStep(study.state, step.to)
     const result = await step.alongside(trx, study, role)
-    await insertState(trx, { studyId: step.studyId, state: step.to, personId: context.actor.personId, reason: step.reason })
+    await insertState(trx, {
+      studyId: step.studyId,
+      state: step.to,
+      personId: context.actor.personId,
+      reason: step.reason,
+    })
     return result
   })
 }

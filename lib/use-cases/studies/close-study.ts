@@ -9,7 +9,10 @@ import { changeStudyState } from './change-study-state'
  * Closes a study for returns. Before the deadline this needs a reason, since laboratories were promised the time.
  * @throws {Refusal} `reason-needed`, `nothing-returned`, `wrong-state`
  */
-export async function closeStudy(context: Context, { studyId, reason }: { studyId: string; reason: string }): Promise<void> {
+export async function closeStudy(
+  context: Context,
+  { studyId, reason }: { studyId: string; reason: string },
+): Promise<void> {
   await changeStudyState(context, {
     studyId,
     action: 'study.close',
@@ -19,9 +22,17 @@ export async function closeStudy(context: Context, { studyId, reason }: { studyI
     alongside: async (trx, study, role) => {
       const early = (await readClock(trx)) < study.deadline.dueAt
       if (early && reason.trim().length < 10)
-        throw new Refusal('reason-needed', 'The deadline has not passed. Say in a sentence why returns close now.', 'reason')
+        throw new Refusal(
+          'reason-needed',
+          'The deadline has not passed. Say in a sentence why returns close now.',
+          'reason',
+        )
       const { returned, expected } = await countReturns(trx, studyId)
-      if (returned === 0) throw new Refusal('nothing-returned', 'No laboratory has returned results yet, so there is nothing to scrutinise.')
+      if (returned === 0)
+        throw new Refusal(
+          'nothing-returned',
+          'No laboratory has returned results yet, so there is nothing to scrutinise.',
+        )
       await recordAudit(trx, {
         actor: context.actor,
         role,

@@ -8,7 +8,10 @@ import { recordAudit } from '../record-audit'
 import { refuseTakenShortName, requireFuture } from './plan-rules'
 
 /** Opens a new study as a draft of the organisation; nobody is written to yet. */
-export async function createStudy(context: Context, { organisationId, plan }: { organisationId: string; plan: StudyPlan }): Promise<{ studyId: string }> {
+export async function createStudy(
+  context: Context,
+  { organisationId, plan }: { organisationId: string; plan: StudyPlan },
+): Promise<{ studyId: string }> {
   const { actor } = context
   const role = authorise(actor, 'study.create', { organisationId })
   const deadline = readDeadline(plan.localTime, plan.zone, plan.choice)
@@ -20,7 +23,12 @@ export async function createStudy(context: Context, { organisationId, plan }: { 
       await replaceLayout(trx, studyId, plan)
       await insertDeadline(trx, { studyId, deadline, personId: actor.personId })
       await insertState(trx, { studyId, state: 'draft', personId: actor.personId })
-      await recordAudit(trx, { actor, role, studyId, fact: { action: 'study.created', version: 1, shortName: plan.shortName, title: plan.title } })
+      await recordAudit(trx, {
+        actor,
+        role,
+        studyId,
+        fact: { action: 'study.created', version: 1, shortName: plan.shortName, title: plan.title },
+      })
       return { studyId }
     })
     .catch(refuseTakenShortName)

@@ -10,18 +10,31 @@ export interface StudyListEntry {
 }
 
 /** Every study a person has to do with, once for each capacity. */
-export async function listStudies(context: Context): Promise<{ now: Date; entries: StudyListEntry[]; mayCreateIn: { organisationId: string; name: string }[] }> {
+export async function listStudies(
+  context: Context,
+): Promise<{
+  now: Date
+  entries: StudyListEntry[]
+  mayCreateIn: { organisationId: string; name: string }[]
+}> {
   const { actor } = context
   const mayCreate = actor.organisations.filter((target) => permittedRole(actor, 'study.create', target))
   const [now, studies, mayCreateIn] = await Promise.all([
     readClock(context.db),
     listStudiesFor(context.db, actor),
-    listOrganisationNames(context.db, mayCreate.map(({ organisationId }) => organisationId)),
+    listOrganisationNames(
+      context.db,
+      mayCreate.map(({ organisationId }) => organisationId),
+    ),
   ])
   const entries = studies.flatMap((study): StudyListEntry[] => [
     ...(permittedRole(actor, 'study.read', study) ? [{ study, as: 'coordinator' as const }] : []),
-    ...(actor.laboratories.some(({ studyId }) => studyId === study.studyId) ? [{ study, as: 'laboratory' as const }] : []),
-    ...(actor.committees.some(({ studyId }) => studyId === study.studyId) ? [{ study, as: 'committee' as const }] : []),
+    ...(actor.laboratories.some(({ studyId }) => studyId === study.studyId)
+      ? [{ study, as: 'laboratory' as const }]
+      : []),
+    ...(actor.committees.some(({ studyId }) => studyId === study.studyId)
+      ? [{ study, as: 'committee' as const }]
+      : []),
   ])
   return { now, entries, mayCreateIn }
 }

@@ -8,7 +8,10 @@ import { changeStudyState } from './change-study-state'
 import { requireFuture } from './plan-rules'
 
 /** Sends the invitations of a draft and opens it for returns. */
-export async function openStudy(context: Context, { studyId }: { studyId: string }): Promise<{ invitations: number }> {
+export async function openStudy(
+  context: Context,
+  { studyId }: { studyId: string },
+): Promise<{ invitations: number }> {
   return changeStudyState(context, {
     studyId,
     action: 'study.open',
@@ -18,8 +21,12 @@ export async function openStudy(context: Context, { studyId }: { studyId: string
       requireFuture(study.deadline, await readClock(trx))
       const invitations = await listInvitations(trx, studyId)
       if (invitations.length < 2)
-        throw new Refusal('too-few-laboratories', 'Name at least two laboratories first: with one there is nothing to compare.')
-      for (const { invitationId } of invitations) await issueInvitationLink(trx, context, { studyId, invitationId })
+        throw new Refusal(
+          'too-few-laboratories',
+          'Name at least two laboratories first: with one there is nothing to compare.',
+        )
+      for (const { invitationId } of invitations)
+        await issueInvitationLink(trx, context, { studyId, invitationId })
       await recordAudit(trx, {
         actor: context.actor,
         role,

@@ -14,7 +14,13 @@ export interface StudyView {
   readonly study: StudyRecord
   readonly layout: StudyLayoutRecord
   readonly now: Date
-  readonly counts: { invited: number; accepted: number; declined: number; returned: number; committee: number }
+  readonly counts: {
+    invited: number
+    accepted: number
+    declined: number
+    returned: number
+    committee: number
+  }
   readonly analysis: { number: number; upToDate: boolean } | null
   readonly computing: boolean
   readonly proposed: boolean
@@ -27,17 +33,18 @@ export async function readStudy(context: Context, { studyId }: { studyId: string
   const study = await findStudyFor(db, actor, studyId)
   if (!study) throw new NotFound('study')
   authorise(actor, 'study.read', study)
-  const [layout, now, invitations, returns, committee, analysis, progress, proposal, publication] = await Promise.all([
-    readLayout(db, studyId),
-    readClock(db),
-    listInvitations(db, studyId),
-    countReturns(db, studyId),
-    listCommittee(db, studyId),
-    findCurrentAnalysis(db, studyId),
-    findAnalysisProgress(db, studyId),
-    findOpenProposal(db, studyId),
-    findPublication(db, studyId),
-  ])
+  const [layout, now, invitations, returns, committee, analysis, progress, proposal, publication] =
+    await Promise.all([
+      readLayout(db, studyId),
+      readClock(db),
+      listInvitations(db, studyId),
+      countReturns(db, studyId),
+      listCommittee(db, studyId),
+      findCurrentAnalysis(db, studyId),
+      findAnalysisProgress(db, studyId),
+      findOpenProposal(db, studyId),
+      findPublication(db, studyId),
+    ])
   return {
     study,
     layout,

@@ -10,7 +10,13 @@ import { requireFuture } from './plan-rules'
 /** Opens a closed study for returns again, with a new deadline and a reason. */
 export async function reopenStudy(
   context: Context,
-  { studyId, reason, localTime, zone, choice }: { studyId: string; reason: string; localTime: string; zone: string; choice?: 'earlier' | 'later' },
+  {
+    studyId,
+    reason,
+    localTime,
+    zone,
+    choice,
+  }: { studyId: string; reason: string; localTime: string; zone: string; choice?: 'earlier' | 'later' },
 ): Promise<void> {
   requireReason(reason)
   const deadline = readDeadline(localTime, zone, choice)
@@ -23,7 +29,12 @@ export async function reopenStudy(
     alongside: async (trx, study, role) => {
       requireFuture(deadline, await readClock(trx))
       await insertDeadline(trx, { studyId, deadline, personId: context.actor.personId })
-      await recordAudit(trx, { actor: context.actor, role, studyId, fact: { action: 'study.reopened', version: 1, reason } })
+      await recordAudit(trx, {
+        actor: context.actor,
+        role,
+        studyId,
+        fact: { action: 'study.reopened', version: 1, reason },
+      })
       await recordAudit(trx, {
         actor: context.actor,
         role,

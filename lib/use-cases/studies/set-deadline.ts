@@ -11,7 +11,12 @@ import { requireFuture } from './plan-rules'
 /** Moves the deadline of a draft or an open study. The earlier one stays in the record. */
 export async function setDeadline(
   context: Context,
-  { studyId, localTime, zone, choice }: { studyId: string; localTime: string; zone: string; choice?: 'earlier' | 'later' },
+  {
+    studyId,
+    localTime,
+    zone,
+    choice,
+  }: { studyId: string; localTime: string; zone: string; choice?: 'earlier' | 'later' },
 ): Promise<void> {
   const deadline = readDeadline(localTime, zone, choice)
   await context.db.transaction().execute(async (trx) => {

@@ -23,9 +23,16 @@ export async function readTrail(context: Context, { studyId }: { studyId: string
   const study = await findStudyFor(context.db, context.actor, studyId)
   if (!study) throw new NotFound('study')
   authorise(context.actor, 'trail.read', study)
-  const [entries, head] = await Promise.all([listAuditEntries(context.db, studyId), findChainHead(context.db, studyId)])
-  const actors = entries.filter((entry) => entry.actorRole !== 'contact').flatMap((entry) => entry.actorId ?? [])
-  const members = entries.filter(({ action }) => action.startsWith('committee.')).flatMap(({ body }) => personOf(body) ?? [])
+  const [entries, head] = await Promise.all([
+    listAuditEntries(context.db, studyId),
+    findChainHead(context.db, studyId),
+  ])
+  const actors = entries
+    .filter((entry) => entry.actorRole !== 'contact')
+    .flatMap((entry) => entry.actorId ?? [])
+  const members = entries
+    .filter(({ action }) => action.startsWith('committee.'))
+    .flatMap(({ body }) => personOf(body) ?? [])
   const [names, codes] = await Promise.all([
     findPersonNames(context.db, [...actors, ...members]),
     listCodesByParticipant(context.db, studyId),

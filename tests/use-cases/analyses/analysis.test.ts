@@ -48,7 +48,11 @@ describe('an analysis', () => {
   it('is made once however often its job runs', async () => {
     const latest = await findLatestAnalysis(world.database.app, studyId)
     await Promise.all([1, 2, 3].map(() => makeAnalysis(world.system, { studyId, number: latest!.number })))
-    const { rows } = await sql<{ count: number }>`select count(*)::int as count from analysis where study_id = ${studyId} and number = ${latest!.number}`.execute(world.database.app)
+    const { rows } = await sql<{
+      count: number
+    }>`select count(*)::int as count from analysis where study_id = ${studyId} and number = ${latest!.number}`.execute(
+      world.database.app,
+    )
     expect(rows).toEqual([{ count: 1 }])
   })
 
@@ -58,7 +62,11 @@ describe('an analysis', () => {
   })
 
   it('is unchangeable in the database', async () => {
-    for (const statement of ['update analysis set digest = digest', 'delete from analysis', 'update analysis_document set document = document'])
+    for (const statement of [
+      'update analysis set digest = digest',
+      'delete from analysis',
+      'update analysis_document set document = document',
+    ])
       await expect(sql.raw(statement).execute(world.database.app)).rejects.toThrow(/permission denied/)
   })
 })
@@ -66,7 +74,10 @@ describe('an analysis', () => {
 describe('setting a cell aside', () => {
   it('needs a written reason, in the use case and in the database', async () => {
     const context = await world.as(world.coordinator)
-    await expect(excludeCell(context, { ...cell, reason: 'odd' })).rejects.toMatchObject({ code: 'reason-needed', field: 'reason' })
+    await expect(excludeCell(context, { ...cell, reason: 'odd' })).rejects.toMatchObject({
+      code: 'reason-needed',
+      field: 'reason',
+    })
     await expect(
       sql`insert into exclusion (study_id, participant_id, measurand_id, material_id, reason, decided_by)
         select study_id, participant_id, ${cell.measurandId}, ${cell.materialId}, 'odd', ${context.actor.personId}
@@ -77,7 +88,10 @@ describe('setting a cell aside', () => {
   it('refuses a reason that would name a laboratory', async () => {
     const context = await world.as(world.coordinator)
     const reason = `The grips slipped, as ${laboratories[0]!.laboratory.toUpperCase()} confirmed.`
-    await expect(excludeCell(context, { ...cell, reason })).rejects.toMatchObject({ code: 'names-a-laboratory', field: 'reason' })
+    await expect(excludeCell(context, { ...cell, reason })).rejects.toMatchObject({
+      code: 'names-a-laboratory',
+      field: 'reason',
+    })
   })
 
   it('leaves the values on record and out of the figures, and can be taken back', async () => {
@@ -89,15 +103,23 @@ describe('setting a cell aside', () => {
     expect(after.document.input).toMatchObject({ excluded: 3, results: before.input.results - 3 })
     expect(after.document.materials[1]?.laboratories).toBe(3)
     expect(after.csv).toContain('set aside')
-    expect(after.exclusions).toMatchObject([{ code: cell.code, reason: 'The grips slipped in two of three tests.' }])
-    await expect(excludeCell(context, { ...cell, reason: 'The grips slipped in two of three tests.' })).rejects.toMatchObject({ code: 'already-excluded' })
+    expect(after.exclusions).toMatchObject([
+      { code: cell.code, reason: 'The grips slipped in two of three tests.' },
+    ])
+    await expect(
+      excludeCell(context, { ...cell, reason: 'The grips slipped in two of three tests.' }),
+    ).rejects.toMatchObject({ code: 'already-excluded' })
 
     await takeCellBack(context, { ...cell, reason: 'The grips had held, as a photograph shows.' })
     await finishAnalysis(world, studyId)
     const again = (await review(world.coordinator)).analysis!.measurands[0]!
     expect(again.document.materials).toEqual(before.materials)
     const entries = await listAuditEntries(world.database.app, studyId)
-    expect(entries.filter(({ action }) => action.startsWith('cell.')).map(({ action, actorRole }) => [action, actorRole])).toEqual([
+    expect(
+      entries
+        .filter(({ action }) => action.startsWith('cell.'))
+        .map(({ action, actorRole }) => [action, actorRole]),
+    ).toEqual([
       ['cell.excluded', 'administrator'],
       ['cell.taken-back', 'administrator'],
     ])
@@ -105,7 +127,9 @@ describe('setting a cell aside', () => {
 
   it('is no right of a committee or a laboratory', async () => {
     for (const address of [chair, contacts[0]!])
-      await expect(excludeCell(await world.as(address), { ...cell, reason: 'The grips slipped in two tests.' })).rejects.toThrow(NotFound)
+      await expect(
+        excludeCell(await world.as(address), { ...cell, reason: 'The grips slipped in two tests.' }),
+      ).rejects.toThrow(NotFound)
   })
 })
 
@@ -117,11 +141,14 @@ describe('the committee', () => {
     expect(seen.analysis?.measurands).toHaveLength(1)
     const text = JSON.stringify(seen).toLowerCase()
     for (const { laboratory, city, contactName, address } of laboratories.slice(0, 4))
-      for (const word of [laboratory, city, contactName, address]) expect(text).not.toContain(word.toLowerCase())
+      for (const word of [laboratory, city, contactName, address])
+        expect(text).not.toContain(word.toLowerCase())
   })
 
   it('is closed to a laboratory of the study and to a stranger', async () => {
     await expect(review(contacts[0]!)).rejects.toThrow(NotFound)
-    await expect(readReview({ reader: world.database.reader, actor: null }, { studyId })).rejects.toThrow(NotFound)
+    await expect(readReview({ reader: world.database.reader, actor: null }, { studyId })).rejects.toThrow(
+      NotFound,
+    )
   })
 })

@@ -45,7 +45,9 @@ describe('publishing', () => {
 
   it('refuses the proposer as the second person, saying so', async () => {
     const digest = await propose()
-    await expect(confirmPublication(await world.as(world.coordinator), { studyId, digest })).rejects.toMatchObject({ code: 'same-person' })
+    await expect(
+      confirmPublication(await world.as(world.coordinator), { studyId, digest }),
+    ).rejects.toMatchObject({ code: 'same-person' })
   })
 
   it('is held to two people by the database itself', async () => {
@@ -60,8 +62,12 @@ describe('publishing', () => {
   it('lets the chair confirm, and neither the observer nor a laboratory', async () => {
     const digest = await propose()
     for (const stranger of [observer, contacts[0]!])
-      await expect(confirmPublication(await world.as(stranger), { studyId, digest })).rejects.toThrow(NotFound)
-    expect(await confirmPublication(await world.as(chair), { studyId, digest })).toEqual({ slug: `nt-${number}` })
+      await expect(confirmPublication(await world.as(stranger), { studyId, digest })).rejects.toThrow(
+        NotFound,
+      )
+    expect(await confirmPublication(await world.as(chair), { studyId, digest })).toEqual({
+      slug: `nt-${number}`,
+    })
   })
 
   it('is invisible to a stranger, by the words for what does not exist', async () => {
@@ -69,7 +75,10 @@ describe('publishing', () => {
     const elsewhere = '00000000-0000-4000-8000-00000000ffff'
     const seen = await Promise.all(
       [studyId, elsewhere].map(async (id) =>
-        confirmPublication(await world.as(contacts[0]!), { studyId: id, digest: '' }).then(String, (error: Error) => error.constructor.name),
+        confirmPublication(await world.as(contacts[0]!), { studyId: id, digest: '' }).then(
+          String,
+          (error: Error) => error.constructor.name,
+        ),
       ),
     )
     expect(seen).toEqual(['NotFound', 'NotFound'])
@@ -77,12 +86,22 @@ describe('publishing', () => {
 
   it('refuses a digest that is no longer the proposal’s', async () => {
     const first = await propose()
-    await withdrawProposal(await world.as(world.coordinator), { studyId, reason: 'A word in the purpose is to change.' })
-    await takeBackFromReview(await world.as(world.coordinator), { studyId, reason: 'A cell is to be looked at again.' })
-    await expect(confirmPublication(await world.as(world.second), { studyId, digest: first })).rejects.toMatchObject({ code: 'wrong-state' })
+    await withdrawProposal(await world.as(world.coordinator), {
+      studyId,
+      reason: 'A word in the purpose is to change.',
+    })
+    await takeBackFromReview(await world.as(world.coordinator), {
+      studyId,
+      reason: 'A cell is to be looked at again.',
+    })
+    await expect(
+      confirmPublication(await world.as(world.second), { studyId, digest: first }),
+    ).rejects.toMatchObject({ code: 'wrong-state' })
     await sendToReview(await world.as(world.coordinator), { studyId })
     await propose()
-    await expect(confirmPublication(await world.as(world.second), { studyId, digest: 'f'.repeat(64) })).rejects.toMatchObject({
+    await expect(
+      confirmPublication(await world.as(world.second), { studyId, digest: 'f'.repeat(64) }),
+    ).rejects.toMatchObject({
       code: 'proposal-changed',
     })
   })
@@ -91,13 +110,21 @@ describe('publishing', () => {
     await propose()
     const context = await world.as(world.coordinator)
     await expect(proposePublication(context, { studyId })).rejects.toMatchObject({ code: 'already-proposed' })
-    const cell = { studyId, code: 'B22', measurandId: studyId, materialId: studyId, reason: 'The grips slipped in two tests.' }
+    const cell = {
+      studyId,
+      code: 'B22',
+      measurandId: studyId,
+      materialId: studyId,
+      reason: 'The grips slipped in two tests.',
+    }
     await expect(excludeCell(context, cell)).rejects.toMatchObject({ code: 'wrong-state' })
   })
 
   it('stops a text that names a laboratory before anything is frozen', async () => {
     const town = laboratories[1]!.city
-    await sql`update study set purpose = ${`As agreed at the meeting in ${town}.`} where study_id = ${studyId}`.execute(world.database.app)
+    await sql`update study set purpose = ${`As agreed at the meeting in ${town}.`} where study_id = ${studyId}`.execute(
+      world.database.app,
+    )
     await expect(proposePublication(await world.as(world.coordinator), { studyId })).rejects.toMatchObject({
       code: 'names-a-laboratory',
       field: 'purpose',
@@ -106,11 +133,14 @@ describe('publishing', () => {
 
   it('holds no name of a person, a laboratory or an address in its snapshot', async () => {
     await propose()
-    const { rows } = await sql<{ snapshot: string }>`select snapshot from publication_proposal where study_id = ${studyId}`.execute(world.database.reader)
+    const { rows } = await sql<{
+      snapshot: string
+    }>`select snapshot from publication_proposal where study_id = ${studyId}`.execute(world.database.reader)
     const text = rows[0]?.snapshot.toLowerCase() ?? ''
     expect(text.length).toBeGreaterThan(1000)
     for (const { laboratory, city, contactName, address } of laboratories.slice(0, 4))
-      for (const word of [laboratory, city, contactName, address]) expect(text).not.toContain(word.toLowerCase())
+      for (const word of [laboratory, city, contactName, address])
+        expect(text).not.toContain(word.toLowerCase())
     for (const word of ['coordinator@', 'first coordinator']) expect(text).not.toContain(word)
   })
 
@@ -118,7 +148,13 @@ describe('publishing', () => {
     const digest = await propose()
     await confirmPublication(await world.as(world.second), { studyId, digest })
     const entries = (await listAuditEntries(world.database.app, studyId)).slice(-2)
-    expect(entries.map(({ action, actorRole, body }) => [action, actorRole, (JSON.parse(body) as { digest: string }).digest])).toEqual([
+    expect(
+      entries.map(({ action, actorRole, body }) => [
+        action,
+        actorRole,
+        (JSON.parse(body) as { digest: string }).digest,
+      ]),
+    ).toEqual([
       ['publication.proposed', 'administrator', digest],
       ['publication.confirmed', 'coordinator', digest],
     ])

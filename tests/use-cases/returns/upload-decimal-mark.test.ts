@@ -41,7 +41,10 @@ describe('a file whose decimals carry a comma', () => {
 
     await recheckUpload(context, { studyId, uploadId, decimalMark: 'comma' })
     await checkUploadedFile(world.system, { studyId, uploadId, number: 2 })
-    expect(await submitUpload(context, { studyId, uploadId, remark: '' })).toMatchObject({ outcome: 'received', number: 1 })
+    expect(await submitUpload(context, { studyId, uploadId, remark: '' })).toMatchObject({
+      outcome: 'received',
+      number: 1,
+    })
 
     const { rows } = await sql`
       select result.value::text, reported.text, reported.source_cell
