@@ -5,7 +5,12 @@ import type { QueueName } from './jobs/queues'
 
 /** Puts a job into the queue as part of a transaction: the job exists if and only if the change does. */
 export interface Jobs {
-  enqueue(trx: Transaction<DB>, queue: QueueName, payload: Record<string, string | number>, options?: { afterSeconds?: number }): Promise<void>
+  enqueue(
+    trx: Transaction<DB>,
+    queue: QueueName,
+    payload: Record<string, string | number>,
+    options?: { afterSeconds?: number },
+  ): Promise<void>
 }
 
 /** The system's random source; tests put a seeded one in its place. */
