@@ -28,7 +28,7 @@ export function NewestStudy({ publication: { slug, snapshot, publishedOn } }: { 
         </Link>
       }
     >
-      <div className="grid gap-x-10 gap-y-6 lg:grid-cols-[17rem_minmax(0,1fr)]">
+      <div className="grid items-start gap-x-10 gap-y-6 lg:grid-cols-[17rem_minmax(0,1fr)]">
         {answer && (
           <dl className="flex flex-col gap-5 sm:max-lg:flex-row sm:max-lg:gap-10">
             <Limit value={answer.rounded.repeatabilityLimit ?? ''} unit={unit} where="within one laboratory">

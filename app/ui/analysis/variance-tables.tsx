@@ -7,7 +7,7 @@ export function VarianceTables({ document, unit }: { document: AnalysisDocument;
   return (
     <div className="flex flex-col gap-2">
       {document.materials.map((material) => (
-        <details key={material.material} className="border bg-sheet px-4 py-2">
+        <details key={material.material} data-printed className="border bg-sheet px-4 py-2">
           <summary className="min-h-6 font-semibold">{material.material}</summary>
           <div className="flex flex-col gap-4 py-3">
             <AnovaRows material={material} unit={unit} />

@@ -5,6 +5,7 @@ import { entryName } from '../../entry-names'
 import { namePlace } from '../../name-place'
 import { participationPaths } from '../../participation-paths'
 import { ClosedNotice } from '../closed-notice'
+import { ReportedTable } from '../reported-table'
 import { DownloadLink } from '@/app/ui/primitives/download-link'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { listPlaces, placeKey } from '@/lib/spreadsheet/layout'
@@ -27,29 +28,39 @@ export default async function SheetPage({ params, searchParams }: PageProps) {
   const review = await orNotFound(reviewSheet(await requestContext(), { studyId }))
   const { view, entries, remark, draftVersion } = review
   const places = listPlaces(view.layout)
+  // A sheet that leads nowhere is not offered for typing; after the deadline alone, more time may still be given.
+  const isOver = view.whyNot === 'not-open'
   return (
     <LaboratoryPage
       actor={actor}
       view={view}
       title="Results"
-      lead="Type each value with the digits your laboratory would give, with a decimal point or a comma."
-      margin={<SheetNotes studyId={studyId} />}
+      lead={
+        isOver
+          ? 'As they were entered.'
+          : 'Type each value with the digits your laboratory would give, with a decimal point or a comma.'
+      }
+      margin={isOver ? undefined : <SheetNotes studyId={studyId} />}
     >
       <ClosedNotice view={view} />
-      <ResultSheet
-        studyId={studyId}
-        code={view.code}
-        zone={view.zone}
-        returns={view.receipts.length}
-        layout={view.layout}
-        entries={places.map((place) => entries[placeKey(place)] ?? '')}
-        remark={remark}
-        draftVersion={draftVersion}
-        draftSavedAt={view.draft?.savedAt.toISOString() ?? null}
-        due={`Due ${view.due.text} in ${view.due.zoneText}, ${view.dueDistance}.`}
-        problems={look === 'problems' ? listProblems(review) : []}
-        action={checkSheetAction}
-      />
+      {isOver ? (
+        <ReportedTable layout={view.layout} texts={entries} caption="What was entered" />
+      ) : (
+        <ResultSheet
+          studyId={studyId}
+          code={view.code}
+          zone={view.zone}
+          returns={view.receipts.length}
+          layout={view.layout}
+          entries={places.map((place) => entries[placeKey(place)] ?? '')}
+          remark={remark}
+          draftVersion={draftVersion}
+          draftSavedAt={view.draft?.savedAt.toISOString() ?? null}
+          due={`Due ${view.due.text} in ${view.due.zoneText}, ${view.dueDistance}.`}
+          problems={look === 'problems' ? listProblems(review) : []}
+          action={checkSheetAction}
+        />
+      )}
     </LaboratoryPage>
   )
 }

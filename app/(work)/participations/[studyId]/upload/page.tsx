@@ -40,9 +40,11 @@ export default async function UploadPage({ params, searchParams }: PageProps) {
               Download it empty
             </DownloadLink>
           </p>
-          <p>
-            Or <a href={paths.resultSheet(studyId)}>fill in the sheet on screen</a>.
-          </p>
+          {view.canReturn && (
+            <p>
+              Or <a href={paths.resultSheet(studyId)}>fill in the sheet on screen</a>.
+            </p>
+          )}
         </MarginNote>
       }
     >
