@@ -1,3 +1,4 @@
+import clsx from 'clsx'
 import Link from 'next/link'
 import type { ReactNode } from 'react'
 import { VarianceShares } from '@/app/ui/analysis/precision-plots'
@@ -28,7 +29,7 @@ export function NewestStudy({ publication: { slug, snapshot, publishedOn } }: { 
         </Link>
       }
     >
-      <div className="grid items-start gap-x-10 gap-y-6 lg:grid-cols-[17rem_minmax(0,1fr)]">
+      <div className={clsx('grid items-start gap-x-10 gap-y-6', answer && 'lg:grid-cols-[17rem_minmax(0,1fr)]')}>
         {answer && (
           <dl className="flex flex-col gap-5 sm:max-lg:flex-row sm:max-lg:gap-10">
             <Limit value={answer.rounded.repeatabilityLimit ?? ''} unit={unit} where="within one laboratory">
