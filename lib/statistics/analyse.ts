@@ -42,7 +42,7 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
 
   const analysed = withReasons((attempt): Omit<AnalysisDocument, 'reasons'> => ({
     engine: { name: 'evenlot', version: input.version },
-    input: inputBlock(input),
+    input: inputBlock(input, sum(all.flatMap(({ data }) => data.cells.map((cell) => cell.results.length)))),
     settings: { limitFactor: input.settings.limitFactor },
     materials: explainedMaterials,
     levelRelation: attempt('levelRelation', () => levelRelationOf(only ?? byMeasurand())),
@@ -104,16 +104,17 @@ function byMeasurandAndMaterial(
   }))
 }
 
-function inputBlock({ results, nesting, sha256 }: AnalysisInput): AnalysisDocument['input'] {
-  const kept = results.filter(({ excluded }) => !excluded)
-  const used = kept.filter(({ text, censored }) => text !== '' && censored === null)
-  const withData = kept.filter(({ text }) => text !== '')
+function inputBlock({ results, nesting, sha256 }: AnalysisInput, used: number): AnalysisDocument['input'] {
+  const reported = results.filter(({ text }) => text !== '')
+  const withData = reported.filter(({ excluded }) => !excluded)
+  const quantified = withData.filter(({ censored }) => censored === null)
   return {
     sha256,
-    results: used.length,
-    excluded: results.length - kept.length,
-    censored: withData.length - used.length,
-    missing: kept.length - withData.length,
+    results: used,
+    besideCensored: quantified.length - used,
+    excluded: reported.length - withData.length,
+    censored: withData.length - quantified.length,
+    missing: results.length - reported.length,
     laboratories: new Set(withData.map(({ laboratory }) => laboratory)).size,
     materials: new Set(results.map(({ material }) => material)).size,
     nesting: ['laboratory', ...nesting, 'replicate'],
@@ -153,9 +154,21 @@ function homogeneity(materials: readonly AnalysedMaterial[], settings: AnalysisS
   )
 }
 
+function sum(counts: readonly number[]): number {
+  return counts.reduce((total, count) => total + count, 0)
+}
+
 /** A last look: whatever slipped through is a defect of the program, not a property of the data. */
 function assertFinite(value: unknown, path: string): void {
-  if (typeof value === 'number' && !Number.isFinite(value)) throw new Error(`${path} is ${value}`)
-  if (value === null || typeof value !== 'object') return
-  for (const [key, inner] of Object.entries(value)) assertFinite(inner, `${path}.${key}`)
+  if (isFiniteThroughout(value)) return
+  if (typeof value === 'number') throw new Error(`${path} is ${value}`)
+  for (const [key, inner] of Object.entries(value as object)) assertFinite(inner, `${path}.${key}`)
+}
+
+/** Tells no place, so that the whole of a large document is walked without making a name for each of its figures. */
+function isFiniteThroughout(value: unknown): boolean {
+  if (typeof value === 'number') return Number.isFinite(value)
+  if (value === null || typeof value !== 'object') return true
+  for (const key in value) if (!isFiniteThroughout(value[key as keyof typeof value])) return false
+  return true
 }

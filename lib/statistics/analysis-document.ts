@@ -369,11 +369,16 @@ export type AnalysisDocument = {
   engine: { name: 'evenlot'; version: string }
   input: {
     sha256: string
-    /** Results that carry a number and were used. */
+    /** Results in cells that take part: each counts in some statistic of its material, be it the median alone. */
     results: number
+    /** Results that carry a number but lie in a cell that a censored one takes out. */
+    besideCensored: number
+    /** Rows set aside that hold a result; an empty one is missing, set aside or not. */
     excluded: number
+    /** Results below or above a limit that were not set aside. */
     censored: number
     missing: number
+    /** With a result or a limit that was not set aside; one whose rows are all set aside is not counted. */
     laboratories: number
     materials: number
     nesting: string[]

@@ -12,15 +12,6 @@ import { NotComputable } from '@/lib/statistics/not-computable'
  */
 export type LevelPoint = { material: string; mean: number; sd: number }
 
-export type FittedForm<Coefficients> = Coefficients & {
-  /** Mean squared departure of ln s from the form, per degree of freedom. */
-  q: number
-}
-
-type Proportional = FittedForm<{ b: number }>
-type Linear = FittedForm<{ a: number; b: number }>
-type Power = FittedForm<{ c: number; d: number }>
-
 export type FormName = 'proportional' | 'linear' | 'power'
 
 /** @throws {NotComputable} `too-few-materials` below 2 with m > 0. */
@@ -30,18 +21,27 @@ export function proportionalRelation(points: readonly LevelPoint[]): { b: number
   return { b: usable.reduce((sum, { mean, sd }) => sum + sd / mean, 0) / usable.length }
 }
 
-/** @throws {NotComputable} `too-few-materials` below 3 with s > 0; `one-level`; `negative-fit`. */
-export function linearRelation(points: readonly LevelPoint[]): {
-  third: { a: number; b: number }
-  converged: { a: number; b: number }
-} {
+/** The third fit. @throws {NotComputable} `too-few-materials` below 3 with s > 0; `one-level`; `negative-fit`. */
+export function linearRelation(points: readonly LevelPoint[]): { a: number; b: number } {
+  return weightedFits(points, (fit) => fit === 3)
+}
+
+/** The fit at which the weighting settles. @throws {NotComputable} as the third fit, and `no-convergence`. */
+export function convergedLinearRelation(points: readonly LevelPoint[]): { a: number; b: number } {
+  return weightedFits(points, (fit, moved) => fit >= 3 && moved < FIT_TOLERANCE)
+}
+
+/** The first fit of the series that `isWanted`, by its number and how far it moved, in parts of the fit before. */
+function weightedFits(
+  points: readonly LevelPoint[],
+  isWanted: (fit: number, moved: number) => boolean,
+): { a: number; b: number } {
   const usable = points.filter(({ sd }) => sd > 0)
   requireMaterials(usable, 3)
   let line = weightedLine(
     usable,
     usable.map(({ sd }) => sd),
   )
-  let third = line
   for (let fit = 2; fit <= MOST_FITS; fit += 1) {
     const { a, b } = line
     const fitted = usable.map(({ mean }) => a + b * mean)
@@ -56,8 +56,7 @@ export function linearRelation(points: readonly LevelPoint[]): {
       ({ mean }, index) => Math.abs(next.a + next.b * mean - fitted[index]!) / fitted[index]!,
     )
     line = next
-    if (fit === 3) third = line
-    if (fit >= 3 && Math.max(...moved) < FIT_TOLERANCE) return { third, converged: line }
+    if (isWanted(fit, Math.max(...moved))) return line
   }
   throw new NotComputable('no-convergence', 'The weighted fits did not settle.')
 }

@@ -84,6 +84,28 @@ export interface KOf {
 }
 
 /**
+ * Of the pooled sum of squares, the share that all other cells hold, for each cell that {@link mandelK} gives and in its
+ * order. The others are summed by themselves, lest a cell with nearly all of it leave them no digits.
+ *
+ * @throws {NotComputable} `no-scatter` when all replicates agree exactly.
+ */
+export function sharesOfOthers(summaries: readonly CellSummary[]): number[] {
+  const cells = replicatedCells(summaries)
+  const scale = binaryScale(cells.map((cell) => cell.sd))
+  const squares = cells.map(({ df, sd }) => df * (sd / scale) ** 2)
+  const total = squares.reduce((sum, square) => sum + square, 0)
+  if (total === 0) throw noScatter()
+  const after = [0]
+  for (const square of squares.slice(1).reverse()) after.unshift(after[0]! + square)
+  let before = 0
+  return squares.map((square, index) => {
+    const others = before + after[index]!
+    before += square
+    return others / total
+  })
+}
+
+/**
  * The k that a share alpha exceeds: k_c² = F ν/(ν_i F + ν - ν_i), F its upper point on (ν_i, ν - ν_i). Exact.
  *
  * @throws {NotComputable} `too-few-replicated-cells` when the cell is the only one with replicates.
@@ -95,15 +117,19 @@ export function mandelKCritical({ df, pooledDf, alpha }: KOf & { readonly alpha:
 }
 
 /**
- * Upper p-value, from F = k² (ν - ν_i)/(ν - ν_i k²).
+ * Upper p-value, from F = k² (ν - ν_i)/(ν - ν_i k²). Of k near its bound √(ν/ν_i) the difference keeps few digits; the
+ * share of {@link sharesOfOthers}, which is (ν - ν_i k²)/ν, keeps all.
  *
  * @throws {NotComputable} `too-few-replicated-cells` when the cell is the only one with replicates.
  */
-export function mandelKPValue({ k, df, pooledDf }: KOf & { readonly k: number }): number {
+export function mandelKPValue(
+  { k, df, pooledDf }: KOf & { readonly k: number },
+  shareOfOthers?: number,
+): number {
   requireOthers({ df, pooledDf })
-  // k at its bound √(ν/ν_i): all other cells are without scatter.
-  const room = pooledDf - df * k * k
-  if (room <= 8 * Number.EPSILON * pooledDf) return 0
+  const room = shareOfOthers === undefined ? pooledDf - df * k * k : pooledDf * shareOfOthers
+  // k at its bound: all other cells are without scatter, as far as can be told.
+  if (room <= (shareOfOthers === undefined ? 8 * Number.EPSILON * pooledDf : 0)) return 0
   return fUpperTail((k * k * (pooledDf - df)) / room, df, pooledDf - df)
 }
 

@@ -1,8 +1,7 @@
 import type { CellBlock, ScoresBlock } from '@/lib/statistics/analysis-document'
 import type { CellSummary } from '@/lib/statistics/cells'
-import { kByLaboratory, kCriticalBlock } from '@/lib/statistics/document/consistency-blocks'
+import { type JudgedK, kByLaboratory, kCriticalBlock } from '@/lib/statistics/document/consistency-blocks'
 import { once, required, withReasons } from '@/lib/statistics/document/attempt'
-import { fUpperTail } from '@/lib/statistics/distributions/f'
 import { mandelH, mandelHPValue, mandelKPValue } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
@@ -22,6 +21,7 @@ export function cellBlocks(one: {
   const hStatistics = once(() => new Map(mandelH(summaries).map(({ laboratory, h }) => [laboratory, h])))
   const kStatistics = kByLaboratory(summaries)
   const pooledDf = summaries.reduce((sum, { df }) => sum + df, 0)
+  const replicated = summaries.filter(({ df }) => df >= 1).length
   const pooledSquares = summaries.reduce((sum, { df, sd }) => sum + (sd === undefined ? 0 : df * sd ** 2), 0)
 
   return summaries.map((summary) =>
@@ -45,10 +45,10 @@ export function cellBlocks(one: {
         k: attempt('k', () => kOfCell().k),
         df,
         hPValue: attempt('hPValue', () => mandelHPValue(hOfCell(), summaries.length)),
-        kPValue: attempt('kPValue', () => mandelKPValue(kOfCell())),
+        kPValue: attempt('kPValue', () => kPValueOf(kOfCell())),
         kCritical: kCriticalBlock(df, pooledDf, requireReplicate),
         bias: attempt('bias', () => mean - one.reference()),
-        generalisedCochran: generalisedOf({ df, sdOfCell }, { cells: summaries, pooledDf, pooledSquares }),
+        generalisedCochran: generalisedOf({ df, sdOfCell, kOfCell }, { replicated, pooledSquares }),
         scores: one.scoresOf(summary),
       }
     }),
@@ -57,26 +57,27 @@ export function cellBlocks(one: {
 
 /** The generalised Cochran statistic of one cell, with the p-value it would have as the one tested. */
 function generalisedOf(
-  { df, sdOfCell }: { df: number; sdOfCell: () => number },
-  all: { cells: readonly CellSummary[]; pooledDf: number; pooledSquares: number },
+  { df, sdOfCell, kOfCell }: { df: number; sdOfCell: () => number; kOfCell: () => JudgedK },
+  all: { replicated: number; pooledSquares: number },
 ): CellBlock['generalisedCochran'] {
   return withReasons((attempt) => {
     const own = attempt('statistic', () => {
       const square = df * sdOfCell() ** 2
       if (all.pooledSquares === 0) throw new NotComputable('no-scatter', 'All replicates agree exactly.')
-      const others = all.cells.filter((cell) => cell.df >= 1).length
-      if (others < 2) {
+      if (all.replicated < 2) {
         throw new NotComputable('too-few-replicated-cells', '2 laboratories with replicates are needed.')
       }
-      return { square, cells: others }
+      return square
     })
     if (own === null) return { statistic: null, pValue: null }
-    const otherDf = all.pooledDf - df
-    const rest = Math.max(0, all.pooledSquares - own.square)
-    const f = own.square / df / (rest / otherDf)
     return {
-      statistic: own.square / all.pooledSquares,
-      pValue: rest === 0 ? 0 : Math.min(1, own.cells * fUpperTail(f, df, otherDf)),
+      statistic: own / all.pooledSquares,
+      // G and k are one statistic in two forms; only that one cell was picked out of several makes the difference.
+      pValue: attempt('pValue', () => Math.min(1, all.replicated * kPValueOf(kOfCell()))),
     }
   })
+}
+
+function kPValueOf(own: JudgedK): number {
+  return mandelKPValue(own, own.shareOfOthers)
 }

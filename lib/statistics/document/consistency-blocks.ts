@@ -24,6 +24,7 @@ import {
   mandelK,
   mandelKCritical,
   mandelKPValue,
+  sharesOfOthers,
 } from '@/lib/statistics/mandel'
 
 const NO_SCATTER_HERE = 'This laboratory has no second result to compare at this level.'
@@ -57,9 +58,18 @@ export function kCriticalBlock(df: number, pooledDf: number, requireReplicate = 
 }
 
 /** k of each laboratory that has one, computed when first asked for. */
-export function kByLaboratory(summaries: readonly CellSummary[]): () => ReadonlyMap<string, MandelK> {
-  return once(() => new Map(mandelK(summaries).map((own) => [own.laboratory, own])))
+export function kByLaboratory(summaries: readonly CellSummary[]): () => ReadonlyMap<string, JudgedK> {
+  return once(() => {
+    const statistics = mandelK(summaries)
+    const shares = sharesOfOthers(summaries)
+    return new Map(
+      statistics.map((own, index) => [own.laboratory, { ...own, shareOfOthers: shares[index]! }]),
+    )
+  })
 }
+
+/** k with what its p-value needs besides. */
+export type JudgedK = MandelK & { readonly shareOfOthers: number }
 
 export function cochranBlock(summaries: readonly CellSummary[], layout: NestedLayout): CochranBlock {
   const isNested = layout.levels.length > 1
@@ -148,7 +158,7 @@ function criticalValues(atLevel: (alpha: number) => number): OutlierCriticalValu
 
 function levelCell(
   summary: CellSummary,
-  kStatistics: () => ReadonlyMap<string, MandelK>,
+  kStatistics: () => ReadonlyMap<string, JudgedK>,
 ): NestingLevelBlock['cells'][number] {
   return withReasons((attempt) => {
     const own = attempt('k', () => required(kStatistics().get(summary.laboratory) ?? null, NO_SCATTER_HERE))
@@ -157,7 +167,7 @@ function levelCell(
       df: summary.df,
       ms: attempt('ms', () => required(summary.sd ?? null, NO_SCATTER_HERE) ** 2),
       k: own?.k ?? null,
-      kPValue: own === null ? null : attempt('kPValue', () => mandelKPValue(own)),
+      kPValue: own === null ? null : attempt('kPValue', () => mandelKPValue(own, own.shareOfOthers)),
     }
   })
 }

@@ -1,6 +1,7 @@
 import type { AnalysedMaterial } from '@/lib/statistics/analyse-material'
 import type { MaterialAnalysis, Noticed, Proposal } from '@/lib/statistics/analysis-document'
 import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
+import { parseDecimal } from '@/lib/statistics/decimal'
 import { required, withReasons } from '@/lib/statistics/document/attempt'
 import { flaggedCells } from '@/lib/statistics/document/flagged-cells'
 import type { MaterialCell } from '@/lib/statistics/document/material-data'
@@ -23,6 +24,8 @@ export function explained(
     .filter(({ results }) => results.length >= 2).length
   const cellsOf = cellsByLaboratory(materials)
   const steps = commonSteps(materials)
+  // A trend is one of all materials and is told once.
+  const firstJudged = materials.find(({ summaries }) => summaries.length >= 4)
   return materials.map((one) => {
     if (one.summaries.length === 0) return withoutProposals(one, 'There is no result.')
     if (one.summaries.length < 4) return withoutProposals(one, '4 laboratories are needed.')
@@ -40,7 +43,7 @@ export function explained(
           noticedBlock({ laboratory, kind: 'identical', probability }),
         ),
         ...coarseSteps(one, steps, cellsOf, settings),
-        ...(one === materials[0] ? trends(materials, cellsOf) : []),
+        ...(one === firstJudged ? trends(materials, cellsOf) : []),
       ],
     }
   })
@@ -105,8 +108,8 @@ function identicalCells(
 }
 
 function lastStep({ results }: MaterialCell): number {
-  const decimals = results.map(({ text }) => /\.(\d+)/.exec(text)?.[1]?.length ?? 0)
-  return Number(`1e${-Math.max(...decimals)}`)
+  const scales = results.map(({ text }) => parseDecimal(text).scale)
+  return Number(`1e${-Math.max(...scales)}`)
 }
 
 /** A laboratory needs this many results before a common step is no accident. */

@@ -2,6 +2,7 @@ import type { LevelRelation, MaterialAnalysis, RelationForms } from '@/lib/stati
 import { required, withReasons } from '@/lib/statistics/document/attempt'
 import {
   type LevelPoint,
+  convergedLinearRelation,
   linearRelation,
   materialsLeftOut,
   powerRelation,
@@ -30,41 +31,33 @@ function levelPoints(
 const NOT_FITTED = 'The form could not be fitted.'
 
 function forms(points: readonly LevelPoint[]): RelationForms {
+  // Fits are compared on the same materials: those that every form can use.
+  const common = points.filter(({ mean, sd }) => mean > 0 && sd > 0)
   const proportional = withReasons((attempt) => {
     const fit = attempt('b', () => proportionalRelation(points))
     const q = attempt('q', () => {
       const { b } = required(fit, NOT_FITTED)
-      return relationQuality(
-        points.filter(({ mean }) => mean > 0),
-        (mean) => b * mean,
-        1,
-      )
+      return relationQuality(common, (mean) => b * mean, 1)
     })
     return { b: fit?.b ?? null, q }
   })
-  const line = { found: null as ReturnType<typeof linearRelation> | null }
   const linear = withReasons((attempt) => {
-    line.found = attempt('b', () => linearRelation(points))
-    const third = line.found?.third ?? null
+    const third = attempt('b', () => linearRelation(points))
     const q = attempt('q', () => {
       const { a, b } = required(third, NOT_FITTED)
-      return relationQuality(points, (mean) => a + b * mean, 2)
+      return relationQuality(common, (mean) => a + b * mean, 2)
     })
     return { a: third?.a ?? null, b: third?.b ?? null, q }
   })
   const linearConverged = withReasons((attempt) => {
-    const fit = attempt('b', () => required(line.found, NOT_FITTED).converged)
+    const fit = attempt('b', () => convergedLinearRelation(points))
     return { a: fit?.a ?? null, b: fit?.b ?? null }
   })
   const power = withReasons((attempt) => {
     const fit = attempt('d', () => powerRelation(points))
     const q = attempt('q', () => {
       const { c, d } = required(fit, NOT_FITTED)
-      return relationQuality(
-        points.filter(({ mean }) => mean > 0),
-        (mean) => 10 ** c * mean ** d,
-        2,
-      )
+      return relationQuality(common, (mean) => 10 ** c * mean ** d, 2)
     })
     return { c: fit?.c ?? null, d: fit?.d ?? null, q }
   })
