@@ -8,6 +8,8 @@ import { ActionForm, type FormAction } from './action-form'
 
 interface ReasonFormProps {
   action: FormAction
+  /** Tells the reason's field from those of other forms on the page. */
+  scope?: string
   hidden: Readonly<Record<string, string>>
   label?: string
   hint?: string
@@ -21,9 +23,17 @@ interface ReasonFormProps {
 export function ReasonForm({ label = 'Reason', hint, isOptional, ...form }: ReasonFormProps) {
   return (
     <ActionForm {...form}>
-      {({ valueOf, errorOf }) => (
-        <Field name="reason" label={label} hint={hint} error={errorOf('reason')} isOptional={isOptional}>
-          {(wiring) => <TextArea {...wiring} rows={3} maxLength={1000} defaultValue={valueOf('reason')} />}
+      {({ valueOf, errorOf, placeOf }) => (
+        <Field
+          name={placeOf('reason')}
+          label={label}
+          hint={hint}
+          error={errorOf('reason')}
+          isOptional={isOptional}
+        >
+          {(wiring) => (
+            <TextArea {...wiring} name="reason" rows={3} maxLength={1000} defaultValue={valueOf('reason')} />
+          )}
         </Field>
       )}
     </ActionForm>

@@ -26,9 +26,14 @@ export function CellDecisions({ studyId, review, measurand, isOpen }: CellDecisi
           action={
             isOpen
               ? ({ code, material, materialId }) => (
-                  <Confirm label="Take back in" variant="plain" consequence={`The results of ${code} for ${material} will count again.`}>
+                  <Confirm
+                    label="Take back in"
+                    variant="plain"
+                    consequence={`The results of ${code} for ${material} will count again.`}
+                  >
                     <ReasonForm
                       action={takeCellBackAction}
+                      scope={`back-${code}-${materialId}`}
                       hidden={{ studyId, code, measurandId, materialId }}
                       submit="Take back in"
                       pendingLabel="Recording…"
@@ -52,7 +57,9 @@ export function CellDecisions({ studyId, review, measurand, isOpen }: CellDecisi
             />
           </Confirm>
         ) : (
-          <p className="text-small text-ink-soft">Cells can be set aside while the study is closed for returns and not yet before its committee.</p>
+          <p className="text-small text-ink-soft">
+            Cells can be set aside while the study is closed for returns and not yet before its committee.
+          </p>
         )}
       </div>
     </Section>
