@@ -82,9 +82,11 @@ export function generalisedCochran(summaries: readonly CellSummary[]): Generalis
   const squares = cells.map((cell) => cell.df * cell.sd ** 2)
   const pooledDf = cells.reduce((sum, cell) => sum + cell.df, 0)
 
+  const sumsOfOthers = leaveOneOut(squares)
+
   const tests = cells.map(({ laboratory, df }, index) => {
     const own = squares[index] as number
-    const others = squares.reduce((sum, square, at) => (at === index ? sum : sum + square), 0)
+    const others = sumsOfOthers[index] as number
     const f = own / df / (others / (pooledDf - df))
     const pValue = Math.min(1, cells.length * fUpperTail(f, df, pooledDf - df))
     return { laboratory, statistic: own / (own + others), cells: cells.length, df, pooledDf, pValue }
@@ -125,6 +127,18 @@ function modalDf(cells: readonly ReplicatedCell[]): number {
     return isMoreFrequent ? next : best
   })
   return modal
+}
+
+/** The sum of all other values, for each of them: of those before and those after, lest digits cancel. */
+function leaveOneOut(values: readonly number[]): number[] {
+  const after: number[] = new Array(values.length).fill(0)
+  for (let at = values.length - 2; at >= 0; at -= 1) after[at] = after[at + 1]! + values[at + 1]!
+  let before = 0
+  return values.map((value, at) => {
+    const others = before + after[at]!
+    before += value
+    return others
+  })
 }
 
 /** Ties: the larger statistic, then the order of the cells. Differences of rounding alone are ties. */

@@ -64,10 +64,13 @@ function laboratoryStratum(
   laboratoryOf: Int32Array,
   wholes: readonly CellSummary[],
 ): Stratum {
+  const firstMember = new Int32Array(count)
+  for (let member = laboratoryOf.length - 1; member >= 0; member -= 1)
+    firstMember[laboratoryOf[member]!] = member
   return {
     source: layout.levels[0]!,
     groupOf: laboratoryOf,
-    firstMember: Int32Array.from({ length: count }, (_, index) => laboratoryOf.indexOf(index)),
+    firstMember,
     size: Float64Array.from(wholes, ({ n }) => n),
     mean: Float64Array.from(wholes, ({ mean }) => mean),
   }

@@ -63,11 +63,7 @@ export function buildNestedLayout(
     const keys = observations.map(({ path }, index) => `${outer?.groupOf[index] ?? 0} ${path[level]}`)
     named.push(stratum(source, keys, deviations))
   })
-  const single = stratum(
-    RESIDUAL,
-    observations.map((_, index) => String(index)),
-    deviations,
-  )
+  const single = stratumOfSingles(deviations)
 
   const splitting: Stratum[] = []
   let groupsAbove = 1
@@ -108,6 +104,18 @@ function stratum(source: string, keys: readonly string[], deviations: Float64Arr
     firstMember: Int32Array.from(first),
     size: Float64Array.from(sizes),
     mean: Float64Array.from(sums, (sum, group) => sum / sizes[group]!),
+  }
+}
+
+/** Every result by itself. */
+function stratumOfSingles(deviations: Float64Array): Stratum {
+  const places = Int32Array.from(deviations, (_, index) => index)
+  return {
+    source: RESIDUAL,
+    groupOf: places,
+    firstMember: places,
+    size: new Float64Array(deviations.length).fill(1),
+    mean: deviations,
   }
 }
 

@@ -1,5 +1,11 @@
 import { normalQuantile } from '@/lib/statistics/distributions/normal'
 import { median } from '@/lib/statistics/median'
+import {
+  type Differences,
+  differencesBetween,
+  differencesWithin,
+  type IntegerCells,
+} from '@/lib/statistics/pairwise-differences'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
 /**
@@ -13,9 +19,6 @@ import { NotComputable } from '@/lib/statistics/not-computable'
  *
  * Source: ISO 13528, Annex C.5.
  */
-
-/** Results of one material: integers at a common decimal scale, one list a cell. */
-export type IntegerCells = readonly (readonly bigint[])[]
 
 /** Steps of the last decimal, as they stand in the data: 10^−scale. */
 export type DecimalStep = number
@@ -32,7 +35,7 @@ export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
   const means = cells.map((cell) => [
     cell.reduce((sum, one) => sum + one, 0n) * (multiple / BigInt(cell.length)),
   ])
-  const differences = differencesBetween(means, 2 / (count * (count - 1)))
+  const differences = differencesBetween(means)
   return (spreadFrom(differences, BETWEEN) / Number(multiple)) * step
 }
 
@@ -45,7 +48,7 @@ export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
 export function qReproducibility(cells: IntegerCells, step: DecimalStep): number {
   const count = cells.length
   if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
-  return spreadFrom(differencesBetween(cells, 2 / (count * (count - 1))), BETWEEN) * step
+  return spreadFrom(differencesBetween(cells), BETWEEN) * step
 }
 
 /**
@@ -68,20 +71,35 @@ export function qRepeatability(cells: IntegerCells, step: DecimalStep): number {
 export function hampelLocation(values: readonly number[], spread: number): number {
   const nodes = [...new Set(values.flatMap((value) => CORNERS.map((corner) => value + corner * spread)))]
   nodes.sort((one, other) => one - other)
-  const sums = nodes.map((node) => values.reduce((sum, value) => sum + influence((value - node) / spread), 0))
+  const sumAt = remembering((node: number) =>
+    values.reduce((sum, value) => sum + influence((value - nodes[node]!) / spread), 0),
+  )
+  /** Where the sum is 0 at a node or between it and the one before. */
+  const rootAt = (node: number): number | null => {
+    const here = sumAt(node)
+    if (Math.abs(here) < ZERO) return nodes[node]!
+    if (node === 0 || !(here * sumAt(node - 1) < 0) || Math.abs(sumAt(node - 1)) < ZERO) return null
+    const before = nodes[node - 1]!
+    return before + ((nodes[node]! - before) * sumAt(node - 1)) / (sumAt(node - 1) - here)
+  }
 
-  const roots: number[] = []
-  nodes.forEach((node, index) => {
-    const here = sums[index]!
-    if (Math.abs(here) < ZERO) roots.push(node)
-    else if (index > 0 && here * sums[index - 1]! < 0 && Math.abs(sums[index - 1]!) >= ZERO) {
-      const before = nodes[index - 1]!
-      roots.push(before + ((node - before) * sums[index - 1]!) / (sums[index - 1]! - here))
-    }
-  })
-
+  // Each sum goes through all values, so nodes are visited outwards from the median, and no further than needed.
   const middle = median(values)
-  const nearest = Math.min(...roots.map((root) => Math.abs(root - middle)))
+  const roots: number[] = []
+  let nearest = Infinity
+  const take = (node: number): void => {
+    const root = rootAt(node)
+    if (root === null) return
+    roots.push(root)
+    nearest = Math.min(nearest, Math.abs(root - middle))
+  }
+  const start = nodes.findIndex((node) => node >= middle)
+  const reach = (): number => nearest + 1e-12 * spread
+  // A root lies between a node and the one before it, so a step up looks at the node before and a step down at its own.
+  for (let node = start; node < nodes.length && (nodes[node - 1] ?? -Infinity) - middle <= reach(); node += 1)
+    take(node)
+  for (let node = start - 1; node >= 0 && middle - nodes[node]! <= reach(); node -= 1) take(node)
+
   const near = roots.filter((root) => Math.abs(root - middle) - nearest <= 1e-12 * spread)
   const [lowest, highest] = [Math.min(...near), Math.max(...near)]
   return highest - lowest > 1e-12 * spread ? middle : near[0]!
@@ -97,131 +115,38 @@ function influence(distanceInSpreads: number): number {
   return distanceInSpreads < 0 ? -pull : pull
 }
 
-/** Differences that count alike. */
-type DifferenceClass = { weight: number; sizes: Float64Array }
-
 /** Which quantile of the differences is read, and what it is in a normal distribution. */
 type Reading = { share: number; probability: number; probabilityOfTies: number }
 
 const BETWEEN: Reading = { share: 0.25, probability: 0.625, probabilityOfTies: 0.375 }
 const WITHIN: Reading = { share: 0.5, probability: 0.75, probabilityOfTies: 0.25 }
 
-/** All pairs of results of different cells; a pair of cells weighs `ofCells` in all. */
-function differencesBetween(cells: IntegerCells, ofCells: number): DifferenceClass[] {
-  const distance = exactDistance(cells.flat())
-  const starts = startsOf(cells)
-  return byWeight((add) => {
-    cells.forEach((cell, index) => {
-      for (let other = index + 1; other < cells.length; other += 1) {
-        const size = cells[other]!.length
-        const weight = ofCells / (cell.length * size)
-        for (let one = 0; one < cell.length; one += 1) {
-          for (let two = 0; two < size; two += 1)
-            add(weight, distance(starts[index]! + one, starts[other]! + two))
-        }
-      }
-    })
-  })
-}
-
-/** All pairs of results inside a cell; every cell weighs alike. */
-function differencesWithin(cells: IntegerCells): DifferenceClass[] {
-  const distance = exactDistance(cells.flat())
-  const starts = startsOf(cells)
-  return byWeight((add) => {
-    cells.forEach((cell, index) => {
-      const weight = 2 / (cells.length * cell.length * (cell.length - 1))
-      for (let one = 0; one < cell.length; one += 1) {
-        for (let two = one + 1; two < cell.length; two += 1) {
-          add(weight, distance(starts[index]! + one, starts[index]! + two))
-        }
-      }
-    })
-  })
-}
-
-/**
- * Distance of two of the numbers by their places. Within 2^53 of each other they
- * are compared as doubles, which is exact; further apart each difference is
- * rounded after it was taken, so that equal ones still come out equal.
- */
-function exactDistance(numbers: readonly bigint[]): (one: number, other: number) => number {
-  const least = numbers.reduce((low, number) => (number < low ? number : low), numbers[0]!)
-  const most = numbers.reduce((high, number) => (number > high ? number : high), numbers[0]!)
-  if (most - least <= BigInt(Number.MAX_SAFE_INTEGER)) {
-    const shifted = Float64Array.from(numbers, (number) => Number(number - least))
-    return (one, other) => Math.abs(shifted[one]! - shifted[other]!)
-  }
-  return (one, other) => Math.abs(Number(numbers[one]! - numbers[other]!))
-}
-
-function startsOf(cells: IntegerCells): number[] {
-  let next = 0
-  return cells.map((cell) => {
-    next += cell.length
-    return next - cell.length
-  })
-}
-
-function byWeight(collect: (add: (weight: number, size: number) => void) => void): DifferenceClass[] {
-  const classes = new Map<number, number[]>()
-  collect((weight, size) => {
-    const known = classes.get(weight)
-    if (known === undefined) classes.set(weight, [size])
-    else known.push(size)
-  })
-  return [...classes].map(([weight, sizes]) => ({ weight, sizes: Float64Array.from(sizes).sort() }))
-}
-
-function spreadFrom(classes: readonly DifferenceClass[], reading: Reading): number {
-  if (classes.every(({ sizes }) => sizes.at(-1) === 0)) {
-    throw new NotComputable('all-equal', 'All the values are equal.')
-  }
-  const ties = classes.reduce(
-    (sum, { weight, sizes }) => sum + weight * sizes.filter((size) => size === 0).length,
-    0,
-  )
-  const target = reading.share + (1 - reading.share) * ties
-  const normal = Math.SQRT2 * normalQuantile(reading.probability + reading.probabilityOfTies * ties)
-
-  let before = { size: 0, share: 0, cumulated: 0 }
-  for (const { size, cumulated } of inOrder(classes)) {
-    const share = size === 0 ? 0 : (before.cumulated + cumulated) / 2
-    if (share >= target) {
-      return (
-        (before.size + ((size - before.size) * (target - before.share)) / (share - before.share)) / normal
-      )
-    }
-    before = { size, share, cumulated }
-  }
+function spreadFrom(differences: Differences, reading: Reading): number {
+  const { shareOfTies, areAllEqual, crossing } = differences
+  if (areAllEqual) throw new NotComputable('all-equal', 'All the values are equal.')
+  const target = reading.share + (1 - reading.share) * shareOfTies
+  const between = crossing(target)
   // The polygon ends half a step short of 1; with nearly all differences equal
   // to 0 the target lies above its end.
-  throw new NotComputable('all-equal', 'Too many of the values are equal.')
-}
-
-/** The distinct sizes in ascending order, each with the share of differences up to it. */
-function* inOrder(classes: readonly DifferenceClass[]): Generator<{ size: number; cumulated: number }> {
-  const places = classes.map(() => 0)
-  let cumulated = 0
-  for (;;) {
-    let size = Infinity
-    classes.forEach(({ sizes }, index) => {
-      const head = sizes[places[index]!]
-      if (head !== undefined && head < size) size = head
-    })
-    if (size === Infinity) return
-    classes.forEach(({ weight, sizes }, index) => {
-      while (sizes[places[index]!] === size) {
-        cumulated += weight
-        places[index]! += 1
-      }
-    })
-    yield { size, cumulated }
-  }
+  if (between === null) throw new NotComputable('all-equal', 'Too many of the values are equal.')
+  const { from, to } = between
+  const size = from.size + ((to.size - from.size) * (target - from.share)) / (to.share - from.share)
+  return size / (Math.SQRT2 * normalQuantile(reading.probability + reading.probabilityOfTies * shareOfTies))
 }
 
 function leastCommonMultiple(one: bigint, other: bigint): bigint {
   let [a, b] = [one, other]
   while (b !== 0n) [a, b] = [b, a % b]
   return (one / a) * other
+}
+
+function remembering<Value>(compute: (index: number) => Value): (index: number) => Value {
+  const known = new Map<number, Value>()
+  return (index) => {
+    const found = known.get(index)
+    if (found !== undefined) return found
+    const value = compute(index)
+    known.set(index, value)
+    return value
+  }
 }

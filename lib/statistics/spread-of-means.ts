@@ -48,10 +48,14 @@ function countWords(count: number): string {
 }
 
 function meansAreEqual(summaries: readonly CellSummary[]): boolean {
-  const means = summaries.map((cell) => cell.mean)
-  const range = Math.max(...means) - Math.min(...means)
-  if (range === 0) return true
-  // No result of a cell lies further from 0 than this; the rounding of its mean is a few units in that last place.
-  const reach = summaries.map((cell) => Math.abs(cell.mean) + (cell.sd ?? 0) * Math.sqrt(cell.n))
-  return range <= 8 * Number.EPSILON * Math.max(...reach)
+  let least = Infinity
+  let most = -Infinity
+  let reach = 0
+  for (const { mean, sd = 0, n } of summaries) {
+    least = Math.min(least, mean)
+    most = Math.max(most, mean)
+    // No result of a cell lies further from 0 than this; the rounding of its mean is a few units in that last place.
+    reach = Math.max(reach, Math.abs(mean) + sd * Math.sqrt(n))
+  }
+  return most - least <= 8 * Number.EPSILON * reach
 }

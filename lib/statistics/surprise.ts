@@ -34,25 +34,56 @@ export type Surprise = {
 
 const MOST = 12
 
-/** @throws {NotComputable} `too-few-laboratories` with fewer than 3 others. */
-export function summariseOthers(cells: readonly CellFigures[]): Others {
-  const laboratories = cells.length
-  if (laboratories < 3) throw new NotComputable('too-few-laboratories', '4 laboratories are needed.')
-  const mean = cells.reduce((sum, cell) => sum + cell.mean, 0) / laboratories
-  const squares = cells.reduce((sum, cell) => sum + (cell.mean - mean) ** 2, 0)
-  let within = 0
-  let df = 0
-  for (const cell of cells) {
-    if (cell.sd === undefined) continue
-    within += cell.df * cell.sd ** 2
-    df += cell.df
-  }
+/**
+ * What all others say, for each laboratory in order.
+ *
+ * Sums of those before and of those after are joined. Taking one laboratory off a sum of all would lose the digits of the
+ * others wherever that one has nearly the whole of it.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 4 laboratories.
+ */
+export function summariseOthers(cells: readonly CellFigures[]): Others[] {
+  if (cells.length < 4) throw new NotComputable('too-few-laboratories', '4 laboratories are needed.')
+  const after: Sums[] = [NOTHING]
+  for (let index = cells.length - 1; index > 0; index -= 1)
+    after.push(joined(after.at(-1)!, sumsOf(cells[index]!)))
+  let before = NOTHING
+  return cells.map((cell, index) => {
+    const others = joined(before, after[cells.length - 1 - index]!)
+    before = joined(before, sumsOf(cell))
+    return {
+      laboratories: others.count,
+      mean: others.mean,
+      sdOfMeans: Math.sqrt(others.squares / (others.count - 1)),
+      repeatabilityVariance: others.df === 0 ? 0 : others.within / others.df,
+      repeatabilityDf: others.df,
+    }
+  })
+}
+
+/** Number, mean and sum of squares of some cell means, and their pooled scatter inside. */
+type Sums = { count: number; mean: number; squares: number; within: number; df: number }
+
+const NOTHING: Sums = { count: 0, mean: 0, squares: 0, within: 0, df: 0 }
+
+function sumsOf({ mean, sd, df }: CellFigures): Sums {
+  return sd === undefined
+    ? { count: 1, mean, squares: 0, within: 0, df: 0 }
+    : { count: 1, mean, squares: 0, within: df * sd ** 2, df }
+}
+
+/** Chan, Golub & LeVeque: two sums of squares about their own means become one about the common mean. */
+function joined(one: Sums, other: Sums): Sums {
+  if (one.count === 0) return other
+  if (other.count === 0) return one
+  const count = one.count + other.count
+  const apart = other.mean - one.mean
   return {
-    laboratories,
-    mean,
-    sdOfMeans: Math.sqrt(squares / (laboratories - 1)),
-    repeatabilityVariance: df === 0 ? 0 : within / df,
-    repeatabilityDf: df,
+    count,
+    mean: one.mean + (apart * other.count) / count,
+    squares: one.squares + other.squares + (apart ** 2 * one.count * other.count) / count,
+    within: one.within + other.within,
+    df: one.df + other.df,
   }
 }
 

@@ -5,6 +5,7 @@ import {
 } from '@/lib/statistics/distributions/arguments'
 import { incompleteGamma } from '@/lib/statistics/distributions/incomplete-gamma'
 import { normalQuantile } from '@/lib/statistics/distributions/normal'
+import { remembered } from '@/lib/statistics/distributions/remembered'
 import { solveTail } from '@/lib/statistics/distributions/solve-tail'
 
 /**
@@ -24,17 +25,25 @@ export function chiSquaredUpperTail(x: number, df: number): number {
 
 /** The x below which a share p lies. */
 export function chiSquaredQuantileLower(p: number, df: number): number {
-  requireFraction(p)
-  return p <= 0.5 ? quantile({ side: 'lower', p, df }) : quantile({ side: 'upper', p: 1 - p, df })
+  return lowerQuantile(p, df, 0)
 }
 
 /** The x above which a share alpha lies. */
 export function chiSquaredQuantileUpper(alpha: number, df: number): number {
+  return upperQuantile(alpha, df, 0)
+}
+
+const lowerQuantile = remembered((p, df) => {
+  requireFraction(p)
+  return p <= 0.5 ? quantile({ side: 'lower', p, df }) : quantile({ side: 'upper', p: 1 - p, df })
+})
+
+const upperQuantile = remembered((alpha, df) => {
   requireFraction(alpha)
   return alpha <= 0.5
     ? quantile({ side: 'upper', p: alpha, df })
     : quantile({ side: 'lower', p: 1 - alpha, df })
-}
+})
 
 function tails(x: number, df: number): { lower: number; upper: number } {
   requireDegreesOfFreedom(df)

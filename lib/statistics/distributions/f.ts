@@ -4,6 +4,7 @@ import {
   requireNumber,
 } from '@/lib/statistics/distributions/arguments'
 import { incompleteBeta } from '@/lib/statistics/distributions/incomplete-beta'
+import { remembered } from '@/lib/statistics/distributions/remembered'
 import { solveTail } from '@/lib/statistics/distributions/solve-tail'
 
 /**
@@ -22,18 +23,18 @@ export function fUpperTail(x: number, df1: number, df2: number): number {
 }
 
 /** The x below which a share p lies. */
-export function fQuantileLower(p: number, df1: number, df2: number): number {
+export const fQuantileLower = remembered((p: number, df1: number, df2: number): number => {
   requireFraction(p)
   return p <= 0.5 ? quantile({ side: 'lower', p, df1, df2 }) : quantile({ side: 'upper', p: 1 - p, df1, df2 })
-}
+})
 
 /** The x above which a share alpha lies. */
-export function fQuantileUpper(alpha: number, df1: number, df2: number): number {
+export const fQuantileUpper = remembered((alpha: number, df1: number, df2: number): number => {
   requireFraction(alpha)
   return alpha <= 0.5
     ? quantile({ side: 'upper', p: alpha, df1, df2 })
     : quantile({ side: 'lower', p: 1 - alpha, df1, df2 })
-}
+})
 
 function tails({ x, df1, df2 }: { x: number; df1: number; df2: number }): { lower: number; upper: number } {
   requireDegreesOfFreedom(df1)

@@ -9,7 +9,7 @@ import { type Explanation, explanationsOf, type LaboratoryCell } from '@/lib/sta
 import { mandelH, mandelK } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { chanceOfIdentical, commonStep, trendPValue } from '@/lib/statistics/noticed'
-import { type CellFigures, summariseOthers } from '@/lib/statistics/surprise'
+import { summariseOthers } from '@/lib/statistics/surprise'
 
 /**
  * Adds to each material of one measurand what might have gone wrong in its
@@ -67,9 +67,8 @@ function cellsByLaboratory(materials: readonly AnalysedMaterial[]): CellsByLabor
   const all = new Map<string, Map<string, LaboratoryCell>>()
   for (const { data, summaries } of materials) {
     if (summaries.length < 4) continue
-    const figures = summaries.map((summary): CellFigures => summary)
+    const others = summariseOthers(summaries)
     data.cells.forEach((cell, index) => {
-      const others = summariseOthers(figures.filter((_, place) => place !== index))
       const own = all.get(cell.laboratory) ?? new Map<string, LaboratoryCell>()
       all.set(cell.laboratory, own)
       own.set(data.material, {
@@ -78,7 +77,7 @@ function cellsByLaboratory(materials: readonly AnalysedMaterial[]): CellsByLabor
         offset: data.restore(0),
         texts: cell.results.map(({ text }) => text),
         groups: cell.results.map(({ groups }) => JSON.stringify(groups)),
-        others,
+        others: others[index]!,
       })
     })
   }

@@ -2,13 +2,8 @@ import { algorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
 import type { RobustBlock } from '@/lib/statistics/analysis-document'
 import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
-import {
-  hampelLocation,
-  type IntegerCells,
-  qOfCellMeans,
-  qRepeatability,
-  qReproducibility,
-} from '@/lib/statistics/q-hampel'
+import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
+import { hampelLocation, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
 
 /** What the robust estimates are made from: one entry a laboratory, all in the same order. */
 export type RobustInput = {
