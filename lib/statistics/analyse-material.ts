@@ -252,6 +252,8 @@ function roundedBlock(
   const texts = roundedPrecision({
     mean,
     repeatabilitySd: precision.repeatability.sd,
+    betweenLaboratorySd: precision.betweenLaboratory.sd,
+    intermediateSds: precision.intermediate.map(({ sd }) => sd),
     reproducibilitySd: precision.reproducibility.sd,
     repeatabilityLimit: precision.repeatability.limit,
     reproducibilityLimit: precision.reproducibility.limit,
@@ -259,6 +261,8 @@ function roundedBlock(
   return withReasons((attempt) => ({
     mean: attempt('mean', texts.mean),
     repeatability: attempt('repeatability', texts.repeatability),
+    betweenLaboratory: attempt('betweenLaboratory', texts.betweenLaboratory),
+    intermediate: texts.intermediate.map((text) => attempt('intermediate', text)),
     reproducibility: attempt('reproducibility', texts.reproducibility),
     repeatabilityLimit: attempt('repeatabilityLimit', texts.repeatabilityLimit),
     reproducibilityLimit: attempt('reproducibilityLimit', texts.reproducibilityLimit),

@@ -74,6 +74,7 @@ export type CellBlock = {
   hPValue: Quantity
   kPValue: Quantity
   kCritical: ConsistencyCriticalValues & Reasons
+  /** Δ_i = ȳ_i − μ. Its interval and the laboratory's component are not in the document: see `laboratoryBias`. */
   bias: Quantity
   generalisedCochran: { statistic: Quantity; pValue: Quantity } & Reasons
   scores: ScoresBlock
@@ -267,6 +268,9 @@ export type Noticed = {
 export type RoundedBlock = {
   mean: string | null
   repeatability: string | null
+  betweenLaboratory: string | null
+  /** In the order of the material's `intermediate`. */
+  intermediate: (string | null)[]
   reproducibility: string | null
   repeatabilityLimit: string | null
   reproducibilityLimit: string | null
@@ -337,6 +341,7 @@ export type TwoSamplePlot = {
 
 export type HomogeneityCheck = {
   material: string
+  /** With fewer than 10 the check stands, and `reasons` says what it needs besides. */
   units: number
   portions: Quantity
   sx: Quantity
@@ -357,7 +362,8 @@ export type Planning = {
   n: number
   gamma: number
   points: ({ p: number; repeatability: Quantity; reproducibility: Quantity; bias: Quantity } & Reasons)[]
-}
+  /** With γ below 1.5 `reasons` says, of `reproducibility`, how far the figures are off. */
+} & Reasons
 
 export type MeasurandAnalysis = {
   measurand: string

@@ -13,6 +13,9 @@ import { NotComputable } from '@/lib/statistics/not-computable'
 export type RoundedPrecision = {
   mean: () => string
   repeatability: () => string
+  betweenLaboratory: () => string
+  /** One for each figure given, in order. */
+  intermediate: readonly (() => string)[]
   reproducibility: () => string
   repeatabilityLimit: () => string
   reproducibilityLimit: () => string
@@ -36,6 +39,8 @@ export function lastPlace(x: number): number {
 export function roundedPrecision(figures: {
   mean: number | null
   repeatabilitySd: number | null
+  betweenLaboratorySd: number | null
+  intermediateSds: readonly (number | null)[]
   reproducibilitySd: number | null
   repeatabilityLimit: number | null
   reproducibilityLimit: number | null
@@ -45,6 +50,8 @@ export function roundedPrecision(figures: {
   return {
     mean: () => rounded(figures.mean, ofSds),
     repeatability: () => rounded(figures.repeatabilitySd, ofSds),
+    betweenLaboratory: () => rounded(figures.betweenLaboratorySd, ofSds),
+    intermediate: figures.intermediateSds.map((sd) => () => rounded(sd, ofSds)),
     reproducibility: () => rounded(figures.reproducibilitySd, ofSds),
     repeatabilityLimit: () => rounded(figures.repeatabilityLimit, ofLimits),
     reproducibilityLimit: () => rounded(figures.reproducibilityLimit, ofLimits),

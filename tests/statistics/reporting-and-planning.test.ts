@@ -23,6 +23,8 @@ describe('rounding for a report', () => {
     const rounded = roundedPrecision({
       mean: 5,
       repeatabilitySd: sd,
+      betweenLaboratorySd: null,
+      intermediateSds: [],
       reproducibilitySd: null,
       repeatabilityLimit: null,
       reproducibilityLimit: null,

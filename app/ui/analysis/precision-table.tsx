@@ -37,7 +37,7 @@ function count(key: 'laboratories' | 'results', header: string): Column<Material
   return { key, header, kind: 'figure', cell: (row) => String(row[key]) }
 }
 
-function rounded(key: keyof Omit<MaterialAnalysis['rounded'], 'reasons'>, header: Column<MaterialAnalysis>['header']): Column<MaterialAnalysis> {
+function rounded(key: keyof Omit<MaterialAnalysis['rounded'], 'reasons' | 'intermediate'>, header: Column<MaterialAnalysis>['header']): Column<MaterialAnalysis> {
   return {
     key,
     header,

@@ -10,7 +10,7 @@ export function homogeneityBlock(one: {
   summaries: readonly CellSummary[]
   target: number | null
 }): HomogeneityCheck {
-  return withReasons((attempt) => {
+  const check = withReasons((attempt): Omit<HomogeneityCheck, 'reasons'> => {
     const figures = attempt('sx', () => homogeneityFigures(one.units))
     const target = attempt('target', () => required(one.target, 'No target standard deviation was given.'))
     const verdict = figures === null || target === null ? null : homogeneityVerdict(figures, target)
@@ -33,4 +33,9 @@ export function homogeneityBlock(one: {
       cochran: generalisedCochranBlock(one.summaries),
     }
   })
+  if (one.units.length >= ENOUGH_UNITS) return check
+  return { ...check, reasons: { ...check.reasons, units: FEW_UNITS } }
 }
+
+const ENOUGH_UNITS = 10
+const FEW_UNITS = 'Fewer than 10 units suffice only with earlier evidence.'
