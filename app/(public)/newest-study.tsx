@@ -29,9 +29,14 @@ export function NewestStudy({ publication: { slug, snapshot, publishedOn } }: { 
         </Link>
       }
     >
-      <div className={clsx('grid items-start gap-x-10 gap-y-6', answer && 'lg:grid-cols-[17rem_minmax(0,1fr)]')}>
+      <div
+        className={clsx(
+          'grid items-start gap-x-10 gap-y-6',
+          answer && 'margin:grid-cols-[17rem_minmax(0,1fr)]',
+        )}
+      >
         {answer && (
-          <dl className="flex flex-col gap-5 sm:max-lg:flex-row sm:max-lg:gap-10">
+          <dl className="flex flex-col gap-5 sm:max-margin:flex-row sm:max-margin:gap-10">
             <Limit value={answer.rounded.repeatabilityLimit ?? ''} unit={unit} where="within one laboratory">
               Two results of one laboratory for {answer.material} differ by more than this about once in
               twenty.
@@ -66,7 +71,7 @@ function Limit({
   children: ReactNode
 }) {
   return (
-    <div className="flex flex-col sm:max-lg:flex-1 border-t-[3px] border-verdigris pt-3">
+    <div className="flex flex-col sm:max-margin:flex-1 border-t-[3px] border-verdigris pt-3">
       <dt className="order-2 font-semibold">{where}</dt>
       <dd className="order-1 font-heading text-figure font-bold">
         {formatFigure(value)} <span className="text-title font-medium">{unit}</span>

@@ -1,4 +1,6 @@
 import { beyond } from '@/app/ui/analysis/consistency-data'
+import { describeNoticed } from '@/app/ui/analysis/describe-noticed'
+import { describeProposal } from '@/app/ui/analysis/describe-proposal'
 import { showStatistic } from '@/app/ui/analysis/show-quantity'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { Tag } from '@/app/ui/primitives/tag'
@@ -24,19 +26,11 @@ export function ScrutinyMargin({ measurand }: { measurand: MeasurandReview | und
   )
 }
 
-function CellNotes({ measurand }: { measurand: MeasurandReview }) {
-  const apart = measurand.document.materials
-    .flatMap((material) =>
-      material.cells.flatMap((cell) => {
-        const h = beyond(material, cell, 'h')
-        const k = beyond(material, cell, 'k')
-        return (h && h !== '5 %') || (k && k !== '5 %') ? [{ material: material.material, cell, h, k, surprise: surpriseOf(cell) }] : []
-      }),
-    )
-    .sort((a, b) => a.surprise - b.surprise)
+function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandReview }) {
+  const apart = listApart(document)
   return (
     <>
-      {apart.slice(0, most).map(({ material, cell, h, k }) => (
+      {apart.slice(0, most).map(({ material, cell, h, k, proposal }) => (
         <MarginNote key={`${cell.laboratory} ${material}`} title={<><Tag code={cell.laboratory} /> {material}</>}>
           <p>
             This cell lies apart from the others:
@@ -44,6 +38,7 @@ function CellNotes({ measurand }: { measurand: MeasurandReview }) {
             {h && k && ' and'}
             {k && ` k\u00a0=\u00a0${showStatistic(cell.k)}, beyond ${k}`}.
           </p>
+          {proposal && <p>Worth asking: {describeProposal(proposal, unit)}</p>}
         </MarginNote>
       ))}
       {apart.length > most && (
@@ -51,8 +46,36 @@ function CellNotes({ measurand }: { measurand: MeasurandReview }) {
           <p>They are filled in the plots and marked in the tables.</p>
         </MarginNote>
       )}
+      {document.materials.flatMap(({ material, noticed }) =>
+        (noticed ?? []).map((one) => (
+          <MarginNote key={`${one.laboratory} ${material} ${one.kind}`} title={<><Tag code={one.laboratory} /> {one.kind !== 'trend' && material}</>}>
+            <p>{describeNoticed(one, unit)}</p>
+          </MarginNote>
+        )),
+      )}
     </>
   )
+}
+
+/** The cells beyond a 1 % value, the furthest first; an explanation that fits several of them is told at the first. */
+function listApart({ materials }: MeasurandReview['document']) {
+  const told = new Set<string>()
+  return materials
+    .flatMap((material) =>
+      material.cells.flatMap((cell) => {
+        const h = beyond(material, cell, 'h')
+        const k = beyond(material, cell, 'k')
+        const best = material.proposals?.find(({ laboratory }) => laboratory === cell.laboratory)
+        return (h && h !== '5 %') || (k && k !== '5 %') ? [{ material: material.material, cell, h, k, best, surprise: surpriseOf(cell) }] : []
+      }),
+    )
+    .sort((a, b) => a.surprise - b.surprise)
+    .map(({ best, ...one }) => {
+      const key = best && `${best.laboratory} ${best.kind} ${best.detail} ${best.cells.join()}`
+      const proposal = key && !told.has(key) ? best : undefined
+      if (key) told.add(key)
+      return { ...one, proposal }
+    })
 }
 
 /** The smaller of the two p-values: the cell furthest out stands first. */
