@@ -49,7 +49,6 @@ function columns(wish: StudiesWish, now: Date): Column<StudyListEntry>[] {
         </Link>
       ),
     },
-    { key: 'as', header: 'You', cell: ({ as }) => <span className="whitespace-nowrap">{capacity[as]}</span> },
     {
       key: 'state',
       header: 'State',
@@ -75,6 +74,7 @@ function columns(wish: StudiesWish, now: Date): Column<StudyListEntry>[] {
         )
       },
     },
+    { key: 'as', header: 'You', cell: ({ as }) => <span className="whitespace-nowrap">{capacity[as]}</span> },
   ]
 }
 
