@@ -40,7 +40,10 @@ describe('the environment', () => {
   })
 
   it('takes the addresses of reverse proxies, and nothing that is no address', () => {
-    expect(readConfig({ ...complete, TRUSTED_PROXY: '127.0.0.1, 10.0.0.7' }).trustedProxies).toEqual(['127.0.0.1', '10.0.0.7'])
+    expect(readConfig({ ...complete, TRUSTED_PROXY: '127.0.0.1, 10.0.0.7' }).trustedProxies).toEqual([
+      '127.0.0.1',
+      '10.0.0.7',
+    ])
     expect(faultsOf({ ...complete, TRUSTED_PROXY: 'our-proxy' })).toEqual([
       'TRUSTED_PROXY: Give the addresses of your reverse proxies, such as 127.0.0.1, 10.0.0.7; or leave it out.',
     ])

@@ -12,7 +12,11 @@ let database: TestDatabase
 
 beforeAll(async () => {
   database = await createTestDatabase()
-  await seedDemonstrationWorld({ app: database.app, owner: database.owner, authSecret: 'a secret of the tests, of forty characters' })
+  await seedDemonstrationWorld({
+    app: database.app,
+    owner: database.owner,
+    authSecret: 'a secret of the tests, of forty characters',
+  })
 })
 afterAll(() => database.destroy())
 
@@ -35,7 +39,8 @@ describe('the demonstration world', () => {
   it('has twelve invented laboratories in at least eight time zones, all under .example', () => {
     expect(laboratories).toHaveLength(12)
     expect(new Set(laboratories.map(({ zone }) => zone)).size).toBeGreaterThanOrEqual(8)
-    for (const { address } of [...laboratories, ...Object.values(people)]) expect(address).toMatch(/^[a-z.]+@[a-z-]+\.example$/)
+    for (const { address } of [...laboratories, ...Object.values(people)])
+      expect(address).toMatch(/^[a-z.]+@[a-z-]+\.example$/)
   })
 
   it('publishes a study with an inconsistent laboratory, a straggling cell and a missing one', async () => {
@@ -44,7 +49,8 @@ describe('the demonstration world', () => {
     const apart = new Map<string, number>()
     for (const { cells, critical } of force.materials)
       for (const { laboratory, h } of cells)
-        if (h !== null && Math.abs(h) > critical.h['0.01']!) apart.set(laboratory, (apart.get(laboratory) ?? 0) + 1)
+        if (h !== null && Math.abs(h) > critical.h['0.01']!)
+          apart.set(laboratory, (apart.get(laboratory) ?? 0) + 1)
     expect(Math.max(...apart.values())).toBeGreaterThanOrEqual(3)
     const coir = force.materials.find(({ material }) => material === 'coir')!
     expect(coir.cochran.level).not.toBe('none')
