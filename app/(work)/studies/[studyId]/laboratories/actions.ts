@@ -15,6 +15,7 @@ import {
 } from '@/lib/use-cases/laboratories/invite-laboratory'
 import { sendInvitationAgain } from '@/lib/use-cases/laboratories/send-invitation-again'
 import { openStudy } from '@/lib/use-cases/studies/open-study'
+import { readStudy } from '@/lib/use-cases/studies/read-study'
 import { formAction } from '@/lib/web/form-action'
 import type { FormState } from '@/lib/web/form-state'
 import { paths } from '@/lib/web/paths'
@@ -45,10 +46,19 @@ const inviteLines = formAction({
   }),
 })
 
+/** Reading costs work too, and is done for the study's coordinators alone. */
+const mayInvite = formAction({
+  input: z.object(study),
+  run: readStudy,
+  then: () => ({}),
+})
+
 /** Pasted lines are read and shown first; only the second press puts them on the list. */
 export async function inviteLinesAction(previous: FormState, form: FormData): Promise<FormState> {
-  const lines = String(form.get('lines') ?? '').slice(0, 50_000)
   if (form.get('step') === 'confirm') return inviteLines(previous, form)
+  const asked = await mayInvite(previous, form)
+  if (!asked.ok) return asked
+  const lines = String(form.get('lines') ?? '').slice(0, 50_000)
   const { problems } = checkLaboratoryLines(lines)
   return {
     errors: problems.length > 0 ? { lines: [...problems] } : {},
