@@ -1,8 +1,10 @@
 import { expect, test } from '@playwright/test'
 import { sql } from 'kysely'
-import { layoutOf, openAndAnswer } from '@/db/seed/stage-study'
+import { invitationToken, layoutOf, openAndAnswer } from '@/db/seed/stage-study'
+import { answerInvitation } from '@/lib/use-cases/laboratories/answer-invitation'
 import { inviteLaboratory } from '@/lib/use-cases/laboratories/invite-laboratory'
 import { listPlaces, placeKey } from '@/lib/spreadsheet/layout'
+import { sendMail } from '@/lib/use-cases/mail/send-mail'
 import { callAction, redirectOf } from './support/actions'
 import { foundCommittee, stageStudy, type Committee } from './support/attack-world'
 import { openOwnProduct, type OwnProduct } from './support/own-product'
@@ -136,6 +138,27 @@ test('F-10: processes in four zones, with clocks a day early, a day late and 90 
     expect(other, JSON.stringify(manners[index])).toEqual(first)
 })
 
+/** The words of an invitation as they would be mailed now. */
+async function invitationText(studyId: string): Promise<string> {
+  const { app, system } = product.world
+  const queued = app
+    .selectFrom('vault.mail')
+    .select('mail_id')
+    .where('study_id', '=', studyId)
+    .where('kind', '=', 'invitation')
+  const { mail_id: mailId } = await queued.executeTakeFirstOrThrow()
+  let text = ''
+  const mail = {
+    send: async (letter: { text: string }) => {
+      text = letter.text
+      return { outcome: 'sent' as const, detail: 'taken' }
+    },
+    close: () => undefined,
+  }
+  await sendMail({ db: app, secrets: system.secrets, baseUrl: product.base, mail }, { mailId })
+  return text
+}
+
 const planFields = (localTime: string, zone: string, choice?: string) => ({
   organisationId: committee.organisationId,
   shortName: `N-${localTime.slice(5, 10)}`,
@@ -232,8 +255,12 @@ for (const { localTime, zone, choice, at, shown, offset, inLisbon } of doubled)
     const invitationIds: string[] = []
     for (const laboratory of committee.laboratories)
       invitationIds.push((await inviteLaboratory(coordinator, { studyId, ...laboratory })).invitationId)
-    const answers = invitationIds.map((invitationId) => ({ invitationId, answer: 'accepted' as const }))
-    await openAndAnswer(product.world, { coordinator: committee.coordinator, studyId, answers })
+    await openAndAnswer(product.world, { coordinator: committee.coordinator, studyId, answers: [] })
+    expect(await invitationText(studyId), 'the mail').toContain(inLisbon)
+    for (const invitationId of invitationIds) {
+      const token = await invitationToken(product.world, { studyId, invitationId })
+      await answerInvitation(product.world.system, { token, answer: 'accepted' })
+    }
     const plan = await words(committee.coordinator, `/studies/${studyId}/plan`)
     expect(plan).toContain(shown)
     expect(plan.replaceAll('\u2212', '-')).toContain(offset)

@@ -443,6 +443,15 @@ test('A-17: each action refuses whoever may not, as if nothing were there, and w
   expect(await countWritten()).toEqual(before)
 })
 
+test('A-17: pasted lines are not even read for whoever may not invite', async () => {
+  const row = actionRows.inviteLinesAction as ActionRow
+  const reading = { ...row, fields: () => ({ lines: 'Line Bench; Lineton' }) }
+  for (const who of roles)
+    expect(verdictOf(await call('inviteLinesAction', reading, who)), who).toBe(
+      expectedVerdict(row, who, false),
+    )
+})
+
 test('A-17: each action is open to whoever may', async () => {
   const wrong: string[] = []
   for (const [name, row] of Object.entries(actionRows))

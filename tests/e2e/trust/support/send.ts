@@ -41,6 +41,8 @@ export function send({
         hostname,
         port,
         path,
+        // A kept connection may be closed by the server at the moment it is used again.
+        agent: false,
         headers: {
           ...(payload === undefined ? {} : { 'content-length': String(Buffer.byteLength(payload)) }),
           ...(body instanceof URLSearchParams ? { 'content-type': 'application/x-www-form-urlencoded' } : {}),
