@@ -66,14 +66,14 @@ export function ellipse(spread: PlotSpread, factor: number): { semiAxes: [number
 
 /** @throws {NotComputable} `on-a-line` when the points do not spread in two directions. */
 export function squaredDistance(spread: PlotSpread, point: PlotPoint): number {
-  const variances = [spread.sd[0] ** 2, spread.sd[1] ** 2] as const
-  const determinant = variances[0] * variances[1] - spread.covariance ** 2
-  if (!(determinant > variances[0] * variances[1] * 1e-14)) {
-    throw new NotComputable('on-a-line', 'The laboratories lie on one line.')
-  }
-  const x = point.x - spread.mean[0]
-  const y = point.y - spread.mean[1]
-  return (variances[1] * x ** 2 - 2 * spread.covariance * x * y + variances[0] * y ** 2) / determinant
+  const [sdX, sdY] = spread.sd
+  // In standard deviations: the product of two variances may be no double.
+  const correlated = spread.covariance / (sdX * sdY)
+  const determinant = 1 - correlated ** 2
+  if (!(determinant > 1e-14)) throw new NotComputable('on-a-line', 'The laboratories lie on one line.')
+  const x = (point.x - spread.mean[0]) / sdX
+  const y = (point.y - spread.mean[1]) / sdY
+  return (x ** 2 - 2 * correlated * x * y + y ** 2) / determinant
 }
 
 /**
@@ -95,6 +95,6 @@ function principalAxes({ sd, covariance }: PlotSpread): { large: number; small: 
   const half = Math.atan2(2 * covariance, xx - yy) / 2
   const large = middle + reach
   // The small one by division: as a difference it would lose its digits when the ellipse is thin.
-  const small = large === 0 ? 0 : (xx * yy - covariance ** 2) / large
+  const small = large === 0 ? 0 : yy * (xx / large) - covariance * (covariance / large)
   return { large, small, angle: half <= -Math.PI / 2 ? half + Math.PI : half }
 }

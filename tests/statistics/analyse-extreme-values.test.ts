@@ -92,6 +92,45 @@ describe('results about 1e-100', () => {
   })
 })
 
+describe('several materials about 1e-120 or 1e120', () => {
+  const levels = ['', '1', '2', '3']
+  const at = (unit: string): TestRow[] =>
+    levels.flatMap((level, place) =>
+      Object.entries({ ...CELLS, C: ['1.5 1.6', '1.9 1.4', '2.9 2.4', '1.2 1.6'][place]! }).flatMap(
+        ([laboratory, texts]) =>
+          texts
+            .split(' ')
+            .map((text): TestRow => ({ laboratory, material: `M${place}`, text: `${level}${text}${unit}` })),
+      ),
+    )
+
+  it.each(['e-120', 'e120'])(
+    'have the two-sample plots and the level relation of those about 1: %s',
+    (unit) => {
+      const one = analyseRows(at(''))
+      const other = analyseRows(at(unit))
+      one.youden!.forEach((plot, index) => {
+        const same = other.youden![index]!
+        plot.points.forEach(({ distance2, pValue }, point) => {
+          expect(distance2).toBeGreaterThan(0)
+          expect(same.points[point]!.distance2).toBeCloseTo(distance2!, 9)
+          expect(same.points[point]!.pValue).toBeCloseTo(pValue!, 9)
+        })
+        const size = Number(`1${unit}`)
+        expect(same.semiAxes.map((axis) => axis! / size)).toEqual(
+          plot.semiAxes.map((axis) => expect.closeTo(axis!, 9) as number),
+        )
+      })
+      for (const key of ['repeatability', 'reproducibility'] as const) {
+        for (const form of ['proportional', 'linear', 'power'] as const) {
+          expect(other.levelRelation![key][form].q).toBeCloseTo(one.levelRelation![key][form].q!, 6)
+        }
+        expect(other.levelRelation![key].proposed).toBe(one.levelRelation![key].proposed)
+      }
+    },
+  )
+})
+
 describe('a Satterthwaite interval on next to no degrees of freedom', () => {
   it('has neither limit, and says so', () => {
     // 1.001 − 1 on one degree of freedom each: df = 0.001²/(1.001² + 1²) = 5e-7.

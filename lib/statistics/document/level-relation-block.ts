@@ -57,7 +57,7 @@ function forms(points: readonly LevelPoint[]): RelationForms {
     const fit = attempt('d', () => powerRelation(points))
     const q = attempt('q', () => {
       const { c, d } = required(fit, NOT_FITTED)
-      return relationQuality(common, (mean) => 10 ** c * mean ** d, 2)
+      return relationQuality(common, (mean) => 10 ** (c + d * Math.log10(mean)), 2)
     })
     return { c: fit?.c ?? null, d: fit?.d ?? null, q }
   })
