@@ -110,12 +110,12 @@ export async function ask(
   return answers
 }
 
-/** A body as text; of a packed file, such as a workbook, also every part and every part's name. */
+/** A body as text; of a packed file, such as a workbook, what can be read of it and every part with its name. */
 async function readBody(body: Buffer): Promise<string> {
-  const own = body.toString('utf8')
-  return body.subarray(0, 4).toString('latin1') === 'PK\u0003\u0004'
-    ? [own, ...(await unpack(body))].join('\n')
-    : own
+  if (body.subarray(0, 4).toString('latin1') !== 'PK\u0003\u0004') return body.toString('utf8')
+  // Packed bytes are as good as random, and any three letters stand in them somewhere.
+  const readable = body.toString('latin1').match(/[ -~]{6,}/g) ?? []
+  return [...readable, ...(await unpack(body))].join('\n')
 }
 
 function unpack(bytes: Buffer): Promise<string[]> {

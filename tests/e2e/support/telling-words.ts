@@ -17,11 +17,15 @@ export function wordsIn(text: string, words: readonly string[]): string[] {
   return words.filter((word) => plain.includes(word) || withoutMarkup.includes(word))
 }
 
-/** A code stands as a word of its own; what looks like one within ids, nonces or the path of a drawing is none. */
+/**
+ * A code stands as a word of its own; what looks like one within nonces, the path of a drawing, or the address of a
+ * workbook's cell is none.
+ */
 export function codesIn(text: string, codes: readonly string[]): string[] {
   const words = text
     .replace(/nonce(-|="|\\?":\\?")[\w+/=]+/g, ' ')
     .replace(/\bd(="|\\?":\\?")[^"\\]*/g, ' ')
+    .replace(/ (r|ref|sqref|activeCell|topLeftCell)="[^"]*"|<(f|formula\d?)>[^<]*/g, ' ')
     .replace(/\/_next\/static\/[\w\-./~]+/g, ' ')
   return codes.filter((code) => new RegExp(`(?<![\\w$])${code}(?!\\w)`).test(words))
 }
