@@ -100,6 +100,9 @@ function readText(
   }
   const firstLine = text.slice(0, text.search(/[\r\n]|$/))
   const isSemicolon = firstLine.includes(';')
+  // Without quotation marks a line is a record and a separator parts two values; that is read many times faster.
+  if (!text.includes('"'))
+    return { rows: plainRows(text, isSemicolon ? ';' : ','), commaIsDecimal: isSemicolon }
   try {
     const records = parse(text, {
       delimiter: isSemicolon ? ';' : ',',
@@ -116,6 +119,15 @@ function readText(
     problems.push({ row, column: null, found: 'quotation marks that do not match', expected: 'valid CSV' })
     return null
   }
+}
+
+function plainRows(text: string, separator: string): Row[] {
+  const rows: Row[] = []
+  text.split(/\r\n|\n|\r/).forEach((line, index) => {
+    if (line === '') return
+    rows.push({ at: index + 1, values: line.split(separator).map((value) => value.trim()) })
+  })
+  return rows
 }
 
 /** A study of any size fits; what is held off is a file made to exhaust the machine. */
@@ -210,6 +222,8 @@ function findColumns(
   return problems.length > before ? null : found
 }
 
+const NO_GROUPS: readonly string[] = []
+
 type RowReading = {
   row: Row
   columns: Columns
@@ -237,7 +251,7 @@ function readRow(reading: RowReading): AnalysisResult | null {
     laboratory: label(columns.laboratory),
     material: columns.material === null ? ONLY_MATERIAL : label(columns.material),
     measurand: columns.measurand === null ? null : label(columns.measurand),
-    groups: columns.nesting.map(label),
+    groups: columns.nesting.length === 0 ? NO_GROUPS : columns.nesting.map(label),
     ...value,
     excluded: isExcluded,
     order: columns.order === null ? null : optionalNumber(reading, columns.order, 'a number or nothing'),
@@ -279,11 +293,15 @@ function optionalNumber(reading: RowReading, column: number, expected: string): 
   return null
 }
 
+const PLAIN = /^-?\d{1,15}(\.\d{1,15})?$/
+
 /**
  * The number as decimal text with a point and an ASCII minus, or `null` where it is none. How large it is, is for the
  * analysis to judge, which has better words for it.
  */
 function decimalText(written: string, commaIsDecimal: boolean): string | null {
+  // Nearly every result is a short plain number, about which there is nothing more to ask.
+  if (PLAIN.test(written)) return written
   const text = (commaIsDecimal ? written.replace(',', '.') : written).replaceAll('\u2212', '-')
   if (commaIsDecimal && written.includes(',') && written.includes('.')) return null
   try {

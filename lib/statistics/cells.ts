@@ -46,19 +46,22 @@ export function replicatedCells(summaries: readonly CellSummary[]): ReplicatedCe
 function summarise({ laboratory, deviations }: Cell): CellSummary {
   const n = deviations.length
   const first = deviations[0] as number
-  const shifted = Float64Array.from(deviations, (deviation) => deviation - first)
-  if (!shifted.every(Number.isFinite))
-    throw new RangeError(`a deviation of ${laboratory} is no finite number`)
-
-  const scale = binaryScale(shifted)
+  let largest = 0
+  for (let at = 0; at < n; at += 1) {
+    const size = Math.abs((deviations[at] as number) - first)
+    if (!(size < Infinity)) throw new RangeError(`a deviation of ${laboratory} is no finite number`)
+    if (size > largest) largest = size
+  }
+  // Within these bounds squares stay doubles as they are.
+  const scale = largest > 1e-100 && largest < 1e100 ? 1 : binaryScale([largest])
   let sum = 0
-  for (const value of shifted) sum += value / scale
+  for (let at = 0; at < n; at += 1) sum += ((deviations[at] as number) - first) / scale
   const middle = sum / n
 
   let squares = 0
   let left = 0
-  for (const value of shifted) {
-    const residual = value / scale - middle
+  for (let at = 0; at < n; at += 1) {
+    const residual = ((deviations[at] as number) - first) / scale - middle
     squares += residual * residual
     left += residual
   }

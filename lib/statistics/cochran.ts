@@ -47,7 +47,7 @@ export function cochran(summaries: readonly CellSummary[]): Cochran {
   const cells = comparableCells(summaries)
   const variances = cells.map((cell) => cell.sd ** 2)
   const keys = tieKeys(variances)
-  const index = keys.indexOf(Math.max(...keys))
+  const index = keys.reduce((best, key, at) => (key > keys[best]! ? at : best), 0)
   const largest = variances[index] as number
   // The others are summed by themselves: as 1 - C they would lose their digits when one cell has nearly all.
   const others = variances.reduce((sum, variance, at) => (at === index ? sum : sum + variance), 0)
@@ -111,7 +111,7 @@ function comparableCells(summaries: readonly CellSummary[]): ReplicatedCell[] {
   requireTwoCells(cells.length)
   if (cells.every((cell) => cell.sd === 0)) throw noScatter()
   const scale = binaryScale(cells.map((cell) => cell.sd))
-  return cells.map((cell) => ({ ...cell, sd: cell.sd / scale }))
+  return cells.map(({ laboratory, n, mean, sd, df }) => ({ laboratory, n, mean, sd: sd / scale, df }))
 }
 
 function requireTwoCells(cells: number): void {

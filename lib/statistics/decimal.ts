@@ -28,6 +28,8 @@ const shape = /^([+\-\u2212]?)(\d*)(?:\.(\d*))?(?:[eE]([+\-\u2212]?\d{1,9}))?$/
 
 /** @throws {RangeError} when the text is no decimal number, or one of more than 2,000 places. */
 export function parseDecimal(text: string): Decimal {
+  const short = text.length <= 15 ? plainDecimal(text) : null
+  if (short !== null) return short
   const match = shape.exec(text)
   const [, sign = '', whole = '', fraction = '', exponent = '0'] = match ?? []
   const digits = whole + fraction
@@ -41,6 +43,22 @@ export function parseDecimal(text: string): Decimal {
   return { units: sign === '' || sign === '+' ? units : -units, scale: scale === 0 ? 0 : scale }
 }
 
+/** Digits with at most one point among them and a minus before: few enough for their number to be a double. */
+function plainDecimal(text: string): Decimal | null {
+  let number = 0
+  let point = -1
+  const isNegative = text.charCodeAt(0) === 45
+  const start = isNegative ? 1 : 0
+  for (let place = start; place < text.length; place += 1) {
+    const code = text.charCodeAt(place)
+    if (code >= 48 && code <= 57) number = number * 10 + (code - 48)
+    else if (code === 46 && point === -1) point = place
+    else return null
+  }
+  if (text.length - start - (point === -1 ? 0 : 1) === 0) return null
+  return { units: BigInt(isNegative ? -number : number), scale: point === -1 ? 0 : text.length - 1 - point }
+}
+
 /**
  * Takes a common offset off all values exactly.
  *
@@ -49,9 +67,12 @@ export function parseDecimal(text: string): Decimal {
  * @throws {NotComputable} `no-results`; `out-of-range` when a difference is larger than any double.
  */
 export function centreExactly(texts: readonly string[]): ExactlyCentred {
-  if (texts.length === 0) throw new NotComputable('no-results', 'There is no result.')
+  return centreUnits(toCommonScale(texts.map(parseDecimal)))
+}
 
-  const { units, scale } = toCommonScale(texts.map(parseDecimal))
+/** The same for values that stand at a common scale already. */
+export function centreUnits({ units, scale }: { units: readonly bigint[]; scale: number }): ExactlyCentred {
+  if (units.length === 0) throw new NotComputable('no-results', 'There is no result.')
   const offset = { units: medianOf(units), scale }
   const deviations = differences(units, offset)
   if (!deviations.every(Number.isFinite)) {
@@ -62,7 +83,8 @@ export function centreExactly(texts: readonly string[]): ExactlyCentred {
 
 /** The same values as whole numbers of one unit, 10^-`scale`. */
 export function toCommonScale(decimals: readonly Decimal[]): { units: bigint[]; scale: number } {
-  const scale = decimals.reduce((finest, decimal) => Math.max(finest, decimal.scale), -Infinity)
+  let scale = -Infinity
+  for (const decimal of decimals) if (decimal.scale > scale) scale = decimal.scale
   return { units: decimals.map((decimal) => unitsAt(decimal, scale)), scale }
 }
 
@@ -112,15 +134,18 @@ function unitsAt(decimal: Decimal, scale: number): bigint {
 }
 
 function medianOf(units: readonly bigint[]): bigint {
+  // As doubles they are sorted in a fraction of the time, and those of up to 15 digits are exact.
+  if (areSmall(units)) {
+    const numbers = Float64Array.from(units, Number).sort()
+    return BigInt(numbers[(numbers.length - 1) >> 1]!)
+  }
   const sorted = [...units].sort((a, b) => (a < b ? -1 : a > b ? 1 : 0))
   return sorted[(sorted.length - 1) >> 1] as bigint
 }
 
 function differences(units: readonly bigint[], offset: Decimal): Float64Array {
-  const half = 2n ** 52n
   const power = Math.abs(offset.scale)
-  const isSmall = power <= 22 && units.every((unit) => unit < half && unit > -half)
-  if (!isSmall) {
+  if (power > 22 || !areSmall(units)) {
     const { scale } = offset
     return Float64Array.from(units, (unit) => decimalToNumber({ units: unit - offset.units, scale }))
   }
@@ -133,6 +158,13 @@ function differences(units: readonly bigint[], offset: Decimal): Float64Array {
     return offset.scale > 0 ? difference / ten : difference * ten
   })
 }
+
+/** Clear of 2^53 by enough for a difference of two of them. */
+function areSmall(units: readonly bigint[]): boolean {
+  return units.every((unit) => unit < HALF && unit > -HALF)
+}
+
+const HALF = 2n ** 52n
 
 function addNumber(a: Decimal, x: number): Decimal {
   return subtractDecimals(a, exactDecimal(-x))

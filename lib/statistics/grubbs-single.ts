@@ -30,7 +30,7 @@ export function grubbsSingle(summaries: readonly CellSummary[], end: End): Grubb
   const { centred, sumOfSquares } = spreadOfMeans(summaries, 3)
   const p = summaries.length
   const keys = tieKeys(centred)
-  const index = keys.indexOf(end === 'high' ? Math.max(...keys) : Math.min(...keys))
+  const index = furthest(keys, end)
   return {
     laboratory: (summaries[index] as CellSummary).laboratory,
     statistic: Math.abs(centred[index] as number) / Math.sqrt(sumOfSquares / (p - 1)),
@@ -48,6 +48,15 @@ export function grubbsSingleCritical(laboratories: number, alpha: number): numbe
   if (laboratories < 3) throw new NotComputable('too-few-laboratories', '3 laboratories are needed.')
   const t = tQuantileUpper(alpha / (2 * laboratories), laboratories - 2)
   return (laboratories - 1) / Math.sqrt(laboratories * (1 + (laboratories - 2) / t / t))
+}
+
+/** The first of the extreme ones. */
+function furthest(keys: readonly number[], end: End): number {
+  let place = 0
+  for (let index = 1; index < keys.length; index += 1) {
+    if (end === 'high' ? keys[index]! > keys[place]! : keys[index]! < keys[place]!) place = index
+  }
+  return place
 }
 
 function distanceFromOthers(values: readonly number[], index: number): number {

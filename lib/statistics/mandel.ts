@@ -72,7 +72,7 @@ export function mandelHPValue(h: number, laboratories: number): number {
 export function mandelK(summaries: readonly CellSummary[]): MandelK[] {
   const cells = replicatedCells(summaries)
   const scale = binaryScale(cells.map((cell) => cell.sd))
-  const scaled = cells.map((cell) => ({ ...cell, sd: cell.sd / scale }))
+  const scaled = cells.map(({ laboratory, n, mean, sd, df }) => ({ laboratory, n, mean, sd: sd / scale, df }))
   const pooled = repeatability(scaled)
   if (pooled.sd === 0) throw noScatter()
   return scaled.map(({ laboratory, sd, df }) => ({ laboratory, k: sd / pooled.sd, df, pooledDf: pooled.df }))

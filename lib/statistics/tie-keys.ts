@@ -5,6 +5,7 @@
  * a test names must follow the order of the laboratories and not that accident.
  */
 export function tieKeys(values: readonly number[]): number[] {
-  const largest = values.reduce((size, value) => Math.max(size, Math.abs(value)), 0)
+  let largest = 0
+  for (const value of values) largest = Math.max(largest, Math.abs(value))
   return largest === 0 ? values.map(() => 0) : values.map((value) => Math.round((value / largest) * 1e12))
 }

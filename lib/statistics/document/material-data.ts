@@ -2,6 +2,7 @@ import type { AnalysisResult } from '@/lib/statistics/analysis-input'
 import type { CensoredBlock } from '@/lib/statistics/analysis-document'
 import {
   centreExactly,
+  centreUnits,
   type Decimal,
   type ExactlyCentred,
   parseDecimal,
@@ -54,7 +55,7 @@ export function materialData(one: {
   const taking = one.results.filter(({ excluded, text }) => !excluded && text !== '')
   const decimals = taking.map(({ text }) => parseDecimal(text))
   const { units, scale } = toCommonScale(decimals.length === 0 ? [parseDecimal('0')] : decimals)
-  const centred = centreWithinRange(taking.map(({ text }) => text))
+  const centred = centreWithinRange(taking.length === 0 ? { units: [], scale } : { units, scale })
 
   const positions = new Map<string, number[]>()
   taking.forEach(({ laboratory }, position) => {
@@ -102,17 +103,20 @@ export function materialData(one: {
 const LARGEST_DEVIATION = 1e140
 const SMALLEST_DEVIATION = 1e-140
 
-function centreWithinRange(texts: readonly string[]): ExactlyCentred & { isOutOfRange: boolean } {
+function centreWithinRange(values: {
+  units: readonly bigint[]
+  scale: number
+}): ExactlyCentred & { isOutOfRange: boolean } {
   const nothing = centreExactly(['0'])
-  if (texts.length === 0) return { ...nothing, isOutOfRange: false }
+  if (values.units.length === 0) return { ...nothing, isOutOfRange: false }
   try {
-    const centred = centreExactly(texts)
+    const centred = centreUnits(values)
     const reach = centred.deviations.reduce((most, deviation) => Math.max(most, Math.abs(deviation)), 0)
     const isOutOfRange = reach !== 0 && !(reach >= SMALLEST_DEVIATION && reach <= LARGEST_DEVIATION)
     return { ...centred, isOutOfRange }
   } catch (error) {
     if (!(error instanceof NotComputable)) throw error
-    return { ...nothing, deviations: new Float64Array(texts.length), isOutOfRange: true }
+    return { ...nothing, deviations: new Float64Array(values.units.length), isOutOfRange: true }
   }
 }
 
