@@ -18,14 +18,18 @@ const proposal = (changes: Partial<Proposal>): Proposal => ({
 describe('an explanation in words', () => {
   test('asks a question and says what would follow', () => {
     expect(describeProposal(proposal({}), 'N')).toBe(
-      'Were two digits exchanged? Take 451 → 415. The cell would then fit the others: h\u00a0=\u00a00.500.',
+      'Were two digits exchanged? Take 451 → 415. Corrected so, the cell would fit the others: h\u00a0=\u00a00.500.',
     )
   })
 
   test('says on which side a common amount lies, without a sign', () => {
     const cells = ['a', 'b', 'c']
-    expect(describeProposal(proposal({ kind: 'offset', detail: '-1.5', cells }), 'N')).toContain('1.5\u00a0N below the others')
-    expect(describeProposal(proposal({ kind: 'offset', detail: '1.5', cells }), 'N')).toContain('1.5\u00a0N above the others')
+    expect(describeProposal(proposal({ kind: 'offset', detail: '-1.5', cells }), 'N')).toContain(
+      '1.5\u00a0N below those of the others',
+    )
+    expect(describeProposal(proposal({ kind: 'offset', detail: '1.5', cells }), 'N')).toContain(
+      '1.5\u00a0N above those of the others',
+    )
   })
 
   test('writes a negative result with a real minus sign', () => {

@@ -22,20 +22,20 @@ function guess({ kind, detail, cells }: Proposal, unit: string): string {
     case 'digits':
       return `Were two digits exchanged? Take ${shown(detail)}.`
     case 'offset':
-      return `On all ${cells.length} materials it lies about ${formatFigure(detail.replace('-', ''))}\u00a0${unit} ${detail.startsWith('-') ? 'below' : 'above'} the others. Is a zero or a correction wrong? Take that away.`
+      return `On all ${cells.length} materials its means lie about ${formatFigure(detail.replace(/^-/, ''))}\u00a0${unit} ${detail.startsWith('-') ? 'below' : 'above'} those of the others. Is a zero or a correction wrong?`
     case 'proportion':
-      return `On all ${cells.length} materials it lies at about ${detail} times the others. Is a calibration or a dilution wrong? Divide by that.`
+      return `On all ${cells.length} materials its means are about ${detail} times those of the others. Is a calibration or a dilution wrong?`
     case 'oneApart':
-      return `One result lies apart from the rest of its own cell: ${shown(detail)}. Leave it out.`
+      return `One result lies apart from the rest of its own cell: ${shown(detail)}.`
   }
 }
 
-function consequence({ after }: Proposal): string {
+function consequence({ kind, after }: Proposal): string {
   const figures = [
     ...(after.h === null ? [] : [`h\u00a0=\u00a0${showStatistic(after.h)}`]),
     ...(after.k === null ? [] : [`k\u00a0=\u00a0${showStatistic(after.k)}`]),
   ]
-  return `The cell would then fit the others${figures.length > 0 ? `: ${figures.join(', ')}` : ''}.`
+  return `${kind === 'oneApart' ? 'Without it' : 'Corrected so'}, the cell would fit the others${figures.length > 0 ? `: ${figures.join(', ')}` : ''}.`
 }
 
 const shown = (text: string) => text.replaceAll('-', '\u2212')

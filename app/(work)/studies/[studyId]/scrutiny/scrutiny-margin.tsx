@@ -42,8 +42,8 @@ function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandRevi
         </MarginNote>
       ))}
       {apart.length > most && (
-        <MarginNote title={`${apart.length - most} more cells`}>
-          <p>They are filled in the plots and marked in the tables.</p>
+        <MarginNote title={apart.length === most + 1 ? 'One more cell' : `${apart.length - most} more cells`}>
+          <p>Filled in the plots and marked in the tables.</p>
         </MarginNote>
       )}
       {document.materials.flatMap(({ material, noticed }) =>
