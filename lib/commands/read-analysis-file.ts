@@ -44,19 +44,28 @@ export async function readAnalysisFile(
   const columns = findColumns(table.header, options, problems)
   if (columns === null) return { results: [], problems }
 
-  if (table.rows.length === 0) {
+  const reading: Reading = { columns, options, table, problems, names: new Map() }
+  const results: AnalysisResult[] = []
+  let rows = 0
+  for (const row of table.rows) {
+    if (row.values.every((value) => value === '')) continue
+    rows += 1
+    const result = readRow(reading, row)
+    if (result !== null) results.push(result)
+  }
+  if (rows === 0) {
     problems.push({ row: null, column: null, found: 'no row below the header', expected: 'one row a result' })
   }
-  const results = table.rows
-    .map((row) => readRow({ row, columns, options, table, problems }))
-    .filter((result) => result !== null)
   return { results: ofOneMeasurand(results, columns, options, problems), problems }
 }
 
 /** A row of texts and where it stands in the file, counted from 1. */
 type Row = { at: number; values: readonly string[] }
 
-type Table = { header: readonly string[]; rows: readonly Row[]; commaIsDecimal: boolean }
+/** Rows are read one at a time: a large file is not held as a table beside its results. */
+type Table = { header: readonly string[]; rows: Iterable<Row>; commaIsDecimal: boolean }
+
+type Rows = { rows: Iterable<Row>; commaIsDecimal: boolean }
 
 type Columns = {
   laboratory: number
@@ -73,8 +82,9 @@ async function readTable(bytes: Uint8Array, problems: AnalysisFileProblem[]): Pr
   const isPackage = bytes[0] === 0x50 && bytes[1] === 0x4b
   const table = isPackage ? await readFirstSheet(bytes, problems) : readText(bytes, problems)
   if (table === null) return null
-  const [header, ...rows] = table.rows
-  if (header === undefined) {
+  const rows = table.rows[Symbol.iterator]()
+  const header = rows.next()
+  if (header.done === true) {
     problems.push({
       row: null,
       column: null,
@@ -83,14 +93,14 @@ async function readTable(bytes: Uint8Array, problems: AnalysisFileProblem[]): Pr
     })
     return null
   }
-  const filled = rows.filter(({ values }) => values.some((value) => value !== ''))
-  return { header: header.values, rows: filled, commaIsDecimal: table.commaIsDecimal }
+  return {
+    header: header.value.values,
+    rows: { [Symbol.iterator]: () => rows },
+    commaIsDecimal: table.commaIsDecimal,
+  }
 }
 
-function readText(
-  bytes: Uint8Array,
-  problems: AnalysisFileProblem[],
-): { rows: Row[]; commaIsDecimal: boolean } | null {
+function readText(bytes: Uint8Array, problems: AnalysisFileProblem[]): Rows | null {
   let text: string
   try {
     text = new TextDecoder('utf-8', { fatal: true }).decode(bytes)
@@ -121,13 +131,21 @@ function readText(
   }
 }
 
-function plainRows(text: string, separator: string): Row[] {
-  const rows: Row[] = []
-  text.split(/\r\n|\n|\r/).forEach((line, index) => {
-    if (line === '') return
-    rows.push({ at: index + 1, values: line.split(separator).map((value) => value.trim()) })
-  })
-  return rows
+function* plainRows(text: string, separator: string): Generator<Row> {
+  const lines = text.includes('\r') ? text.replaceAll(/\r\n?/g, '\n') : text
+  let at = 0
+  for (let start = 0; start < lines.length;) {
+    const found = lines.indexOf('\n', start)
+    const end = found === -1 ? lines.length : found
+    at += 1
+    if (end > start) yield { at, values: trimmed(lines.slice(start, end).split(separator)) }
+    start = end + 1
+  }
+}
+
+function trimmed(values: string[]): string[] {
+  for (let place = 0; place < values.length; place += 1) values[place] = values[place]!.trim()
+  return values
 }
 
 /** A study of any size fits; what is held off is a file made to exhaust the machine. */
@@ -140,10 +158,7 @@ const WORKBOOK_LIMITS = {
   text: 50_000_000,
 }
 
-async function readFirstSheet(
-  bytes: Uint8Array,
-  problems: AnalysisFileProblem[],
-): Promise<{ rows: Row[]; commaIsDecimal: boolean } | null> {
+async function readFirstSheet(bytes: Uint8Array, problems: AnalysisFileProblem[]): Promise<Rows | null> {
   try {
     const { sheets } = await readWorkbook(bytes, WORKBOOK_LIMITS)
     const byRow = new Map<number, string[]>()
@@ -224,40 +239,54 @@ function findColumns(
 
 const NO_GROUPS: readonly string[] = []
 
-type RowReading = {
-  row: Row
+type Reading = {
   columns: Columns
   options: AnalysisFileOptions
   table: Table
   problems: AnalysisFileProblem[]
+  /** Each name once, however many rows bear it. */
+  names: Map<string, string>
 }
 
-function readRow(reading: RowReading): AnalysisResult | null {
-  const { row, columns, options, table, problems } = reading
+type RowReading = Omit<Reading, 'names'> & { row: Row }
+
+function readRow(of: Reading, row: Row): AnalysisResult | null {
+  const { columns, options, table, problems, names } = of
+  const reading: RowReading = { columns, options, table, problems, row }
   const before = problems.length
-  if (row.values.slice(table.header.length).some((value) => value !== '')) {
+  if (row.values.length > table.header.length && row.values.slice(table.header.length).join('') !== '') {
     const found = `${row.values.length} values`
     problems.push({ row: row.at, column: null, found, expected: `${table.header.length}, as in the header` })
     return null
   }
-  const at = (column: number): string => row.values[column] ?? ''
-  const label = (column: number): string => {
-    if (at(column) === '') problem(reading, column, 'a name')
-    return withoutGuard(at(column))
-  }
-  const isExcluded = columns.excluded !== null && at(columns.excluded) !== '' && !options.keepExcluded
-  const value = readValue(reading)
-  const result = {
-    laboratory: label(columns.laboratory),
-    material: columns.material === null ? ONLY_MATERIAL : label(columns.material),
-    measurand: columns.measurand === null ? null : label(columns.measurand),
-    groups: columns.nesting.length === 0 ? NO_GROUPS : columns.nesting.map(label),
-    ...value,
-    excluded: isExcluded,
+  const { text, censored } = readValue(reading)
+  const result: AnalysisResult = {
+    laboratory: readName(reading, names, columns.laboratory),
+    material: columns.material === null ? ONLY_MATERIAL : readName(reading, names, columns.material),
+    measurand: columns.measurand === null ? null : readName(reading, names, columns.measurand),
+    groups:
+      columns.nesting.length === 0
+        ? NO_GROUPS
+        : columns.nesting.map((column) => readName(reading, names, column)),
+    text,
+    censored,
+    excluded:
+      columns.excluded !== null && (row.values[columns.excluded] ?? '') !== '' && !options.keepExcluded,
     order: columns.order === null ? null : optionalNumber(reading, columns.order, 'a number or nothing'),
     uncertainty: columns.uncertainty === null ? null : readUncertainty(reading, columns.uncertainty),
   }
   return problems.length > before ? null : result
+}
+
+function readName(reading: RowReading, names: Map<string, string>, column: number): string {
+  const written = reading.row.values[column] ?? ''
+  if (written === '') problem(reading, column, 'a name')
+  let name = names.get(written)
+  if (name === undefined) {
+    name = withoutGuard(written)
+    names.set(written, name)
+  }
+  return name
 }
 
 /** The product's own files put an apostrophe before a name that a spreadsheet would take for a formula. */
