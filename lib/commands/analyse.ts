@@ -12,6 +12,11 @@ import { analyse, type AnalysisResult } from '@/lib/statistics'
 
 const MOST_PROBLEMS = 50
 
+// A reader such as `head` may stop reading early; that is no fault of the analysis.
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code !== 'EPIPE') throw error
+})
+
 await main(process.argv.slice(2))
 
 async function main(args: readonly string[]): Promise<void> {

@@ -1,3 +1,4 @@
+import { counted } from './plural'
 /** How many results a plan asks for while it is still being typed. */
 export interface TypedPlaces {
   readonly measurands: number
@@ -46,9 +47,4 @@ function rowsOf(typed: ReadonlyMap<string, string>, list: string): number[] {
     if (row !== undefined) rows.add(Number(row))
   }
   return [...rows].sort((a, b) => a - b)
-}
-
-/** A plural of a level's name is guessed only where adding an s cannot be wrong. */
-export function counted(count: number, what: string): string {
-  return `${count} ${what}${count !== 1 && /[a-z]$/.test(what) && !what.endsWith('s') ? 's' : ''}`
 }

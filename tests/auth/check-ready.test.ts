@@ -9,8 +9,6 @@ const logged: string[] = []
 
 beforeAll(async () => {
   database = await createTestDatabase()
-  await sql`grant usage on schema migrations to app`.execute(database.owner)
-  await sql`grant select on migrations.kysely_migration to app`.execute(database.owner)
 })
 afterAll(() => database.destroy())
 beforeEach(() => {

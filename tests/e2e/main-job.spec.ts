@@ -5,7 +5,13 @@ import { readJson, readReference, readRows, type ReferenceRow } from '../statist
 import { acceptInvitation, fillWorkbook, returnFile, returnSheet } from './support/laboratory-steps'
 import { mailFor } from './support/mailbox'
 import { pageOf } from './support/sign-in'
-import { closeAndCompute, inviteAndOpen, planStudy, publish, type LaboratoryToInvite } from './support/study-steps'
+import {
+  closeAndCompute,
+  inviteAndOpen,
+  planStudy,
+  publish,
+  type LaboratoryToInvite,
+} from './support/study-steps'
 
 /*
  * The main job from the first form to the published page, with values of reference sets: glucose in serum (ASTM
@@ -14,7 +20,16 @@ import { closeAndCompute, inviteAndOpen, planStudy, publish, type LaboratoryToIn
  */
 
 const member = people.juno
-const trees = ['Alderholt', 'Birchfen', 'Cedarmoor', 'Dogwoodby', 'Elmstow', 'Firbeck', 'Gorsewick', 'Hazelmere']
+const trees = [
+  'Alderholt',
+  'Birchfen',
+  'Cedarmoor',
+  'Dogwoodby',
+  'Elmstow',
+  'Firbeck',
+  'Gorsewick',
+  'Hazelmere',
+]
 const zones = ['Europe/Lisbon', 'Asia/Kolkata', 'America/New_York', 'Pacific/Auckland']
 
 /** Invented laboratories for the laboratories of a set, in the order of its file. */
@@ -29,7 +44,9 @@ function inventLaboratories(set: string, labs: readonly string[]): (LaboratoryTo
   }))
 }
 
-test('glucose in serum: from the plan to the published page, one workbook a laboratory', async ({ browser }) => {
+test('glucose in serum: from the plan to the published page, one workbook a laboratory', async ({
+  browser,
+}) => {
   test.setTimeout(300_000)
   const rows = readRows('e691_glucose')
   const laboratories = inventLaboratories('serum', unique(rows, 'lab'))
@@ -51,7 +68,12 @@ test('glucose in serum: from the plan to the published page, one workbook a labo
       valueOf: ([material, replicate]) => valueAt(rows, { lab, material, replicate }),
     })
     await returnFile(page, { studyId, file: { name: 'results.xlsx', mimeType: workbookType, buffer } })
-    await expect.poll(async () => (await mailFor(address)).filter(({ subject }) => /receipt|received/i.test(subject)).length).toBe(1)
+    await expect
+      .poll(
+        async () =>
+          (await mailFor(address)).filter(({ subject }) => /receipt|received/i.test(subject)).length,
+      )
+      .toBe(1)
     await page.context().close()
   }
 
@@ -74,10 +96,18 @@ test('glucose in serum: from the plan to the published page, one workbook a labo
   }
   const csv = await (await page.request.get(`${address}/results-1.csv`)).text()
   expect(csv.trim().split('\n')).toHaveLength(1 + rows.length)
-  expect(csv.split('\n').flatMap((line) => line.split(',')[3] ?? []).slice(1).sort()).toEqual(rows.map(({ value }) => value).sort())
+  expect(
+    csv
+      .split('\n')
+      .flatMap((line) => line.split(',')[3] ?? [])
+      .slice(1)
+      .sort(),
+  ).toEqual(rows.map(({ value }) => value).sort())
 })
 
-test('a cooperative trial with batches: returned on the sheet and as tables of the laboratories’ own', async ({ browser }) => {
+test('a cooperative trial with batches: returned on the sheet and as tables of the laboratories’ own', async ({
+  browser,
+}) => {
   test.setTimeout(300_000)
   const rows = readRows('coop')
   const laboratories = inventLaboratories('trial', unique(rows, 'lab'))
@@ -101,12 +131,15 @@ test('a cooperative trial with batches: returned on the sheet and as tables of t
     const own = materials.flatMap((material) =>
       ['1', '2', '3'].flatMap((batch) => ['1', '2'].map((replicate) => ({ material, batch, replicate }))),
     )
-    const valueOf = (place: (typeof own)[number]) => valueAt(rows, { lab, ...place, batch: `B${place.batch}` })
+    const valueOf = (place: (typeof own)[number]) =>
+      valueAt(rows, { lab, ...place, batch: `B${place.batch}` })
     if (index < 2) await returnSheet(page, { studyId, values: own.map(valueOf) })
     else {
       // Half the laboratories write a comma, as their spreadsheets do.
       const mark = index % 2 === 0 ? ',' : '.'
-      const table = own.map((place) => [place.material, place.batch, place.replicate, valueOf(place).replace('.', mark)].join(';'))
+      const table = own.map((place) =>
+        [place.material, place.batch, place.replicate, valueOf(place).replace('.', mark)].join(';'),
+      )
       const buffer = Buffer.from(['Material;batch;replicate;Content', ...table].join('\r\n'))
       await returnFile(page, { studyId, file: { name: 'ours.csv', mimeType: 'text/csv', buffer } })
     }
@@ -128,9 +161,15 @@ test('a cooperative trial with batches: returned on the sheet and as tables of t
     expect(computed?.reproducibility.variance).toBeCloseToRelative(nested.sR2)
     expect(computed?.intermediate[0]?.variance).toBeCloseToRelative(nested.sI2_intermediate.from_batch_down)
     for (const [index, source] of ['lab', 'batch', 'residual'].entries())
-      expect(computed?.anova.components[index]?.varianceRaw).toBeCloseToRelative(nested.components_anova_raw[source])
+      expect(computed?.anova.components[index]?.varianceRaw).toBeCloseToRelative(
+        nested.components_anova_raw[source],
+      )
   }
-  await shows(page, { material: 'S1', column: 'sR', value: Math.sqrt(readReference('coop')[0]?.expected.nested.sR2) })
+  await shows(page, {
+    material: 'S1',
+    column: 'sR',
+    value: Math.sqrt(readReference('coop')[0]?.expected.nested.sR2),
+  })
 })
 
 const workbookType = 'application/vnd.openxmlformats-officedocument.spreadsheetml.sheet'
@@ -145,7 +184,10 @@ function valueAt(rows: readonly ReferenceRow[], place: Record<string, string | u
   return found.value
 }
 
-async function committeeReads(page: Page, { studyId, laboratories }: { studyId: string; laboratories: readonly LaboratoryToInvite[] }): Promise<void> {
+async function committeeReads(
+  page: Page,
+  { studyId, laboratories }: { studyId: string; laboratories: readonly LaboratoryToInvite[] },
+): Promise<void> {
   await page.goto(`/committee/${studyId}`)
   await expect(page.getByRole('heading', { name: 'Between laboratories, h' })).toBeVisible()
   await expect(page.getByRole('heading', { name: 'Within laboratories, k' })).toBeVisible()
@@ -167,8 +209,12 @@ const columns: Record<string, string> = { average: 'Mean', sr: 'sr', sR: 'sR', r
 
 /** Every figure that the standard prints and the reference says agrees, against the page's rounded one. */
 async function showsPublishedFigures(page: Page): Promise<void> {
-  const { rows } = readJson('expected/published.json') as { rows: { set: string; item: string; published: number; agrees: boolean }[] }
-  const printed = rows.filter(({ set, item, agrees }) => set === 'e691_glucose' && agrees && (item.split(' ')[1] ?? '') in columns)
+  const { rows } = readJson('expected/published.json') as {
+    rows: { set: string; item: string; published: number; agrees: boolean }[]
+  }
+  const printed = rows.filter(
+    ({ set, item, agrees }) => set === 'e691_glucose' && agrees && (item.split(' ')[1] ?? '') in columns,
+  )
   expect(printed.length).toBeGreaterThan(15)
   for (const { item, published } of printed) {
     const [material = '', column = ''] = item.split(' ')
@@ -177,21 +223,31 @@ async function showsPublishedFigures(page: Page): Promise<void> {
 }
 
 /** The page's figure is the value, to the last decimal that the page shows. */
-async function shows(page: Page, { material, column, value }: { material: string; column: string; value: number }): Promise<void> {
+async function shows(
+  page: Page,
+  { material, column, value }: { material: string; column: string; value: number },
+): Promise<void> {
   const table = page.getByRole('table', { name: /^Precision by material/ })
   const headers = await table.getByRole('columnheader').allInnerTexts()
-  const position = headers.findIndex((header) => header.replace(/\s/g, '') === (columns[column] ?? '').replace(/\s/g, ''))
-  const row = table.getByRole('row').filter({ has: page.getByRole('rowheader', { name: material, exact: true }) })
+  const position = headers.findIndex(
+    (header) => header.replace(/\s/g, '') === (columns[column] ?? '').replace(/\s/g, ''),
+  )
+  const row = table
+    .getByRole('row')
+    .filter({ has: page.getByRole('rowheader', { name: material, exact: true }) })
   const cells = await row.locator('th, td').allInnerTexts()
   const text = (cells[position] ?? '').replaceAll('\u2212', '-').replace(/[\s\u202f]/g, '')
   const decimals = text.split('.')[1]?.length ?? 0
   // A value printed on the boundary of two roundings may fall either way; a unit of the printed figure is allowed.
-  expect(Math.abs(Number(text) - value), `${material} ${column}: ${text} for ${value}`).toBeLessThanOrEqual(0.5 * 10 ** -decimals + 0.00006)
+  expect(Math.abs(Number(text) - value), `${material} ${column}: ${text} for ${value}`).toBeLessThanOrEqual(
+    0.5 * 10 ** -decimals + 0.00006,
+  )
 }
 
 expect.extend({
   toBeCloseToRelative(received: number | null | undefined, wanted: number) {
-    const pass = typeof received === 'number' && Math.abs(received - wanted) <= 1e-9 * Math.abs(wanted) + 1e-300
+    const pass =
+      typeof received === 'number' && Math.abs(received - wanted) <= 1e-9 * Math.abs(wanted) + 1e-300
     return { pass, message: () => `${received} is not ${wanted} to a relative 1e-9` }
   },
 })

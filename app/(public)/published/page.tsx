@@ -15,15 +15,30 @@ export default async function PublishedPage({ searchParams }: PageProps<'/publis
   const { q } = await searchParams
   const sought = typeof q === 'string' ? q.trim().toLowerCase() : ''
   const all = await listPublications(readerContext(null))
-  const shown = all.filter(({ snapshot: { study } }) => `${study.title} ${study.method} ${study.shortName} ${study.organisation}`.toLowerCase().includes(sought))
+  const shown = all.filter(({ snapshot: { study } }) =>
+    `${study.title} ${study.method} ${study.shortName} ${study.organisation}`.toLowerCase().includes(sought),
+  )
   return (
-    <PageShell top={<PublicTopBar current="published" />} title="Published studies" lead="Precision statements with their coded results. No laboratory is named.">
+    <PageShell
+      top={<PublicTopBar current="published" />}
+      title="Published studies"
+      lead="Precision statements with their coded results. No laboratory is named."
+    >
       <form className="flex flex-wrap items-end gap-3" role="search">
         <label className="flex flex-col gap-1 font-semibold" htmlFor="q">
           Search by title or method
-          <input id="q" name="q" type="search" defaultValue={sought} className="min-h-9 w-72 max-w-full border border-edge bg-sheet px-2 font-normal" />
+          <input
+            id="q"
+            name="q"
+            type="search"
+            defaultValue={sought}
+            className="min-h-9 w-72 max-w-full border border-edge bg-sheet px-2 font-normal"
+          />
         </label>
-        <button type="submit" className="min-h-9 rounded border border-verdigris px-3 font-semibold text-verdigris hover:bg-verdigris-wash">
+        <button
+          type="submit"
+          className="min-h-9 rounded border border-verdigris px-3 font-semibold text-verdigris hover:bg-verdigris-wash"
+        >
           Search
         </button>
       </form>
@@ -34,7 +49,9 @@ export default async function PublishedPage({ searchParams }: PageProps<'/publis
         rowKey={({ slug }) => slug}
         empty={
           <EmptyState title={all.length === 0 ? 'Nothing is published yet' : 'No published study matches'}>
-            {all.length === 0 ? 'A study appears here once a second person has confirmed it.' : 'Try fewer letters.'}
+            {all.length === 0
+              ? 'A study appears here once a second person has confirmed it.'
+              : 'Try fewer letters.'}
           </EmptyState>
         }
         columns={[
@@ -50,7 +67,12 @@ export default async function PublishedPage({ searchParams }: PageProps<'/publis
           },
           { key: 'short', header: 'Short name', cell: ({ snapshot }) => snapshot.study.shortName },
           { key: 'method', header: 'Method', cell: ({ snapshot }) => snapshot.study.method },
-          { key: 'laboratories', header: 'Laboratories', kind: 'figure', cell: ({ snapshot }) => String(snapshot.measurands[0]?.document.input.laboratories ?? 0) },
+          {
+            key: 'laboratories',
+            header: 'Laboratories',
+            kind: 'figure',
+            cell: ({ snapshot }) => String(snapshot.measurands[0]?.document.input.laboratories ?? 0),
+          },
           { key: 'on', header: 'Published', cell: ({ publishedOn }) => showDay(publishedOn, 'UTC') },
         ]}
       />

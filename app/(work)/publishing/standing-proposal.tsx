@@ -19,7 +19,10 @@ export function StandingProposal({ report, proposal, children }: StandingProposa
   const { studyId } = report.study
   return (
     <>
-      <Notice tone="info" title={`Proposed by ${proposal.isOwn ? 'you' : proposal.proposer} on ${showTime(proposal.proposedAt, 'UTC').text} UTC`}>
+      <Notice
+        tone="info"
+        title={`Proposed by ${proposal.isOwn ? 'you' : proposal.proposer} on ${showTime(proposal.proposedAt, 'UTC').text} UTC`}
+      >
         <p className="mb-3">
           {proposal.isOwn
             ? 'A second person confirms it: another coordinator, or the chair of the committee. You cannot confirm your own proposal.'
@@ -27,7 +30,11 @@ export function StandingProposal({ report, proposal, children }: StandingProposa
         </p>
         <div className="flex flex-wrap items-start gap-3">
           {report.mayConfirm && (
-            <Confirm label="Confirm and publish" variant="primary" consequence="The page below becomes public now. It cannot be edited afterwards.">
+            <Confirm
+              label="Confirm and publish"
+              variant="primary"
+              consequence="The page below becomes public now. It cannot be edited afterwards."
+            >
               <ActionForm
                 action={confirmPublicationAction}
                 hidden={{ studyId, digest: proposal.digest }}
@@ -39,7 +46,10 @@ export function StandingProposal({ report, proposal, children }: StandingProposa
           {children}
         </div>
       </Notice>
-      <section className="border-2 border-dashed px-4 py-6 sm:px-8" aria-label="Preview of the published page">
+      <section
+        className="border-2 border-dashed px-4 py-6 sm:px-8"
+        aria-label="Preview of the published page"
+      >
         <h2 className="mb-6 font-heading text-title font-bold">{proposal.snapshot.study.title}</h2>
         <PublishedStudy snapshot={proposal.snapshot} />
       </section>

@@ -12,7 +12,9 @@ const levels: readonly { alpha: '0.005' | '0.01' | '0.05'; label: Limit }[] = [
 
 /** Every laboratory of an analysis, in code order. */
 export function listLaboratories(document: AnalysisDocument): string[] {
-  return [...new Set(document.materials.flatMap(({ cells }) => cells.map(({ laboratory }) => laboratory)))].sort()
+  return [
+    ...new Set(document.materials.flatMap(({ cells }) => cells.map(({ laboratory }) => laboratory))),
+  ].sort()
 }
 
 /** The plot of h or k: each cell judged by its own critical value, the lines drawn for the layout of most cells. */
@@ -27,7 +29,12 @@ export function consistencyData(document: AnalysisDocument, statistic: 'h' | 'k'
         const cell = material.cells.find(({ laboratory }) => laboratory === code)
         const value = cell?.[statistic] ?? null
         if (!cell || value === null) return null
-        return { material: material.material, value, beyond: beyond(material, cell, statistic), note: noteOf(cell) }
+        return {
+          material: material.material,
+          value,
+          beyond: beyond(material, cell, statistic),
+          note: noteOf(cell),
+        }
       }),
     })),
     criticals: levels.slice(1).flatMap(({ alpha, label }) => {
@@ -42,7 +49,9 @@ export function beyond(material: MaterialAnalysis, cell: CellBlock, statistic: '
   const value = cell[statistic]
   if (value === null) return null
   const critical = statistic === 'h' ? material.critical.h : cell.kCritical
-  return levels.find(({ alpha }) => critical[alpha] !== null && Math.abs(value) > critical[alpha])?.label ?? null
+  return (
+    levels.find(({ alpha }) => critical[alpha] !== null && Math.abs(value) > critical[alpha])?.label ?? null
+  )
 }
 
 function noteOf(cell: CellBlock): string {
@@ -50,7 +59,11 @@ function noteOf(cell: CellBlock): string {
 }
 
 /** Cells differ in size, and materials in their laboratories; a line can stand for one case only: the commonest. */
-function commonCritical(document: AnalysisDocument, statistic: 'h' | 'k', alpha: '0.005' | '0.01' | '0.05'): number | null {
+function commonCritical(
+  document: AnalysisDocument,
+  statistic: 'h' | 'k',
+  alpha: '0.005' | '0.01' | '0.05',
+): number | null {
   const values = document.materials.flatMap((material) =>
     statistic === 'h' ? [material.critical.h[alpha]] : material.cells.map((cell) => cell.kCritical[alpha]),
   )

@@ -25,7 +25,12 @@ function ConsistencyFrame({ document, statistic }: { document: AnalysisDocument;
   const data = consistencyData(document, statistic)
   const svgId = `${statistic}-plot`
   return (
-    <ChartFrame title={words[statistic].title} summary={summaryOf(data, statistic)} svgId={svgId} table={<ConsistencyTable data={data} />}>
+    <ChartFrame
+      title={words[statistic].title}
+      summary={summaryOf(data, statistic)}
+      svgId={svgId}
+      table={<ConsistencyTable data={data} />}
+    >
       <ConsistencyPlot svgId={svgId} {...data} />
     </ChartFrame>
   )
@@ -34,10 +39,14 @@ function ConsistencyFrame({ document, statistic }: { document: AnalysisDocument;
 type Data = ReturnType<typeof consistencyData>
 
 function summaryOf({ laboratories, criticals }: Data, statistic: 'h' | 'k'): string {
-  const cells = laboratories.flatMap(({ code, cells }) => cells.flatMap((cell) => (cell?.beyond && cell.beyond !== '5 %' ? [`${code} ${cell.material}`] : [])))
-  if (criticals.length === 0) return `${statistic} has no critical value here: there are too few laboratories or replicates.`
+  const cells = laboratories.flatMap(({ code, cells }) =>
+    cells.flatMap((cell) => (cell?.beyond && cell.beyond !== '5 %' ? [`${code} ${cell.material}`] : [])),
+  )
+  if (criticals.length === 0)
+    return `${statistic} has no critical value here: there are too few laboratories or replicates.`
   if (cells.length === 0) return 'No cell lies beyond the 1 % critical value.'
-  const names = cells.length > 8 ? `${cells.slice(0, 8).join(', ')} and ${cells.length - 8} more` : cells.join(', ')
+  const names =
+    cells.length > 8 ? `${cells.slice(0, 8).join(', ')} and ${cells.length - 8} more` : cells.join(', ')
   return cells.length === 1
     ? `One cell lies beyond the 1 % critical value by ${words[statistic].one}: ${names}.`
     : `${cells.length} cells lie beyond the 1 % critical value by ${words[statistic].many}: ${names}.`
@@ -60,7 +69,8 @@ function ConsistencyTable({ data }: { data: Data }) {
             if (!cell) return noFigure
             return cell.beyond ? (
               <strong>
-                {showStatistic(cell.value)} <span className="font-sans text-small font-normal">beyond {cell.beyond}</span>
+                {showStatistic(cell.value)}{' '}
+                <span className="font-sans text-small font-normal">beyond {cell.beyond}</span>
               </strong>
             ) : (
               showStatistic(cell.value)

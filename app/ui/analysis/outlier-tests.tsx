@@ -42,8 +42,18 @@ export function OutlierTests({ document }: { document: AnalysisDocument }) {
               <span className="text-ink-soft">{reason ?? noFigure}</span>
             ),
         },
-        { key: 'statistic', header: 'Statistic', kind: 'figure', cell: ({ statistic }) => showStatistic(statistic) },
-        { key: 'critical', header: '1 % point', kind: 'figure', cell: ({ critical }) => showStatistic(critical) },
+        {
+          key: 'statistic',
+          header: 'Statistic',
+          kind: 'figure',
+          cell: ({ statistic }) => showStatistic(statistic),
+        },
+        {
+          key: 'critical',
+          header: '1 % point',
+          kind: 'figure',
+          cell: ({ critical }) => showStatistic(critical),
+        },
         { key: 'p', header: 'p', kind: 'figure', cell: ({ pValue }) => showPValue(pValue) },
         { key: 'level', header: 'Finding', cell: ({ level }) => <LevelWord level={level} /> },
       ]}

@@ -1,3 +1,4 @@
+import { plural } from '@/lib/domain/plural'
 import type { AnalysisDocument, MaterialAnalysis } from '@/lib/statistics/analysis-document'
 import { CellMeansPlot } from '../charts/cell-means-plot'
 import { ChartFrame } from '../charts/chart-frame'
@@ -23,21 +24,45 @@ export function VarianceShares({ document }: { document: AnalysisDocument }) {
           rowKey={({ name }) => name}
           columns={[
             { key: 'name', header: 'Material', isRowHeader: true, cell: ({ name }) => name },
-            { key: 'within', header: 'Repeatability', kind: 'figure', cell: ({ within }) => showFigures(within) },
+            {
+              key: 'within',
+              header: 'Repeatability',
+              kind: 'figure',
+              cell: ({ within }) => showFigures(within),
+            },
             ...(inner.length > 0
-              ? [{ key: 'groups', header: `Between ${inner.join(', ')}`, kind: 'figure' as const, cell: (row: (typeof shares)[number]) => showFigures(row.betweenGroups) }]
+              ? [
+                  {
+                    key: 'groups',
+                    header: `Between ${inner.join(', ')}`,
+                    kind: 'figure' as const,
+                    cell: (row: (typeof shares)[number]) => showFigures(row.betweenGroups),
+                  },
+                ]
               : []),
-            { key: 'laboratories', header: 'Between laboratories', kind: 'figure', cell: ({ betweenLaboratories }) => showFigures(betweenLaboratories) },
+            {
+              key: 'laboratories',
+              header: 'Between laboratories',
+              kind: 'figure',
+              cell: ({ betweenLaboratories }) => showFigures(betweenLaboratories),
+            },
           ]}
         />
       }
     >
-      <PrecisionBars svgId="variance-shares" materials={shares} {...(inner.length > 0 ? { groupName: inner.map((name) => `${name}s`).join(' and ') } : {})} />
+      <PrecisionBars
+        svgId="variance-shares"
+        materials={shares}
+        {...(inner.length > 0 ? { groupName: inner.map(plural).join(' and ') } : {})}
+      />
     </ChartFrame>
   )
 }
 
-function sharesOf({ material, repeatability, betweenLaboratory, anova }: MaterialAnalysis, isNested: boolean) {
+function sharesOf(
+  { material, repeatability, betweenLaboratory, anova }: MaterialAnalysis,
+  isNested: boolean,
+) {
   if (repeatability.variance === null || betweenLaboratory.variance === null) return []
   const groups = anova.components.filter(({ source }) => source !== 'laboratory' && source !== 'residual')
   return [
@@ -51,17 +76,30 @@ function sharesOf({ material, repeatability, betweenLaboratory, anova }: Materia
 }
 
 /** The cell means of one material under the curve that equal laboratories would follow. */
-export function CellMeans({ material, unit, decimals }: { material: MaterialAnalysis; unit: string; decimals: number }) {
+export function CellMeans({
+  material,
+  unit,
+  decimals,
+}: {
+  material: MaterialAnalysis
+  unit: string
+  decimals: number
+}) {
   const { reference } = material.equality
   const { scale, df } = reference
   if (material.meanOfCellMeans === null) return null
   if (!scale || df === null)
     return (
       <p className="max-w-text text-ink-soft">
-        {material.material}: {reference.reasons?.scale ?? material.equality.reasons?.f ?? 'there is no scatter within the laboratories to compare their means by.'}
+        {material.material}:{' '}
+        {reference.reasons?.scale ??
+          material.equality.reasons?.f ??
+          'there is no scatter within the laboratories to compare their means by.'}
       </p>
     )
-  const cells = material.cells.flatMap(({ laboratory, mean, sd: cellSd, n }) => (mean === null ? [] : [{ code: laboratory, mean, sd: cellSd, count: n }]))
+  const cells = material.cells.flatMap(({ laboratory, mean, sd: cellSd, n }) =>
+    mean === null ? [] : [{ code: laboratory, mean, sd: cellSd, count: n }],
+  )
   const svgId = `means-${material.material.replace(/\W+/g, '-')}`
   return (
     <ChartFrame
@@ -98,7 +136,11 @@ export function CellMeans({ material, unit, decimals }: { material: MaterialAnal
 }
 
 function equalitySummary({ equality }: MaterialAnalysis): string {
-  if (equality.pValue === null) return equality.reasons?.f ?? equality.reasons?.pValue ?? 'The means of the laboratories cannot be compared.'
-  const verdict = equality.pValue < 0.05 ? 'Averages this far apart would be rare' : 'Averages this far apart are usual'
+  if (equality.pValue === null)
+    return (
+      equality.reasons?.f ?? equality.reasons?.pValue ?? 'The means of the laboratories cannot be compared.'
+    )
+  const verdict =
+    equality.pValue < 0.05 ? 'Averages this far apart would be rare' : 'Averages this far apart are usual'
   return `${verdict} if all laboratories agreed: F gives ${sayPValue(equality.pValue)}, the range of the means ${sayPValue(equality.rangePValue)}. The curve is a picture; these two figures decide.`
 }

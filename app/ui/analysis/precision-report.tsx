@@ -9,7 +9,13 @@ import { showFigures } from './show-quantity'
 import { VarianceTables } from './variance-tables'
 
 interface PrecisionReportProps {
-  measurand: { name: string; unit: string; decimals: number; hasTrueZero: boolean; document: AnalysisDocument }
+  measurand: {
+    name: string
+    unit: string
+    decimals: number
+    hasTrueZero: boolean
+    document: AnalysisDocument
+  }
 }
 
 /** Everything the analysis says of one measurand's precision: the same on every page that shows it. */
@@ -18,20 +24,40 @@ export function PrecisionReport({ measurand }: PrecisionReportProps) {
   return (
     <>
       <Cautions document={document} />
-      <Section id="precision" title={`Precision: ${withinSentence(name)}`} note={`In ${unit}; rounded once, at the end, half to even.`}>
+      <Section
+        id="precision"
+        title={`Precision: ${withinSentence(name)}`}
+        note={`In ${unit}; rounded once, at the end, half to even.`}
+      >
         <PrecisionTable document={document} unit={unit} hasTrueZero={hasTrueZero} />
       </Section>
-      <Section id="intervals" title="95 % intervals" note="Of the standard deviations; how little a study of this size can settle.">
+      <Section
+        id="intervals"
+        title="95 % intervals"
+        note="Of the standard deviations; how little a study of this size can settle."
+      >
         <IntervalTable document={document} unit={unit} />
       </Section>
       <VarianceShares document={document} />
-      <Section id="analysis-of-variance" title="Analysis of variance" note="Material by material; open one to read it.">
+      <Section
+        id="analysis-of-variance"
+        title="Analysis of variance"
+        note="Material by material; open one to read it."
+      >
         <VarianceTables document={document} unit={unit} />
       </Section>
-      <Section id="level" title="Precision against level" note="s by the mean m, in the three forms of ISO 5725-2; the best by its scatter of logarithms is named, a person chooses.">
+      <Section
+        id="level"
+        title="Precision against level"
+        note="s by the mean m, in the three forms of ISO 5725-2; the best by its scatter of logarithms is named, a person chooses."
+      >
         <LevelRelationTable document={document} />
       </Section>
-      <Section id="means" title="Laboratory means" note="Each with its standard deviation, and the curve that means of equal laboratories would follow.">
+      <Section
+        id="means"
+        title="Laboratory means"
+        note="Each with its standard deviation, and the curve that means of equal laboratories would follow."
+      >
         <div className="flex flex-col gap-8">
           {document.materials.map((material) => (
             <CellMeans key={material.material} material={material} unit={unit} decimals={decimals} />
@@ -45,7 +71,9 @@ export function PrecisionReport({ measurand }: PrecisionReportProps) {
 /** What must be said before a figure is used. */
 function Cautions({ document }: { document: AnalysisDocument }) {
   const lost = document.materials.filter(({ censored, mean }) => censored.results > 0 && mean === null)
-  const few = document.materials.filter((each) => each.laboratories < 6 && !lost.includes(each)).map(({ material }) => material)
+  const few = document.materials
+    .filter((each) => each.laboratories < 6 && !lost.includes(each))
+    .map(({ material }) => material)
   const censored = document.materials.filter((each) => each.censored.results > 0 && !lost.includes(each))
   const confounded = document.materials.find(({ anova }) => anova.confounded !== null)?.anova.confounded
   const isNested = document.input.nesting.length > 2
@@ -57,9 +85,13 @@ function Cautions({ document }: { document: AnalysisDocument }) {
         </Notice>
       )}
       {censored.length > 0 && (
-        <Notice tone="warn" title={`Results below or above a limit for ${censored.map(({ material }) => material).join(', ')}`}>
-          They carry no number and none is put in their place. Their cells are left out, which makes the spread look smaller than it is and moves the
-          mean away from the limit: leaving out the lowest 5, 10 or 20 % of laboratories lowers their standard deviation by 10, 16 or 24 %.
+        <Notice
+          tone="warn"
+          title={`Results below or above a limit for ${censored.map(({ material }) => material).join(', ')}`}
+        >
+          They carry no number and none is put in their place. Their cells are left out, which makes the
+          spread look smaller than it is and moves the mean away from the limit: leaving out the lowest 5, 10
+          or 20 % of laboratories lowers their standard deviation by 10, 16 or 24 %.
         </Notice>
       )}
       {lost.map(({ material, median, censored: block }) => (
@@ -70,12 +102,14 @@ function Cautions({ document }: { document: AnalysisDocument }) {
       ))}
       {confounded && (
         <Notice tone="warn" title={`No repeatability: ${confounded} and replicate cannot be told apart`}>
-          No innermost group holds two results, so that the innermost figure is an intermediate precision with {confounded} varying.
+          No innermost group holds two results, so that the innermost figure is an intermediate precision with{' '}
+          {confounded} varying.
         </Notice>
       )}
       {isNested && (
         <Notice tone="info" title="In a nested layout h and Grubbs’ tests are approximate">
-          They judge a laboratory’s mean over all its results; k and Cochran judge its innermost scatter, with exact critical values.
+          They judge a laboratory’s mean over all its results; k and Cochran judge its innermost scatter, with
+          exact critical values.
         </Notice>
       )}
     </>

@@ -4,7 +4,15 @@ import { Figure } from '../primitives/figure'
 import { noFigure, showFigures, showInterval } from './show-quantity'
 
 /** The precision figures of every material, rounded as a report rounds them. */
-export function PrecisionTable({ document, unit, hasTrueZero }: { document: AnalysisDocument; unit: string; hasTrueZero: boolean }) {
+export function PrecisionTable({
+  document,
+  unit,
+  hasTrueZero,
+}: {
+  document: AnalysisDocument
+  unit: string
+  hasTrueZero: boolean
+}) {
   const isNested = document.materials.some(({ intermediate }) => intermediate.length > 0)
   return (
     <DataTable
@@ -17,15 +25,56 @@ export function PrecisionTable({ document, unit, hasTrueZero }: { document: Anal
         count('laboratories', 'Laboratories'),
         count('results', 'Results'),
         rounded('mean', 'Mean'),
-        rounded('repeatability', <>s<sub>r</sub></>),
-        ...(isNested ? [{ key: 'intermediate', header: <>s<sub>I</sub></>, kind: 'figure' as const, cell: intermediate }] : []),
-        rounded('reproducibility', <>s<sub>R</sub></>),
+        rounded(
+          'repeatability',
+          <>
+            s<sub>r</sub>
+          </>,
+        ),
+        ...(isNested
+          ? [
+              {
+                key: 'intermediate',
+                header: (
+                  <>
+                    s<sub>I</sub>
+                  </>
+                ),
+                kind: 'figure' as const,
+                cell: intermediate,
+              },
+            ]
+          : []),
+        rounded(
+          'reproducibility',
+          <>
+            s<sub>R</sub>
+          </>,
+        ),
         rounded('repeatabilityLimit', 'Limit r'),
         rounded('reproducibilityLimit', 'Limit R'),
         ...(hasTrueZero
           ? [
-              { key: 'relative-r', header: <>s<sub>r</sub>, %</>, kind: 'figure' as const, cell: (row: MaterialAnalysis) => showFigures(row.repeatability.relative, 2) },
-              { key: 'relative-R', header: <>s<sub>R</sub>, %</>, kind: 'figure' as const, cell: (row: MaterialAnalysis) => showFigures(row.reproducibility.relative, 2) },
+              {
+                key: 'relative-r',
+                header: (
+                  <>
+                    s<sub>r</sub>, %
+                  </>
+                ),
+                kind: 'figure' as const,
+                cell: (row: MaterialAnalysis) => showFigures(row.repeatability.relative, 2),
+              },
+              {
+                key: 'relative-R',
+                header: (
+                  <>
+                    s<sub>R</sub>, %
+                  </>
+                ),
+                kind: 'figure' as const,
+                cell: (row: MaterialAnalysis) => showFigures(row.reproducibility.relative, 2),
+              },
             ]
           : []),
       ]}
@@ -37,12 +86,20 @@ function count(key: 'laboratories' | 'results', header: string): Column<Material
   return { key, header, kind: 'figure', cell: (row) => String(row[key]) }
 }
 
-function rounded(key: keyof Omit<MaterialAnalysis['rounded'], 'reasons' | 'intermediate'>, header: Column<MaterialAnalysis>['header']): Column<MaterialAnalysis> {
+function rounded(
+  key: keyof Omit<MaterialAnalysis['rounded'], 'reasons' | 'intermediate'>,
+  header: Column<MaterialAnalysis>['header'],
+): Column<MaterialAnalysis> {
   return {
     key,
     header,
     kind: 'figure',
-    cell: ({ rounded: block }) => (block[key] === null ? <span title={block.reasons?.[key]}>{noFigure}</span> : <Figure value={block[key]} />),
+    cell: ({ rounded: block }) =>
+      block[key] === null ? (
+        <span title={block.reasons?.[key]}>{noFigure}</span>
+      ) : (
+        <Figure value={block[key]} />
+      ),
   }
 }
 
@@ -61,7 +118,9 @@ function IntervalCell({ interval }: { interval: Interval }) {
     <>
       {showInterval(interval)}
       {interval.extended && <span className="block font-sans text-ink-soft">widened to the estimate</span>}
-      {reason && <span className="block max-w-44 whitespace-normal text-left font-sans text-ink-soft">{reason}</span>}
+      {reason && (
+        <span className="block max-w-44 whitespace-normal text-left font-sans text-ink-soft">{reason}</span>
+      )}
     </>
   )
 }
@@ -76,10 +135,47 @@ export function IntervalTable({ document, unit }: { document: AnalysisDocument; 
       rowKey={({ material }) => material}
       columns={[
         { key: 'material', header: 'Material', isRowHeader: true, cell: ({ material }) => material },
-        { key: 'r', header: <>s<sub>r</sub></>, kind: 'figure', cell: (row) => <IntervalCell interval={row.repeatability.ci95} /> },
-        { key: 'L', header: <>s<sub>L</sub></>, kind: 'figure', cell: (row) => <IntervalCell interval={row.betweenLaboratory.ci95} /> },
-        { key: 'R', header: <>s<sub>R</sub></>, kind: 'figure', cell: (row) => <IntervalCell interval={row.reproducibility.ci95} /> },
-        { key: 'raw', header: <>s<sub>L</sub><sup>2</sup> before cutting at 0</>, kind: 'figure', cell: (row) => showFigures(row.betweenLaboratory.varianceRaw) },
+        {
+          key: 'r',
+          header: (
+            <>
+              s<sub>r</sub>
+            </>
+          ),
+          kind: 'figure',
+          cell: (row) => <IntervalCell interval={row.repeatability.ci95} />,
+        },
+        {
+          key: 'L',
+          header: (
+            <>
+              s<sub>L</sub>
+            </>
+          ),
+          kind: 'figure',
+          cell: (row) => <IntervalCell interval={row.betweenLaboratory.ci95} />,
+        },
+        {
+          key: 'R',
+          header: (
+            <>
+              s<sub>R</sub>
+            </>
+          ),
+          kind: 'figure',
+          cell: (row) => <IntervalCell interval={row.reproducibility.ci95} />,
+        },
+        {
+          key: 'raw',
+          header: (
+            <>
+              s<sub>L</sub>
+              <sup>2</sup> before cutting at 0
+            </>
+          ),
+          kind: 'figure',
+          cell: (row) => showFigures(row.betweenLaboratory.varianceRaw),
+        },
       ]}
     />
   )

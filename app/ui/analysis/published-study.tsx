@@ -1,4 +1,4 @@
-import { counted } from '@/lib/domain/count-typed-places'
+import { counted } from '@/lib/domain/plural'
 import type { PublicationSnapshot, PublishedMeasurand } from '@/lib/domain/publication-snapshot'
 import { Section } from '../layout/section'
 import { DownloadLink } from '../primitives/download-link'
@@ -25,24 +25,44 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
       <Statement snapshot={snapshot} measurand={measurand} />
       <PrecisionReport measurand={measurand} />
       <ConsistencyPlots document={measurand.document} />
-      <Section id="outlier-tests" title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
+      <Section
+        id="outlier-tests"
+        title="Outlier tests"
+        note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
+      >
         <OutlierTests document={measurand.document} />
       </Section>
-      <Section id="set-aside" title="Cells set aside" note="By code, with the reason; their results are in the coded data.">
+      <Section
+        id="set-aside"
+        title="Cells set aside"
+        note="By code, with the reason; their results are in the coded data."
+      >
         <SetAsideTable cells={measurand.exclusions} />
       </Section>
-      <Section id="recompute" title="Recompute it" note={`Analysis ${snapshot.analysis.number} by engine ${snapshot.analysis.engineVersion}.`}>
+      <Section
+        id="recompute"
+        title="Recompute it"
+        note={`Analysis ${snapshot.analysis.number} by engine ${snapshot.analysis.engineVersion}.`}
+      >
         <p className="mb-3 max-w-text">
-          The coded results give these figures again by the product’s own command. Laboratories appear by codes drawn for this study alone; a
-          laboratory that tells others one of its results can be recognised by it.
+          The coded results give these figures again by the product’s own command. Laboratories appear by
+          codes drawn for this study alone; a laboratory that tells others one of its results can be
+          recognised by it.
         </p>
         <pre className="mb-3 overflow-x-auto border bg-sheet px-3 py-2 font-mono text-small" tabIndex={0}>
-          {analyseCommand(measurand, `${files ? `${files.split('/').at(-1)}-` : ''}results-${chosen + 1}.csv`)}
+          {analyseCommand(
+            measurand,
+            `${files ? `${files.split('/').at(-1)}-` : ''}results-${chosen + 1}.csv`,
+          )}
         </pre>
         {files && (
           <p className="flex flex-wrap gap-5">
-            <DownloadLink href={`${files}/results-${chosen + 1}.csv`} format="CSV">Coded results</DownloadLink>
-            <DownloadLink href={`${files}/analysis-${chosen + 1}.json`} format="JSON">The analysis</DownloadLink>
+            <DownloadLink href={`${files}/results-${chosen + 1}.csv`} format="CSV">
+              Coded results
+            </DownloadLink>
+            <DownloadLink href={`${files}/analysis-${chosen + 1}.json`} format="JSON">
+              The analysis
+            </DownloadLink>
           </p>
         )}
       </Section>
@@ -50,7 +70,13 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
   )
 }
 
-function Statement({ snapshot, measurand }: { snapshot: PublicationSnapshot; measurand: PublishedMeasurand }) {
+function Statement({
+  snapshot,
+  measurand,
+}: {
+  snapshot: PublicationSnapshot
+  measurand: PublishedMeasurand
+}) {
   const { input } = measurand.document
   const returned = countReturned(measurand.csv)
   const layout = snapshot.levels.map(({ name, count }) => counted(count, name)).join(' × ')
@@ -58,14 +84,19 @@ function Statement({ snapshot, measurand }: { snapshot: PublicationSnapshot; mea
     <Section title="Precision statement">
       <div className="flex max-w-text flex-col gap-3">
         <p>
-          {returned.laboratories} laboratories tested {snapshot.materials.length} materials by {snapshot.study.method}, {layout} in each cell, and returned{' '}
-          {returned.results} results for {withinSentence(measurand.name)}.
-          {input.excluded > 0 ? ` ${input.excluded} of them were set aside, with the reasons given below.` : ' None was set aside.'}
+          {returned.laboratories} laboratories tested {snapshot.materials.length} materials by{' '}
+          {snapshot.study.method}, {layout} in each cell, and returned {returned.results} results for{' '}
+          {withinSentence(measurand.name)}.
+          {input.excluded > 0
+            ? ` ${input.excluded} of them were set aside, with the reasons given below.`
+            : ' None was set aside.'}
           {input.censored > 0 ? ` ${input.censored} lay below or above a limit and carry no number.` : ''}
         </p>
         <p>
-          The limits r and R are {snapshot.study.limitFactor === '2.77' ? '1.96·√2' : snapshot.study.limitFactor} times the repeatability and
-          reproducibility standard deviations. They describe the agreement between results and are no specification.
+          The limits r and R are{' '}
+          {snapshot.study.limitFactor === '2.77' ? '1.96·√2' : snapshot.study.limitFactor} times the
+          repeatability and reproducibility standard deviations. They describe the agreement between results
+          and are no specification.
         </p>
       </div>
     </Section>

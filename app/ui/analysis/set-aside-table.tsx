@@ -9,7 +9,13 @@ export interface SetAsideCell {
 }
 
 /** The cells that a person set aside, each with the written reason. */
-export function SetAsideTable<Cell extends SetAsideCell>({ cells, action }: { cells: readonly Cell[]; action?: (cell: Cell) => ReactNode }) {
+export function SetAsideTable<Cell extends SetAsideCell>({
+  cells,
+  action,
+}: {
+  cells: readonly Cell[]
+  action?: (cell: Cell) => ReactNode
+}) {
   return (
     <DataTable
       caption="Cells set aside"
@@ -21,7 +27,16 @@ export function SetAsideTable<Cell extends SetAsideCell>({ cells, action }: { ce
         { key: 'code', header: 'Laboratory', isRowHeader: true, cell: ({ code }) => <Tag code={code} /> },
         { key: 'material', header: 'Material', cell: ({ material }) => material },
         { key: 'reason', header: 'Reason', cell: ({ reason }) => reason },
-        ...(action ? [{ key: 'action', header: <span className="sr-only">Change</span>, kind: 'action' as const, cell: action }] : []),
+        ...(action
+          ? [
+              {
+                key: 'action',
+                header: <span className="sr-only">Change</span>,
+                kind: 'action' as const,
+                cell: action,
+              },
+            ]
+          : []),
       ]}
     />
   )

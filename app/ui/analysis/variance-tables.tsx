@@ -25,17 +25,25 @@ function AnovaRows({ material, unit }: { material: MaterialAnalysis; unit: strin
       caption={`Analysis of variance, ${material.material}`}
       rows={material.anova.rows}
       rowKey={({ source }) => source}
-      empty={<p>{material.anova.reasons?.rows ?? 'There are too few results for an analysis of variance.'}</p>}
+      empty={
+        <p>{material.anova.reasons?.rows ?? 'There are too few results for an analysis of variance.'}</p>
+      }
       columns={[
         { key: 'source', header: 'Source', isRowHeader: true, cell: ({ source }) => source },
         { key: 'df', header: 'Degrees of freedom', kind: 'figure', cell: ({ df }) => String(df) },
-        { key: 'ss', header: `Sum of squares, (${unit})²`, kind: 'figure', cell: ({ ss }) => showFigures(ss, 6) },
+        {
+          key: 'ss',
+          header: `Sum of squares, (${unit})²`,
+          kind: 'figure',
+          cell: ({ ss }) => showFigures(ss, 6),
+        },
         { key: 'ms', header: 'Mean square', kind: 'figure', cell: ({ ms }) => showFigures(ms, 6) },
         {
           key: 'f',
           header: 'F',
           kind: 'figure',
-          cell: ({ f, denominator }) => (denominator?.kind === 'Satterthwaite' ? `${showStatistic(f)} (approx.)` : showStatistic(f)),
+          cell: ({ f, denominator }) =>
+            denominator?.kind === 'Satterthwaite' ? `${showStatistic(f)} (approx.)` : showStatistic(f),
         },
         { key: 'p', header: 'p', kind: 'figure', cell: ({ pValue }) => showPValue(pValue) },
       ]}
@@ -52,16 +60,40 @@ function Components({ material, unit }: { material: MaterialAnalysis; unit: stri
       rowKey={({ source }) => source}
       columns={[
         { key: 'source', header: 'Component', isRowHeader: true, cell: ({ source }) => source },
-        { key: 'raw', header: 'From mean squares', kind: 'figure', cell: ({ varianceRaw }) => showFigures(varianceRaw, 6) },
-        { key: 'variance', header: 'Reported', kind: 'figure', cell: ({ variance }) => showFigures(variance, 6) },
-        { key: 'sd', header: `Standard deviation, ${unit}`, kind: 'figure', cell: ({ sd }) => showFigures(sd, 6) },
-        { key: 'reml', header: 'Restricted likelihood', kind: 'figure', cell: ({ source }) => likelihoodWords(material, source, byLikelihood) },
+        {
+          key: 'raw',
+          header: 'From mean squares',
+          kind: 'figure',
+          cell: ({ varianceRaw }) => showFigures(varianceRaw, 6),
+        },
+        {
+          key: 'variance',
+          header: 'Reported',
+          kind: 'figure',
+          cell: ({ variance }) => showFigures(variance, 6),
+        },
+        {
+          key: 'sd',
+          header: `Standard deviation, ${unit}`,
+          kind: 'figure',
+          cell: ({ sd }) => showFigures(sd, 6),
+        },
+        {
+          key: 'reml',
+          header: 'Restricted likelihood',
+          kind: 'figure',
+          cell: ({ source }) => likelihoodWords(material, source, byLikelihood),
+        },
       ]}
     />
   )
 }
 
-function likelihoodWords({ reml }: MaterialAnalysis, source: string, components: ReadonlyMap<string, number | null>): string {
+function likelihoodWords(
+  { reml }: MaterialAnalysis,
+  source: string,
+  components: ReadonlyMap<string, number | null>,
+): string {
   if (reml.converged === false) return 'not found'
   if (reml.boundary.includes(source)) return '0, at the boundary'
   return showFigures(components.get(source) ?? null, 6)

@@ -94,4 +94,10 @@ function BeyondLabel({ cell, y, isByMaterial }: { cell: PlacedCell; y: number; i
 }
 
 // A rim in the colour of the sheet keeps a label legible where it crosses a hairline or a stem.
-const halo = { fill: 'var(--ink)', stroke: 'var(--sheet)', strokeWidth: 6, strokeLinejoin: 'round', paintOrder: 'stroke' } as const
+const halo = {
+  fill: 'var(--ink)',
+  stroke: 'var(--sheet)',
+  strokeWidth: 6,
+  strokeLinejoin: 'round',
+  paintOrder: 'stroke',
+} as const

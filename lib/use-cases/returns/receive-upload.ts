@@ -2,10 +2,12 @@ import { createHash } from 'node:crypto'
 import { countRecentUploads, findUpload, insertUpload, insertUploadCheck } from '@/db/queries/uploads'
 import type { Context } from '@/lib/context'
 import { NotFound, Refusal } from '@/lib/domain/errors'
+import { workbookLimits } from '@/lib/spreadsheet/workbook'
 import { recordAudit } from '../record-audit'
 import { ownParticipation } from './own-participation'
 
-export const largestUpload = 5 * 1024 * 1024
+/** 5 MB as the page says it, and no byte more than the reader takes. */
+export const largestUpload = workbookLimits.packedBytes
 const uploadsAnHour = 30
 
 /** Keeps an uploaded file as it came and queues its reading; nothing in it counts as a result yet. */

@@ -10,9 +10,7 @@ export interface StudyListEntry {
 }
 
 /** Every study a person has to do with, once for each capacity. */
-export async function listStudies(
-  context: Context,
-): Promise<{
+export async function listStudies(context: Context): Promise<{
   now: Date
   entries: StudyListEntry[]
   mayCreateIn: { organisationId: string; name: string }[]

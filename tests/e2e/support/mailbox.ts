@@ -25,11 +25,20 @@ export async function mailFor(address: string): Promise<ReadMail[]> {
   const mails = (await answer.json()) as StoredMail[]
   return mails
     .filter(({ to }) => to.some((each) => each.address === address))
-    .map(({ id, subject, text, html, to }) => ({ id, subject, text, html: html || '', to: to[0]?.address ?? '' }))
+    .map(({ id, subject, text, html, to }) => ({
+      id,
+      subject,
+      text,
+      html: html || '',
+      to: to[0]?.address ?? '',
+    }))
 }
 
 /** The mail for an address that comes after those already there, once it has come. */
-export async function nextMail(address: string, { after, subject }: { after: number; subject: RegExp }): Promise<ReadMail> {
+export async function nextMail(
+  address: string,
+  { after, subject }: { after: number; subject: RegExp },
+): Promise<ReadMail> {
   let found: ReadMail | undefined
   await expect
     .poll(

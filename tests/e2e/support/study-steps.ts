@@ -24,7 +24,11 @@ export async function planStudy(page: Page, study: StudyToPlan): Promise<string>
   await page.getByLabel('Short name').fill(study.shortName)
   await page.getByLabel('Title').fill(study.title)
   await page.getByLabel('Test method').fill(study.method)
-  await fillRow(page, 'measurands.0', { name: study.measurand.name, unit: study.measurand.unit, decimals: study.measurand.decimals })
+  await fillRow(page, 'measurands.0', {
+    name: study.measurand.name,
+    unit: study.measurand.unit,
+    decimals: study.measurand.decimals,
+  })
   for (const [index, name] of study.materials.entries()) {
     const field = page.locator(`[name="materials.${index}.name"]`)
     if ((await field.count()) === 0) await page.getByRole('button', { name: 'Add another material' }).click()
@@ -43,16 +47,27 @@ export async function planStudy(page: Page, study: StudyToPlan): Promise<string>
 }
 
 async function fillRow(page: Page, row: string, fields: Record<string, string | number>): Promise<void> {
-  for (const [name, value] of Object.entries(fields)) await page.locator(`[name="${row}.${name}"]`).fill(String(value))
+  for (const [name, value] of Object.entries(fields))
+    await page.locator(`[name="${row}.${name}"]`).fill(String(value))
 }
 
 /** Puts laboratories on the list by pasting them, appoints a member, and sends the invitations. */
 export async function inviteAndOpen(
   page: Page,
-  { studyId, laboratories, member }: { studyId: string; laboratories: readonly LaboratoryToInvite[]; member: { name: string; address: string } },
+  {
+    studyId,
+    laboratories,
+    member,
+  }: {
+    studyId: string
+    laboratories: readonly LaboratoryToInvite[]
+    member: { name: string; address: string }
+  },
 ): Promise<void> {
   await page.goto(`/studies/${studyId}/laboratories`)
-  const lines = laboratories.map(({ name, town, contact, address, zone }) => [name, town, 'Nowhere', contact, address, zone].join('; '))
+  const lines = laboratories.map(({ name, town, contact, address, zone }) =>
+    [name, town, 'Nowhere', contact, address, zone].join('; '),
+  )
   await page.getByLabel('One line a laboratory').fill(lines.join('\n'))
   await page.getByRole('button', { name: 'Read the lines' }).click()
   await page.getByRole('button', { name: `Put ${laboratories.length} laboratories on the list` }).click()
@@ -71,7 +86,10 @@ export async function inviteAndOpen(
 }
 
 /** Closes the round before its deadline, has the statistics computed and puts them before the committee. */
-export async function closeAndCompute(page: Page, { studyId, returned }: { studyId: string; returned: number }): Promise<void> {
+export async function closeAndCompute(
+  page: Page,
+  { studyId, returned }: { studyId: string; returned: number },
+): Promise<void> {
   await page.goto(`/studies/${studyId}/results`)
   await expect(page.getByText(`${returned} of ${returned} laboratories have returned`)).toBeVisible()
   await page.getByLabel('Reason').fill('Every laboratory has returned, so nobody needs the rest of the time.')
@@ -79,7 +97,9 @@ export async function closeAndCompute(page: Page, { studyId, returned }: { study
   await expect(page.getByText(/closed for returns/i).first()).toBeVisible()
   await page.goto(`/studies/${studyId}/scrutiny`)
   await page.getByRole('button', { name: 'Compute the statistics' }).click()
-  await expect(page.getByRole('heading', { name: 'Between laboratories, h' })).toBeVisible({ timeout: 30_000 })
+  await expect(page.getByRole('heading', { name: 'Between laboratories, h' })).toBeVisible({
+    timeout: 30_000,
+  })
   await page.goto(`/studies/${studyId}/review`)
   await page.getByRole('button', { name: 'Put before the committee' }).click()
   await expect(page.getByRole('heading', { name: 'Before its committee' })).toBeVisible()

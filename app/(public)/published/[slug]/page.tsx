@@ -23,7 +23,11 @@ export default async function PublicationPage({ params, searchParams }: PageProp
   const { measurand } = await searchParams
   const { snapshot, publishedOn, digest } = await orNotFound(readPublication(readerContext(null), { slug }))
   const chosen = Math.max(0, Math.min(snapshot.measurands.length - 1, (Number(measurand) || 1) - 1))
-  const tabs = snapshot.measurands.map(({ name, unit }, index) => ({ measurandId: String(index + 1), name, unit }))
+  const tabs = snapshot.measurands.map(({ name, unit }, index) => ({
+    measurandId: String(index + 1),
+    name,
+    unit,
+  }))
   return (
     <PageShell
       top={<PublicTopBar current="published" />}
@@ -36,11 +40,15 @@ export default async function PublicationPage({ params, searchParams }: PageProp
           <PrecisionNotes limitFactor={snapshot.study.limitFactor} />
           <MarginNote title="This page is frozen">
             <p>
-              It shows one snapshot, in which laboratories appear by code alone. Its digest is <span className="block break-all font-mono">{digest}</span>
+              It shows one snapshot, in which laboratories appear by code alone. Its digest is{' '}
+              <span className="block break-all font-mono">{digest}</span>
             </p>
           </MarginNote>
           <MarginNote title="Before you test">
-            <p>Handling and transport of a material follow its supplier’s safety data sheet, local rules and licensed practice. This page gives no advice on them.</p>
+            <p>
+              Handling and transport of a material follow its supplier’s safety data sheet, local rules and
+              licensed practice. This page gives no advice on them.
+            </p>
           </MarginNote>
         </>
       }

@@ -27,8 +27,10 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
   const { measurand: asked } = await searchParams
   const review = await orNotFound(readReview(readerContext(actor), { studyId }))
   const { study, analysis } = review
-  const measurand = analysis?.measurands.find(({ measurandId }) => measurandId === asked) ?? analysis?.measurands[0]
-  const mayConfirm = study.state === 'in-review' && permittedRole(actor, 'publication.confirm', study) !== undefined
+  const measurand =
+    analysis?.measurands.find(({ measurandId }) => measurandId === asked) ?? analysis?.measurands[0]
+  const mayConfirm =
+    study.state === 'in-review' && permittedRole(actor, 'publication.confirm', study) !== undefined
 
   return (
     <PageShell
@@ -36,34 +38,58 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
       kicker={`${study.shortName} · ${study.organisation} · ${study.method}`}
       title={study.title}
       lead={study.purpose || undefined}
-      actions={mayConfirm ? <ButtonLink href={`/committee/${studyId}/confirm`}>Proposal to publish</ButtonLink> : undefined}
+      actions={
+        mayConfirm ? (
+          <ButtonLink href={`/committee/${studyId}/confirm`}>Proposal to publish</ButtonLink>
+        ) : undefined
+      }
       margin={
         <>
           {measurand && <ReportContents />}
           <MarginNote title="What is kept from this page">
-            <p>Every laboratory appears by its code, drawn for this study alone. Who stands behind a code is known to the coordinators only.</p>
+            <p>
+              Every laboratory appears by its code, drawn for this study alone. Who stands behind a code is
+              known to the coordinators only.
+            </p>
           </MarginNote>
           <PrecisionNotes limitFactor={study.limitFactor} />
         </>
       }
     >
       {!measurand || !analysis ? (
-        <EmptyState title="Nothing to read yet">The coordinators put the study before the committee once returns are closed and scrutinised.</EmptyState>
+        <EmptyState title="Nothing to read yet">
+          The coordinators put the study before the committee once returns are closed and scrutinised.
+        </EmptyState>
       ) : (
         <>
           <MeasurandTabs measurands={analysis.measurands} chosen={measurand.measurandId} />
           <ConsistencyPlots document={measurand.document} />
-          <Section id="outlier-tests" title="Outlier tests" note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier.">
+          <Section
+            id="outlier-tests"
+            title="Outlier tests"
+            note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
+          >
             <OutlierTests document={measurand.document} />
           </Section>
           <Section id="set-aside" title="Cells set aside" note="By the coordinators, each with the reason.">
             <SetAsideTable cells={measurand.exclusions} />
           </Section>
           <PrecisionReport measurand={measurand} />
-          <Section id="recompute" title="Recompute it" note={`Analysis ${analysis.number}, engine ${analysis.engineVersion}, digest ${analysis.digest.slice(0, 16)}…`}>
+          <Section
+            id="recompute"
+            title="Recompute it"
+            note={`Analysis ${analysis.number}, engine ${analysis.engineVersion}, digest ${analysis.digest.slice(0, 16)}…`}
+          >
             <p className="flex flex-wrap gap-5">
-              <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`} format="CSV">Coded results</DownloadLink>
-              <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`} format="JSON">The analysis</DownloadLink>
+              <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`} format="CSV">
+                Coded results
+              </DownloadLink>
+              <DownloadLink
+                href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`}
+                format="JSON"
+              >
+                The analysis
+              </DownloadLink>
             </p>
           </Section>
         </>

@@ -18,7 +18,10 @@ export function ReceiptList({ view: { studyId, receipts, zone } }: { view: Parti
           header: 'Receipt',
           isRowHeader: true,
           cell: ({ number, receiptNumber }) => (
-            <a href={paths.receipt(studyId, number)} className="prose-link inline-block min-h-6 whitespace-nowrap font-mono">
+            <a
+              href={paths.receipt(studyId, number)}
+              className="prose-link inline-block min-h-6 whitespace-nowrap font-mono"
+            >
               {receiptNumber}
             </a>
           ),

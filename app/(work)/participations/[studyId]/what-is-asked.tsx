@@ -1,6 +1,6 @@
 import type { ReactNode } from 'react'
 import { withinSentence } from '@/app/ui/primitives/within-sentence'
-import { counted } from '@/lib/domain/count-typed-places'
+import { counted } from '@/lib/domain/plural'
 import type { ParticipationView } from '@/lib/use-cases/returns/read-participation'
 
 /** The study as the laboratory needs to know it: the method, the materials, how often, with which digits. */
@@ -18,9 +18,7 @@ export function WhatIsAsked({ view: { study, layout, places } }: { view: Partici
         {layout.materials.map(({ name }) => name).join(', ')}
       </Item>
       <Item name="Of each material">
-        {layout.levels
-          .map(({ name, count }) => counted(count, withinSentence(name)))
-          .join(', each with ')}
+        {layout.levels.map(({ name, count }) => counted(count, withinSentence(name))).join(', each with ')}
       </Item>
       <Item name="In all">{places === 1 ? 'one result' : `${places} results`}</Item>
     </dl>

@@ -1,5 +1,5 @@
 import { DataTable } from '@/app/ui/primitives/data-table'
-import { counted } from '@/lib/domain/count-typed-places'
+import { counted } from '@/lib/domain/plural'
 import type { StudyView } from '@/lib/use-cases/studies/read-study'
 
 /** What each measurand asks of a laboratory. */

@@ -16,7 +16,10 @@ export function gatherNeeds({ view, returns, laboratories }: Views): NeedsFacts 
   const messages = new Map(returns.lanes.map(({ code, request }) => [code, request?.message ?? null]))
   return {
     ...view,
-    round: { ...answer, lanes: answer.lanes.map((lane) => ({ ...lane, message: messages.get(lane.code) ?? null })) },
+    round: {
+      ...answer,
+      lanes: answer.lanes.map((lane) => ({ ...lane, message: messages.get(lane.code) ?? null })),
+    },
     invitations: laboratories.invitations.map(({ answer: said, lastLink, mail }) => ({
       answer: said,
       issuedAt: lastLink?.issuedAt ?? null,

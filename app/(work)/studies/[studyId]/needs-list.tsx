@@ -7,7 +7,15 @@ import type { Need } from '@/lib/domain/needs-today'
 import { paths } from '@/lib/web/paths'
 
 /** What waits for a person, each with the one action that settles it. */
-export function NeedsList({ studyId, needs, quiet }: { studyId: string; needs: readonly Need[]; quiet: string }) {
+export function NeedsList({
+  studyId,
+  needs,
+  quiet,
+}: {
+  studyId: string
+  needs: readonly Need[]
+  quiet: string
+}) {
   if (needs.length === 0) return <EmptyState title="Nothing needs anyone today">{quiet}</EmptyState>
   return (
     <ul className="border bg-sheet">
@@ -29,7 +37,10 @@ export function NeedsList({ studyId, needs, quiet }: { studyId: string; needs: r
             {need.words}
           </p>
           <span data-screen-only>
-            <ButtonLink href={addressOf(studyId, need)} variant={need.tone === 'danger' ? 'primary' : 'plain'}>
+            <ButtonLink
+              href={addressOf(studyId, need)}
+              variant={need.tone === 'danger' ? 'primary' : 'plain'}
+            >
               {need.action.label}
               {need.code && <span className="sr-only"> of laboratory {need.code}</span>}
             </ButtonLink>

@@ -41,7 +41,10 @@ export default async function StudyPage({ params }: { params: Promise<{ studyId:
             <p>{whatNext[study.state]}</p>
           </MarginNote>
           <MarginNote title="By code alone">
-            <p>Here laboratories are codes. Which is which stands behind a button under Laboratories, and reading it is recorded.</p>
+            <p>
+              Here laboratories are codes. Which is which stands behind a button under Laboratories, and
+              reading it is recorded.
+            </p>
           </MarginNote>
         </>
       }
@@ -54,7 +57,10 @@ export default async function StudyPage({ params }: { params: Promise<{ studyId:
         />
       </Section>
       {study.state !== 'draft' && (
-        <Section title="The round, laboratory by laboratory" note={`${deadline} Each time below is in that zone.`}>
+        <Section
+          title="The round, laboratory by laboratory"
+          note={`${deadline} Each time below is in that zone.`}
+        >
           <LiveLanes
             studyId={studyId}
             initial={toReturnsAnswer(returns)}
@@ -69,8 +75,9 @@ export default async function StudyPage({ params }: { params: Promise<{ studyId:
 
 const whatNext = {
   draft: 'You name the laboratories and send the invitations; until then nobody is written to.',
-  open: 'Laboratories return their results until the deadline, by the clock of the database. After it, a laboratory can still be given more time; then you close the study for returns.',
-  closed: 'You go through the scrutiny, have the statistics computed, and put the study before its committee.',
+  open: 'Laboratories return their results until the deadline, by the server’s clock. After it, a laboratory can still be given more time; then you close the study for returns.',
+  closed:
+    'You go through the scrutiny, have the statistics computed, and put the study before its committee.',
   'in-review': 'The committee reads by code. Then one person proposes publication and another confirms it.',
   published: 'Anyone can read the report. No laboratory is named in it.',
 } as const

@@ -14,9 +14,18 @@ export const GET = publicRouteHandler({
     const { snapshot } = await readPublication(readerContext(null), { slug })
     const [, kind, number] = /^(results|analysis)-(\d+)\.(?:csv|json)$/.exec(file) ?? []
     const measurand = snapshot.measurands[Number(number) - 1]
-    if (!measurand || file !== `${kind}-${number}.${kind === 'results' ? 'csv' : 'json'}`) throw new NotFound('file')
+    if (!measurand || file !== `${kind}-${number}.${kind === 'results' ? 'csv' : 'json'}`)
+      throw new NotFound('file')
     return kind === 'results'
-      ? fileReply({ body: measurand.csv, type: 'text/csv; charset=utf-8', fileName: `${slug}-results-${number}.csv` })
-      : fileReply({ body: JSON.stringify(measurand.document, null, 2), type: 'application/json', fileName: `${slug}-analysis-${number}.json` })
+      ? fileReply({
+          body: measurand.csv,
+          type: 'text/csv; charset=utf-8',
+          fileName: `${slug}-results-${number}.csv`,
+        })
+      : fileReply({
+          body: JSON.stringify(measurand.document, null, 2),
+          type: 'application/json',
+          fileName: `${slug}-analysis-${number}.json`,
+        })
   },
 })

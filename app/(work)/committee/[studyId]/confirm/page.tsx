@@ -27,7 +27,9 @@ export default async function ConfirmPage({ params }: PageProps<'/committee/[stu
       {report.publication && <PublishedNotice publication={report.publication} />}
       {report.proposal && <StandingProposal report={report} proposal={report.proposal} />}
       {!report.publication && !report.proposal && (
-        <EmptyState title="Nothing is proposed yet">A coordinator proposes publication; you are asked to confirm it then.</EmptyState>
+        <EmptyState title="Nothing is proposed yet">
+          A coordinator proposes publication; you are asked to confirm it then.
+        </EmptyState>
       )}
     </PageShell>
   )

@@ -130,7 +130,10 @@ export function ResultSheet(props: ResultSheetProps) {
         <div
           {...grid.handlers}
           // One column of boxes across a wide page would put the name of each far from where it is typed.
-          className={clsx('border bg-sheet max-sm:border-0 max-sm:bg-transparent', columns === 1 && 'max-w-text')}
+          className={clsx(
+            'border bg-sheet max-sm:border-0 max-sm:bg-transparent',
+            columns === 1 && 'max-w-text',
+          )}
         >
           <ResultTable
             layout={layout}

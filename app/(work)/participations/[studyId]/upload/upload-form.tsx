@@ -11,7 +11,7 @@ interface UploadFormProps {
   problem: string | undefined
 }
 
-const mostBytes = 5 * 1024 * 1024
+const mostBytes = 5_000_000
 
 /** The file on its way. With scripts, a file that is too large is not even sent. */
 export function UploadForm({ action, problem }: UploadFormProps) {

@@ -11,7 +11,10 @@ import { StudyFrame } from '../study-frame'
 
 export const metadata: Metadata = { title: 'Precision' }
 
-export default async function PrecisionPage({ params, searchParams }: PageProps<'/studies/[studyId]/precision'>) {
+export default async function PrecisionPage({
+  params,
+  searchParams,
+}: PageProps<'/studies/[studyId]/precision'>) {
   const { studyId } = await params
   const { measurand: asked } = await searchParams
   const { actor, view } = await loadStudy(studyId)

@@ -13,7 +13,10 @@ export const proposePublicationAction = formAction({
     await proposePublication(context, input)
     return input
   },
-  then: ({ studyId }) => ({ refresh: paths.study(studyId), message: 'Proposed. A second person confirms it.' }),
+  then: ({ studyId }) => ({
+    refresh: paths.study(studyId),
+    message: 'Proposed. A second person confirms it.',
+  }),
 })
 
 /** Withdraws a standing proposal. */

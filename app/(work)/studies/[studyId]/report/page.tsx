@@ -23,7 +23,10 @@ export default async function ReportPage({ params }: PageProps<'/studies/[studyI
             <p>One proposes, another confirms; nobody can do both for one study.</p>
           </MarginNote>
           <MarginNote title="What is published">
-            <p>The statement, the coded results and the decisions with their reasons. A text that names a laboratory of the study is stopped before it is frozen.</p>
+            <p>
+              The statement, the coded results and the decisions with their reasons. A text that names a
+              laboratory of the study is stopped before it is frozen.
+            </p>
           </MarginNote>
         </>
       }

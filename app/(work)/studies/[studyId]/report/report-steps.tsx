@@ -14,12 +14,25 @@ export function ReportSteps({ report }: { report: ReportView }) {
   const { studyId } = study
   if (publication) return <PublishedNotice publication={publication} />
   if (study.state !== 'in-review')
-    return <EmptyState title="Not yet">A study is published from its committee’s review. Put it before the committee first.</EmptyState>
+    return (
+      <EmptyState title="Not yet">
+        A study is published from its committee’s review. Put it before the committee first.
+      </EmptyState>
+    )
   if (proposal)
     return (
       <StandingProposal report={report} proposal={proposal}>
-        <Confirm label="Withdraw the proposal" variant="plain" consequence="The proposal falls; another can be made later.">
-          <ReasonForm action={withdrawProposalAction} hidden={{ studyId }} submit="Withdraw the proposal" pendingLabel="Withdrawing…" />
+        <Confirm
+          label="Withdraw the proposal"
+          variant="plain"
+          consequence="The proposal falls; another can be made later."
+        >
+          <ReasonForm
+            action={withdrawProposalAction}
+            hidden={{ studyId }}
+            submit="Withdraw the proposal"
+            pendingLabel="Withdrawing…"
+          />
         </Confirm>
       </StandingProposal>
     )
@@ -27,10 +40,15 @@ export function ReportSteps({ report }: { report: ReportView }) {
     <Section title="Propose publication">
       <div className="flex flex-col items-start gap-3">
         <p className="max-w-text">
-          Proposing freezes analysis {analysis?.number ?? ''} with the coded results and decisions as they stand. Nothing is public until a second
-          person confirms it.
+          Proposing freezes analysis {analysis?.number ?? ''} with the coded results and decisions as they
+          stand. Nothing is public until a second person confirms it.
         </p>
-        <ActionForm action={proposePublicationAction} hidden={{ studyId }} submit="Propose publication" pendingLabel="Freezing…" />
+        <ActionForm
+          action={proposePublicationAction}
+          hidden={{ studyId }}
+          submit="Propose publication"
+          pendingLabel="Freezing…"
+        />
       </div>
     </Section>
   )

@@ -46,8 +46,7 @@ export default async function ResultsPage({ params, searchParams }: ResultsPageP
         <>
           <MarginNote title="How lateness is told">
             <p>
-              By the clock of the database against the deadline, or against the later one a laboratory was
-              given.
+              By the server’s clock against the deadline, or against the later one a laboratory was given.
             </p>
           </MarginNote>
           <MarginNote title="Values">

@@ -12,7 +12,10 @@ export const sendToReviewAction = formAction({
     await sendToReview(context, input)
     return input
   },
-  then: ({ studyId }) => ({ refresh: paths.study(studyId), message: 'The committee can read the study now.' }),
+  then: ({ studyId }) => ({
+    refresh: paths.study(studyId),
+    message: 'The committee can read the study now.',
+  }),
 })
 
 /** Takes a study back from its committee. */

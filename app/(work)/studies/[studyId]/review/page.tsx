@@ -26,7 +26,10 @@ export default async function ReviewPage({ params }: PageProps<'/studies/[studyI
       title="Review: what the committee reads"
       margin={
         <MarginNote title="What the committee sees">
-          <p>Codes, results, plots and tables; never a laboratory’s name. Its pages are read through a connection to the database that holds no name.</p>
+          <p>
+            Codes, results, plots and tables; never a laboratory’s name. Its pages are read through a
+            connection to the database that holds no name.
+          </p>
         </MarginNote>
       }
     >
@@ -37,7 +40,11 @@ export default async function ReviewPage({ params }: PageProps<'/studies/[studyI
       )}
       <Section
         title={isBefore ? 'Before its committee' : 'Not before its committee yet'}
-        actions={isBefore ? <ButtonLink href={paths.committee(studyId)}>Read what the committee reads</ButtonLink> : undefined}
+        actions={
+          isBefore ? (
+            <ButtonLink href={paths.committee(studyId)}>Read what the committee reads</ButtonLink>
+          ) : undefined
+        }
       >
         <ReviewSteps view={view} />
       </Section>

@@ -27,7 +27,10 @@ export const excludeCellAction = formAction({
     await excludeCell(context, input)
     return input
   },
-  then: ({ studyId, code }) => ({ refresh: `/studies/${studyId}`, message: `A cell of ${code} is set aside; the statistics are being computed again.` }),
+  then: ({ studyId, code }) => ({
+    refresh: `/studies/${studyId}`,
+    message: `A cell of ${code} is set aside; the statistics are being computed again.`,
+  }),
 })
 
 /** Takes a cell back in, with its reason. */
@@ -37,5 +40,8 @@ export const takeCellBackAction = formAction({
     await takeCellBack(context, input)
     return input
   },
-  then: ({ studyId, code }) => ({ refresh: `/studies/${studyId}`, message: `The cell of ${code} counts again; the statistics are being computed again.` }),
+  then: ({ studyId, code }) => ({
+    refresh: `/studies/${studyId}`,
+    message: `The cell of ${code} counts again; the statistics are being computed again.`,
+  }),
 })

@@ -18,8 +18,12 @@ export function AnalysisState({ view }: { view: StudyView }) {
     )
   if (!analysis)
     return (
-      <EmptyState title="Not computed yet" action={mayCompute ? <ComputeForm studyId={studyId} label="Compute the statistics" /> : undefined}>
-        {counts.returned} of {counts.accepted} laboratories have returned. Computing changes no result; it can be repeated at any time.
+      <EmptyState
+        title="Not computed yet"
+        action={mayCompute ? <ComputeForm studyId={studyId} label="Compute the statistics" /> : undefined}
+      >
+        {counts.returned} of {counts.accepted} laboratories have returned. Computing changes no result; it can
+        be repeated at any time.
       </EmptyState>
     )
   if (!analysis.upToDate)

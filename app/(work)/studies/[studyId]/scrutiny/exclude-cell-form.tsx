@@ -16,7 +16,12 @@ interface ExcludeCellFormProps {
 /** Which cell, and why. */
 export function ExcludeCellForm({ studyId, measurandId, codes, materials }: ExcludeCellFormProps) {
   return (
-    <ActionForm action={excludeCellAction} hidden={{ studyId, measurandId }} submit="Set the cell aside" pendingLabel="Recording…">
+    <ActionForm
+      action={excludeCellAction}
+      hidden={{ studyId, measurandId }}
+      submit="Set the cell aside"
+      pendingLabel="Recording…"
+    >
       {({ valueOf, errorOf }) => (
         <>
           <Field name="code" label="Laboratory" error={errorOf('code')}>

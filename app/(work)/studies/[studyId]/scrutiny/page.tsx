@@ -15,7 +15,10 @@ import { ScrutinyMargin } from './scrutiny-margin'
 
 export const metadata: Metadata = { title: 'Scrutiny' }
 
-export default async function ScrutinyPage({ params, searchParams }: PageProps<'/studies/[studyId]/scrutiny'>) {
+export default async function ScrutinyPage({
+  params,
+  searchParams,
+}: PageProps<'/studies/[studyId]/scrutiny'>) {
   const { studyId } = await params
   const { measurand: asked } = await searchParams
   const { actor, view } = await loadStudy(studyId)
@@ -40,14 +43,29 @@ export default async function ScrutinyPage({ params, searchParams }: PageProps<'
             note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
             actions={
               <>
-                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`} format="CSV">Coded results</DownloadLink>
-                <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`} format="JSON">The analysis</DownloadLink>
+                <DownloadLink
+                  href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`}
+                  format="CSV"
+                >
+                  Coded results
+                </DownloadLink>
+                <DownloadLink
+                  href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`}
+                  format="JSON"
+                >
+                  The analysis
+                </DownloadLink>
               </>
             }
           >
             <OutlierTests document={measurand.document} />
           </Section>
-          <CellDecisions studyId={studyId} review={review} measurand={measurand} isOpen={view.study.state === 'closed'} />
+          <CellDecisions
+            studyId={studyId}
+            review={review}
+            measurand={measurand}
+            isOpen={view.study.state === 'closed'}
+          />
         </>
       )}
     </StudyFrame>

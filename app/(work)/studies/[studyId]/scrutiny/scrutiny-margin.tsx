@@ -14,13 +14,22 @@ export function ScrutinyMargin({ measurand }: { measurand: MeasurandReview | und
     <>
       {measurand && <CellNotes measurand={measurand} />}
       <MarginNote title="How h is computed">
-        <p>The mean of a cell less the mean of all cells, in units of their standard deviation. Its limits come from t with p − 2 degrees of freedom, two-sided.</p>
+        <p>
+          The mean of a cell less the mean of all cells, in units of their standard deviation. Its limits come
+          from t with p − 2 degrees of freedom, two-sided.
+        </p>
       </MarginNote>
       <MarginNote title="How k is computed">
-        <p>The standard deviation of a cell over the repeatability standard deviation pooled by degrees of freedom; its limits are exact for any cell size.</p>
+        <p>
+          The standard deviation of a cell over the repeatability standard deviation pooled by degrees of
+          freedom; its limits are exact for any cell size.
+        </p>
       </MarginNote>
       <MarginNote title="Who decides">
-        <p>No result is ever left out by a test. A coordinator sets a cell aside with a written reason, after asking the laboratory.</p>
+        <p>
+          No result is ever left out by a test. A coordinator sets a cell aside with a written reason, after
+          asking the laboratory.
+        </p>
       </MarginNote>
     </>
   )
@@ -31,7 +40,14 @@ function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandRevi
   return (
     <>
       {apart.slice(0, most).map(({ material, cell, h, k, proposal }) => (
-        <MarginNote key={`${cell.laboratory} ${material}`} title={<><Tag code={cell.laboratory} /> {material}</>}>
+        <MarginNote
+          key={`${cell.laboratory} ${material}`}
+          title={
+            <>
+              <Tag code={cell.laboratory} /> {material}
+            </>
+          }
+        >
           <p>
             This cell lies apart from the others:
             {h && ` h\u00a0=\u00a0${showStatistic(cell.h)}, beyond ${h}`}
@@ -48,7 +64,14 @@ function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandRevi
       )}
       {document.materials.flatMap(({ material, noticed }) =>
         (noticed ?? []).map((one) => (
-          <MarginNote key={`${one.laboratory} ${material} ${one.kind}`} title={<><Tag code={one.laboratory} /> {one.kind !== 'trend' && material}</>}>
+          <MarginNote
+            key={`${one.laboratory} ${material} ${one.kind}`}
+            title={
+              <>
+                <Tag code={one.laboratory} /> {one.kind !== 'trend' && material}
+              </>
+            }
+          >
             <p>{describeNoticed(one, unit)}</p>
           </MarginNote>
         )),
@@ -66,7 +89,9 @@ function listApart({ materials }: MeasurandReview['document']) {
         const h = beyond(material, cell, 'h')
         const k = beyond(material, cell, 'k')
         const best = material.proposals?.find(({ laboratory }) => laboratory === cell.laboratory)
-        return (h && h !== '5 %') || (k && k !== '5 %') ? [{ material: material.material, cell, h, k, best, surprise: surpriseOf(cell) }] : []
+        return (h && h !== '5 %') || (k && k !== '5 %')
+          ? [{ material: material.material, cell, h, k, best, surprise: surpriseOf(cell) }]
+          : []
       }),
     )
     .sort((a, b) => a.surprise - b.surprise)

@@ -17,7 +17,11 @@ export function TrailVerdict({
       </Notice>
     )
   return (
-    <Notice tone="done" word="Verified" title={`the chain of ${count} ${count === 1 ? 'entry' : 'entries'} holds`}>
+    <Notice
+      tone="done"
+      word="Verified"
+      title={`the chain of ${count} ${count === 1 ? 'entry' : 'entries'} holds`}
+    >
       {head && (
         <p>
           Head <span className="break-all font-mono text-small">{head}</span>

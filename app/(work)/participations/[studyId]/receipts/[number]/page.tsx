@@ -25,9 +25,7 @@ export default async function ReceiptPage({
   const actor = await requireActor()
   const { studyId, number } = await params
   if (!/^[1-9]\d{0,5}$/.test(number)) notFound()
-  const shown = await orNotFound(
-    readReceipt(await requestContext(), { studyId, number: Number(number) }),
-  )
+  const shown = await orNotFound(readReceipt(await requestContext(), { studyId, number: Number(number) }))
   const { view, receipt, rows, file } = shown
   const isLatest = view.receipts[0]?.number === receipt.number
   return (

@@ -35,7 +35,12 @@ export function PreviewTable({ layout, places, hasEarlier }: PreviewTableProps) 
       isMarked={({ state }) => state === 'changed'}
       columns={[
         { key: 'place', header: 'Place', isRowHeader: true, cell: ({ place }) => namePlace(layout, place) },
-        { key: 'read', header: 'Read', kind: 'figure', cell: ({ text }) => <Reported text={text} alignTo={read} /> },
+        {
+          key: 'read',
+          header: 'Read',
+          kind: 'figure',
+          cell: ({ text }) => <Reported text={text} alignTo={read} />,
+        },
         ...(hasEarlier
           ? [
               {

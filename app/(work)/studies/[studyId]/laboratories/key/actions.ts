@@ -21,7 +21,8 @@ export async function revealKeyAction(_previous: KeyState, form: FormData): Prom
     return { key: await revealKey(await requestContext(), { studyId: studyId.data }) }
   } catch (error) {
     if (error instanceof NotFound) notFound()
-    if (error instanceof SignInNeeded) redirect(paths.signIn(`${paths.station(studyId.data, 'laboratories')}/key`))
+    if (error instanceof SignInNeeded)
+      redirect(paths.signIn(`${paths.station(studyId.data, 'laboratories')}/key`))
     throw error
   }
 }
