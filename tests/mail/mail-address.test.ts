@@ -54,6 +54,9 @@ const refused = [
   'a da@quill.example',
   'ada\u00a0@quill.example',
   'ada\u200b@quill.example',
+  'ada@quill。example',
+  'ada@quill\u200b.example',
+  '=?utf-8?q?ada?=@quill.example',
   '\u202eada@quill.example',
   'ada%0d%0aBcc:eve@evil.example@quill.example',
   'ada:eve@evil.example@quill.example',
@@ -94,8 +97,6 @@ describe('a mail address', () => {
     ['ada@müller.example', 'ada@xn--mller-kva.example'],
     ['ada@lab.quill.example', 'ada@lab.quill.example'],
     // Marks that the rules for host names read as a full stop, or drop: what is kept, shown and mailed is the plain form.
-    ['ada@quill。example', 'ada@quill.example'],
-    ['ada@quill\u200b.example', 'ada@quill.example'],
   ])('%j is kept as %j', (typed, kept) => {
     expect(readMailAddress(typed)).toBe(kept)
     expect(readMailAddress(kept)).toBe(kept)
