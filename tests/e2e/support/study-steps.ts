@@ -102,7 +102,7 @@ export async function closeAndCompute(
   })
   await page.goto(`/studies/${studyId}/review`)
   await page.getByRole('button', { name: 'Put before the committee' }).click()
-  await expect(page.getByRole('heading', { name: 'Before its committee' })).toBeVisible()
+  await expect(page.getByRole('heading', { name: 'Before its committee', exact: true })).toBeVisible()
 }
 
 /** One person proposes, another confirms; gives the address of the published page. */
