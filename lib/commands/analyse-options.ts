@@ -9,6 +9,8 @@ export type AnalyseOptions = {
   columns: Map<string, string>
   keepExcluded: boolean
   measurand: string | null
+  /** The unit of the results, whose neighbours are tried where a cell stands apart. */
+  unit: string | null
   settings: AnalysisSettings
 }
 
@@ -52,6 +54,12 @@ export function readAnalyseOptions(
       /^\d{1,2}$/.test(text) ? Number(text) : null,
     ),
     trueZero: !(values['no-true-zero'] ?? false),
+    units: Object.entries(entries('other-unit', values['other-unit'], fault, above0)).map(
+      ([name, factor]) => ({
+        name,
+        factor,
+      }),
+    ),
     homogeneity: values.homogeneity ?? false,
     ...(values.pairs === undefined ? {} : { pairs: readPairs(values.pairs, fault) }),
     ...(plan === undefined || plan === null ? {} : { plan }),
@@ -66,6 +74,7 @@ export function readAnalyseOptions(
       columns,
       keepExcluded: values.all ?? false,
       measurand: values.measurand ?? null,
+      unit: values.unit ?? null,
       settings,
     },
     problems: [],
@@ -92,6 +101,8 @@ function parseGiven(args: readonly string[]) {
       pairs: { type: 'string' },
       decimals: { type: 'string', multiple: true },
       'no-true-zero': { type: 'boolean' },
+      unit: { type: 'string' },
+      'other-unit': { type: 'string', multiple: true },
       homogeneity: { type: 'boolean' },
       plan: { type: 'string' },
     },
@@ -151,6 +162,7 @@ const EXPECTED: Readonly<Record<string, string>> = {
   reference: 'VALUE:UNCERTAINTY',
   sigma: 'a number above 0',
   decimals: 'a number of decimals',
+  'other-unit': 'a number above 0',
   columns: 'HEADING',
 }
 

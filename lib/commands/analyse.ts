@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto'
 import { readFile } from 'node:fs/promises'
 import { type AnalyseOptions, readAnalyseOptions } from '@/lib/commands/analyse-options'
 import { type AnalysisFileProblem, readAnalysisFile } from '@/lib/commands/read-analysis-file'
-import { analyse, type AnalysisResult } from '@/lib/statistics'
+import { analyse, type AnalysisResult, type AnalysisSettings } from '@/lib/statistics'
 
 /*
  * Analyses a file with the core the server uses, so that anybody can recompute
@@ -23,17 +23,33 @@ async function main(args: readonly string[]): Promise<void> {
   const { options, problems } = readAnalyseOptions(args)
   if (options === null) return refuse(problems.map((words) => `analyse: ${words}`))
 
+  const settings = await withUnits(options)
+  if (settings === null) return
+
   const read = options.file === null ? { results: [], bytes: new Uint8Array() } : await readResults(options)
   if (read === null) return
 
   const document = analyse({
     results: read.results,
     nesting: options.nesting,
-    settings: options.settings,
+    settings,
     sha256: createHash('sha256').update(read.bytes).digest('hex'),
     version: await ownVersion(),
   })
   process.stdout.write(`${JSON.stringify(document, null, 2)}\n`)
+}
+
+/** The tables of units are large, so they are loaded only for those who name one. */
+async function withUnits({ unit, settings }: AnalyseOptions): Promise<AnalysisSettings | null> {
+  if (unit === null) return settings
+  const { otherUnitsThan } = await import('@/lib/statistics/units')
+  try {
+    return { ...settings, units: [...(settings.units ?? []), ...otherUnitsThan(unit)] }
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error
+    refuse([`analyse: option --unit: found ${JSON.stringify(unit)}, expected a unit such as mg/L`])
+    return null
+  }
 }
 
 async function readResults(

@@ -35,7 +35,9 @@ export interface ReplicatedCell extends CellSummary {
  * @throws {RangeError} when a deviation is no finite number.
  */
 export function summariseCells(cells: readonly Cell[]): CellSummary[] {
-  return cells.filter((cell) => cell.deviations.length > 0).map(summarise)
+  const summaries: CellSummary[] = []
+  for (const cell of cells) if (cell.deviations.length > 0) summaries.push(summarise(cell))
+  return summaries
 }
 
 /** The cells that have a standard deviation of their own. */

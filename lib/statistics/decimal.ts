@@ -136,7 +136,9 @@ function unitsAt(decimal: Decimal, scale: number): bigint {
 function medianOf(units: readonly bigint[]): bigint {
   // As doubles they are sorted in a fraction of the time, and those of up to 15 digits are exact.
   if (areSmall(units)) {
-    const numbers = Float64Array.from(units, Number).sort()
+    const numbers = new Float64Array(units.length)
+    for (let at = 0; at < units.length; at += 1) numbers[at] = Number(units[at])
+    numbers.sort()
     return BigInt(numbers[(numbers.length - 1) >> 1]!)
   }
   const sorted = [...units].sort((a, b) => (a < b ? -1 : a > b ? 1 : 0))
@@ -153,15 +155,18 @@ function differences(units: readonly bigint[], offset: Decimal): Float64Array {
   // read from its text: whether ** is exact is left to the engine.
   const ten = Number(`1e${power}`)
   const middle = Number(offset.units)
-  return Float64Array.from(units, (unit) => {
-    const difference = Number(unit) - middle
-    return offset.scale > 0 ? difference / ten : difference * ten
-  })
+  const differences = new Float64Array(units.length)
+  for (let at = 0; at < units.length; at += 1) {
+    const difference = Number(units[at]) - middle
+    differences[at] = offset.scale > 0 ? difference / ten : difference * ten
+  }
+  return differences
 }
 
 /** Clear of 2^53 by enough for a difference of two of them. */
 function areSmall(units: readonly bigint[]): boolean {
-  return units.every((unit) => unit < HALF && unit > -HALF)
+  for (const unit of units) if (unit >= HALF || unit <= -HALF) return false
+  return true
 }
 
 const HALF = 2n ** 52n

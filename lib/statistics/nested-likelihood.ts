@@ -18,7 +18,7 @@ export type RestrictedLikelihood = {
 
 /**
  * Makes the function that evaluates the restricted likelihood of a nested
- * layout, in time proportional to the number of groups.
+ * layout, in time proportional to the number of groups that differ in kind.
  *
  * No matrix is formed. A group of results is summed up by its precision A, its
  * weighted mean m and its weighted sum of squares Q. Groups are joined by adding
@@ -37,16 +37,33 @@ export function restrictedLikelihood(
   const results = layout.deviations.length
   const df = results - 1
   const within = withinParts(layout)
+  const pools = poolAlike(layout, within)
   const scale = random.map(({ size }) => size.length / results)
 
   return (ratios) => {
     const jets = jetArithmetic(count)
-    let precision = within.sizes.map((size) => jets.constant(size))
-    let means = within.means.map((mean) => jets.constant(mean))
+    let precision = pools.map(({ size, groups }) => jets.constant(groups * size))
+    let means = pools.map(({ mean }) => jets.constant(mean))
     let squares = jets.constant(within.ss)
     let logDeterminant = jets.constant(0)
 
-    for (let level = count - 1; level >= 0; level -= 1) {
+    if (count > 0) {
+      const ratio = jets.variable(ratios[count - 1]!, count - 1)
+      precision = pools.map(({ size, groups, ss }) => {
+        const inflated = jets.add(jets.constant(1), jets.scale(ratio, size))
+        const own = jets.divide(jets.constant(size), inflated)
+        logDeterminant = jets.add(logDeterminant, jets.scale(jets.log(inflated), groups))
+        squares = jets.add(squares, jets.scale(own, ss))
+        return jets.scale(own, groups)
+      })
+      const parentOf = pools.map(({ parent }) => parent)
+      const joined = join(jets, { precision, means, parentOf, parents: random[count - 2]?.size.length ?? 1 })
+      precision = joined.precision
+      means = joined.means
+      squares = jets.add(squares, joined.squares)
+    }
+
+    for (let level = count - 2; level >= 0; level -= 1) {
       const ratio = jets.variable(ratios[level]!, level)
       precision = precision.map((value) => {
         const inflated = jets.add(jets.constant(1), jets.multiply(ratio, value))
@@ -93,6 +110,30 @@ function withinParts({ strata, deviations, mean }: NestedLayout): {
   })
   if (innermost === undefined) return { sizes: [deviations.length], means: [mean], ss }
   return { sizes: Array.from(innermost.size), means: Array.from(innermost.mean), ss }
+}
+
+/** Innermost groups of one size under one parent: whatever the ratios are, they weigh alike. */
+type AlikeGroups = { parent: number; size: number; groups: number; mean: number; ss: number }
+
+/** They are joined once and not at every step; in a balanced layout one for each parent is left. */
+function poolAlike({ strata }: NestedLayout, within: { sizes: number[]; means: number[] }): AlikeGroups[] {
+  const innermost = strata.at(-2)
+  const outer = strata.at(-3)
+  const pools = new Map<number, Map<number, AlikeGroups>>()
+  within.sizes.forEach((size, group) => {
+    const parent =
+      outer === undefined || innermost === undefined ? 0 : outer.groupOf[innermost.firstMember[group]!]!
+    const ofParent = pools.get(parent) ?? new Map<number, AlikeGroups>()
+    pools.set(parent, ofParent)
+    const pool = ofParent.get(size) ?? { parent, size, groups: 0, mean: 0, ss: 0 }
+    ofParent.set(size, pool)
+    // Welford: the sum of squares about the mean so far.
+    const apart = within.means[group]! - pool.mean
+    pool.groups += 1
+    pool.mean += apart / pool.groups
+    pool.ss += apart * (within.means[group]! - pool.mean)
+  })
+  return [...pools.values()].flatMap((ofParent) => [...ofParent.values()])
 }
 
 type Groups = {

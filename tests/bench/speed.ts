@@ -34,6 +34,9 @@ const LAYOUTS: readonly Layout[] = [
   }),
 ]
 
+/** How many times faster than R. */
+const WANTED: Readonly<Record<string, number>> = { tests: 5, reml: 30 }
+
 const TURNS = 3
 
 type Run = { seconds: Record<string, number>; peak: number; deviance: number; check: number }
@@ -107,8 +110,6 @@ function print({ name, days }: Layout, own: Run, theirs: Run): void {
   if (days === 1) compare('checksum', own.check, theirs.check, 1e-9)
   if (own.seconds['reml'] !== undefined) compare('deviance', own.deviance, theirs.deviance, 1e-8)
 }
-
-const WANTED: Readonly<Record<string, number>> = { tests: 5, reml: 30 }
 
 function line(part: string, own: number, theirs?: number, wanted?: number): void {
   const beside =

@@ -1,5 +1,5 @@
 import { execFile } from 'node:child_process'
-import { mkdtemp, rm, writeFile } from 'node:fs/promises'
+import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
@@ -109,6 +109,34 @@ describe('the analyse command', () => {
     expect(measurands!.map(({ measurand }) => measurand)).toEqual(['iron'])
     expect(levelRelation).toBeNull()
     expect(materials[0]!.results).toBe(4)
+  })
+
+  it('tries the other units of a study where a cell stands apart, and refuses a unit that is none', async () => {
+    // Laboratory 3 writes mmol/L where mg/dL was asked for: each result over 18.016, glucose having 180.16 g/mol.
+    const glucose = await readFile(data('e691_glucose.csv'), 'utf8')
+    const converted = glucose.replaceAll(/^(L03,[A-E],\d,)([\d.]+)$/gm, (_, start: string, value: string) => {
+      return `${start}${(Number(value) / 18.016).toFixed(3)}`
+    })
+    expect(converted).not.toBe(glucose)
+    const path = await file('mmol.csv', converted)
+    const proposed = documentOf(await run(path, '--unit', 'mg/dL', '--other-unit', 'mmol/L=18.016'))
+    const first = proposed.materials[0]!.proposals!.find(({ laboratory }) => laboratory === 'L03')
+    expect(first).toMatchObject({ kind: 'unitAllMaterials', detail: 'mmol/L' })
+    const refused = await run(path, '--unit', 'zeros(9)')
+    expect(refused).toMatchObject({ status: 2, stdout: '' })
+    expect(refused.stderr).toContain('option --unit: found "zeros(9)", expected a unit such as mg/L')
+  })
+
+  it('names fifty planted faults in fifty lines, each with its row', async () => {
+    const faults = [',M,1', 'A,,1', 'A,M,x', 'A,M,1.2.3', 'A,M,1,2']
+    const lines = Array.from({ length: 50 }, (_, index) => faults[index % faults.length]!)
+    const { status, stdout, stderr } = await run(
+      await file('fifty.csv', `lab,material,value\n${lines.join('\n')}\n`),
+    )
+    expect({ status, stdout }).toEqual({ status: 2, stdout: '' })
+    const said = stderr.trim().split('\n')
+    expect(said).toHaveLength(50)
+    said.forEach((line, index) => expect(line).toContain(`: row ${index + 2}`))
   })
 
   it('checks units before shipping', async () => {

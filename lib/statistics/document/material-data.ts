@@ -69,7 +69,8 @@ export function materialData(one: {
   const bounds: { below: number | null; above: number | null }[] = []
   for (const [laboratory, members] of positions) {
     const results = members.map((position) => taking[position]!)
-    const deviations = Float64Array.from(members, (position) => centred.deviations[position]!)
+    const deviations = new Float64Array(members.length)
+    members.forEach((position, place) => (deviations[place] = centred.deviations[position]!))
     const below = results.filter(({ censored }) => censored === '<').length
     const above = results.filter(({ censored }) => censored === '>').length
     if (below + above === 0) {
@@ -111,7 +112,8 @@ function centreWithinRange(values: {
   if (values.units.length === 0) return { ...nothing, isOutOfRange: false }
   try {
     const centred = centreUnits(values)
-    const reach = centred.deviations.reduce((most, deviation) => Math.max(most, Math.abs(deviation)), 0)
+    let reach = 0
+    for (const deviation of centred.deviations) reach = Math.max(reach, Math.abs(deviation))
     const isOutOfRange = reach !== 0 && !(reach >= SMALLEST_DEVIATION && reach <= LARGEST_DEVIATION)
     return { ...centred, isOutOfRange }
   } catch (error) {
