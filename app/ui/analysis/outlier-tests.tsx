@@ -11,7 +11,8 @@ interface TestRow {
   readonly statistic: number | null
   readonly critical: number | null
   readonly pValue: number | null
-  readonly level: OutlierLevel | null
+  /** Pairs are not consulted where one end alone is beyond 1 %. */
+  readonly finding: OutlierLevel | 'not consulted' | null
   readonly reason: string | undefined
 }
 
@@ -24,7 +25,7 @@ export function OutlierTests({ document }: { document: AnalysisDocument }) {
       isCaptionHidden
       rows={rows}
       rowKey={({ material, test }) => `${material} ${test}`}
-      isMarked={({ level }) => level === 'outlier' || level === 'straggler'}
+      isMarked={({ finding }) => finding === 'outlier' || finding === 'straggler'}
       columns={[
         { key: 'material', header: 'Material', isRowHeader: true, cell: ({ material }) => material },
         { key: 'test', header: 'Test', cell: ({ test }) => <span className="block min-w-40">{test}</span> },
@@ -55,16 +56,16 @@ export function OutlierTests({ document }: { document: AnalysisDocument }) {
           cell: ({ critical }) => showStatistic(critical),
         },
         { key: 'p', header: 'p', kind: 'figure', cell: ({ pValue }) => showPValue(pValue) },
-        { key: 'level', header: 'Finding', cell: ({ level }) => <LevelWord level={level} /> },
+        { key: 'level', header: 'Finding', cell: ({ finding }) => <FindingWord finding={finding} /> },
       ]}
     />
   )
 }
 
-function LevelWord({ level }: { level: OutlierLevel | null }) {
-  if (level === 'outlier') return <Status tone="danger">outlier</Status>
-  if (level === 'straggler') return <Status tone="warn">straggler</Status>
-  return <span className="text-ink-soft">{level === null ? 'not made' : 'none'}</span>
+function FindingWord({ finding }: { finding: TestRow['finding'] }) {
+  if (finding === 'outlier') return <Status tone="danger">outlier</Status>
+  if (finding === 'straggler') return <Status tone="warn">straggler</Status>
+  return <span className="text-ink-soft">{finding ?? 'not made'}</span>
 }
 
 function listTests(document: AnalysisDocument): TestRow[] {
@@ -79,26 +80,37 @@ function listTests(document: AnalysisDocument): TestRow[] {
         statistic: scatter.statistic,
         critical: scatter.critical['0.01'],
         pValue: scatter.pValue,
-        level: scatter.level,
+        finding: scatter.level,
         reason: scatter.reasons?.statistic ?? cochran.reasons?.statistic,
       },
-      ...(
-        [
-          ['Grubbs, highest mean', grubbs.high],
-          ['Grubbs, lowest mean', grubbs.low],
-          ['Grubbs, two highest', grubbs.pairHigh],
-          ['Grubbs, two lowest', grubbs.pairLow],
-        ] as const
-      ).map(([test, block]) => ({
+      ...grubbsTests.map(({ test, words }) => ({
         material,
-        test,
-        laboratories: block.laboratories,
-        statistic: block.statistic,
-        critical: block.critical['0.01'],
-        pValue: block.pValue,
-        level: block.level,
-        reason: block.reasons?.statistic,
+        test: words,
+        laboratories: grubbs[test].laboratories,
+        statistic: grubbs[test].statistic,
+        critical: grubbs[test].critical['0.01'],
+        pValue: grubbs[test].pValue,
+        finding: grubbsFinding(grubbs, test),
+        reason: grubbs[test].reasons?.statistic,
       })),
     ]
   })
+}
+
+const grubbsTests = [
+  { test: 'high', words: 'Grubbs, highest mean' },
+  { test: 'low', words: 'Grubbs, lowest mean' },
+  { test: 'pairHigh', words: 'Grubbs, two highest' },
+  { test: 'pairLow', words: 'Grubbs, two lowest' },
+] as const
+
+/** What the order of the tests makes of one: an end may be found only once the other is set aside in thought. */
+function grubbsFinding(
+  grubbs: AnalysisDocument['materials'][number]['grubbs'],
+  test: (typeof grubbsTests)[number]['test'],
+): TestRow['finding'] {
+  const { level } = grubbs[test]
+  const isPair = test === 'pairHigh' || test === 'pairLow'
+  if (isPair) return level === null || grubbs.pairsConsulted ? level : 'not consulted'
+  return grubbs.proposed.find((each) => each.test === test)?.level ?? level
 }

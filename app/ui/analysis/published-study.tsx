@@ -28,7 +28,7 @@ export function PublishedStudy({ snapshot, files, chosen = 0 }: PublishedStudyPr
       <Section
         id="outlier-tests"
         title="Outlier tests"
-        note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
+        note="A test proposes; a person decides. Pairs are consulted only where neither end alone is an outlier."
       >
         <OutlierTests document={measurand.document} />
       </Section>

@@ -67,7 +67,7 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
           <Section
             id="outlier-tests"
             title="Outlier tests"
-            note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
+            note="A test proposes; a person decides. Pairs are consulted only where neither end alone is an outlier."
           >
             <OutlierTests document={measurand.document} />
           </Section>

@@ -40,7 +40,7 @@ export default async function ScrutinyPage({
           <ConsistencyPlots document={measurand.document} />
           <Section
             title="Outlier tests"
-            note="A test proposes; a person decides. Pairs count only where neither end alone is an outlier."
+            note="A test proposes; a person decides. Pairs are consulted only where neither end alone is an outlier."
             actions={
               <>
                 <DownloadLink
