@@ -8,27 +8,46 @@ import { remembered } from '@/lib/statistics/distributions/remembered'
 import { solveTail } from '@/lib/statistics/distributions/solve-tail'
 
 /**
- * The F distribution for any real numbers of degrees of freedom, df1 above and df2 below.
+ * The share of F that lies below x, on any real degrees of freedom, df1 above and df2 below.
  *
  * Both tails, and both quantiles, are functions of their own: 1 minus a tail near 1 has lost the digits of the other.
  * Relative accuracy is near 1e-12. Own code because the libraries at hand overflow at one degree of freedom below, or keep
  * no more than seven digits in the tails.
+ *
+ * @throws {RangeError} for degrees of freedom outside 0 to 1e9; for NaN.
+ *
+ * Source: incomplete beta function; see `incomplete-beta.ts`.
  */
 export function fLowerTail(x: number, df1: number, df2: number): number {
   return tails({ x, df1, df2 }).lower
 }
 
+/**
+ * The share of F that lies above x; keeps its digits where it is small.
+ *
+ * @throws {RangeError} for degrees of freedom outside 0 to 1e9; for NaN.
+ */
 export function fUpperTail(x: number, df1: number, df2: number): number {
   return tails({ x, df1, df2 }).upper
 }
 
-/** The x below which a share p lies. */
+/**
+ * The x below which a share p lies.
+ *
+ * @throws {RangeError} for p not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9; for an x that is no
+ *   double.
+ */
 export const fQuantileLower = remembered((p: number, df1: number, df2: number): number => {
   requireFraction(p)
   return p <= 0.5 ? quantile({ side: 'lower', p, df1, df2 }) : quantile({ side: 'upper', p: 1 - p, df1, df2 })
 })
 
-/** The x above which a share alpha lies. */
+/**
+ * The x above which a share alpha lies.
+ *
+ * @throws {RangeError} for alpha not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9; for an x that is
+ *   no double.
+ */
 export const fQuantileUpper = remembered((alpha: number, df1: number, df2: number): number => {
   requireFraction(alpha)
   return alpha <= 0.5

@@ -23,6 +23,8 @@ export const largestPairCount = 1000
  * Good to about 1e-12 up to n = 100 and, below a probability of a half, beyond. The integral is made once for each n and
  * kept: 10 ms at n = 20, 50 ms at 100, a second at 1000.
  *
+ * @throws {RangeError} for a count other than 4 to 1000; for NaN.
+ *
  * Source: F. E. Grubbs, Ann. Math. Statist. 21 (1950) 27, for the recursion; the form by angles is our own working.
  */
 export function grubbsPairLowerTail(ratio: number, count: number): number {
@@ -33,7 +35,11 @@ export function grubbsPairLowerTail(ratio: number, count: number): number {
   return Math.min(1, Math.max(0, distributionFor(count).upTo(Math.asin(Math.sqrt(ratio)))))
 }
 
-/** The ratio below which a share p lies. */
+/**
+ * The ratio below which a share p lies.
+ *
+ * @throws {RangeError} for a count other than 4 to 1000; for p not strictly between 0 and 1.
+ */
 export function grubbsPairQuantileLower(p: number, count: number): number {
   requireCount(count)
   requireFraction(p)

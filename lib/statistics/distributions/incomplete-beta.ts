@@ -6,7 +6,7 @@ import { deviance, stirlingRemainder } from '@/lib/statistics/distributions/sadd
  *
  * The point comes as odds because x near 1 has lost the digits of 1 - x. `slope` is the derivative of the lower
  * tail with respect to ln odds, which is x^a (1 - x)^b / B(a, b). As in the gamma function the tail on x's own side
- * is got directly and the other as its complement.
+ * is got directly and the other as its complement. Nothing is refused: callers have checked.
  *
  * Source: A. R. DiDonato and A. H. Morris, ACM Trans. Math. Softw. 18 (1992) 360, equation 12 (continued
  * fraction); prefix by Loader's saddle-point form.

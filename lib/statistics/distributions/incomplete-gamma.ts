@@ -11,7 +11,8 @@ export interface Tails {
  * Both tails of the gamma distribution with shape a and unit scale, P(a, x) and Q(a, x), for a > 0 and x > 0.
  *
  * The tail on x's own side of the bulk is summed directly, from terms of one sign or by a continued fraction, and keeps
- * its relative accuracy however small it is; the other one is its complement and never small.
+ * its relative accuracy however small it is; the other one is its complement and never small. Nothing is refused: callers
+ * have checked.
  *
  * Source: Abramowitz & Stegun 6.5.29 (series) and 6.5.31 (continued fraction, even part); prefix by Loader.
  */

@@ -19,6 +19,8 @@ export interface LargestDeviate {
  * the top: there a step of the recursion damps the errors, while far below the bulk it multiplies them by up to m, and
  * built from below they would spread upwards (at m = 200 they are larger than the result).
  *
+ * @throws {RangeError} below 2 values.
+ *
  * Source: F. E. Grubbs, Ann. Math. Statist. 21 (1950) 27, section 3.
  */
 export function largestDeviate(count: number): LargestDeviate {

@@ -12,7 +12,7 @@ export interface TailToSolve {
  *
  * On the logarithm both the bulk and a tail of 1e-12 are nearly straight, so that few steps are needed. A step that
  * leaves the bracket is replaced by a bisection; whether the step had already converged is asked first, else a solution
- * at the very edge of the bracket would be thrown away.
+ * at the very edge of the bracket would be thrown away. Nothing is refused: the target lies strictly between 0 and 1.
  */
 export function solveTail({ tailAt, side, target, start }: TailToSolve): number {
   // A lower tail rises with u, an upper one falls. Far out the derivative underflows and could not tell.

@@ -10,6 +10,8 @@ import { stirlingRemainder } from '@/lib/statistics/distributions/saddle-point'
  * is taken before it is lost, and every term is positive. Both integrals run by the trapezoidal rule, which for
  * such smooth integrands that die at both ends converges faster than any power of the step.
  *
+ * @throws {RangeError} below 2 means; for `df` outside 0 to 1e9; for NaN.
+ *
  * Source: H. L. Harter, Ann. Math. Statist. 31 (1960) 1122; the integrals of its section 2.
  */
 export function studentizedRangeUpperTail(q: number, means: number, df: number): number {
