@@ -39,8 +39,15 @@ export type AnalysedMaterial = {
 }
 
 /**
- * Everything the analysis says of one material. Proposals and observations are
- * left to the caller, because they look at several materials at once.
+ * Everything the analysis says of one material. Proposals and observations are left to the caller, because
+ * they look at several materials at once.
+ *
+ * Variances are in the square of the results' unit, all other figures in that unit or pure. Nothing is refused:
+ * what does not exist is `null` with its reason. Where the results cannot be squared, or censored results took
+ * more than 10 % of the cells, every figure is `null` for that one reason. Two have no function of their own: n̄
+ * (`too-few-laboratories` below 2) and n_h (`no-results`).
+ *
+ * Source: each figure's own function, and the table of `README.md`.
  */
 export function analyseMaterial(
   data: MaterialData,
@@ -197,6 +204,11 @@ function analyseCells(one: {
   return { summaries, analysis }
 }
 
+/**
+ * For a block that the settings do not ask for.
+ *
+ * @throws {NotComputable} `not-asked-for`, always.
+ */
 export function notAskedFor(): never {
   notComputable('not-asked-for', 'not asked for')
 }

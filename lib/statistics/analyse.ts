@@ -21,10 +21,12 @@ import { twoSampleBlock } from '@/lib/statistics/document/two-sample-blocks'
  *
  * Laboratories and materials keep the order in which they appear. The same input
  * gives the same document, byte for byte. What cannot be computed is `null` with
- * its reason; no number is ever NaN or infinite.
+ * its reason; no number is ever NaN or infinite. With several measurands the level
+ * relation and the pair plots stand under each (`by-measurand`).
  *
  * @throws {RangeError} for a text that is no decimal number, for inner levels that
- *   repeat or take a reserved name, and for a result without a label for each.
+ *   repeat or take a reserved name, for a result without a label for each, and for
+ *   a plan that cannot be (below 2 laboratories, 1 replicate or a gamma of 1).
  */
 export function analyse(input: AnalysisInput): AnalysisDocument {
   requireNesting(input)

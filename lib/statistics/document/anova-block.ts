@@ -2,7 +2,10 @@ import type { AnovaBlock, AnovaRowBlock } from '@/lib/statistics/analysis-docume
 import { withReasons } from '@/lib/statistics/document/attempt'
 import { type AnovaRow, type NestedAnova, nestedTest } from '@/lib/statistics/nested-anova'
 
-/** The table of the analysis of variance; empty where nothing can be compared. */
+/**
+ * The table of the analysis of variance, sums of squares and components in u², standard deviations in u; empty where
+ * nothing can be compared, with the reason. Source: `nested-anova.ts`.
+ */
 export function anovaBlock(anova: () => NestedAnova, confounded: string | null): AnovaBlock {
   return withReasons((attempt) => {
     const found = attempt('rows', anova)

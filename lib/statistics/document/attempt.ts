@@ -4,6 +4,7 @@ import type { Reasons } from '@/lib/statistics/analysis-document'
 /** Computes one quantity of a block, or leaves `null` and notes the reason under its key. */
 export type Attempt = <Value>(key: string, compute: () => Value) => Value | null
 
+/** For a figure that no double holds, wherever that comes to light. */
 export const OUT_OF_RANGE = 'The results are too large or too small to be squared; change their unit.'
 
 /**
@@ -33,12 +34,20 @@ export function withReasons<Block extends object>(build: (attempt: Attempt) => B
   return { ...block, reasons }
 }
 
-/** For a quantity whose absence is known beforehand. */
+/**
+ * For a quantity whose absence is known beforehand.
+ *
+ * @throws {NotComputable} with the given code, always.
+ */
 export function notComputable(reason: string, words: string): never {
   throw new NotComputable(reason, words)
 }
 
-/** The value, or the failure that explains why another quantity that needs it is missing too. */
+/**
+ * The value, or the failure that explains why another quantity that needs it is missing too.
+ *
+ * @throws {NotComputable} `needs-another` for `null`.
+ */
 export function required<Value>(value: Value | null, words: string): Value {
   return value ?? notComputable('needs-another', words)
 }

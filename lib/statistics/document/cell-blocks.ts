@@ -7,7 +7,12 @@ import { NotComputable } from '@/lib/statistics/not-computable'
 
 const ONE_RESULT = 'The laboratory has no second result.'
 
-/** One block a laboratory, in the order given. */
+/**
+ * One block a laboratory, in the order given: means and standard deviations in the unit of the results, h, k and G pure
+ * numbers. What a cell has not got is `null` with a reason (`no-scatter`, `too-few-replicated-cells` of G by itself).
+ *
+ * Source: `mandel.ts`, `cochran.ts`; G of a cell in terms of its k.
+ */
 export function cellBlocks(one: {
   summaries: readonly CellSummary[]
   /** Fails where no two results differ by the replicate alone. */

@@ -14,7 +14,12 @@ import { enScore, zPrimeScore, zScore, zetaScore } from '@/lib/statistics/scores
 import { requireLaboratories } from '@/lib/statistics/spread-of-means'
 import { biasInterval } from '@/lib/statistics/trueness'
 
-/** Variance of the general mean: each component over the number of its groups that the mean holds. */
+/**
+ * Variance of the general mean, in u²: each component over the number of its groups that the mean holds. In the
+ * one-way layout s_L² Σn_i²/N² + s_r²/N.
+ *
+ * Source: ISO 5725-4, carried over to any nested layout; components as truncated.
+ */
 export function varianceOfMean(layout: NestedLayout, anova: NestedAnova): number {
   const results = layout.deviations.length
   let variance = 0
@@ -27,8 +32,10 @@ export function varianceOfMean(layout: NestedLayout, anova: NestedAnova): number
 }
 
 /**
- * Variance of each laboratory's mean, in the order given: its own component whole, and each inner one over the
- * number of its groups that the laboratory's mean holds.
+ * Variance of each laboratory's mean, in u² and in the order given: its own component whole, and each inner one over
+ * the number of its groups that the laboratory's mean holds.
+ *
+ * `observations` counts the results of each laboratory, in the order in which the layout holds them.
  */
 export function variancesOfLaboratoryMeans(
   { strata }: NestedLayout,
@@ -46,6 +53,10 @@ export function variancesOfLaboratoryMeans(
   return variances
 }
 
+/**
+ * Bias of the method against an accepted reference value, with its 95 % interval; all in the unit of the results.
+ * Missing parts are `null` with the reason of `biasInterval`. Source: ISO 5725-4; `trueness.ts`.
+ */
 export function truenessBlock(one: {
   reference: { deviation: number; value: number; uncertainty: number }
   /** The general mean as a deviation. */
@@ -82,9 +93,13 @@ export function truenessBlock(one: {
 }
 
 /**
- * Are the laboratories alike? In a nested layout the yardstick is the mean
- * square that the laboratories are tested against, since their averages differ
- * by the inner levels too.
+ * Are the laboratories alike? F test, range of averages and the reference curve, whose lengths are in the unit of the
+ * results.
+ *
+ * Variant: in a nested layout the yardstick is the mean square that the laboratories are tested against, since their
+ * averages differ by the inner levels too. Cells of unequal size are drawn with their harmonic mean.
+ *
+ * Source: Box, Hunter & Hunter; `equality.ts`.
  */
 export function equalityBlock(one: {
   summaries: readonly CellSummary[]
@@ -124,7 +139,14 @@ export function equalityBlock(one: {
   })
 }
 
-/** A value to measure laboratories by: an accepted one, else a robust mean, else the general mean. */
+/**
+ * A value to measure laboratories by, in the unit of the results, and where it comes from: an accepted one, else
+ * Algorithm A's mean (u = 1.25 s* / √p), else the general mean.
+ *
+ * σ is the given one, else that of a cell mean; `unequal-cells` where it differs from cell to cell.
+ *
+ * Source: ISO 13528, clause 9; the order of preference is our own.
+ */
 export function assignedBlock(one: {
   reference: { value: number; uncertainty: number } | null
   robust: { mean: number | null; meanStandardError: number | null }
@@ -147,7 +169,14 @@ export function assignedBlock(one: {
   })
 }
 
-/** Scores of one laboratory; σ is that of a mean of as many results, nested alike, as its own. */
+/**
+ * Scores of one laboratory, pure numbers; σ is that of a mean of as many results, nested alike, as its own.
+ *
+ * ζ and E_n need the laboratory's own uncertainty, and are refused (`consensus-too-small`) against a consensus of fewer
+ * than 12 laboratories, this one among them.
+ *
+ * Source: ISO 13528, clause 9; `scores.ts`.
+ */
 export function scoresBlock(one: {
   summary: CellSummary
   value: number

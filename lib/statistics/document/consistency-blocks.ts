@@ -31,7 +31,12 @@ const NO_SCATTER_HERE = 'This laboratory has no second result to compare at this
 
 type Critical = ConsistencyCriticalValues & Reasons
 
-/** Critical values of h for the laboratories at hand, and of k for each cell size that occurs. */
+/**
+ * Critical values of h for the laboratories at hand, and of k for each cell size that occurs; at 0.5, 1 and 5 %, pure
+ * numbers. A nested layout has those of k by degrees of freedom alone.
+ *
+ * Source: `mandel.ts`.
+ */
 export function criticalBlock(summaries: readonly CellSummary[], isNested: boolean): CriticalBlock {
   const replicated = replicatedCells(summaries)
   const pooledDf = replicated.reduce((sum, { df }) => sum + df, 0)
@@ -44,7 +49,10 @@ export function criticalBlock(summaries: readonly CellSummary[], isNested: boole
   }
 }
 
-/** `requireReplicate` fails where no two results differ by the replicate alone. */
+/**
+ * Critical values of k for one cell on `df` of all `pooledDf`, at 0.5, 1 and 5 %. `requireReplicate` fails where no two
+ * results differ by the replicate alone. Source: `mandel.ts`.
+ */
 export function kCriticalBlock(df: number, pooledDf: number, requireReplicate = (): void => {}): Critical {
   const critical = (alpha: number): number => {
     requireReplicate()
@@ -57,7 +65,7 @@ export function kCriticalBlock(df: number, pooledDf: number, requireReplicate = 
   }))
 }
 
-/** k of each laboratory that has one, computed when first asked for. */
+/** k of each laboratory that has one, computed when first asked for; fails as `mandelK` does. */
 export function kByLaboratory(summaries: readonly CellSummary[]): () => ReadonlyMap<string, JudgedK> {
   return once(() => {
     const statistics = mandelK(summaries)
@@ -71,6 +79,12 @@ export function kByLaboratory(summaries: readonly CellSummary[]): () => Readonly
 /** k with what its p-value needs besides. */
 export type JudgedK = MandelK & { readonly shareOfOthers: number }
 
+/**
+ * Cochran's test of the cells' scatter, in both forms. With equal degrees of freedom the standard's C sets the level,
+ * otherwise the generalised one does.
+ *
+ * `nUsed` is `null` (`nested`) where cells are judged by degrees of freedom. Source: `cochran.ts`.
+ */
 export function cochranBlock(summaries: readonly CellSummary[], layout: NestedLayout): CochranBlock {
   const isNested = layout.levels.length > 1
   const tested = once(() => {
@@ -99,6 +113,10 @@ export function cochranBlock(summaries: readonly CellSummary[], layout: NestedLa
   })
 }
 
+/**
+ * The generalised test alone, for the cells of any level. `requireScatter` fails where no two results differ by the
+ * replicate alone. Source: 't Lam 2010; `cochran.ts`.
+ */
 export function generalisedCochranBlock(
   summaries: readonly CellSummary[],
   requireScatter = (): void => {},
@@ -119,7 +137,10 @@ export function generalisedCochranBlock(
   })
 }
 
-/** h, k and Cochran at each level between laboratory and replicate. */
+/**
+ * k and Cochran's generalised test at each level between laboratory and replicate, with that level's mean square of
+ * each laboratory in u². Exact when the level is balanced. Source: `laboratory-summaries.ts`.
+ */
 export function nestingLevelBlocks(levels: readonly LevelSummaries[]): NestingLevelBlock[] {
   return levels
     .filter(({ isReplicate }) => !isReplicate)
@@ -130,6 +151,11 @@ export function nestingLevelBlocks(levels: readonly LevelSummaries[]): NestingLe
     }))
 }
 
+/**
+ * The level of a test by its p-value: straggler below 5 %, outlier below 1 %. It proposes and removes nothing.
+ *
+ * Source: ISO 5725-2:1994, 7.3.
+ */
 export function outlierLevel(pValue: number): OutlierLevel {
   if (pValue < 0.01) return 'outlier'
   return pValue < 0.05 ? 'straggler' : 'none'

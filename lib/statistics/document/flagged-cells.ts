@@ -1,9 +1,10 @@
 import type { MaterialAnalysis } from '@/lib/statistics/analysis-document'
 
 /**
- * The laboratories whose cell stands apart enough to look for an explanation:
- * beyond 0.5 % in h or k, at least a straggler in Cochran's test, or proposed by
- * Grubbs' tests taken in their order.
+ * The laboratories whose cell stands apart enough to look for an explanation, in the order of the cells: beyond
+ * 0.5 % in h or k, at least a straggler in Cochran's test, or proposed by Grubbs' tests taken in their order.
+ *
+ * Source: our own; flagging decides nothing but where to look.
  */
 export function flaggedCells({
   cells,

@@ -5,7 +5,14 @@ import { outlierLevel } from '@/lib/statistics/document/consistency-blocks'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
 import { type End, grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
 
-/** The four tests on cell means, each with a level of its own, and what they propose in their order. */
+/**
+ * The four tests on cell means, each with a level of its own, and what they propose in their order.
+ *
+ * Variant: an end beyond 1 % is set aside in thought before the other is looked at, and pairs are then not consulted.
+ * Tests that do not exist are `null` with the reason of `grubbsSingle` or `grubbsPair`.
+ *
+ * Source: ISO 5725-2:1994, 7.3.4.
+ */
 export function grubbsBlock(summaries: readonly CellSummary[]): GrubbsBlock {
   const pair = (end: End) =>
     testBlock({

@@ -4,6 +4,12 @@ import { generalisedCochranBlock } from '@/lib/statistics/document/consistency-b
 import { required, withReasons } from '@/lib/statistics/document/attempt'
 import { homogeneityFigures, homogeneityPValue, homogeneityVerdict } from '@/lib/statistics/homogeneity'
 
+/**
+ * The check of homogeneity of one material, standard deviations in the unit of the results.
+ *
+ * `units[i][j]` is portion j of unit i as a deviation; `target` is σ, without which there is no verdict. Fewer than 10
+ * units are judged all the same and said to be few. Source: ISO 13528, Annex B; `homogeneity.ts`.
+ */
 export function homogeneityBlock(one: {
   material: string
   units: readonly (readonly number[])[]

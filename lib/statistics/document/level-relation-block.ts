@@ -11,6 +11,12 @@ import {
   relationQuality,
 } from '@/lib/statistics/level-relation'
 
+/**
+ * The three forms for s_r and for s_R over the materials of one measurand, with the one that is proposed. Materials
+ * without the mean or the standard deviation take no part; forms are compared on those that every one can use.
+ *
+ * Source: ISO 5725-2, 7.5; `level-relation.ts`.
+ */
 export function levelRelationBlock(materials: readonly MaterialAnalysis[]): LevelRelation {
   return {
     repeatability: forms(levelPoints(materials, ({ repeatability }) => repeatability.sd)),

@@ -42,10 +42,13 @@ export type MaterialData = {
 }
 
 /**
- * Sorts the results of one material into cells.
+ * Sorts the results of one material into cells, in the order in which laboratories appear, and centres them exactly;
+ * deviations in the unit of the results.
  *
- * A cell that holds a censored result takes no part: no number is put in the
- * place of one that is not known.
+ * A cell that holds a censored result takes no part: no number is put in the place of one that is not known. Results
+ * whose squares are no doubles are not refused here but marked `isOutOfRange`.
+ *
+ * @throws {RangeError} for a text that is no decimal number.
  */
 export function materialData(one: {
   material: string

@@ -42,9 +42,14 @@ export type PrecisionBlocks = {
 type Estimate = { raw: number; variance: number; terms: readonly WeightedMeanSquare[] }
 
 /**
- * Repeatability, laboratory component, reproducibility and, in a nested layout,
- * the intermediate precisions. With one level they come from cell means and
- * cell standard deviations, with more from the nested analysis of variance.
+ * Repeatability, laboratory component, reproducibility and, in a nested layout, the intermediate precisions, from the
+ * innermost set outwards. Variances in u², standard deviations, limits and intervals in u, relative ones in %.
+ *
+ * Variant: with one level they come from cell means and cell standard deviations, with more from the nested analysis
+ * of variance; components are truncated one by one before they are added. Missing figures are `null` with a reason
+ * (`not-separable`, `no-true-zero` and those of the statistics themselves).
+ *
+ * Source: ISO 5725-2, 7.4; ISO 5725-3.
  */
 export function precisionBlocks(input: PrecisionInput): PrecisionBlocks {
   const isNested = input.layout.levels.length > 1

@@ -4,6 +4,10 @@ import type { NestedAnova } from '@/lib/statistics/nested-anova'
 import type { NestedLayout } from '@/lib/statistics/nested-layout'
 import { fitReml } from '@/lib/statistics/reml'
 
+/**
+ * REML beside the analysis of variance, which gives the start of the search: components in u², the mean restored to
+ * the scale of the results. `null` with the reason of `fitReml`. Source: `reml.ts`.
+ */
 export function remlBlock(one: {
   layout: NestedLayout
   anova: () => NestedAnova

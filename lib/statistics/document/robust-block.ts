@@ -21,6 +21,14 @@ export type RobustInput = {
   restore: (deviation: number) => number
 }
 
+/**
+ * The robust estimates of one material, all in the unit of the results.
+ *
+ * Variant: s_R² = max(0, s*² − w²/n_h) + w² from Algorithms A and S; refused (`nested`) in a nested layout, whose cell
+ * means hold a part of every inner level. The Q method on single results stands apart.
+ *
+ * Source: ISO 13528, Annex C; ISO 5725-5.
+ */
 export function robustBlock(input: RobustInput): RobustBlock {
   const a = algorithmABlock(input)
   const s = withReasons((attempt) => {

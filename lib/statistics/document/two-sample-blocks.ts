@@ -19,6 +19,12 @@ export type PlottedMaterial = {
   restore: (deviation: number) => number
 }
 
+/**
+ * The two-sample plot of a pair of materials over the laboratories that have both: points, medians, ellipse, and each
+ * point's own p-value. Lengths are in the unit of the results, restored from deviations.
+ *
+ * What too few laboratories do not give is `null`. Source: Youden 1959; `two-sample-plot.ts`.
+ */
 export function twoSampleBlock(x: PlottedMaterial, y: PlottedMaterial): TwoSamplePlot {
   const onY = new Map(y.summaries.map(({ laboratory, mean }) => [laboratory, mean]))
   const common = x.summaries
