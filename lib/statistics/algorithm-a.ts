@@ -1,22 +1,7 @@
 import { median } from '@/lib/statistics/median'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
-/**
- * Algorithm A: robust location and spread of cell means, each counted once.
- *
- * Values further than 1.5 s* from x* are drawn in to that distance; x* is the
- * mean of what results and s* is 1.134 times its standard deviation; repeated
- * until both stand still.
- *
- * Values may be deviations from any common origin; the location comes back as
- * such a deviation. Order is irrelevant.
- *
- * @throws {NotComputable} `too-few-laboratories` below 3; `majority-equal` when
- *   the median absolute deviation is 0.
- *
- * Source: ISO 13528, Annex C.3; ISO 5725-5. The factors 1.483 and 1.134 are the
- * standard's rounded ones.
- */
+/** Robust location and spread, both in the unit of the values. */
 export type AlgorithmA = {
   mean: number
   sd: number
@@ -31,6 +16,23 @@ const SPREAD_FACTOR = 1.134
 const TOLERANCE = 1e-12
 const MOST_ITERATIONS = 10_000
 
+/**
+ * Algorithm A: robust location and spread of cell means, each counted once.
+ *
+ * Values further than 1.5 s* from x* are drawn in to that distance; x* is the mean of what results and s* is
+ * 1.134 times its standard deviation; repeated from the median and 1.483 MAD until both move by less than
+ * 1e-12 s*.
+ *
+ * Units: `values` are one a laboratory, in unit u, and may be deviations from any common origin; the location
+ * comes back as such a deviation, the spread and the standard error in u. Order is irrelevant.
+ *
+ * Variant: the factors 1.483 and 1.134 are the standard's rounded ones.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 3; `majority-equal` when the median absolute deviation
+ *   is 0; `no-convergence`.
+ *
+ * Source: ISO 13528, Annex C.3; ISO 5725-5.
+ */
 export function algorithmA(values: readonly number[]): AlgorithmA {
   const count = values.length
   if (count < 3) throw new NotComputable('too-few-laboratories', 'Algorithm A needs three laboratories.')

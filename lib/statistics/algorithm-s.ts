@@ -3,17 +3,8 @@ import { median } from '@/lib/statistics/median'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
 /**
- * Algorithm S: robust pooled standard deviation of cells.
- *
- * Standard deviations above η w are drawn in to it. For cells of one size this
- * is the standard's algorithm; the form for unequal sizes, in which each cell
- * counts by its degrees of freedom, is our own and marked `generalised`. The
- * constants are exact, not the rounded ones of the printed table.
- *
- * @throws {NotComputable} `no-replication` without a cell of two results;
- *   `majority-zero` when the median standard deviation is 0.
- *
- * Source: ISO 13528, Annex C.4; ISO 5725-5.
+ * The pooled standard deviation in the unit of the cells' own. `generalised` says that cells differed in their
+ * degrees of freedom.
  */
 export type AlgorithmS = { sd: number; generalised: boolean; iterations: number }
 
@@ -21,6 +12,23 @@ const TOLERANCE = 1e-13
 const MOST_ITERATIONS = 10_000
 const CLIPPED_SHARE = 0.1
 
+/**
+ * Algorithm S: robust pooled standard deviation of cells.
+ *
+ * Standard deviations above η w are drawn in to it, from the median until w² moves by less than 1e-13 of itself.
+ *
+ * Units: `cells` in any order, `sd` in unit u with `df` degrees of freedom; those with none count nowhere. The
+ * answer is in u.
+ *
+ * Variant: for cells of one size this is the standard's algorithm. The form for unequal ones, in which each
+ * counts by its degrees of freedom, is our own and marked `generalised`. The constants are exact, not the
+ * rounded ones of the printed table.
+ *
+ * @throws {NotComputable} `no-replication` without a cell of two results; `majority-zero` when the median
+ *   standard deviation is 0; `no-convergence`.
+ *
+ * Source: ISO 13528, Annex C.4; ISO 5725-5.
+ */
 export function algorithmS(cells: readonly { sd: number; df: number }[]): AlgorithmS {
   const replicated = cells.filter(({ df }) => df >= 1)
   if (replicated.length === 0) {

@@ -1,5 +1,5 @@
 /**
- * A power of two near the largest of the values, 1 when all are 0.
+ * A power of two near the largest of the values, in their unit; 1 when all are 0 or there is none.
  *
  * Divided by it (exactly, as only the exponent changes) values of 1e-300 or 1e300 can be squared like any others.
  */

@@ -29,10 +29,15 @@ export interface ReplicatedCell extends CellSummary {
 /**
  * Number, mean and standard deviation of each cell, in the order given; cells without a result are left out.
  *
+ * Deviations in unit u; `mean` comes back as such a deviation and `sd` in u, on n - 1 degrees of freedom. A single
+ * result has no standard deviation.
+ *
  * Each cell is centred once more on its first result, so that equal results have exactly no scatter, and the sum of
  * squares is corrected for what rounding left in the mean.
  *
  * @throws {RangeError} when a deviation is no finite number.
+ *
+ * Source: ISO 5725-2:1994, 7.4.
  */
 export function summariseCells(cells: readonly Cell[]): CellSummary[] {
   const summaries: CellSummary[] = []
@@ -40,7 +45,7 @@ export function summariseCells(cells: readonly Cell[]): CellSummary[] {
   return summaries
 }
 
-/** The cells that have a standard deviation of their own. */
+/** The cells that have a standard deviation of their own, that is ν_i ≥ 1, in their order; it may be none. */
 export function replicatedCells(summaries: readonly CellSummary[]): ReplicatedCell[] {
   return summaries.filter((cell): cell is ReplicatedCell => cell.df >= 1 && cell.sd !== undefined)
 }

@@ -2,11 +2,17 @@ import { median } from '@/lib/statistics/median'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
 /**
- * Median of cell means where some cells are only known to lie below or above a
- * bound. A bound may stand in for such a cell as long as the median lies clear
- * of it: wherever the cell really is, the middle does not move.
+ * Median of cell means where some cells are only known to lie below or above a bound.
+ *
+ * A bound may stand in for such a cell as long as the median lies clear of it: wherever the cell really is, the
+ * middle does not move. A cell with results cut off at both ends has no bound and is never clear.
+ *
+ * Units: `means` one a cell and `bounds` one a censored cell, all as deviations from one origin in unit u; so is
+ * the answer. Order is irrelevant.
  *
  * @throws {NotComputable} `no-results`; `median-not-clear`.
+ *
+ * Source: our own; no number is put in the place of a result that is not known.
  */
 export function censoredMedian(
   means: readonly number[],

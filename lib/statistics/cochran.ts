@@ -42,7 +42,16 @@ export interface GeneralisedCochran {
   readonly pValue: number
 }
 
-/** @throws {NotComputable} `too-few-replicated-cells` below 2; `no-scatter`. */
+/**
+ * Cochran's test for the largest variance: is one laboratory's scatter too large beside the others'?
+ *
+ * Variant: that of ISO 5725-2, on the modal degrees of freedom; where `isBalanced` is false the p-value is only
+ * approximate, and {@link generalisedCochran} decides. Takes cells in any unit; the first of equal ones is named.
+ *
+ * @throws {NotComputable} `too-few-replicated-cells` below 2; `no-scatter` when every standard deviation is 0.
+ *
+ * Source: ISO 5725-2:1994, 7.3.3 and table 4; P.-Th. Wilrich, AStA Adv. Stat. Anal. 97 (2013) 1.
+ */
 export function cochran(summaries: readonly CellSummary[]): Cochran {
   const cells = comparableCells(summaries)
   const variances = cells.map((cell) => cell.sd ** 2)
@@ -69,14 +78,29 @@ export interface CochranCriticalOf {
   readonly alpha: number
 }
 
-/** The C that a share alpha exceeds: F/(F + p′ - 1), F the upper alpha/p′ point on (ν, (p′ - 1) ν). */
+/**
+ * The C that a share alpha exceeds: F/(F + p′ - 1), F the upper alpha/p′ point on (ν, (p′ - 1) ν). A pure number.
+ *
+ * @throws {NotComputable} `too-few-replicated-cells` below 2 cells.
+ *
+ * Source: ISO 5725-2:1994, table 4; Wilrich 2013.
+ */
 export function cochranCritical({ cells, df, alpha }: CochranCriticalOf): number {
   requireTwoCells(cells)
   const f = fQuantileUpper(alpha / cells, df, (cells - 1) * df)
   return 1 / (1 + (cells - 1) / f)
 }
 
-/** @throws {NotComputable} `too-few-replicated-cells` below 2; `no-scatter`. */
+/**
+ * Cochran's test for cells of any degrees of freedom, G = ν_i s_i²/Σ ν s².
+ *
+ * The cell with the smallest p-value is the one tested (ties: the larger G, then the order of the cells). In the
+ * balanced case it is Cochran's C. Takes cells in any unit.
+ *
+ * @throws {NotComputable} `too-few-replicated-cells` below 2; `no-scatter` when every standard deviation is 0.
+ *
+ * Source: R. U. E. 't Lam, Anal. Chim. Acta 659 (2010) 68.
+ */
 export function generalisedCochran(summaries: readonly CellSummary[]): GeneralisedCochran {
   const cells = comparableCells(summaries)
   const squares = cells.map((cell) => cell.df * cell.sd ** 2)
@@ -98,7 +122,14 @@ export interface GeneralisedCochranCriticalOf extends CochranCriticalOf {
   readonly pooledDf: number
 }
 
-/** G_c = 1/(1 + (ν/ν_i - 1)/F), F the upper alpha/p′ point on (ν_i, ν - ν_i). */
+/**
+ * The G of one cell that a share alpha exceeds: G_c = 1/(1 + (ν/ν_i - 1)/F), F the upper alpha/p′ point on
+ * (ν_i, ν - ν_i). A pure number, and another for each ν_i.
+ *
+ * @throws {NotComputable} `too-few-replicated-cells` below 2 cells.
+ *
+ * Source: 't Lam 2010.
+ */
 export function generalisedCochranCritical(of: GeneralisedCochranCriticalOf): number {
   requireTwoCells(of.cells)
   const f = fQuantileUpper(of.alpha / of.cells, of.df, of.pooledDf - of.df)

@@ -19,12 +19,15 @@ const TAIL = 0.025
 const SMALLEST_USEFUL_DF = 0.05
 
 /**
- * 95 % interval of a sum and difference of independent mean squares by the
- * modified large-sample method: exact when one term stands alone, close in all
- * other cases.
+ * 95 % interval of a sum and difference of independent mean squares by the modified large-sample method: exact
+ * when one term stands alone, close in all other cases.
  *
- * Sources: Ting et al. 1990; Burdick & Graybill 1992, section 3.3; without
- * negative terms it is Graybill & Wang 1980.
+ * Units: mean squares in u²; the estimate and both limits in u². The lower limit may be negative: nothing is cut
+ * at 0 here.
+ *
+ * @throws {RangeError} for degrees of freedom that are not above 0.
+ *
+ * Source: Ting et al. 1990; Burdick & Graybill 1992, section 3.3; without negative terms it is Graybill & Wang 1980.
  */
 export function combinationInterval(terms: readonly WeightedMeanSquare[]): CombinationInterval {
   const { scale, scaled } = nearOne(terms)
@@ -65,10 +68,14 @@ function intervalOf(terms: readonly WeightedMeanSquare[]): CombinationInterval {
 }
 
 /**
- * Satterthwaite's interval: the combination is treated as one mean square whose
- * degrees of freedom give it the right variance.
+ * Satterthwaite's 95 % interval, a second opinion: the combination is treated as one mean square whose degrees
+ * of freedom, (Σ w M)²/Σ((w M)²/n), give it the right variance.
+ *
+ * Units: mean squares and limits in u². On fewer than 0.05 degrees of freedom the limits are `null`.
  *
  * @throws {NotComputable} `not-positive` when the combination is not above 0.
+ *
+ * Source: Burdick & Graybill 1992.
  */
 export function satterthwaiteInterval(terms: readonly WeightedMeanSquare[]): SatterthwaiteLimits {
   const { scale, scaled } = nearOne(terms)

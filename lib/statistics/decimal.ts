@@ -26,7 +26,11 @@ export interface ExactlyCentred {
 const longestScale = 2000
 const shape = /^([+\-\u2212]?)(\d*)(?:\.(\d*))?(?:[eE]([+\-\u2212]?\d{1,9}))?$/
 
-/** @throws {RangeError} when the text is no decimal number, or one of more than 2,000 places. */
+/**
+ * The number that a decimal text writes, exactly: `12.30` is 1230 × 10^-2. A sign, a point and an exponent are read.
+ *
+ * @throws {RangeError} when the text is no decimal number, or one of more than 2,000 places.
+ */
 export function parseDecimal(text: string): Decimal {
   const short = text.length <= 15 ? plainDecimal(text) : null
   if (short !== null) return short
@@ -60,17 +64,23 @@ function plainDecimal(text: string): Decimal | null {
 }
 
 /**
- * Takes a common offset off all values exactly.
+ * Takes a common offset off all values exactly, and gives the way back. Offset and deviations are in the texts'
+ * own unit, in their order; the offset is one of the values, a median.
  *
  * Where the whole numbers at the common scale stay clear of 2^53 ordinary numbers do the same exactly, and faster.
  *
  * @throws {NotComputable} `no-results`; `out-of-range` when a difference is larger than any double.
+ * @throws {RangeError} as {@link parseDecimal}.
  */
 export function centreExactly(texts: readonly string[]): ExactlyCentred {
   return centreUnits(toCommonScale(texts.map(parseDecimal)))
 }
 
-/** The same for values that stand at a common scale already. */
+/**
+ * {@link centreExactly} for values that stand at a common scale already.
+ *
+ * @throws {NotComputable} `no-results`; `out-of-range` when a difference is larger than any double.
+ */
 export function centreUnits({ units, scale }: { units: readonly bigint[]; scale: number }): ExactlyCentred {
   if (units.length === 0) throw new NotComputable('no-results', 'There is no result.')
   const offset = { units: medianOf(units), scale }
@@ -81,14 +91,21 @@ export function centreUnits({ units, scale }: { units: readonly bigint[]; scale:
   return { offset, deviations, restore: (deviation) => decimalToNumber(addNumber(offset, deviation)) }
 }
 
-/** The same values as whole numbers of one unit, 10^-`scale`. */
+/**
+ * The same values as whole numbers of one unit, 10^-`scale`, in their order. The scale is the finest among them; it
+ * needs one value at least.
+ */
 export function toCommonScale(decimals: readonly Decimal[]): { units: bigint[]; scale: number } {
   let scale = -Infinity
   for (const decimal of decimals) if (decimal.scale > scale) scale = decimal.scale
   return { units: decimals.map((decimal) => unitsAt(decimal, scale)), scale }
 }
 
-/** The double nearest to the decimal; reading a decimal text is correctly rounded, a division would not be. */
+/**
+ * The double nearest to the decimal; reading a decimal text is correctly rounded, a division would not be.
+ *
+ * A decimal beyond every double gives Infinity: a caller that can meet one must look.
+ */
 export function decimalToNumber({ units, scale }: Decimal): number {
   return Number(`${units}e${-scale}`)
 }
@@ -99,6 +116,7 @@ export function compareDecimals(a: Decimal, b: Decimal): number {
   return units < 0n ? -1 : units > 0n ? 1 : 0
 }
 
+/** a - b, exactly, at the finer of the two scales. */
 export function subtractDecimals(a: Decimal, b: Decimal): Decimal {
   const scale = Math.max(a.scale, b.scale)
   return { units: unitsAt(a, scale) - unitsAt(b, scale), scale }
@@ -117,6 +135,10 @@ export function decimalToText({ units, scale }: Decimal): string {
  * What is rounded is the shortest decimal that gives back the double (2.675 is taken as 2.675 and not as the
  * 2.67499999999999982236431605997495353221893310546875 it is stored as), halves to the even digit. A negative number that
  * rounds to nothing carries no sign.
+ *
+ * @throws {RangeError} when x is not finite; for a place that is no whole number or beyond 2,000.
+ *
+ * Source: ISO 80000-1 (half to even).
  */
 export function roundHalfEvenAtPlace(x: number, place: number): string {
   if (!Number.isFinite(x) || !Number.isInteger(place) || Math.abs(place) > longestScale) {

@@ -44,7 +44,17 @@ const MOST_SHOWN = 3
 const PLAUSIBLE = 0.05
 const POWERS = [-3, -2, -1, 1, 2, 3]
 
-/** The explanations of one flagged cell worth showing, best first. */
+/**
+ * The explanations of one flagged cell worth showing, best first and three at most; none is an answer.
+ *
+ * `cells` are all those of the laboratory, each with its own material's others; `flagged` names the material. Values
+ * in the study's unit, scores and prices in powers of ten of a probability. Shown are those of a score of 2 or more
+ * after which every changed cell is plausible among the others.
+ *
+ * @throws {RangeError} where the laboratory has no cell of that material, or a result's text is no decimal number.
+ *
+ * Source: our own.
+ */
 export function explanationsOf(
   flagged: string,
   cells: readonly LaboratoryCell[],
@@ -67,7 +77,10 @@ export function explanationsOf(
     .slice(0, MOST_SHOWN)
 }
 
-/** Number, mean and pooled innermost standard deviation of a cell. */
+/**
+ * Number, mean and pooled innermost standard deviation of a cell that holds a result, in the unit of its values;
+ * `groups` has one entry for each of them.
+ */
 export function cellFigures(values: readonly number[], groups: readonly string[]): CellFigures {
   const n = values.length
   const byGroup = new Map<string, number[]>()

@@ -19,10 +19,11 @@ export interface GrubbsPair {
 }
 
 /**
- * Grubbs' test for the two highest or the two lowest cell means together.
+ * Grubbs' test for the two highest or the two lowest cell means together, on cell means in any unit.
  *
  * Variant: two-sided, as in the table of ISO 5725-2: the p-value is twice the lower tail of the exact null distribution, at
- * most 1, and "5 %" is its lower 2.5 % point.
+ * most 1, and "5 %" is its lower 2.5 % point. A small ratio is significant. In a nested layout it is approximate when the
+ * variances of laboratory means differ.
  *
  * @throws {NotComputable} `too-few-laboratories` below 4; `equal-means`; `too-many-laboratories` above 1000.
  *
@@ -51,9 +52,11 @@ export function grubbsPair(summaries: readonly CellSummary[], end: End): GrubbsP
 }
 
 /**
- * The ratio below which a share alpha falls, both ends together: the lower alpha/2 point.
+ * The ratio below which a share alpha falls, both ends together: the lower alpha/2 point. A pure number.
  *
  * @throws {NotComputable} `too-few-laboratories` below 4; `too-many-laboratories` above 1000.
+ *
+ * Source: ISO 5725-2:1994, table 5; Grubbs 1950.
  */
 export function grubbsPairCritical(laboratories: number, alpha: number): number {
   if (laboratories < 4) throw new NotComputable('too-few-laboratories', '4 laboratories are needed.')

@@ -16,11 +16,12 @@ export interface GrubbsSingle {
 }
 
 /**
- * Grubbs' test for one outlying cell mean, at the high or the low end.
+ * Grubbs' test for one outlying cell mean, at the high or the low end, on cell means in any unit.
  *
  * Variant: two-sided with Bonferroni's inequality, as in the table of ISO 5725-2, so that p < 0.05 exactly when G is beyond
  * its 5 % value. The p-value is taken from the distance to the mean of the other means in their own standard
- * deviation, which is the same t and keeps its digits when one mean has nearly all of the sum of squares.
+ * deviation, which is the same t and keeps its digits when one mean has nearly all of the sum of squares. In a nested
+ * layout it is approximate when the variances of laboratory means differ.
  *
  * @throws {NotComputable} `too-few-laboratories` below 3; `equal-means`.
  *
@@ -43,6 +44,8 @@ export function grubbsSingle(summaries: readonly CellSummary[], end: End): Grubb
  * The G that a share alpha exceeds, both ends together: ((p - 1)/√p) √(t²/(p - 2 + t²)), t the upper alpha/(2p) point.
  *
  * @throws {NotComputable} `too-few-laboratories` below 3.
+ *
+ * Source: ISO 5725-2:1994, table 5; Wilrich 2013.
  */
 export function grubbsSingleCritical(laboratories: number, alpha: number): number {
   if (laboratories < 3) throw new NotComputable('too-few-laboratories', '3 laboratories are needed.')

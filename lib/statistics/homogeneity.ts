@@ -3,12 +3,8 @@ import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
 /**
- * Check before shipping: do the units of a material differ by more than the
- * study can bear?
- *
- * `units[i][j]` is portion j of unit i, as a deviation from any origin.
- *
- * Source: ISO 13528, Annex B; Fearn & Thompson 2001 for the expanded criterion.
+ * What the check found: `portions` of each unit; s_x̄, s_w and s_s in the unit u of the results, s_s² as estimated
+ * in u²; and the factors F1 and F2 of the expanded criterion, pure numbers.
  */
 export type HomogeneityFigures = {
   portions: number
@@ -20,7 +16,16 @@ export type HomogeneityFigures = {
   f2: number
 }
 
-/** @throws {NotComputable} `too-few-units` below 2; `unequal-portions`; `no-replication`. */
+/**
+ * Check before shipping: do the units of a material differ by more than the study can bear?
+ *
+ * Shape: `units[i][j]` is portion j of unit i, in unit u as a deviation from any origin; equally many portions a
+ * unit. A negative s_s² = s_x̄² − s_w²/n is 0 in `ss` and keeps its raw value.
+ *
+ * @throws {NotComputable} `too-few-units` below 2; `unequal-portions`; `no-replication`.
+ *
+ * Source: ISO 13528, Annex B; Fearn & Thompson 2001 for F1 and F2.
+ */
 export function homogeneityFigures(units: readonly (readonly number[])[]): HomogeneityFigures {
   const g = units.length
   if (g < 2) throw new NotComputable('too-few-units', 'Two units are needed.')
@@ -50,7 +55,13 @@ export function homogeneityFigures(units: readonly (readonly number[])[]): Homog
   }
 }
 
-/** The three criteria against a target standard deviation written down before the check. */
+/**
+ * The three criteria against a target standard deviation σ written down before the check, in the figures' unit:
+ * s_s ≤ 0.3 σ; the expanded s_s² ≤ F1 (0.3 σ)² + F2 s_w²; and s_w < 0.5 σ, without which the check is too coarse
+ * to tell.
+ *
+ * Source: ISO 13528, Annex B; Fearn & Thompson 2001.
+ */
 export function homogeneityVerdict(
   figures: HomogeneityFigures,
   target: number,
@@ -63,7 +74,11 @@ export function homogeneityVerdict(
   }
 }
 
-/** @throws {NotComputable} `no-scatter` when the portions of a unit never differ. */
+/**
+ * One-way F test of equal units, on (g − 1, g (n − 1)) degrees of freedom; `units` is g. It decides nothing here.
+ *
+ * @throws {NotComputable} `no-scatter` when the portions of a unit never differ.
+ */
 export function homogeneityPValue(figures: HomogeneityFigures, units: number): number {
   if (figures.sw === 0) throw new NotComputable('no-scatter', 'The portions of a unit do not differ.')
   const f = (figures.portions * figures.sx ** 2) / figures.sw ** 2

@@ -1,12 +1,7 @@
 import { tQuantileUpper } from '@/lib/statistics/distributions/students-t'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
-/**
- * Bias of one laboratory against an accepted reference value, Δ = ȳ − μ, with the 95 % interval of its random part alone,
- * ± t s_r/√n: the reference's uncertainty and the laboratory's days are not in it.
- *
- * Source: ISO 5725-4; Student's t in place of 1.96.
- */
+/** A bias and its 95 % limits, all in the unit of the results. */
 export type LaboratoryBias = {
   bias: number
   lower: number
@@ -15,7 +10,17 @@ export type LaboratoryBias = {
   component: number
 }
 
-/** @throws {NotComputable} `no-replicates` where repeatability has no degree of freedom. */
+/**
+ * Bias of one laboratory against an accepted reference value, Δ = ȳ − μ, with the 95 % interval of its random part alone,
+ * ± t s_r/√n: the reference's uncertainty and the laboratory's days are not in it.
+ *
+ * Units: `bias` and `methodBias` (δ) in u, the variance of repeatability in u².
+ *
+ * @throws {NotComputable} `no-replicates` where repeatability has no degree of freedom.
+ * @throws {RangeError} below one result.
+ *
+ * Source: ISO 5725-4; Student's t in place of 1.96.
+ */
 export function laboratoryBias(one: {
   bias: number
   methodBias: number

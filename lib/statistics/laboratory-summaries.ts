@@ -17,7 +17,15 @@ export type LevelSummaries = {
   laboratories: CellSummary[]
 }
 
-/** One entry for each level inside the laboratories that has degrees of freedom, outermost first. */
+/**
+ * What each laboratory shows at each level inside it that has degrees of freedom, outermost first. From these come h, k
+ * and Cochran's test at the inner levels of a nested layout.
+ *
+ * Shape: `laboratories` in the order in which the layout holds their results, each with one at least. Means are deviations
+ * in unit u; `sd` is √MS_l(i), in u, where the laboratory has degrees of freedom at that level.
+ *
+ * Source: ISO 5725-3, the mean square of each level taken laboratory by laboratory.
+ */
 export function levelSummaries(
   layout: NestedLayout,
   laboratories: readonly { laboratory: string; observations: number }[],
@@ -43,7 +51,10 @@ export function levelSummaries(
   return levels
 }
 
-/** Number and mean of all results of each laboratory, without a scatter. */
+/**
+ * Number and mean of all results of each laboratory, without a scatter; each has one at least, and they come in
+ * the order in which the layout holds them. The mean is a deviation in the layout's unit.
+ */
 export function wholeLaboratories(
   layout: NestedLayout,
   laboratories: readonly { laboratory: string; observations: number }[],

@@ -1,32 +1,44 @@
 import { NotComputable } from '@/lib/statistics/not-computable'
 
-/**
- * Precision as a function of level: how a standard deviation s grows with the
- * mean m over the materials of one measurand.
- *
- * Three forms are fitted: s = b m, s = a + b m and log s = c + d log m
- * (logarithms to base 10). The second is weighted by 1/s² at first and then by
- * 1/ŝ² of the fit before: the standard's third fit and the one it settles at.
- *
- * Source: ISO 5725-2, 7.5.
- */
+/** One material: general mean m and a standard deviation s, both in the unit of the measurand. */
 export type LevelPoint = { material: string; mean: number; sd: number }
 
 export type FormName = 'proportional' | 'linear' | 'power'
 
-/** @throws {NotComputable} `too-few-materials` below 2 with m > 0. */
+/**
+ * s = b m: b is the mean of s/m, a pure number. Materials with m ≤ 0 are left out.
+ *
+ * @throws {NotComputable} `too-few-materials` below 2 with m > 0.
+ *
+ * Source: ISO 5725-2, 7.5, form I.
+ */
 export function proportionalRelation(points: readonly LevelPoint[]): { b: number } {
   const usable = points.filter(({ mean }) => mean > 0)
   requireMaterials(usable, 2)
   return { b: usable.reduce((sum, { mean, sd }) => sum + sd / mean, 0) / usable.length }
 }
 
-/** The third fit. @throws {NotComputable} `too-few-materials` below 3 with s > 0; `one-level`; `negative-fit`. */
+/**
+ * s = a + b m, weighted by 1/s² at first and then by 1/ŝ² of the fit before: the standard's third fit. a is in the
+ * unit of s, b a pure number. Materials with s = 0 are left out.
+ *
+ * @throws {NotComputable} `too-few-materials` below 3 with s > 0; `one-level` when all means are equal;
+ *   `negative-fit` when a line on the way is not above 0 at some material.
+ *
+ * Source: ISO 5725-2, 7.5, form II.
+ */
 export function linearRelation(points: readonly LevelPoint[]): { a: number; b: number } {
   return weightedFits(points, (fit) => fit === 3)
 }
 
-/** The fit at which the weighting settles. @throws {NotComputable} as the third fit, and `no-convergence`. */
+/**
+ * s = a + b m as {@link linearRelation}, but weighted on until the line moves by less than 1e-13 of itself. Given
+ * beside the third fit; the standard stops there.
+ *
+ * @throws {NotComputable} as the third fit, and `no-convergence`.
+ *
+ * Source: ISO 5725-2, 7.5, form II; carried on by us.
+ */
 export function convergedLinearRelation(points: readonly LevelPoint[]): { a: number; b: number } {
   return weightedFits(points, (fit, moved) => fit >= 3 && moved < FIT_TOLERANCE)
 }
@@ -61,7 +73,14 @@ function weightedFits(
   throw new NotComputable('no-convergence', 'The weighted fits did not settle.')
 }
 
-/** @throws {NotComputable} `too-few-materials` below 3 with s > 0 and m > 0; `one-level`. */
+/**
+ * log s = c + d log m, logarithms to base 10, unweighted; c depends on the unit, d is a pure number. Materials with
+ * s = 0 or m ≤ 0 are left out.
+ *
+ * @throws {NotComputable} `too-few-materials` below 3 with s > 0 and m > 0; `one-level` when all means are equal.
+ *
+ * Source: ISO 5725-2, 7.5, form III.
+ */
 export function powerRelation(points: readonly LevelPoint[]): { c: number; d: number } {
   const usable = points.filter(({ mean, sd }) => sd > 0 && mean > 0)
   requireMaterials(usable, 3)
@@ -78,10 +97,13 @@ export function powerRelation(points: readonly LevelPoint[]): { c: number; d: nu
 }
 
 /**
- * How well a form fits, comparable between forms.
+ * How well a form fits, comparable between forms: Q = Σ (ln s − ln ŝ)²/(q − coefficients) over the q materials
+ * with s > 0. A pure number, small when good.
  *
- * @throws {NotComputable} `too-few-materials` without a degree of freedom;
- *   `negative-fit`, which disqualifies the form.
+ * @throws {NotComputable} `too-few-materials` without a degree of freedom; `negative-fit` when some ŝ is not above
+ *   0, which disqualifies the form.
+ *
+ * Source: our own.
  */
 export function relationQuality(
   points: readonly LevelPoint[],
@@ -102,8 +124,10 @@ export function relationQuality(
 }
 
 /**
- * The form with the smallest q; of those within a tenth of it, the simplest.
+ * The form with the smallest Q; of those within a tenth of it, the simplest; `null` where none could be judged.
  * A person chooses; this only proposes.
+ *
+ * Source: our own.
  */
 export function proposedForm(qualities: Readonly<Record<FormName, number | null>>): FormName | null {
   const known = SIMPLEST_FIRST.filter((form) => qualities[form] !== null)
@@ -112,7 +136,7 @@ export function proposedForm(qualities: Readonly<Record<FormName, number | null>
   return known.find((form) => qualities[form]! <= smallest * 1.1)!
 }
 
-/** The materials that some form had to do without. */
+/** The materials that some form had to do without: those with m ≤ 0 or s = 0. */
 export function materialsLeftOut(points: readonly LevelPoint[]): string[] {
   return points.filter(({ mean, sd }) => !(mean > 0) || !(sd > 0)).map(({ material }) => material)
 }

@@ -31,7 +31,14 @@ export interface MandelK {
   readonly pooledDf: number
 }
 
-/** @throws {NotComputable} `too-few-laboratories` below 2; `equal-means`. */
+/**
+ * h of every laboratory, its distance from the others' level: (ȳ_i - ȳ)/s_ȳ with the unweighted mean and standard
+ * deviation of the cell means. Signed, a pure number, in the order of the cells.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 2; `equal-means`.
+ *
+ * Source: ASTM E691, section 15.
+ */
 export function mandelH(summaries: readonly CellSummary[]): MandelH[] {
   const { centred, sumOfSquares } = spreadOfMeans(summaries)
   const sd = Math.sqrt(sumOfSquares / (summaries.length - 1))
@@ -39,9 +46,11 @@ export function mandelH(summaries: readonly CellSummary[]): MandelH[] {
 }
 
 /**
- * The |h| that a share alpha exceeds, h_c = (p - 1) t / √(p (t² + p - 2)).
+ * The |h| that a share alpha exceeds, h_c = (p - 1) t/√(p (t² + p - 2)), t the upper alpha/2 point on p - 2 df. Exact.
  *
  * @throws {NotComputable} `too-few-laboratories` below 3.
+ *
+ * Source: P.-Th. Wilrich, AStA Adv. Stat. Anal. 97 (2013) 1; ASTM E691, section 15.
  */
 export function mandelHCritical(laboratories: number, alpha: number): number {
   requireThree(laboratories)
@@ -51,9 +60,11 @@ export function mandelHCritical(laboratories: number, alpha: number): number {
 }
 
 /**
- * Two-sided p-value, from t² = p h² (p - 2)/((p - 1)² - p h²).
+ * Two-sided p-value, from t² = p h² (p - 2)/((p - 1)² - p h²); 0 when |h| is at its bound (p - 1)/√p.
  *
  * @throws {NotComputable} `too-few-laboratories` below 3.
+ *
+ * Source: Wilrich 2013.
  */
 export function mandelHPValue(h: number, laboratories: number): number {
   requireThree(laboratories)
@@ -65,9 +76,12 @@ export function mandelHPValue(h: number, laboratories: number): number {
 }
 
 /**
- * k of every cell that has a standard deviation; the others are left out.
+ * k of every cell that has a standard deviation, in their order; the others are left out. A pure number:
+ * s_i over the s_r pooled by degrees of freedom (see above where sources differ).
  *
  * @throws {NotComputable} `no-replicates`; `no-scatter` when all replicates agree exactly.
+ *
+ * Source: ASTM E691, section 15.
  */
 export function mandelK(summaries: readonly CellSummary[]): MandelK[] {
   const cells = replicatedCells(summaries)
@@ -85,9 +99,10 @@ export interface KOf {
 
 /**
  * Of the pooled sum of squares, the share that all other cells hold, for each cell that {@link mandelK} gives and in its
- * order. The others are summed by themselves, lest a cell with nearly all of it leave them no digits.
+ * order: pure numbers from 0 to 1. The others are summed by themselves, lest a cell with nearly all of it leave them no
+ * digits.
  *
- * @throws {NotComputable} `no-scatter` when all replicates agree exactly.
+ * @throws {NotComputable} `no-scatter` when all replicates agree exactly, or there are none.
  */
 export function sharesOfOthers(summaries: readonly CellSummary[]): number[] {
   const cells = replicatedCells(summaries)
@@ -106,9 +121,12 @@ export function sharesOfOthers(summaries: readonly CellSummary[]): number[] {
 }
 
 /**
- * The k that a share alpha exceeds: k_c² = F ν/(ν_i F + ν - ν_i), F its upper point on (ν_i, ν - ν_i). Exact.
+ * The k that a share alpha exceeds: k_c² = F ν/(ν_i F + ν - ν_i), F its upper point on (ν_i, ν - ν_i). Exact for cells of
+ * any size.
  *
  * @throws {NotComputable} `too-few-replicated-cells` when the cell is the only one with replicates.
+ *
+ * Source: Wilrich 2013.
  */
 export function mandelKCritical({ df, pooledDf, alpha }: KOf & { readonly alpha: number }): number {
   requireOthers({ df, pooledDf })
@@ -121,6 +139,8 @@ export function mandelKCritical({ df, pooledDf, alpha }: KOf & { readonly alpha:
  * share of {@link sharesOfOthers}, which is (ν - ν_i k²)/ν, keeps all.
  *
  * @throws {NotComputable} `too-few-replicated-cells` when the cell is the only one with replicates.
+ *
+ * Source: Wilrich 2013.
  */
 export function mandelKPValue(
   { k, df, pooledDf }: KOf & { readonly k: number },

@@ -1,4 +1,8 @@
-/** The middle value, or the mean of the two middle ones. Needs at least one value. */
+/**
+ * The middle value, or the mean of the two middle ones, in the unit of the values. Order is irrelevant.
+ *
+ * @throws {RangeError} without a value.
+ */
 export function median(values: readonly number[]): number {
   if (values.length === 0) throw new RangeError('median requires at least one value')
   const sorted = [...values].sort((one, other) => one - other)

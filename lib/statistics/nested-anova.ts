@@ -33,7 +33,15 @@ export type NestedTest = {
 }
 
 /**
- * @throws {NotComputable} `too-few-results` when nothing is left to compare; `out-of-range`.
+ * The table of the analysis of variance and the variance components of a nested layout, outermost level first.
+ *
+ * Units: deviations in u; sums of squares, mean squares and components in u²; the coefficients of the expected mean
+ * squares are pure numbers. A component is 0 where its estimate is negative, and `raw` keeps the estimate.
+ *
+ * @throws {NotComputable} `too-few-results` when nothing is left to compare; `out-of-range` when a sum of squares
+ *   is no double to reckon with.
+ *
+ * Source: ISO 5725-3; Searle, Casella & McCulloch 1992.
  */
 export function nestedAnova(layout: NestedLayout): NestedAnova {
   if (layout.strata.length === 0) {
@@ -50,9 +58,11 @@ export function nestedAnova(layout: NestedLayout): NestedAnova {
 }
 
 /**
- * The weights w for which Σ w_l E[MS_l] is the wanted combination of variance
- * components. The system is triangular: an outer component appears in no mean
- * square further in, so the outermost weight is settled first.
+ * The weights w for which Σ w_l E[MS_l] is the wanted combination of variance components, one a row, pure numbers.
+ * A source that `wanted` does not name counts 0.
+ *
+ * The system is triangular: an outer component appears in no mean square further in, so the outermost weight is
+ * settled first.
  */
 export function weightsFor(rows: readonly AnovaRow[], wanted: Record<string, number>): number[] {
   const weights: number[] = []
@@ -67,11 +77,15 @@ export function weightsFor(rows: readonly AnovaRow[], wanted: Record<string, num
 }
 
 /**
- * F test of one level against the combination of lower mean squares that has
- * the same expectation when the level's own component is 0.
+ * F test of one level against the combination of lower mean squares that has the same expectation when the
+ * level's own component is 0. `source` is that of one of the rows.
  *
- * @throws {NotComputable} `residual` has no test; `no-denominator` when the
- *   combination is not positive.
+ * Variant: exact when one mean square alone is the denominator; otherwise synthesised, with Satterthwaite's degrees
+ * of freedom, and `kind` says which. F and the weights are pure numbers, the denominator is in u².
+ *
+ * @throws {NotComputable} `residual` has no test; `no-denominator` when the combination is not positive.
+ *
+ * Source: Searle, Casella & McCulloch 1992.
  */
 export function nestedTest(rows: readonly AnovaRow[], source: string): NestedTest {
   const level = rows.findIndex((row) => row.source === source)

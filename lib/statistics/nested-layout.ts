@@ -41,9 +41,15 @@ export type NestedLayout = {
   confounded: string | null
 }
 
+/** The innermost source of variation in every layout, whatever it is called outside. */
 export const RESIDUAL = 'residual'
 
-/** @throws {NotComputable} `confounded` where an inner level stands in the place of the replicate. */
+/**
+ * Lets pass a layout in which some results differ by the replicate alone, and one in which no laboratory holds two
+ * results: `repeatability` says why there is none.
+ *
+ * @throws {NotComputable} `confounded` where an inner level stands in the place of the replicate.
+ */
 export function requireReplicate({ confounded, levels }: NestedLayout): void {
   if (confounded === null || confounded === levels[0]) return
   throw new NotComputable(
@@ -52,6 +58,15 @@ export function requireReplicate({ confounded, levels }: NestedLayout): void {
   )
 }
 
+/**
+ * Sorts the results of one material into the tree of its levels.
+ *
+ * Shape: `levels` from the laboratory inwards, without the replicate; each path holds one label for each of them.
+ * Means are deviations in the unit of the results. Nothing is refused: without results, or with one alone, there is
+ * no stratum, and `nestedAnova` says why.
+ *
+ * Source: ISO 5725-3 for the layout.
+ */
 export function buildNestedLayout(
   levels: readonly string[],
   observations: readonly NestedObservation[],

@@ -17,17 +17,19 @@ export type RestrictedLikelihood = {
 }
 
 /**
- * Makes the function that evaluates the restricted likelihood of a nested
- * layout, in time proportional to the number of groups that differ in kind.
+ * Makes the function that evaluates the restricted likelihood of a nested layout, in time proportional to the
+ * number of groups that differ in kind. Given are the ratios of the outer components to the residual, outermost
+ * first: pure numbers, each at least 0. The residual variance comes back in u², the mean in u.
  *
- * No matrix is formed. A group of results is summed up by its precision A, its
- * weighted mean m and its weighted sum of squares Q. Groups are joined by adding
- * precisions, and a random effect of ratio θ common to a group changes A to
- * A/(1 + θA) and adds log(1 + θA) to the log determinant, while m and Q stay.
- * Working with means and not with raw sums keeps the digits that a large common
- * part would take away.
+ * No matrix is formed. A group of results is summed up by its precision A, its weighted mean m and its weighted sum
+ * of squares Q. Groups are joined by adding precisions, and a random effect of ratio θ common to a group changes A
+ * to A/(1 + θA) and adds log(1 + θA) to the log determinant, while m and Q stay. Working with means and not with
+ * raw sums keeps the digits that a large common part would take away.
  *
- * Derivatives are carried along with each value (see `Jet`), so they are exact.
+ * Derivatives are carried along with each value (see `Jet`), so they are exact. The layout must have some residual
+ * scatter: `fitReml` sees to it.
+ *
+ * Source: Searle, Casella & McCulloch 1992, chapter 6; the recursion is our own working.
  */
 export function restrictedLikelihood(
   layout: NestedLayout,

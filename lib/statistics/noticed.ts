@@ -7,8 +7,13 @@ import { tUpperTail } from '@/lib/statistics/distributions/students-t'
  */
 
 /**
- * Chance, over all cells looked at, that the results of some cell agree in every
- * digit by accident: a normal scatter rounded to steps of `step`.
+ * Chance, over all cells looked at, that the results of some cell agree in every digit by accident: a normal scatter
+ * rounded to steps of `step`. (d/(s_r√(2π)))^(n−1)/√n times the number of cells, 1 at most.
+ *
+ * `step` (d) and `sd` (s_r, of the other laboratories) are in one unit; `results` is n. 1 where there is no scatter to
+ * judge by.
+ *
+ * Source: our own.
  */
 export function chanceOfIdentical(one: { results: number; step: number; sd: number; cells: number }): number {
   if (one.sd === 0) return 1
@@ -16,16 +21,23 @@ export function chanceOfIdentical(one: { results: number; step: number; sd: numb
   return Math.min(1, (single ** (one.results - 1) / Math.sqrt(one.results)) * one.cells)
 }
 
-/** The largest step of which all the numbers are multiples; 0 when all are 0. */
+/**
+ * The largest step of which all the numbers are multiples, in their unit; 0 when all are 0.
+ *
+ * Source: our own; Euclid's algorithm.
+ */
 export function commonStep(numbers: readonly bigint[]): bigint {
   return numbers.reduce((step, number) => greatestCommonDivisor(step, number), 0n)
 }
 
 /**
  * Two-sided p-value of a straight trend of results in the order of the runs.
- * Orders and results are both taken about the mean of their cell, so that the
- * means, which cost a degree of freedom each, cannot pass for a trend. `null`
- * where there is nothing to judge by.
+ *
+ * Shape: `cells[i][j]` is result j of cell i, its value in standard deviations of its material. Orders and results are
+ * both taken about the mean of their cell, so that the means, which cost a degree of freedom each, cannot pass for a
+ * trend. `null` where there is nothing to judge by, since this is noticed and never refused.
+ *
+ * Source: our own; Student's t of a slope.
  */
 export function trendPValue(cells: readonly (readonly { order: number; value: number }[])[]): number | null {
   let orders = 0

@@ -64,7 +64,14 @@ export interface Reproducibility {
   readonly sd: number
 }
 
-/** All of them at once. @throws {NotComputable} as soon as one of them does not exist. */
+/**
+ * All of them at once.
+ *
+ * @throws {NotComputable} as soon as one of them does not exist: `no-results`, `too-few-laboratories`,
+ *   `no-replicates`, `out-of-range`.
+ *
+ * Source: ISO 5725-2:1994, 7.4.
+ */
 export function oneWayPrecision(summaries: readonly CellSummary[]): OneWayPrecision {
   return {
     means: generalMeans(summaries),
@@ -74,7 +81,14 @@ export function oneWayPrecision(summaries: readonly CellSummary[]): OneWayPrecis
   }
 }
 
-/** @throws {NotComputable} `no-results`. */
+/**
+ * The general mean m = Σ n_i ȳ_i/N and, beside it, the unweighted mean of the cell means; equal when balanced. Both
+ * are deviations in u.
+ *
+ * @throws {NotComputable} `no-results`.
+ *
+ * Source: ISO 5725-2:1994, 7.4.
+ */
 export function generalMeans(summaries: readonly CellSummary[]): GeneralMeans {
   if (summaries.length === 0) throw new NotComputable('no-results', 'There is no result.')
   const laboratories = summaries.length
@@ -89,9 +103,11 @@ export function generalMeans(summaries: readonly CellSummary[]): GeneralMeans {
 }
 
 /**
- * s_r² = Σ ν_i s_i² / Σ ν_i.
+ * s_r² = Σ ν_i s_i²/Σ ν_i, the scatter of results of one laboratory. Variance in u², sd in u.
  *
  * @throws {NotComputable} `no-replicates` when no cell has a second result; `out-of-range`.
+ *
+ * Source: ISO 5725-2:1994, 7.4; ASTM E691, section 15.
  */
 export function repeatability(summaries: readonly CellSummary[]): Repeatability {
   const cells = replicatedCells(summaries)
@@ -109,9 +125,14 @@ export function repeatability(summaries: readonly CellSummary[]): Repeatability 
 }
 
 /**
- * s_L² = (s_d² - s_r²)/n̄, with s_d² = Σ n_i (ȳ_i - m)²/(p - 1).
+ * s_L² = (s_d² - s_r²)/n̄, with s_d² = Σ n_i (ȳ_i - m)²/(p - 1): what laboratories add to their own scatter. Variances
+ * in u², sd in u.
+ *
+ * Variant: n̄ = (N - Σn²/N)/(p - 1) divides; a negative estimate is 0 in `variance` and stays in `rawVariance`.
  *
  * @throws {NotComputable} `too-few-laboratories` below 2; `no-replicates`; `out-of-range`.
+ *
+ * Source: ISO 5725-2:1994, 7.4.
  */
 export function betweenLaboratories(summaries: readonly CellSummary[]): BetweenLaboratories {
   requireLaboratories(summaries, 2)
@@ -148,10 +169,13 @@ export function betweenLaboratories(summaries: readonly CellSummary[]): BetweenL
 }
 
 /**
- * s_R² = s_L² + s_r²; where every cell holds one result, the variance of the results and said so.
+ * s_R² = s_L² + s_r², the scatter of results of different laboratories; where every cell holds one result, the variance of
+ * the results, and `basis` says so. Variance in u², sd in u.
  *
  * @throws {NotComputable} `too-few-laboratories` below 2; `no-replicates` where some cell holds several results and
  *   yet none has a standard deviation; `out-of-range`.
+ *
+ * Source: ISO 5725-2:1994, 7.4; single results by our own convention.
  */
 export function reproducibility(summaries: readonly CellSummary[]): Reproducibility {
   requireLaboratories(summaries, 2)
@@ -169,9 +193,11 @@ export interface LaboratoryFTest {
 }
 
 /**
- * The one-way F test of equal laboratories, exact for cells of any size.
+ * The one-way F test of equal laboratories, s_d²/s_r² on (p - 1, Σ ν_i) degrees of freedom; exact for cells of any size.
  *
  * @throws {NotComputable} as {@link betweenLaboratories}, and `no-scatter` when all replicates are equal.
+ *
+ * Source: Box, Hunter & Hunter, Statistics for Experimenters.
  */
 export function laboratoryFTest(summaries: readonly CellSummary[]): LaboratoryFTest {
   const between = betweenLaboratories(summaries)
@@ -182,9 +208,12 @@ export function laboratoryFTest(summaries: readonly CellSummary[]): LaboratoryFT
 }
 
 /**
- * A standard deviation as a percentage of the mean.
+ * A standard deviation as a percentage of the mean, both in one unit. The mean is the real one, not a deviation.
  *
- * @throws {NotComputable} `no-positive-mean`. Whether the scale has a true zero the caller must know.
+ * @throws {NotComputable} `no-positive-mean`; `out-of-range` when the quotient is no double. Whether the scale has a
+ *   true zero the caller must know.
+ *
+ * Source: ASTM E177.
  */
 export function relativeSdPercent(sd: number, mean: number): number {
   if (!(mean > 0)) throw new NotComputable('no-positive-mean', 'A relative value needs a mean above 0.')
@@ -193,6 +222,7 @@ export function relativeSdPercent(sd: number, mean: number): number {
   return percent
 }
 
+/** The refusal `no-scatter`, to be thrown where replicates that all agree leave nothing to compare with. */
 export function noScatter(): NotComputable {
   return new NotComputable('no-scatter', 'All replicates agree exactly: there is no scatter to compare with.')
 }

@@ -15,12 +15,22 @@ export type Differences = {
   crossing: (target: number) => { from: Corner; to: Corner } | null
 }
 
-/** Differences of results of different cells, every pair of cells counted alike. */
+/**
+ * Differences of results of different cells, every pair of cells counted alike. Sizes are in the cells' own integers;
+ * equal differences are equal, as nothing is rounded. It needs two cells, each with a result.
+ *
+ * Source: ISO 13528, Annex C.5, the distribution H and the polygon G.
+ */
 export function differencesBetween(cells: IntegerCells): Differences {
   return areSmall(cells) ? betweenCells(NUMBERS, asNumbers(cells)) : betweenCells(BIGINTS, cells)
 }
 
-/** Differences of results of one cell, every cell counted alike. Each cell holds two results or more. */
+/**
+ * Differences of results of one cell, every cell counted alike; sizes and ties as {@link differencesBetween}. Each cell
+ * holds two results or more.
+ *
+ * Source: ISO 13528, Annex C.5.
+ */
 export function differencesWithin(cells: IntegerCells): Differences {
   return areSmall(cells) ? withinCells(NUMBERS, asNumbers(cells)) : withinCells(BIGINTS, cells)
 }

@@ -9,14 +9,27 @@
  */
 export type Plan = { p: number; n: number; gamma: number }
 
-/** Needs n ≥ 2. */
+/**
+ * A_r = 1.96 √(1/(2p(n − 1))): half-width of the 95 % interval of s_r as a fraction of it. `gamma` plays no part.
+ *
+ * @throws {RangeError} below 2 laboratories or 2 replicates.
+ *
+ * Source: ISO 5725-1, 6.3.
+ */
 export function repeatabilityPrecision({ p, n }: Plan): number {
   requirePlan({ p, n, gamma: 1 })
   if (n < 2) throw new RangeError('repeatabilityPrecision requires two replicates')
   return 1.96 * Math.sqrt(1 / (2 * p * (n - 1)))
 }
 
-/** Needs p ≥ 2. */
+/**
+ * A_R = 1.96 √([p(1 + n(γ² − 1))² + (n − 1)(p − 1)]/(2γ⁴n²(p − 1)p)): half-width of the 95 % interval of s_R as a
+ * fraction of it. First order: 6 to 14 % too small at γ = 1.
+ *
+ * @throws {RangeError} below 2 laboratories, 1 replicate or a gamma of 1.
+ *
+ * Source: ISO 5725-1, 6.3.
+ */
 export function reproducibilityPrecision(plan: Plan): number {
   requirePlan(plan)
   const { p, n, gamma } = plan
@@ -24,7 +37,13 @@ export function reproducibilityPrecision(plan: Plan): number {
   return 1.96 * Math.sqrt((between + (n - 1) * (p - 1)) / (2 * gamma ** 4 * n ** 2 * (p - 1) * p))
 }
 
-/** Half-width for the bias, in units of σ_R. */
+/**
+ * A = 1.96 √((n(γ² − 1) + 1)/(γ²pn)): half-width of the 95 % interval of the method's bias, in units of σ_R.
+ *
+ * @throws {RangeError} below 2 laboratories, 1 replicate or a gamma of 1.
+ *
+ * Source: ISO 5725-1, 6.3.
+ */
 export function biasPrecision(plan: Plan): number {
   requirePlan(plan)
   const { p, n, gamma } = plan

@@ -16,12 +16,14 @@ export type SdInterval = {
 export type SdSatterthwaite = { df: number; lower: number | null; upper: number | null }
 
 /**
- * 95 % interval of a standard deviation whose variance is a combination of mean
- * squares.
+ * 95 % interval of a standard deviation whose variance is a combination of mean squares. Mean squares and
+ * `reportedVariance` in u², limits in u.
  *
- * The limits are centred on the untruncated combination. The value reported
- * beside them may differ from it: it is cut at 0, and in the one-way layout it
- * uses another divisor. Where it falls outside, the nearer limit is moved to it.
+ * The limits are centred on the untruncated combination and cut at 0. The value reported beside them may differ
+ * from it: it is cut at 0 too, and in the one-way layout it uses another divisor. Where it falls outside, the nearer
+ * limit is moved to it, and `extended` says so.
+ *
+ * Source: Burdick & Graybill 1992, 3.3; exact for s_r alone. The moved limit is our own convention.
  */
 export function sdInterval(terms: readonly WeightedMeanSquare[], reportedVariance: number): SdInterval {
   const limits = combinationInterval(terms)
@@ -33,7 +35,14 @@ export function sdInterval(terms: readonly WeightedMeanSquare[], reportedVarianc
   return { lower, upper, extended: false }
 }
 
-/** Satterthwaite's interval of the same standard deviation, as a second opinion. */
+/**
+ * Satterthwaite's 95 % interval of the same standard deviation, in u, as a second opinion; nothing is moved here.
+ * Limits are `null` on next to no degrees of freedom.
+ *
+ * @throws {NotComputable} `not-positive` when the combination is not above 0.
+ *
+ * Source: Burdick & Graybill 1992.
+ */
 export function sdSatterthwaite(terms: readonly WeightedMeanSquare[]): SdSatterthwaite {
   const { df, lower, upper } = satterthwaiteInterval(terms)
   return {
@@ -44,11 +53,14 @@ export function sdSatterthwaite(terms: readonly WeightedMeanSquare[]): SdSattert
 }
 
 /**
- * The mean squares behind s_L² and s_R² of a one-way layout, after Thomas and
- * Hultquist 1978: unweighted cell means with the harmonic mean of the cell
- * sizes. In a balanced layout these are the ordinary mean squares. Of the two
- * usual choices this one keeps its coverage when cell sizes differ badly and
- * laboratories differ much.
+ * The mean squares behind s_L² and s_R² of a one-way layout: unweighted cell means with the harmonic mean of the
+ * cell sizes. Variances in u², weights pure numbers.
+ *
+ * Variant: in a balanced layout these are the ordinary mean squares. Of the two usual choices this one keeps its
+ * coverage when cell sizes differ badly and laboratories differ much; n̄ with the weighted mean square holds better
+ * only when laboratories differ little.
+ *
+ * Source: Thomas & Hultquist 1978.
  */
 export function oneWayTerms(one: {
   laboratories: number
@@ -70,7 +82,12 @@ export function oneWayTerms(one: {
   }
 }
 
-/** The mean squares behind the sum of the named components of a nested layout. */
+/**
+ * The mean squares behind the sum of the named components of a nested layout, untruncated; rows of weight 0 are left
+ * out. Mean squares in u².
+ *
+ * Source: Burdick & Graybill 1992; the weights by `weightsFor`.
+ */
 export function nestedTerms(rows: readonly AnovaRow[], sources: readonly string[]): WeightedMeanSquare[] {
   const wanted = Object.fromEntries(sources.map((source) => [source, 1]))
   const weights = weightsFor(rows, wanted)

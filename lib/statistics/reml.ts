@@ -3,21 +3,7 @@ import { RESIDUAL } from '@/lib/statistics/nested-layout'
 import { type RestrictedLikelihood, restrictedLikelihood } from '@/lib/statistics/nested-likelihood'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
-/**
- * Variance components of a nested layout by restricted maximum likelihood.
- *
- * The residual variance is profiled out; what is searched are the ratios of the
- * other components to it, each at least 0. The search is a damped Newton method
- * with the exact gradient and curvature. A ratio whose best value is 0 is held
- * there and named in `boundary`.
- *
- * The deviance is log|V| + log(1′V⁻¹1) + (y − m̂)′V⁻¹(y − m̂) + (N − 1) log 2π.
- *
- * @throws {NotComputable} `too-few-results`; `no-residual` when results of one
- *   group never differ, because the likelihood then has no maximum.
- *
- * Source: Searle, Casella & McCulloch 1992, Variance Components, chapter 6.
- */
+/** Components in u², mean and its standard error in u, u the unit of the results. */
 export type RemlFit = {
   components: readonly { source: string; variance: number }[]
   deviance: number
@@ -32,6 +18,21 @@ export type RemlFit = {
 const GRADIENT_TOLERANCE = 1e-10
 const MOST_STEPS = 200
 
+/**
+ * Variance components of a nested layout by restricted maximum likelihood.
+ *
+ * The residual variance is profiled out; what is searched are the ratios of the other components to it, each at
+ * least 0. The search is a damped Newton method with the exact gradient and curvature. A ratio whose best value is 0
+ * is held there and named in `boundary`; `converged` tells whether the gradient came to rest. `startRatios` has one
+ * entry for each level but the residual, outermost first.
+ *
+ * Variant: the deviance is log|V| + log(1′V⁻¹1) + (y − m̂)′V⁻¹(y − m̂) + (N − 1) log 2π, without the constant log N.
+ *
+ * @throws {NotComputable} `too-few-results`; `no-residual` when results of one group never differ, because the
+ *   likelihood then has no maximum.
+ *
+ * Source: Searle, Casella & McCulloch 1992, Variance Components, chapter 6.
+ */
 export function fitReml(layout: NestedLayout, startRatios: readonly number[]): RemlFit {
   const { strata } = layout
   const residual = strata.at(-1)

@@ -1,15 +1,7 @@
 import { roundHalfEvenAtPlace } from '@/lib/statistics/decimal'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
-/**
- * Figures as a report prints them: two significant digits for a standard
- * deviation or limit, one more where the unrounded figure begins with a 1.
- *
- * The place is chosen on the unrounded figure, so a carry keeps it: 0.0996 is
- * printed 0.100.
- *
- * Sources: ASTM E177; ISO 5725-6; ISO 80000-1 (half to even).
- */
+/** Figures as a report prints them, each a function that gives plain text or refuses for itself. */
 export type RoundedPrecision = {
   mean: () => string
   repeatability: () => string
@@ -21,7 +13,15 @@ export type RoundedPrecision = {
   reproducibilityLimit: () => string
 }
 
-/** The power of ten of the last digit printed. Needs x > 0. */
+/**
+ * The power of ten of the last digit printed: two significant digits for a standard deviation or limit, one more
+ * where the unrounded figure begins with a 1. The place is chosen on the unrounded figure, so a carry keeps it:
+ * 0.0996 is printed 0.100.
+ *
+ * @throws {RangeError} for a number that is not above 0.
+ *
+ * Source: ASTM E177; ISO 5725-6.
+ */
 export function lastPlace(x: number): number {
   if (!(x > 0)) throw new RangeError('lastPlace requires a number above 0')
   const [mantissa = '', exponent = ''] = x.toExponential().split('e')
@@ -29,12 +29,16 @@ export function lastPlace(x: number): number {
 }
 
 /**
- * The standard deviations and the mean share the finer place of s_r and s_R,
- * the two limits the finer of theirs. A figure that does not exist takes no
- * part; one that is 0 has no place of its own.
+ * The figures of one material to the places a report gives them, all in the unit of the results.
  *
- * Each part of the result is a function that throws {NotComputable}
- * `nothing-to-round` or `no-place` where it has nothing to give.
+ * The standard deviations and the mean share the finer place of s_r and s_R, the two limits the finer of theirs. A
+ * figure that does not exist takes no part; one that is 0 has no place of its own. Halves go to the even digit, on
+ * the shortest decimal that gives back the double.
+ *
+ * Each part of the result is a function: @throws {NotComputable} `nothing-to-round` where the figure does not exist;
+ * `no-place` where no standard deviation above 0 sets the last digit.
+ *
+ * Source: ASTM E177; ISO 5725-6; ISO 80000-1 (half to even).
  */
 export function roundedPrecision(figures: {
   mean: number | null

@@ -15,12 +15,15 @@ export interface SpreadOfMeans {
 }
 
 /**
- * The unweighted mean and spread of cell means, on which Mandel's h and Grubbs' tests rest.
+ * The unweighted mean and spread of cell means, on which Mandel's h and Grubbs' tests rest. Mean and standard deviation in
+ * the unit of the cells, `centred` in steps of `scale` and in their order.
  *
  * Means that differ by no more than the rounding of their own computation are equal: a difference of one unit in
  * the last place would otherwise be blown up to an h of any size.
  *
  * @throws {NotComputable} `too-few-laboratories` below `atLeast`; `equal-means`.
+ *
+ * Source: ASTM E691, section 15.
  */
 export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): SpreadOfMeans {
   requireLaboratories(summaries, atLeast)
@@ -37,6 +40,11 @@ export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): S
   return { mean: first + middle * scale, sd, centred, sumOfSquares, scale }
 }
 
+/**
+ * Lets pass `atLeast` laboratories with results, or more.
+ *
+ * @throws {NotComputable} `too-few-laboratories`.
+ */
 export function requireLaboratories(summaries: readonly CellSummary[], atLeast: number): void {
   if (summaries.length >= atLeast) return
   const words = `${atLeast} laboratories with results are needed; there ${countWords(summaries.length)}.`

@@ -1,8 +1,4 @@
-/**
- * Check of a material over the time of a study: has its mean moved by more than the study can bear?
- *
- * Source: ISO 13528, Annex B, with the same 0.3 σ as the check of homogeneity.
- */
+/** The difference, in the unit of the results, and what it comes to. */
 export type StabilityVerdict = {
   /** |ȳ₁ − ȳ₂| */
   difference: number
@@ -12,9 +8,19 @@ export type StabilityVerdict = {
   expanded: boolean
 }
 
+/** One of the two means, early or late, with its standard uncertainty in the same unit. */
 export type CheckedMean = { mean: number; standardUncertainty: number }
 
-/** `target` is the standard deviation written down before the check. */
+/**
+ * Check of a material over the time of a study: has its mean moved by more than the study can bear?
+ *
+ * `target` is the standard deviation σ written down before the check, in the unit of the means. Basic: |ȳ₁ − ȳ₂| ≤ 0.3 σ,
+ * as in the check of homogeneity; expanded: with 2 √(u²(ȳ₁) + u²(ȳ₂)) added.
+ *
+ * @throws {RangeError} for a target that is not above 0.
+ *
+ * Source: ISO 13528, Annex B.
+ */
 export function stabilityVerdict(one: {
   first: CheckedMean
   second: CheckedMean

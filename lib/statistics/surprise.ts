@@ -35,12 +35,14 @@ export type Surprise = {
 const MOST = 12
 
 /**
- * What all others say, for each laboratory in order.
+ * What all others say, for each laboratory in order: means in u, variances in u², as the cells are in u.
  *
  * Sums of those before and of those after are joined. Taking one laboratory off a sum of all would lose the digits of the
  * others wherever that one has nearly the whole of it.
  *
  * @throws {NotComputable} `too-few-laboratories` below 4 laboratories.
+ *
+ * Source: our own; the joining is that of Chan, Golub & LeVeque.
  */
 export function summariseOthers(cells: readonly CellFigures[]): Others[] {
   if (cells.length < 4) throw new NotComputable('too-few-laboratories', '4 laboratories are needed.')
@@ -87,6 +89,14 @@ function joined(one: Sums, other: Sums): Sums {
   }
 }
 
+/**
+ * How little one cell is to be expected by what the other laboratories say: its mean by Student's t, its scatter by F.
+ * Cell and others in one unit; p-values and total are pure numbers.
+ *
+ * A p-value is 0 where the others do not differ at all and the cell does, and 1 where there is nothing to compare.
+ *
+ * Source: our own; t and F tests of a further laboratory.
+ */
 export function surprise(cell: CellFigures, others: Others): Surprise {
   const pMean = surpriseOfMean(cell, others)
   const pScatter = surpriseOfScatter(cell, others)

@@ -17,7 +17,14 @@ export type PlotSpread = {
   covariance: number
 }
 
-/** @throws {NotComputable} `too-few-laboratories` below 2. */
+/**
+ * Mean, standard deviations and covariance of the points, on p − 1 degrees of freedom, each in the unit of its material;
+ * the covariance in the product of the two.
+ *
+ * @throws {NotComputable} `too-few-laboratories` below 2.
+ *
+ * Source: Youden 1959.
+ */
 export function plotSpread(points: readonly PlotPoint[]): PlotSpread {
   const count = points.length
   if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories must have both materials.')
@@ -38,7 +45,11 @@ export function plotSpread(points: readonly PlotPoint[]): PlotSpread {
   return { mean, sd: [Math.sqrt(xx / df), Math.sqrt(yy / df)], covariance: xy / df }
 }
 
-/** @throws {NotComputable} `no-scatter` when one material's means are all equal. */
+/**
+ * The correlation of the two materials' cell means, from −1 to 1: near 1 where laboratories keep their place.
+ *
+ * @throws {NotComputable} `no-scatter` when one material's means are all equal.
+ */
 export function correlation({ sd, covariance }: PlotSpread): number {
   if (sd[0] === 0 || sd[1] === 0)
     throw new NotComputable('no-scatter', 'The cell means of a material are all equal.')
@@ -46,11 +57,13 @@ export function correlation({ sd, covariance }: PlotSpread): number {
 }
 
 /**
- * Squared Mahalanobis distance within which a further laboratory of the same
- * population lies with 95 %. The plotted laboratories shaped the ellipse
- * themselves, so it is not for flagging them: see `ownPValue`.
+ * Squared Mahalanobis distance within which a further laboratory of the same population lies with 95 %:
+ * 2(p² − 1)/(p(p − 2)) F_{0.95; 2, p−2}. The plotted laboratories shaped the ellipse themselves, so it is not for
+ * flagging them: see {@link ownPValue}.
  *
  * @throws {NotComputable} `too-few-laboratories` below 4.
+ *
+ * Source: Hotelling's T² of a further observation, in two dimensions.
  */
 export function predictionFactor(laboratories: number): number {
   const p = laboratories
@@ -58,13 +71,20 @@ export function predictionFactor(laboratories: number): number {
   return ((2 * (p ** 2 - 1)) / (p * (p - 2))) * fQuantileUpper(0.05, 2, p - 2)
 }
 
-/** Half-lengths of the ellipse, major first, and the direction of the major axis in (−π/2, π/2]. */
+/**
+ * Half-lengths of the ellipse at squared distance `factor`, major first, and the direction of the major axis in
+ * (−π/2, π/2]. Lengths are in the unit of the materials, which must then be one; the minor one may be 0.
+ */
 export function ellipse(spread: PlotSpread, factor: number): { semiAxes: [number, number]; angle: number } {
   const { large, small, angle } = principalAxes(spread)
   return { semiAxes: [Math.sqrt(factor * large), Math.sqrt(factor * Math.max(0, small))], angle }
 }
 
-/** @throws {NotComputable} `on-a-line` when the points do not spread in two directions. */
+/**
+ * Squared Mahalanobis distance of a point from the mean of all, a pure number.
+ *
+ * @throws {NotComputable} `on-a-line` when the points do not spread in two directions.
+ */
 export function squaredDistance(spread: PlotSpread, point: PlotPoint): number {
   const [sdX, sdY] = spread.sd
   // In standard deviations: the product of two variances may be no double.
@@ -77,10 +97,12 @@ export function squaredDistance(spread: PlotSpread, point: PlotPoint): number {
 }
 
 /**
- * Chance of so great a distance for one of the plotted laboratories, which has
- * itself a share in the centre and the covariance.
+ * Chance of so great a distance for one of the plotted laboratories, which has itself a share in the centre and the
+ * covariance: (1 − d² p/(p − 1)²)^((p − 3)/2).
  *
  * @throws {NotComputable} `too-few-laboratories` below 4.
+ *
+ * Source: in a normal sample d² p/(p − 1)² has a beta distribution, of shapes 1 and (p − 3)/2.
  */
 export function ownPValue(distance2: number, laboratories: number): number {
   if (laboratories < 4) throw new NotComputable('too-few-laboratories', 'A p-value needs four laboratories.')

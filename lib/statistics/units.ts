@@ -30,9 +30,11 @@ const LONGEST = 40
 
 /**
  * The other common units of the same kind: a result given in one of them, multiplied by its factor, is in `own`. Of
- * several that are the same unit by another name only the first is given.
+ * several that are the same unit by another name only the first is given; none may be left.
  *
  * @throws {RangeError} where `own` is no unit that the tables hold.
+ *
+ * Source: the tables of mathjs.
  */
 export function otherUnitsThan(own: string): UnitOfResults[] {
   const mine = knownUnit(own)
@@ -45,9 +47,11 @@ export function otherUnitsThan(own: string): UnitOfResults[] {
 }
 
 /**
- * The number by which a result in `from` is multiplied to be in `to`.
+ * The number by which a result in `from` is multiplied to be in `to`, to 15 digits.
  *
  * @throws {RangeError} for a text that is no unit, and for two units of different kinds.
+ *
+ * Source: the tables of mathjs.
  */
 export function unitFactor(from: string, to: string): number {
   if (!knownUnit(from).equalBase(knownUnit(to))) {
