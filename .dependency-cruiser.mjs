@@ -5,7 +5,8 @@ const COMMANDS = '^(lib|db)/commands/'
 const npm = (...names) => `node_modules/(${names.map((name) => name.replace('/', '\\/')).join('|')})(/|$)`
 
 // What could name a laboratory, or tell by its manner who wrote something.
-const QUERIES_OF_THE_VAULT = '^db/queries/(laboratories|mail|mail-states|participations|returns|uploads)\\.ts$'
+const QUERIES_OF_THE_VAULT =
+  '^db/queries/(laboratories|mail|mail-states|participations|returns|uploads)\\.ts$'
 
 /** @type {import('dependency-cruiser').IConfiguration} */
 const config = {
