@@ -1,6 +1,7 @@
 import type { AnalysisDocument, Interval, MaterialAnalysis } from '@/lib/statistics/analysis-document'
 import { DataTable, type Column } from '../primitives/data-table'
 import { Figure } from '../primitives/figure'
+import { formatFigure } from '../primitives/format-figure'
 import { noFigure, showFigures, showInterval } from './show-quantity'
 
 /** The precision figures of every material, rounded as a report rounds them. */
@@ -103,10 +104,11 @@ function rounded(
   }
 }
 
-function intermediate({ intermediate: sets }: MaterialAnalysis) {
-  return sets.map(({ varies, sd }) => (
+function intermediate({ intermediate: sets, rounded: block }: MaterialAnalysis) {
+  return sets.map(({ varies }, index) => (
     <span key={varies.join()} className="block">
-      {showFigures(sd, 3)} <span className="font-sans text-ink-soft">({varies.join(', ')})</span>
+      {formatFigure(block.intermediate[index] ?? noFigure)}{' '}
+      <span className="font-sans text-ink-soft">({varies.join(', ')})</span>
     </span>
   ))
 }
