@@ -45,7 +45,7 @@ describe('the files of this checkout', () => {
 })
 
 describe('the search', () => {
-  it.each(['see /home/ada/evenlot', 'cd /root/project', "open('/work/main/x')"])('finds %s', (text) => {
+  it.each(['see /home/ada/evenlot', 'cd /root/project', "open('/opt/checkout/x')"])('finds %s', (text) => {
     expect(text).toMatch(MACHINE_PATH)
   })
 
