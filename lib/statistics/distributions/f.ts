@@ -34,8 +34,9 @@ export function fUpperTail(x: number, df1: number, df2: number): number {
 /**
  * The x below which a share p lies.
  *
- * @throws {RangeError} for p not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9; for an x that is no
- *   double.
+ * The answer and its odds must be doubles: see {@link fQuantileUpper}.
+ *
+ * @throws {RangeError} for p not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9.
  */
 export const fQuantileLower = remembered((p: number, df1: number, df2: number): number => {
   requireFraction(p)
@@ -45,8 +46,11 @@ export const fQuantileLower = remembered((p: number, df1: number, df2: number): 
 /**
  * The x above which a share alpha lies.
  *
+ * The answer and its odds must be doubles, as they are at every level a test asks for. Where the odds are none (alpha of
+ * 1e-160 on one degree of freedom below) the search finds no end.
+ *
  * @throws {RangeError} for alpha not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9; for an x that is
- *   no double.
+ *   no double although its odds are one.
  */
 export const fQuantileUpper = remembered((alpha: number, df1: number, df2: number): number => {
   requireFraction(alpha)
