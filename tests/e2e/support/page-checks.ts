@@ -38,6 +38,7 @@ async function look(
   // Colours that are still on their way from one scheme to the other would be judged as they pass.
   await page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' })
   await page.setViewportSize({ width, height: 800 })
+  await page.evaluate(() => new Promise((drawn) => requestAnimationFrame(() => requestAnimationFrame(drawn))))
 }
 
 type Violations = Awaited<ReturnType<AxeBuilder['analyze']>>['violations']
