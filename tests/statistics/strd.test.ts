@@ -63,7 +63,7 @@ function analyse(rows: readonly { lab: string; value: string }[]) {
   return { between, within, f, mean }
 }
 
-describe.each(['sirstv', 'smls01', 'smls04', 'smls07'])('StRD %s', (name) => {
+describe.each(['sirstv', 'atmwtag', 'smls01', 'smls04', 'smls07'])('StRD %s', (name) => {
   it('agrees with every certified value in 13 digits', () => {
     const { between, within, f } = analyse(readRows(`strd_${name}`))
     const wanted = certified[name] as Certified
