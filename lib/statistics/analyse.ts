@@ -40,7 +40,11 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
   const only =
     measurands.length === 0 || measurands[0]!.measurand === null ? (measurands[0]?.materials ?? []) : null
   const all = measurands.flatMap(({ materials }) => materials)
-  const explainedMaterials = measurands.flatMap(({ materials }) => explained(materials, input.settings))
+  const explainedMaterials = explained({
+    measurands: measurands.map(({ materials }) => materials),
+    unreportedOf: unreportedMeasurands(input),
+    settings: input.settings,
+  })
 
   const analysed = withReasons((attempt): Omit<AnalysisDocument, 'reasons'> => ({
     engine: { name: 'evenlot', version: input.version },
@@ -69,13 +73,14 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
 /** Names the analysis itself gives to the outermost and the innermost source of variation. */
 const RESERVED = ['laboratory', 'residual']
 
-function requireNesting({ nesting, results }: AnalysisInput): void {
+function requireNesting({ nesting, results, otherMeasurands = [] }: AnalysisInput): void {
   if (new Set([...nesting, ...RESERVED]).size !== nesting.length + RESERVED.length) {
     throw new RangeError(
       `inner levels must differ from each other and from ${RESERVED.join(', ')}: ${nesting.join(', ')}`,
     )
   }
-  const odd = results.find(({ groups }) => groups.length !== nesting.length)
+  const isOdd = ({ groups }: AnalysisResult): boolean => groups.length !== nesting.length
+  const odd = results.find(isOdd) ?? otherMeasurands.find(isOdd)
   if (odd !== undefined) {
     throw new RangeError(
       `a result of ${odd.laboratory} has ${odd.groups.length} labels for ${nesting.length} inner levels`,
@@ -104,6 +109,20 @@ function byMeasurandAndMaterial(
     measurand,
     materials: [...materials].map(([material, own]) => ({ material, results: own })),
   }))
+}
+
+/** One material of each measurand that is not reported; analysed when asked for, which is seldom. */
+function unreportedMeasurands(input: AnalysisInput): (material: string) => AnalysedMaterial[] {
+  const groups = byMeasurandAndMaterial(input.otherMeasurands ?? [])
+  const { limitFactor } = input.settings
+  return (wanted) =>
+    groups.flatMap(({ measurand, materials }) =>
+      materials
+        .filter(({ material }) => material === wanted)
+        .map(({ material, results }) =>
+          analyseMaterial(materialData({ material, measurand, results }), input.nesting, { limitFactor }),
+        ),
+    )
 }
 
 function inputBlock({ results, nesting, sha256 }: AnalysisInput, used: number): AnalysisDocument['input'] {

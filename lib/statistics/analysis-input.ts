@@ -1,6 +1,11 @@
 /** What an analysis is made from: plain results as they were reported. */
 export type AnalysisInput = {
   results: readonly AnalysisResult[]
+  /**
+   * Results of the same laboratories for other measurands, which the document does not report. They are looked at where
+   * a laboratory may have exchanged two measurands, and nowhere else.
+   */
+  otherMeasurands?: readonly AnalysisResult[]
   /** Names of the inner levels, outermost first, without the laboratory and the replicate. */
   nesting: readonly string[]
   settings: AnalysisSettings

@@ -11,10 +11,13 @@ import { type CellFigures, type Others, surprise } from '@/lib/statistics/surpri
  */
 export type LaboratoryCell = {
   material: string
+  measurand: string | null
   /** As deviations from the material's offset. */
   values: readonly number[]
   /** The offset itself, for what multiplies or carries over whole results. */
   offset: number
+  /** The number that a text writes less the exact offset, as the values are made: rounded once, at any size of both. */
+  deviationOf: (text: string) => number
   /** As reported, for what befalls digits. */
   texts: readonly string[]
   /** The innermost group of each result; results of one group differ by the replicate alone. */
@@ -47,31 +50,39 @@ const POWERS = [-3, -2, -1, 1, 2, 3]
 /**
  * The explanations of one flagged cell worth showing, best first and three at most; none is an answer.
  *
- * `cells` are all those of the laboratory, each with its own material's others; `flagged` names the material. Values
- * in the study's unit, scores and prices in powers of ten of a probability. Shown are those of a score of 2 or more
- * after which every changed cell is plausible among the others.
+ * `cells` are all those of the laboratory for one measurand, each with its own material's others; `flagged` names the
+ * material, and `inOtherMeasurands` are the laboratory's cells of that material for other measurands. Values in the
+ * study's unit, scores and prices in powers of ten of a probability. Shown are those of a score of 2 or more after
+ * which every changed cell is plausible among the others.
  *
  * @throws {RangeError} where the laboratory has no cell of that material, or a result's text is no decimal number.
  *
  * Source: our own.
  */
-export function explanationsOf(
-  flagged: string,
-  cells: readonly LaboratoryCell[],
-  units: readonly OtherUnit[] = [],
-): Explanation[] {
+export function explanationsOf({
+  flagged,
+  cells,
+  inOtherMeasurands = [],
+  units = [],
+}: {
+  flagged: string
+  cells: readonly LaboratoryCell[]
+  inOtherMeasurands?: readonly LaboratoryCell[]
+  units?: readonly OtherUnit[]
+}): Explanation[] {
   const own = cells.find(({ material }) => material === flagged)
   if (own === undefined) throw new RangeError(`the laboratory has no cell of ${flagged}`)
   return [
     ...wholeCellFactors(own),
     ...singleResultFactors(own),
     ...otherUnits(own, cells, units),
-    ...exchanges(own, cells),
+    ...exchangedMaterials(own, cells),
+    ...exchangedMeasurands(own, inOtherMeasurands),
     ...exchangedDigits(own),
     ...commonShift(cells),
     ...oneApart(own),
   ]
-    .map((candidate) => scored(candidate, flagged))
+    .map((candidate) => scored(candidate, own))
     .filter((candidate) => candidate !== null)
     .sort((one, other) => other.score - one.score)
     .slice(0, MOST_SHOWN)
@@ -100,28 +111,40 @@ export function cellFigures(values: readonly number[], groups: readonly string[]
   return { n, mean, sd: df >= 1 ? Math.sqrt(squares / df) : undefined, df }
 }
 
+/**
+ * Two cells of one laboratory, each with the results of the other: a text stays as it was reported and is centred
+ * exactly on the offset of the cell it comes to. Done twice it gives the cells as they were.
+ *
+ * @throws {RangeError} where a text is no decimal number.
+ */
+export function exchangedCells(one: LaboratoryCell, other: LaboratoryCell): [LaboratoryCell, LaboratoryCell] {
+  return [withResultsOf(one, other), withResultsOf(other, one)]
+}
+
 type Change = { cell: LaboratoryCell; values: readonly number[]; groups: readonly string[] }
 type Candidate = { kind: ProposalKind; detail: string; price: number; changes: readonly Change[] }
 
-function scored(candidate: Candidate, flagged: string): Explanation | null {
+function scored(candidate: Candidate, flagged: LaboratoryCell): Explanation | null {
   let before = 0
   let after = 0
   let changed: CellFigures | undefined
   for (const { cell, values, groups } of candidate.changes) {
+    // A result moved or multiplied may be too large for a double, and then it explains nothing.
+    if (!values.every(Number.isFinite)) return null
     const figures = cellFigures(values, groups)
     const now = surprise(figures, cell.others)
     const least = PLAUSIBLE / candidate.changes.length
     if (now.pMean < least || now.pScatter < least) return null
     before += surprise(cellFigures(cell.values, cell.groups), cell.others).total
     after += now.total
-    if (cell.material === flagged) changed = figures
+    if (cell === flagged) changed = figures
   }
   const score = before - after - candidate.price
   if (changed === undefined || !(score >= LEAST_SCORE)) return null
   return {
     kind: candidate.kind,
     detail: candidate.detail,
-    materials: candidate.changes.map(({ cell }) => cell.material),
+    materials: [...new Set(candidate.changes.map(({ cell }) => cell.material))],
     price: candidate.price,
     score,
     surpriseBefore: before,
@@ -166,7 +189,7 @@ function otherUnits(
   ])
 }
 
-function exchanges(cell: LaboratoryCell, cells: readonly LaboratoryCell[]): Candidate[] {
+function exchangedMaterials(cell: LaboratoryCell, cells: readonly LaboratoryCell[]): Candidate[] {
   return cells
     .filter((other) => other !== cell)
     .map((other) => ({
@@ -175,6 +198,33 @@ function exchanges(cell: LaboratoryCell, cells: readonly LaboratoryCell[]): Cand
       price: Math.log10(cells.length - 1),
       changes: [carried(other, cell), carried(cell, other)],
     }))
+}
+
+/**
+ * The two cells of one material for two measurands. Scales and units of two measurands need have nothing in common, so
+ * the results are centred anew from their texts.
+ */
+function exchangedMeasurands(
+  cell: LaboratoryCell,
+  inOtherMeasurands: readonly LaboratoryCell[],
+): Candidate[] {
+  const price = Math.log10(inOtherMeasurands.length)
+  return inOtherMeasurands.map((other) => {
+    const [own, its] = exchangedCells(cell, other)
+    return {
+      kind: 'exchange',
+      detail: `${cell.measurand} ↔ ${other.measurand}`,
+      price,
+      changes: [
+        { cell, values: own.values, groups: own.groups },
+        { cell: other, values: its.values, groups: its.groups },
+      ],
+    }
+  })
+}
+
+function withResultsOf(cell: LaboratoryCell, { texts, groups }: LaboratoryCell): LaboratoryCell {
+  return { ...cell, values: texts.map((text) => cell.deviationOf(text)), texts, groups }
 }
 
 function exchangedDigits(cell: LaboratoryCell): Candidate[] {

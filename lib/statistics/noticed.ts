@@ -27,7 +27,13 @@ export function chanceOfIdentical(one: { results: number; step: number; sd: numb
  * Source: our own; Euclid's algorithm.
  */
 export function commonStep(numbers: readonly bigint[]): bigint {
-  return numbers.reduce((step, number) => greatestCommonDivisor(step, number), 0n)
+  let step = 0n
+  for (const number of numbers) {
+    step = greatestCommonDivisor(step, number)
+    // Of a divisor of 1 nothing more can be taken.
+    if (step === 1n) break
+  }
+  return step
 }
 
 /**

@@ -4,54 +4,104 @@ import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
 import { parseDecimal } from '@/lib/statistics/decimal'
 import { required, withReasons } from '@/lib/statistics/document/attempt'
 import { flaggedCells } from '@/lib/statistics/document/flagged-cells'
-import type { MaterialCell } from '@/lib/statistics/document/material-data'
+import type { MaterialCell, MaterialData } from '@/lib/statistics/document/material-data'
 import { type Explanation, explanationsOf, type LaboratoryCell } from '@/lib/statistics/explanations'
 import { mandelH, mandelK } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { chanceOfIdentical, commonStep, trendPValue } from '@/lib/statistics/noticed'
-import { summariseOthers } from '@/lib/statistics/surprise'
+import { type Others, summariseOthers } from '@/lib/statistics/surprise'
 
 /**
- * Adds to each material of one measurand what might have gone wrong in its flagged cells, and what is noticed beside.
- * The order of materials stays.
+ * Adds to each material what might have gone wrong in its flagged cells, and what is noticed beside: one list for all
+ * measurands, materials in their order within each.
+ *
+ * Each measurand is judged apart; only where a laboratory may have exchanged two of them is its cell of the same
+ * material looked at in another, those that are not reported (`unreportedOf` a material) included.
  *
  * Both are `null` with a reason below 4 laboratories; a figure that belongs to another kind of observation is `null`
  * (`other-kind`), k of a cell left with one result too (`no-replicates`).
  *
  * Source: our own; `explanations.ts`, `noticed.ts`.
  */
-export function explained(
-  materials: readonly AnalysedMaterial[],
-  settings: AnalysisSettings,
-): MaterialAnalysis[] {
-  const counted = materials
-    .flatMap(({ data }) => data.cells)
-    .filter(({ results }) => results.length >= 2).length
-  const cellsOf = cellsByLaboratory(materials)
-  const steps = commonSteps(materials)
-  // A trend is one of all materials and is told once.
-  const firstJudged = materials.find(({ summaries }) => summaries.length >= 4)
-  return materials.map((one) => {
-    if (one.summaries.length === 0) return withoutProposals(one, 'There is no result.')
-    if (one.summaries.length < 4) return withoutProposals(one, '4 laboratories are needed.')
-    const identical = identicalCells(one, cellsOf, counted)
-    const flagged = [...new Set([...flaggedCells(one.analysis), ...identical.keys()])]
-    return {
-      ...one.analysis,
-      proposals: flagged.flatMap((laboratory) =>
-        explanationsOf(one.data.material, [...cellsOf.get(laboratory)!.values()], settings.units ?? []).map(
-          (found) => proposalBlock(one, laboratory, found),
+export function explained({
+  measurands,
+  unreportedOf,
+  settings,
+}: {
+  measurands: readonly (readonly AnalysedMaterial[])[]
+  unreportedOf: (material: string) => readonly AnalysedMaterial[]
+  settings: AnalysisSettings
+}): MaterialAnalysis[] {
+  const judged = measurands.map((materials) => materials.map(judgedMaterial))
+  const inOthers = otherMeasurandsOf(judged.flat(), unreportedOf)
+  return judged.flatMap((materials) => {
+    const counted = materials
+      .flatMap(({ data }) => data.cells)
+      .filter(({ results }) => results.length >= 2).length
+    const steps = commonSteps(materials)
+    // A trend is one of all materials and is told once.
+    const firstJudged = materials.find(({ cells }) => cells.size > 0)
+    return materials.map((one) => {
+      if (one.summaries.length === 0) return withoutProposals(one, 'There is no result.')
+      if (one.cells.size === 0) return withoutProposals(one, '4 laboratories are needed.')
+      const identical = identicalCells(one, counted)
+      const flagged = [...new Set([...flaggedCells(one.analysis), ...identical.keys()])]
+      return {
+        ...one.analysis,
+        proposals: flagged.flatMap((laboratory) =>
+          explanationsOf({
+            flagged: one.data.material,
+            cells: cellsOfLaboratory(laboratory, materials),
+            inOtherMeasurands: cellsOfLaboratory(laboratory, inOthers(one)),
+            units: settings.units ?? [],
+          }).map((found) => proposalBlock(one, laboratory, found)),
         ),
-      ),
-      noticed: [
-        ...[...identical].map(([laboratory, probability]) =>
-          noticedBlock({ laboratory, kind: 'identical', probability }),
-        ),
-        ...coarseSteps(one, steps, cellsOf, settings),
-        ...(one === firstJudged ? trends(materials, cellsOf) : []),
-      ],
-    }
+        noticed: [
+          ...[...identical].map(([laboratory, probability]) =>
+            noticedBlock({ laboratory, kind: 'identical', probability }),
+          ),
+          ...coarseSteps(one, steps, settings),
+          ...(one === firstJudged ? trends(materials) : []),
+        ],
+      }
+    })
   })
+}
+
+/** A cell with what the other laboratories say of its material. */
+type JudgedCell = {
+  cell: MaterialCell
+  others: Others
+  /** Its place among the material's summaries and blocks. */
+  index: number
+}
+
+/** By laboratory, in the order of the cells; none where there are fewer than 4, too few to judge by. */
+type JudgedMaterial = AnalysedMaterial & { cells: ReadonlyMap<string, JudgedCell> }
+
+function judgedMaterial(one: AnalysedMaterial): JudgedMaterial {
+  const cells = new Map<string, JudgedCell>()
+  if (one.summaries.length < 4) return { ...one, cells }
+  const others = summariseOthers(one.summaries)
+  one.data.cells.forEach((cell, index) => cells.set(cell.laboratory, { cell, others: others[index]!, index }))
+  return { ...one, cells }
+}
+
+/** The same material in the other measurands; what is not reported is judged at the first need. */
+function otherMeasurandsOf(
+  reported: readonly JudgedMaterial[],
+  unreportedOf: (material: string) => readonly AnalysedMaterial[],
+): (one: JudgedMaterial) => readonly JudgedMaterial[] {
+  const known = new Map<string, readonly JudgedMaterial[]>()
+  return ({ data: { material, measurand } }) => {
+    if (measurand === null) return []
+    const all = known.get(material) ?? [
+      ...reported.filter(({ data }) => data.material === material),
+      ...unreportedOf(material).map(judgedMaterial),
+    ]
+    known.set(material, all)
+    return all.filter(({ data }) => data.measurand !== null && data.measurand !== measurand)
+  }
 }
 
 function withoutProposals({ analysis }: AnalysedMaterial, words: string): MaterialAnalysis {
@@ -64,49 +114,40 @@ function withoutProposals({ analysis }: AnalysedMaterial, words: string): Materi
   }
 }
 
-/** By laboratory, then by material. */
-type CellsByLaboratory = ReadonlyMap<string, ReadonlyMap<string, LaboratoryCell>>
+/** Its cells that have enough others beside them to be judged, in the order of the materials. */
+function cellsOfLaboratory(laboratory: string, materials: readonly JudgedMaterial[]): LaboratoryCell[] {
+  return materials.flatMap(({ data, cells }) => {
+    const judged = cells.get(laboratory)
+    return judged === undefined ? [] : [laboratoryCell(data, judged)]
+  })
+}
 
-/** All cells of each laboratory that have enough others beside them to be judged. */
-function cellsByLaboratory(materials: readonly AnalysedMaterial[]): CellsByLaboratory {
-  const all = new Map<string, Map<string, LaboratoryCell>>()
-  for (const { data, summaries } of materials) {
-    if (summaries.length < 4) continue
-    const others = summariseOthers(summaries)
-    data.cells.forEach((cell, index) => {
-      const own = all.get(cell.laboratory) ?? new Map<string, LaboratoryCell>()
-      all.set(cell.laboratory, own)
-      own.set(data.material, {
-        material: data.material,
-        values: [...cell.deviations],
-        offset: data.restore(0),
-        texts: cell.results.map(({ text }) => text),
-        groups: cell.results.map(({ groups }) => JSON.stringify(groups)),
-        others: others[index]!,
-      })
-    })
+function laboratoryCell(data: MaterialData, { cell, others }: JudgedCell): LaboratoryCell {
+  return {
+    material: data.material,
+    measurand: data.measurand,
+    values: [...cell.deviations],
+    offset: data.restore(0),
+    deviationOf: data.deviationOf,
+    texts: cell.results.map(({ text }) => text),
+    groups: cell.results.map(({ groups }) => JSON.stringify(groups)),
+    others,
   }
-  return all
 }
 
 /** Cells whose results agree in every digit although the others' scatter makes that unlikely. */
-function identicalCells(
-  { data }: AnalysedMaterial,
-  cellsOf: CellsByLaboratory,
-  counted: number,
-): Map<string, number> {
+function identicalCells({ cells }: JudgedMaterial, counted: number): Map<string, number> {
   const found = new Map<string, number>()
-  for (const cell of data.cells) {
+  for (const [laboratory, { cell, others }] of cells) {
     const [first, ...more] = cell.integers
     if (more.length === 0 || more.some((one) => one !== first)) continue
-    const { others } = judged(cellsOf, cell.laboratory, data.material)
     const probability = chanceOfIdentical({
       results: cell.integers.length,
       step: lastStep(cell),
       sd: Math.sqrt(others.repeatabilityVariance),
       cells: counted,
     })
-    if (probability < 0.05) found.set(cell.laboratory, probability)
+    if (probability < 0.05) found.set(laboratory, probability)
   }
   return found
 }
@@ -136,42 +177,39 @@ function commonSteps(materials: readonly AnalysedMaterial[]): Map<string, number
 }
 
 function coarseSteps(
-  { data }: AnalysedMaterial,
+  { data, cells }: JudgedMaterial,
   steps: ReadonlyMap<string, number>,
-  cellsOf: CellsByLaboratory,
   { decimals }: AnalysisSettings,
 ): Noticed[] {
   const asked = Number(`1e${-(decimals?.[data.material] ?? data.scale)}`)
-  return data.cells.flatMap(({ laboratory }): Noticed[] => {
+  return [...cells].flatMap(([laboratory, { others }]): Noticed[] => {
     const step = steps.get(laboratory) ?? 0
-    const sd = Math.sqrt(judged(cellsOf, laboratory, data.material).others.repeatabilityVariance)
+    const sd = Math.sqrt(others.repeatabilityVariance)
     if (!(step > asked * 1.5) || !(sd > 0) || !(step > sd / 2)) return []
     return [noticedBlock({ laboratory, kind: 'coarse', step, share: step ** 2 / (12 * sd ** 2) })]
   })
 }
 
-function trends(materials: readonly AnalysedMaterial[], cellsOf: CellsByLaboratory): Noticed[] {
-  return [...cellsOf.keys()].flatMap((laboratory) => {
-    const cells = materials.flatMap(({ data }) => {
-      const cell = data.cells.find((one) => one.laboratory === laboratory)
-      const others = cellsOf.get(laboratory)?.get(data.material)?.others
-      const sd = Math.sqrt(others?.repeatabilityVariance ?? 0)
-      if (cell === undefined || sd === 0) return []
-      return [
-        cell.results.flatMap(({ order }, index) =>
-          order == null ? [] : [{ order, value: cell.deviations[index]! / sd }],
-        ),
-      ]
+function trends(materials: readonly JudgedMaterial[]): Noticed[] {
+  const laboratories = new Set(materials.flatMap(({ cells }) => [...cells.keys()]))
+  return [...laboratories].flatMap((laboratory) => {
+    const runs = materials.flatMap(({ cells }) => {
+      const judged = cells.get(laboratory)
+      const sd = Math.sqrt(judged?.others.repeatabilityVariance ?? 0)
+      return judged === undefined || sd === 0 ? [] : [runsOf(judged.cell, sd)]
     })
-    const probability = trendPValue(cells.filter(({ length }) => length > 0))
+    const probability = trendPValue(runs.filter(({ length }) => length > 0))
     return probability !== null && probability < 0.01
       ? [noticedBlock({ laboratory, kind: 'trend', probability })]
       : []
   })
 }
 
-function judged(cellsOf: CellsByLaboratory, laboratory: string, material: string): LaboratoryCell {
-  return cellsOf.get(laboratory)!.get(material)!
+/** The results of a cell whose place in the order of runs is known, in units of `sd`. */
+function runsOf({ results, deviations }: MaterialCell, sd: number): { order: number; value: number }[] {
+  return results.flatMap(({ order }, index) =>
+    order == null ? [] : [{ order, value: deviations[index]! / sd }],
+  )
 }
 
 function noticedBlock(one: {
@@ -195,11 +233,10 @@ function given(value: number | undefined): number {
   return value
 }
 
-function proposalBlock(one: AnalysedMaterial, laboratory: string, found: Explanation): Proposal {
-  const own = one.analysis.cells.find((cell) => cell.laboratory === laboratory)!
-  const after = one.summaries.map((summary) =>
-    summary.laboratory === laboratory ? { ...summary, ...found.changed } : summary,
-  )
+function proposalBlock(one: JudgedMaterial, laboratory: string, found: Explanation): Proposal {
+  const { index } = one.cells.get(laboratory)!
+  const own = one.analysis.cells[index]!
+  const after = one.summaries.with(index, { ...one.summaries[index]!, ...found.changed })
   return {
     laboratory,
     kind: found.kind,
@@ -211,7 +248,7 @@ function proposalBlock(one: AnalysedMaterial, laboratory: string, found: Explana
       surprise: found.surpriseBefore,
     })),
     after: withReasons((attempt) => ({
-      h: attempt('h', () => mandelH(after).find((cell) => cell.laboratory === laboratory)!.h),
+      h: attempt('h', () => mandelH(after)[index]!.h),
       k: attempt('k', () => {
         const k = mandelK(after).find((cell) => cell.laboratory === laboratory)?.k
         if (k === undefined) throw new NotComputable('no-replicates', 'The laboratory has no second result.')
