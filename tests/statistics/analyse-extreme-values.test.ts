@@ -51,6 +51,20 @@ describe('results written with the minus sign U+2212', () => {
   })
 })
 
+describe('laboratories that lie further apart, in their own scatter, than a double has digits', () => {
+  it.each(['', 'e40', 'e120'])('are unlike beyond doubt, with figures of %s units', (exponent) => {
+    const { equality } = analyseRows(
+      rowsOf({
+        A: `1${exponent} 1.00000000000000000001${exponent}`,
+        B: '2 2.00000000000000000003',
+        C: '3 3.00000000000000000002',
+      }),
+    ).materials[0]!
+    expect(equality.rangePValue).toBeLessThan(1e-30)
+    expect(equality.pValue).toBeLessThan(1e-30)
+  })
+})
+
 describe('results about 1e-100', () => {
   const tiny = (rows: TestRow[]): TestRow[] => rows.map((row) => ({ ...row, text: `${row.text}e-100` }))
 

@@ -41,8 +41,12 @@ export function studentizedRangeUpperTail(q: number, means: number, df: number):
   return Math.min(1, sum)
 }
 
+/** A range of normal values beyond this has a chance below every double, however many values there are. */
+const WIDEST_RANGE = 60
+
 /** Upper tail of the range of `means` standard normal values, integrated over the position z of the largest. */
 function rangeUpperTail(w: number, means: number): number {
+  if (w > WIDEST_RANGE) return 0
   const step = 0.125
   let sum = 0
   // Beyond 9 either side of w/2 the integrand is below 1e-35 of its peak.
