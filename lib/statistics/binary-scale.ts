@@ -6,6 +6,11 @@
 export function binaryScale(values: Iterable<number>): number {
   let largest = 0
   for (const value of values) largest = Math.max(largest, Math.abs(value))
+  return binaryScaleOf(largest)
+}
+
+/** {@link binaryScale} of values whose largest size is known. */
+export function binaryScaleOf(largest: number): number {
   if (largest === 0) return 1
   // Held short of the ends of the exponent's range, so that dividing by it cannot overflow either.
   return 2 ** Math.max(-1000, Math.min(1000, Math.floor(Math.log2(largest))))

@@ -1,9 +1,19 @@
-import { binaryScale } from '@/lib/statistics/binary-scale'
+import { binaryScaleOf } from '@/lib/statistics/binary-scale'
 
 /** The results of one laboratory for one material, already centred exactly on the material's offset. */
 export interface Cell {
   readonly laboratory: string
   readonly deviations: readonly number[] | Float64Array
+}
+
+/**
+ * The cells of one material behind one another in one array: cell i is that of `laboratories[i]` and holds the deviations
+ * from `starts[i]` up to, and without, `starts[i + 1]`.
+ */
+export interface CellTable {
+  readonly laboratories: readonly string[]
+  readonly starts: Int32Array
+  readonly deviations: Float64Array
 }
 
 /**
@@ -26,6 +36,15 @@ export interface ReplicatedCell extends CellSummary {
   readonly sd: number
 }
 
+/** Puts cells behind one another, in the order given. */
+export function cellTable(cells: readonly Cell[]): CellTable {
+  const starts = new Int32Array(cells.length + 1)
+  cells.forEach(({ deviations }, index) => (starts[index + 1] = starts[index]! + deviations.length))
+  const all = new Float64Array(starts[cells.length]!)
+  cells.forEach(({ deviations }, index) => all.set(deviations, starts[index]))
+  return { laboratories: cells.map(({ laboratory }) => laboratory), starts, deviations: all }
+}
+
 /**
  * Number, mean and standard deviation of each cell, in the order given; cells without a result are left out.
  *
@@ -39,36 +58,44 @@ export interface ReplicatedCell extends CellSummary {
  *
  * Source: ISO 5725-2:1994, 7.4.
  */
-export function summariseCells(cells: readonly Cell[]): CellSummary[] {
+export function summariseCells({ laboratories, starts, deviations }: CellTable): CellSummary[] {
   const summaries: CellSummary[] = []
-  for (const cell of cells) if (cell.deviations.length > 0) summaries.push(summarise(cell))
+  for (let index = 0; index < laboratories.length; index += 1) {
+    const [start, end] = [starts[index]!, starts[index + 1]!]
+    if (end > start) summaries.push(summarise(laboratories[index]!, deviations, start, end))
+  }
   return summaries
 }
 
 /** The cells that have a standard deviation of their own, that is ν_i ≥ 1, in their order; it may be none. */
-export function replicatedCells(summaries: readonly CellSummary[]): ReplicatedCell[] {
-  return summaries.filter((cell): cell is ReplicatedCell => cell.df >= 1 && cell.sd !== undefined)
+export function replicatedCells(summaries: readonly CellSummary[]): readonly ReplicatedCell[] {
+  // Where all have one, as they mostly do, there is nothing to copy.
+  return summaries.every(isReplicated) ? (summaries as readonly ReplicatedCell[]) : summaries.filter(isReplicated)
 }
 
-function summarise({ laboratory, deviations }: Cell): CellSummary {
-  const n = deviations.length
-  const first = deviations[0] as number
+function isReplicated(cell: CellSummary): cell is ReplicatedCell {
+  return cell.df >= 1 && cell.sd !== undefined
+}
+
+function summarise(laboratory: string, deviations: Float64Array, start: number, end: number): CellSummary {
+  const n = end - start
+  const first = deviations[start]!
   let largest = 0
-  for (let at = 0; at < n; at += 1) {
-    const size = Math.abs((deviations[at] as number) - first)
+  for (let at = start; at < end; at += 1) {
+    const size = Math.abs(deviations[at]! - first)
     if (!(size < Infinity)) throw new RangeError(`a deviation of ${laboratory} is no finite number`)
     if (size > largest) largest = size
   }
   // Within these bounds squares stay doubles as they are.
-  const scale = largest > 1e-100 && largest < 1e100 ? 1 : binaryScale([largest])
+  const scale = largest > 1e-100 && largest < 1e100 ? 1 : binaryScaleOf(largest)
   let sum = 0
-  for (let at = 0; at < n; at += 1) sum += ((deviations[at] as number) - first) / scale
+  for (let at = start; at < end; at += 1) sum += (deviations[at]! - first) / scale
   const middle = sum / n
 
   let squares = 0
   let left = 0
-  for (let at = 0; at < n; at += 1) {
-    const residual = ((deviations[at] as number) - first) / scale - middle
+  for (let at = start; at < end; at += 1) {
+    const residual = (deviations[at]! - first) / scale - middle
     squares += residual * residual
     left += residual
   }

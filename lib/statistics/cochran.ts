@@ -1,9 +1,10 @@
-import { binaryScale } from '@/lib/statistics/binary-scale'
+import { binaryScaleOf } from '@/lib/statistics/binary-scale'
 import { replicatedCells, type CellSummary, type ReplicatedCell } from '@/lib/statistics/cells'
 import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
+import { leaveOneOut } from '@/lib/statistics/leave-one-out'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { noScatter } from '@/lib/statistics/one-way-precision'
-import { tieKeys } from '@/lib/statistics/tie-keys'
+import { placeOfLargest } from '@/lib/statistics/tie-keys'
 
 /**
  * Cochran's test for the largest of several variances, as ISO 5725-2 has it and generalised to unequal cells.
@@ -54,16 +55,16 @@ export interface GeneralisedCochran {
  */
 export function cochran(summaries: readonly CellSummary[]): Cochran {
   const cells = comparableCells(summaries)
-  const variances = cells.map((cell) => cell.sd ** 2)
-  const keys = tieKeys(variances)
-  const index = keys.reduce((best, key, at) => (key > keys[best]! ? at : best), 0)
-  const largest = variances[index] as number
+  const variances = variancesOf(cells)
+  const index = placeOfLargest(variances)
+  const largest = variances[index]!
   // The others are summed by themselves: as 1 - C they would lose their digits when one cell has nearly all.
-  const others = variances.reduce((sum, variance, at) => (at === index ? sum : sum + variance), 0)
+  let others = 0
+  for (let at = 0; at < variances.length; at += 1) if (at !== index) others += variances[at]!
   const df = modalDf(cells)
   const f = ((cells.length - 1) * largest) / others
   return {
-    laboratory: (cells[index] as ReplicatedCell).laboratory,
+    laboratory: cells[index]!.laboratory,
     statistic: largest / (largest + others),
     cells: cells.length,
     df,
@@ -103,19 +104,23 @@ export function cochranCritical({ cells, df, alpha }: CochranCriticalOf): number
  */
 export function generalisedCochran(summaries: readonly CellSummary[]): GeneralisedCochran {
   const cells = comparableCells(summaries)
-  const squares = cells.map((cell) => cell.df * cell.sd ** 2)
-  const pooledDf = cells.reduce((sum, cell) => sum + cell.df, 0)
-
+  const squares = variancesOf(cells)
+  let pooledDf = 0
+  for (let at = 0; at < squares.length; at += 1) {
+    squares[at]! *= cells[at]!.df
+    pooledDf += cells[at]!.df
+  }
   const sumsOfOthers = leaveOneOut(squares)
 
-  const tests = cells.map(({ laboratory, df }, index) => {
-    const own = squares[index] as number
-    const others = sumsOfOthers[index] as number
-    const f = own / df / (others / (pooledDf - df))
-    const pValue = Math.min(1, cells.length * fUpperTail(f, df, pooledDf - df))
-    return { laboratory, statistic: own / (own + others), cells: cells.length, df, pooledDf, pValue }
-  })
-  return tests.reduce((best, test) => (isMoreExtreme(test, best) ? test : best))
+  return largestOfEachDf(cells, squares, sumsOfOthers)
+    .map((index): GeneralisedCochran => {
+      const { laboratory, df } = cells[index]!
+      const [own, others] = [squares[index]!, sumsOfOthers[index]!]
+      const f = own / df / (others / (pooledDf - df))
+      const pValue = Math.min(1, cells.length * fUpperTail(f, df, pooledDf - df))
+      return { laboratory, statistic: own / (own + others), cells: cells.length, df, pooledDf, pValue }
+    })
+    .reduce((best, test) => (isMoreExtreme(test, best) ? test : best))
 }
 
 export interface GeneralisedCochranCriticalOf extends CochranCriticalOf {
@@ -136,13 +141,21 @@ export function generalisedCochranCritical(of: GeneralisedCochranCriticalOf): nu
   return 1 / (1 + (of.pooledDf / of.df - 1) / f)
 }
 
-/** The cells that take part, their standard deviations scaled so that they can be squared. */
-function comparableCells(summaries: readonly CellSummary[]): ReplicatedCell[] {
+function comparableCells(summaries: readonly CellSummary[]): readonly ReplicatedCell[] {
   const cells = replicatedCells(summaries)
   requireTwoCells(cells.length)
   if (cells.every((cell) => cell.sd === 0)) throw noScatter()
-  const scale = binaryScale(cells.map((cell) => cell.sd))
-  return cells.map(({ laboratory, n, mean, sd, df }) => ({ laboratory, n, mean, sd: sd / scale, df }))
+  return cells
+}
+
+/** In a unit in which standard deviations of any size can be squared. */
+function variancesOf(cells: readonly ReplicatedCell[]): Float64Array {
+  let largest = 0
+  for (const { sd } of cells) if (sd > largest) largest = sd
+  const scale = binaryScaleOf(largest)
+  const variances = new Float64Array(cells.length)
+  for (let at = 0; at < cells.length; at += 1) variances[at] = (cells[at]!.sd / scale) ** 2
+  return variances
 }
 
 function requireTwoCells(cells: number): void {
@@ -160,16 +173,27 @@ function modalDf(cells: readonly ReplicatedCell[]): number {
   return modal
 }
 
-/** The sum of all other values, for each of them: of those before and those after, lest digits cancel. */
-function leaveOneOut(values: readonly number[]): number[] {
-  const after: number[] = new Array(values.length).fill(0)
-  for (let at = values.length - 2; at >= 0; at -= 1) after[at] = after[at + 1]! + values[at + 1]!
-  let before = 0
-  return values.map((value, at) => {
-    const others = before + after[at]!
-    before += value
-    return others
-  })
+/**
+ * For each number of degrees of freedom that occurs, the place of the cell with the largest statistic, in the order of the
+ * cells: among cells of equal degrees of freedom that one has the smallest p-value.
+ */
+function largestOfEachDf(
+  cells: readonly ReplicatedCell[],
+  squares: Float64Array,
+  sumsOfOthers: Float64Array,
+): number[] {
+  const places = new Map<number, number>()
+  for (let at = 0; at < cells.length; at += 1) {
+    const { df } = cells[at]!
+    const best = places.get(df)
+    // Cross-multiplied, as one cell may hold all the scatter; differences of rounding alone are ties.
+    if (
+      best === undefined ||
+      squares[at]! * sumsOfOthers[best]! > squares[best]! * sumsOfOthers[at]! * (1 + 1e-12)
+    )
+      places.set(df, at)
+  }
+  return [...places.values()].sort((one, other) => one - other)
 }
 
 /** Ties: the larger statistic, then the order of the cells. Differences of rounding alone are ties. */

@@ -32,8 +32,8 @@ const shape = /^([+\-\u2212]?)(\d*)(?:\.(\d*))?(?:[eE]([+\-\u2212]?\d{1,9}))?$/
  * @throws {RangeError} when the text is no decimal number, or one of more than 2,000 places.
  */
 export function parseDecimal(text: string): Decimal {
-  const short = text.length <= 15 ? plainDecimal(text) : null
-  if (short !== null) return short
+  const plain = plainUnits(text)
+  if (!Number.isNaN(plain)) return { units: BigInt(plain), scale: plainScale(text) }
   const match = shape.exec(text)
   const [, sign = '', whole = '', fraction = '', exponent = '0'] = match ?? []
   const digits = whole + fraction
@@ -47,20 +47,78 @@ export function parseDecimal(text: string): Decimal {
   return { units: sign === '' || sign === '+' ? units : -units, scale: scale === 0 ? 0 : scale }
 }
 
-/** Digits with at most one point among them and a minus before: few enough for their number to be a double. */
-function plainDecimal(text: string): Decimal | null {
+/**
+ * The units of a text of digits with at most one point among them and a minus before, too few for them not to be a
+ * double; NaN for any other text.
+ */
+function plainUnits(text: string): number {
+  if (text.length > 15) return NaN
   let number = 0
-  let point = -1
+  let digits = 0
+  let hasPoint = false
   const isNegative = text.charCodeAt(0) === 45
-  const start = isNegative ? 1 : 0
-  for (let place = start; place < text.length; place += 1) {
+  for (let place = isNegative ? 1 : 0; place < text.length; place += 1) {
     const code = text.charCodeAt(place)
-    if (code >= 48 && code <= 57) number = number * 10 + (code - 48)
-    else if (code === 46 && point === -1) point = place
-    else return null
+    if (code >= 48 && code <= 57) {
+      number = number * 10 + (code - 48)
+      digits += 1
+    } else if (code === 46 && !hasPoint) hasPoint = true
+    else return NaN
   }
-  if (text.length - start - (point === -1 ? 0 : 1) === 0) return null
-  return { units: BigInt(isNegative ? -number : number), scale: point === -1 ? 0 : text.length - 1 - point }
+  if (digits === 0) return NaN
+  return isNegative ? 0 - number : number
+}
+
+/** Places behind the point of a text that {@link plainUnits} can read. */
+function plainScale(text: string): number {
+  const point = text.indexOf('.')
+  return point === -1 ? 0 : text.length - 1 - point
+}
+
+/**
+ * Whole numbers of one unit: doubles while all of them stay clear of 2^53, so that a difference of two is exact as well,
+ * and bigints where one does not.
+ */
+export type WholeNumbers = Float64Array | readonly bigint[]
+
+/** Values at a common scale: the numbers `units` × 10^-`scale`, in their order. */
+export interface ScaledDecimals {
+  readonly units: WholeNumbers
+  readonly scale: number
+}
+
+/**
+ * Reads decimal texts as whole numbers of one unit, 10^-`scale`, in their order. The scale is the finest among them; of no
+ * text it is 0.
+ *
+ * @throws {RangeError} as {@link parseDecimal}.
+ */
+export function parseDecimals(texts: readonly string[]): ScaledDecimals {
+  return parsePlainDecimals(texts) ?? toCommonScale(texts.map(parseDecimal))
+}
+
+/** The same where every text is short and plain, as nearly all are, without an object for each. */
+function parsePlainDecimals(texts: readonly string[]): ScaledDecimals | null {
+  const units = new Float64Array(texts.length)
+  const scales = new Uint8Array(texts.length)
+  let scale = 0
+  let isAtOneScale = true
+  for (let at = 0; at < texts.length; at += 1) {
+    const text = texts[at] as string
+    units[at] = plainUnits(text)
+    if (Number.isNaN(units[at])) return null
+    const own = plainScale(text)
+    if (at > 0 && own !== scale) isAtOneScale = false
+    if (own > scale) scale = own
+    scales[at] = own
+  }
+  if (isAtOneScale) return { units, scale }
+  for (let at = 0; at < units.length; at += 1) {
+    const common = units[at]! * powerOfTen(scale - scales[at]!)
+    if (!(Math.abs(common) < HALF)) return null
+    units[at] = common
+  }
+  return { units, scale }
 }
 
 /**
@@ -73,7 +131,7 @@ function plainDecimal(text: string): Decimal | null {
  * @throws {RangeError} as {@link parseDecimal}.
  */
 export function centreExactly(texts: readonly string[]): ExactlyCentred {
-  return centreUnits(toCommonScale(texts.map(parseDecimal)))
+  return centreUnits(parseDecimals(texts))
 }
 
 /**
@@ -81,24 +139,26 @@ export function centreExactly(texts: readonly string[]): ExactlyCentred {
  *
  * @throws {NotComputable} `no-results`; `out-of-range` when a difference is larger than any double.
  */
-export function centreUnits({ units, scale }: { units: readonly bigint[]; scale: number }): ExactlyCentred {
+export function centreUnits({ units, scale }: ScaledDecimals): ExactlyCentred {
   if (units.length === 0) throw new NotComputable('no-results', 'There is no result.')
   const offset = { units: medianOf(units), scale }
   const deviations = differences(units, offset)
   if (!deviations.every(Number.isFinite)) {
     throw new NotComputable('out-of-range', 'The results lie further apart than a double can hold.')
   }
-  return { offset, deviations, restore: (deviation) => decimalToNumber(addNumber(offset, deviation)) }
+  return { offset, deviations, restore: restoring(offset) }
 }
 
 /**
- * The same values as whole numbers of one unit, 10^-`scale`, in their order. The scale is the finest among them; it
- * needs one value at least.
+ * The same values as whole numbers of one unit, 10^-`scale`, in their order. The scale is the finest among them; of no
+ * value it is 0.
  */
-export function toCommonScale(decimals: readonly Decimal[]): { units: bigint[]; scale: number } {
+export function toCommonScale(decimals: readonly Decimal[]): ScaledDecimals {
   let scale = -Infinity
   for (const decimal of decimals) if (decimal.scale > scale) scale = decimal.scale
-  return { units: decimals.map((decimal) => unitsAt(decimal, scale)), scale }
+  if (scale === -Infinity) scale = 0
+  const units = decimals.map((decimal) => unitsAt(decimal, scale))
+  return { units: areSmall(units) ? Float64Array.from(units, Number) : units, scale }
 }
 
 /**
@@ -155,43 +215,66 @@ function unitsAt(decimal: Decimal, scale: number): bigint {
   return decimal.scale === scale ? decimal.units : decimal.units * 10n ** BigInt(scale - decimal.scale)
 }
 
-function medianOf(units: readonly bigint[]): bigint {
-  // As doubles they are sorted in a fraction of the time, and those of up to 15 digits are exact.
-  if (areSmall(units)) {
-    const numbers = new Float64Array(units.length)
-    for (let at = 0; at < units.length; at += 1) numbers[at] = Number(units[at])
-    numbers.sort()
-    return BigInt(numbers[(numbers.length - 1) >> 1]!)
-  }
-  const sorted = [...units].sort((a, b) => (a < b ? -1 : a > b ? 1 : 0))
-  return sorted[(sorted.length - 1) >> 1] as bigint
+function medianOf(units: WholeNumbers): bigint {
+  const middle = (units.length - 1) >> 1
+  if (units instanceof Float64Array) return BigInt(units.slice().sort()[middle]!)
+  return [...units].sort((a, b) => (a < b ? -1 : a > b ? 1 : 0))[middle]!
 }
 
-function differences(units: readonly bigint[], offset: Decimal): Float64Array {
-  const power = Math.abs(offset.scale)
-  if (power > 22 || !areSmall(units)) {
-    const { scale } = offset
+function differences(units: WholeNumbers, offset: Decimal): Float64Array {
+  const { scale } = offset
+  if (!(units instanceof Float64Array)) {
     return Float64Array.from(units, (unit) => decimalToNumber({ units: unit - offset.units, scale }))
   }
-  // 10^22 is the largest power of ten that is a double, so one correctly rounded operation is left. The power is
-  // read from its text: whether ** is exact is left to the engine.
-  const ten = Number(`1e${power}`)
   const middle = Number(offset.units)
-  const differences = new Float64Array(units.length)
-  for (let at = 0; at < units.length; at += 1) {
-    const difference = Number(units[at]) - middle
-    differences[at] = offset.scale > 0 ? difference / ten : difference * ten
-  }
+  const differences = units.map((unit) => unit - middle)
+  if (Math.abs(scale) > 22) return differences.map((difference) => Number(`${difference}e${-scale}`))
+  // 10^22 is the largest power of ten that is a double, so one correctly rounded operation is left.
+  const ten = powerOfTen(Math.abs(scale))
+  for (let at = 0; at < differences.length; at += 1)
+    differences[at] = scale > 0 ? differences[at]! / ten : differences[at]! * ten
   return differences
 }
 
 /** Clear of 2^53 by enough for a difference of two of them. */
 function areSmall(units: readonly bigint[]): boolean {
-  for (const unit of units) if (unit >= HALF || unit <= -HALF) return false
-  return true
+  return units.every((unit) => unit < HALF && unit > -HALF)
 }
 
-const HALF = 2n ** 52n
+const HALF = 2 ** 52
+
+/** Read from its text: whether ** is exact is left to the engine. */
+function powerOfTen(power: number): number {
+  return Number(`1e${power}`)
+}
+
+/**
+ * The way back from a deviation: the double nearest to the exact sum.
+ *
+ * The offset is taken as the sum of two doubles, which leaves an error of some 1e-32 of it. Where the rounded sum is the
+ * same at both ends of that error it is the nearest double; the rare other cases are reckoned in exact decimals.
+ */
+function restoring(offset: Decimal): (deviation: number) => number {
+  const exactly = (deviation: number): number => decimalToNumber(addNumber(offset, deviation))
+  const high = decimalToNumber(offset)
+  if (!(Math.abs(high) < LARGEST_PLAIN)) return exactly
+  const low = decimalToNumber(subtractDecimals(offset, exactDecimal(high)))
+  return (deviation) => {
+    const sum = high + deviation
+    const size = Math.abs(sum)
+    if (!(size > SMALLEST_PLAIN && size < LARGEST_PLAIN)) return exactly(deviation)
+    // Knuth: what the rounding of a sum of two doubles has lost is a double itself.
+    const ofDeviation = sum - high
+    const rest = high - (sum - ofDeviation) + (deviation - ofDeviation) + low
+    const doubt = 2 ** -50 * Math.abs(rest) + 2 ** -104 * Math.abs(high)
+    const up = sum + (rest + doubt)
+    return up === sum + (rest - doubt) ? up : exactly(deviation)
+  }
+}
+
+/** Between these neither a sum overflows nor its error falls below every double. */
+const LARGEST_PLAIN = 1e300
+const SMALLEST_PLAIN = 1e-200
 
 function addNumber(a: Decimal, x: number): Decimal {
   return subtractDecimals(a, exactDecimal(-x))

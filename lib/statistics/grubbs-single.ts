@@ -2,7 +2,7 @@ import type { CellSummary } from '@/lib/statistics/cells'
 import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
-import { tieKeys } from '@/lib/statistics/tie-keys'
+import { placeOfLargest, placeOfSmallest } from '@/lib/statistics/tie-keys'
 
 export type End = 'high' | 'low'
 
@@ -30,11 +30,10 @@ export interface GrubbsSingle {
 export function grubbsSingle(summaries: readonly CellSummary[], end: End): GrubbsSingle {
   const { centred, sumOfSquares } = spreadOfMeans(summaries, 3)
   const p = summaries.length
-  const keys = tieKeys(centred)
-  const index = furthest(keys, end)
+  const index = end === 'high' ? placeOfLargest(centred) : placeOfSmallest(centred)
   return {
-    laboratory: (summaries[index] as CellSummary).laboratory,
-    statistic: Math.abs(centred[index] as number) / Math.sqrt(sumOfSquares / (p - 1)),
+    laboratory: summaries[index]!.laboratory,
+    statistic: Math.abs(centred[index]!) / Math.sqrt(sumOfSquares / (p - 1)),
     laboratories: p,
     pValue: Math.min(1, 2 * p * tUpperTail(distanceFromOthers(centred, index), p - 2)),
   }
@@ -53,21 +52,14 @@ export function grubbsSingleCritical(laboratories: number, alpha: number): numbe
   return (laboratories - 1) / Math.sqrt(laboratories * (1 + (laboratories - 2) / t / t))
 }
 
-/** The first of the extreme ones. */
-function furthest(keys: readonly number[], end: End): number {
-  let place = 0
-  for (let index = 1; index < keys.length; index += 1) {
-    if (end === 'high' ? keys[index]! > keys[place]! : keys[index]! < keys[place]!) place = index
-  }
-  return place
-}
-
-function distanceFromOthers(values: readonly number[], index: number): number {
-  const others = values.filter((_, at) => at !== index)
-  const count = others.length
-  const mean = others.reduce((sum, value) => sum + value, 0) / count
-  const squares = others.reduce((sum, value) => sum + (value - mean) ** 2, 0)
-  const distance = Math.abs((values[index] as number) - mean)
+function distanceFromOthers(values: Float64Array, index: number): number {
+  const count = values.length - 1
+  let sum = 0
+  for (let at = 0; at < values.length; at += 1) if (at !== index) sum += values[at]!
+  const mean = sum / count
+  let squares = 0
+  for (let at = 0; at < values.length; at += 1) if (at !== index) squares += (values[at]! - mean) ** 2
+  const distance = Math.abs(values[index]! - mean)
   if (squares === 0) return Infinity
   return distance / Math.sqrt((squares / (count - 1)) * (1 + 1 / count))
 }

@@ -1,9 +1,9 @@
-import { binaryScale } from '@/lib/statistics/binary-scale'
 import { replicatedCells, type CellSummary } from '@/lib/statistics/cells'
 import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
 import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
+import { leaveOneOut } from '@/lib/statistics/leave-one-out'
 import { NotComputable } from '@/lib/statistics/not-computable'
-import { noScatter, repeatability } from '@/lib/statistics/one-way-precision'
+import { noScatter, pooledSquares } from '@/lib/statistics/one-way-precision'
 import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
 
 /**
@@ -42,7 +42,7 @@ export interface MandelK {
 export function mandelH(summaries: readonly CellSummary[]): MandelH[] {
   const { centred, sumOfSquares } = spreadOfMeans(summaries)
   const sd = Math.sqrt(sumOfSquares / (summaries.length - 1))
-  return summaries.map(({ laboratory }, index) => ({ laboratory, h: (centred[index] as number) / sd }))
+  return summaries.map(({ laboratory }, index) => ({ laboratory, h: centred[index]! / sd }))
 }
 
 /**
@@ -85,11 +85,11 @@ export function mandelHPValue(h: number, laboratories: number): number {
  */
 export function mandelK(summaries: readonly CellSummary[]): MandelK[] {
   const cells = replicatedCells(summaries)
-  const scale = binaryScale(cells.map((cell) => cell.sd))
-  const scaled = cells.map(({ laboratory, n, mean, sd, df }) => ({ laboratory, n, mean, sd: sd / scale, df }))
-  const pooled = repeatability(scaled)
-  if (pooled.sd === 0) throw noScatter()
-  return scaled.map(({ laboratory, sd, df }) => ({ laboratory, k: sd / pooled.sd, df, pooledDf: pooled.df }))
+  const { sumOfSquares, df: pooledDf, scale } = pooledSquares(cells)
+  if (pooledDf === 0) throw new NotComputable('no-replicates', 'No laboratory has a second result.')
+  if (sumOfSquares === 0) throw noScatter()
+  const pooled = Math.sqrt(sumOfSquares / pooledDf)
+  return cells.map(({ laboratory, sd, df }) => ({ laboratory, k: sd / scale / pooled, df, pooledDf }))
 }
 
 export interface KOf {
@@ -106,18 +106,10 @@ export interface KOf {
  */
 export function sharesOfOthers(summaries: readonly CellSummary[]): number[] {
   const cells = replicatedCells(summaries)
-  const scale = binaryScale(cells.map((cell) => cell.sd))
-  const squares = cells.map(({ df, sd }) => df * (sd / scale) ** 2)
-  const total = squares.reduce((sum, square) => sum + square, 0)
-  if (total === 0) throw noScatter()
-  const after = [0]
-  for (const square of squares.slice(1).reverse()) after.unshift(after[0]! + square)
-  let before = 0
-  return squares.map((square, index) => {
-    const others = before + after[index]!
-    before += square
-    return others / total
-  })
+  const { sumOfSquares, scale } = pooledSquares(cells)
+  if (sumOfSquares === 0) throw noScatter()
+  const squares = Float64Array.from(cells, ({ df, sd }) => df * (sd / scale) ** 2)
+  return Array.from(leaveOneOut(squares), (others) => others / sumOfSquares)
 }
 
 /**

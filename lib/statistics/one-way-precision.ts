@@ -1,5 +1,5 @@
-import { binaryScale } from '@/lib/statistics/binary-scale'
-import { replicatedCells, type CellSummary } from '@/lib/statistics/cells'
+import { binaryScaleOf } from '@/lib/statistics/binary-scale'
+import type { CellSummary } from '@/lib/statistics/cells'
 import { fUpperTail } from '@/lib/statistics/distributions/f'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { requireLaboratories } from '@/lib/statistics/spread-of-means'
@@ -73,11 +73,14 @@ export interface Reproducibility {
  * Source: ISO 5725-2:1994, 7.4.
  */
 export function oneWayPrecision(summaries: readonly CellSummary[]): OneWayPrecision {
+  const means = generalMeans(summaries)
+  const within = repeatability(summaries)
+  const between = betweenFrom(summaries, means, within)
   return {
-    means: generalMeans(summaries),
-    repeatability: repeatability(summaries),
-    betweenLaboratories: betweenLaboratories(summaries),
-    reproducibility: reproducibility(summaries),
+    means,
+    repeatability: within,
+    betweenLaboratories: between,
+    reproducibility: reproducibilityFrom(between, within),
   }
 }
 
@@ -92,14 +95,16 @@ export function oneWayPrecision(summaries: readonly CellSummary[]): OneWayPrecis
 export function generalMeans(summaries: readonly CellSummary[]): GeneralMeans {
   if (summaries.length === 0) throw new NotComputable('no-results', 'There is no result.')
   const laboratories = summaries.length
-  const results = sumOver(summaries, (cell) => cell.n)
-  return {
-    laboratories,
-    results,
-    // Each mean is divided before it is added, lest two of 1e308 overflow.
-    weighted: sumOver(summaries, (cell) => cell.mean * (cell.n / results)),
-    unweighted: sumOver(summaries, (cell) => cell.mean / laboratories),
+  let results = 0
+  for (const { n } of summaries) results += n
+  let weighted = 0
+  let unweighted = 0
+  // Each mean is divided before it is added, lest two of 1e308 overflow.
+  for (const { n, mean } of summaries) {
+    weighted += mean * (n / results)
+    unweighted += mean / laboratories
   }
+  return { laboratories, results, weighted, unweighted }
 }
 
 /**
@@ -110,18 +115,41 @@ export function generalMeans(summaries: readonly CellSummary[]): GeneralMeans {
  * Source: ISO 5725-2:1994, 7.4; ASTM E691, section 15.
  */
 export function repeatability(summaries: readonly CellSummary[]): Repeatability {
-  const cells = replicatedCells(summaries)
-  const df = sumOver(cells, (cell) => cell.df)
+  const { sumOfSquares, df, scale } = pooledSquares(summaries)
   if (df === 0) throw new NotComputable('no-replicates', 'No laboratory has a second result.')
-
-  const scale = binaryScale(cells.map((cell) => cell.sd))
-  const sumOfSquares = sumOver(cells, (cell) => cell.df * (cell.sd / scale) ** 2)
   return {
     sumOfSquares: unscaled(sumOfSquares, scale),
     df,
     variance: unscaled(sumOfSquares / df, scale),
     sd: Math.sqrt(sumOfSquares / df) * scale,
   }
+}
+
+export interface PooledSquares {
+  /** Σ ν_i s_i² in units of `scale` squared. */
+  readonly sumOfSquares: number
+  readonly df: number
+  /** A power of two near the largest standard deviation, in u. */
+  readonly scale: number
+}
+
+/** The scatter inside the cells that have some, before it must be a double in u²; 0 on 0 df where none has a second result. */
+export function pooledSquares(summaries: readonly CellSummary[]): PooledSquares {
+  let largest = 0
+  let df = 0
+  for (const cell of summaries) {
+    if (cell.df < 1 || cell.sd === undefined) continue
+    if (cell.sd > largest) largest = cell.sd
+    df += cell.df
+  }
+  const scale = binaryScaleOf(largest)
+  let sumOfSquares = 0
+  for (const cell of summaries) {
+    if (cell.df < 1 || cell.sd === undefined) continue
+    const sd = cell.sd / scale
+    sumOfSquares += cell.df * (sd * sd)
+  }
+  return { sumOfSquares, df, scale }
 }
 
 /**
@@ -136,36 +164,7 @@ export function repeatability(summaries: readonly CellSummary[]): Repeatability 
  */
 export function betweenLaboratories(summaries: readonly CellSummary[]): BetweenLaboratories {
   requireLaboratories(summaries, 2)
-  const within = repeatability(summaries)
-  const p = summaries.length
-  const df = p - 1
-  const { results, weighted, unweighted } = generalMeans(summaries)
-
-  const scale = binaryScale(summaries.map((cell) => cell.mean - weighted))
-  const sumOfSquares = unscaled(
-    squaresAbout(summaries, { centre: weighted, scale, weight: (cell) => cell.n }),
-    scale,
-  )
-  const squaresOfMeans = unscaled(
-    squaresAbout(summaries, { centre: unweighted, scale, weight: () => 1 }),
-    scale,
-  )
-  const meanSquare = sumOfSquares / df
-  const effectiveReplicates = (results - sumOver(summaries, (cell) => cell.n ** 2) / results) / df
-  const harmonicReplicates = p / sumOver(summaries, (cell) => 1 / cell.n)
-  const rawVariance = (meanSquare - within.variance) / effectiveReplicates
-  const variance = Math.max(0, rawVariance)
-  return {
-    sumOfSquares,
-    df,
-    meanSquare,
-    effectiveReplicates,
-    harmonicReplicates,
-    meanSquareOfMeans: (harmonicReplicates * squaresOfMeans) / df,
-    rawVariance,
-    variance,
-    sd: Math.sqrt(variance),
-  }
+  return betweenFrom(summaries, generalMeans(summaries), repeatability(summaries))
 }
 
 /**
@@ -181,8 +180,8 @@ export function reproducibility(summaries: readonly CellSummary[]): Reproducibil
   requireLaboratories(summaries, 2)
   if (summaries.every((cell) => cell.n === 1)) return spreadOfSingleResults(summaries)
 
-  const variance = betweenLaboratories(summaries).variance + repeatability(summaries).variance
-  return { basis: 'components', variance, sd: Math.sqrt(variance) }
+  const within = repeatability(summaries)
+  return reproducibilityFrom(betweenFrom(summaries, generalMeans(summaries), within), within)
 }
 
 export interface LaboratoryFTest {
@@ -200,8 +199,9 @@ export interface LaboratoryFTest {
  * Source: Box, Hunter & Hunter, Statistics for Experimenters.
  */
 export function laboratoryFTest(summaries: readonly CellSummary[]): LaboratoryFTest {
-  const between = betweenLaboratories(summaries)
+  requireLaboratories(summaries, 2)
   const within = repeatability(summaries)
+  const between = betweenFrom(summaries, generalMeans(summaries), within)
   if (within.variance === 0) throw noScatter()
   const f = between.meanSquare / within.variance
   return { f, df1: between.df, df2: within.df, pValue: fUpperTail(f, between.df, within.df) }
@@ -227,30 +227,78 @@ export function noScatter(): NotComputable {
   return new NotComputable('no-scatter', 'All replicates agree exactly: there is no scatter to compare with.')
 }
 
+function betweenFrom(
+  summaries: readonly CellSummary[],
+  { results, weighted, unweighted }: GeneralMeans,
+  within: Repeatability,
+): BetweenLaboratories {
+  requireLaboratories(summaries, 2)
+  const p = summaries.length
+  const df = p - 1
+  let squaredSizes = 0
+  let inverseSizes = 0
+  for (const { n } of summaries) {
+    squaredSizes += n * n
+    inverseSizes += 1 / n
+  }
+  const scale = binaryScaleOf(largestDistance(summaries, weighted))
+  const sumOfSquares = unscaled(squaresAbout(summaries, { centre: weighted, scale, isWeighted: true }), scale)
+  const ofMeans = unscaled(squaresAbout(summaries, { centre: unweighted, scale, isWeighted: false }), scale)
+  const meanSquare = sumOfSquares / df
+  const effectiveReplicates = (results - squaredSizes / results) / df
+  const harmonicReplicates = p / inverseSizes
+  const rawVariance = (meanSquare - within.variance) / effectiveReplicates
+  const variance = Math.max(0, rawVariance)
+  return {
+    sumOfSquares,
+    df,
+    meanSquare,
+    effectiveReplicates,
+    harmonicReplicates,
+    meanSquareOfMeans: (harmonicReplicates * ofMeans) / df,
+    rawVariance,
+    variance,
+    sd: Math.sqrt(variance),
+  }
+}
+
+function reproducibilityFrom(between: BetweenLaboratories, within: Repeatability): Reproducibility {
+  const variance = between.variance + within.variance
+  return { basis: 'components', variance, sd: Math.sqrt(variance) }
+}
+
 function spreadOfSingleResults(summaries: readonly CellSummary[]): Reproducibility {
   const { unweighted } = generalMeans(summaries)
-  const scale = binaryScale(summaries.map((cell) => cell.mean - unweighted))
-  const squares = squaresAbout(summaries, { centre: unweighted, scale, weight: () => 1 })
+  const scale = binaryScaleOf(largestDistance(summaries, unweighted))
+  const squares = squaresAbout(summaries, { centre: unweighted, scale, isWeighted: false })
   const mean = squares / (summaries.length - 1)
   return { basis: 'single results', variance: unscaled(mean, scale), sd: Math.sqrt(mean) * scale }
+}
+
+function largestDistance(summaries: readonly CellSummary[], centre: number): number {
+  let largest = 0
+  for (const { mean } of summaries) largest = Math.max(largest, Math.abs(mean - centre))
+  return largest
 }
 
 interface SquaresOf {
   centre: number
   scale: number
-  weight: (cell: CellSummary) => number
+  /** Each mean counts as often as its cell has results. */
+  isWeighted: boolean
 }
 
 /** Σ w (ȳ - centre)² in units of `scale` squared, less what rounding left in the centre. */
-function squaresAbout(summaries: readonly CellSummary[], { centre, scale, weight }: SquaresOf): number {
+function squaresAbout(summaries: readonly CellSummary[], { centre, scale, isWeighted }: SquaresOf): number {
   let squares = 0
   let left = 0
   let weights = 0
-  for (const cell of summaries) {
-    const residual = (cell.mean - centre) / scale
-    squares += weight(cell) * residual * residual
-    left += weight(cell) * residual
-    weights += weight(cell)
+  for (const { n, mean } of summaries) {
+    const residual = (mean - centre) / scale
+    const weight = isWeighted ? n : 1
+    squares += weight * residual * residual
+    left += weight * residual
+    weights += weight
   }
   return Math.max(0, squares - (left * left) / weights)
 }
@@ -267,10 +315,4 @@ function outOfRange(): NotComputable {
     'out-of-range',
     'The results are too large or too small to be squared; change their unit.',
   )
-}
-
-function sumOver<T>(items: readonly T[], value: (item: T) => number): number {
-  let sum = 0
-  for (const item of items) sum += value(item)
-  return sum
 }

@@ -1,4 +1,4 @@
-import { binaryScale } from '@/lib/statistics/binary-scale'
+import { binaryScaleOf } from '@/lib/statistics/binary-scale'
 import type { CellSummary } from '@/lib/statistics/cells'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
@@ -8,7 +8,7 @@ export interface SpreadOfMeans {
   /** Their standard deviation, on p - 1 degrees of freedom. */
   readonly sd: number
   /** Cell mean less `mean`, divided by `scale`, in the order of the cells. */
-  readonly centred: readonly number[]
+  readonly centred: Float64Array
   readonly sumOfSquares: number
   /** A power of two in which `centred` and (squared) `sumOfSquares` are expressed. */
   readonly scale: number
@@ -27,15 +27,26 @@ export interface SpreadOfMeans {
  */
 export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): SpreadOfMeans {
   requireLaboratories(summaries, atLeast)
-  if (meansAreEqual(summaries)) throw new NotComputable('equal-means', 'All cell means are equal.')
-
   const p = summaries.length
-  const first = (summaries[0] as CellSummary).mean
-  const scale = binaryScale(summaries.map((cell) => cell.mean - first))
-  const shifted = summaries.map((cell) => (cell.mean - first) / scale)
-  const middle = shifted.reduce((sum, value) => sum + value, 0) / p
-  const centred = shifted.map((value) => value - middle)
-  const sumOfSquares = centred.reduce((sum, value) => sum + value * value, 0)
+  const first = summaries[0]!.mean
+  const { range, largest, reach } = extent(summaries, first)
+  if (range <= 8 * Number.EPSILON * reach) throw new NotComputable('equal-means', 'All cell means are equal.')
+
+  const scale = binaryScaleOf(largest)
+  const centred = new Float64Array(p)
+  let sum = 0
+  for (let at = 0; at < p; at += 1) {
+    const shifted = (summaries[at]!.mean - first) / scale
+    centred[at] = shifted
+    sum += shifted
+  }
+  const middle = sum / p
+  let sumOfSquares = 0
+  for (let at = 0; at < p; at += 1) {
+    const distance = centred[at]! - middle
+    centred[at] = distance
+    sumOfSquares += distance * distance
+  }
   const sd = Math.sqrt(sumOfSquares / (p - 1)) * scale
   return { mean: first + middle * scale, sd, centred, sumOfSquares, scale }
 }
@@ -55,15 +66,19 @@ function countWords(count: number): string {
   return count === 1 ? 'is 1' : `are ${count}`
 }
 
-function meansAreEqual(summaries: readonly CellSummary[]): boolean {
+/** How far the means reach from one another and from the first, and the results of all cells from 0 at most. */
+function extent(
+  summaries: readonly CellSummary[],
+  first: number,
+): { range: number; largest: number; reach: number } {
   let least = Infinity
   let most = -Infinity
   let reach = 0
   for (const { mean, sd = 0, n } of summaries) {
-    least = Math.min(least, mean)
-    most = Math.max(most, mean)
+    if (mean < least) least = mean
+    if (mean > most) most = mean
     // No result of a cell lies further from 0 than this; the rounding of its mean is a few units in that last place.
     reach = Math.max(reach, Math.abs(mean) + sd * Math.sqrt(n))
   }
-  return most - least <= 8 * Number.EPSILON * reach
+  return { range: most - least, largest: Math.max(most - first, first - least), reach }
 }
