@@ -36,14 +36,15 @@ function consequence({ kind, before, after }: Proposal): string {
   return `${kind === 'oneApart' ? 'Without it' : 'Corrected so'}, the cell would fit the others${figures.length > 0 ? `: ${figures.join(', ')}` : ''}.`
 }
 
-/** A figure as it would be and as it is; nothing where it would not be. */
+/** A figure as it would be and, where that shows, as it is; nothing where it would not be. */
 function change(figure: 'h' | 'k' | 'surprise', before: ProposalState, after: ProposalState): string[] {
   const [is, wouldBe] = [before[figure], after[figure]]
   if (wouldBe === null) return []
   const show = (value: number) =>
     figure === 'surprise' ? formatFigure(value.toFixed(1)) : showStatistic(value)
   const name = figure === 'surprise' ? `surprise\u00a0` : `${figure}\u00a0=\u00a0`
-  return [`${name}${show(wouldBe)}${is === null ? '' : ` instead of ${show(is)}`}`]
+  const differs = is !== null && show(is) !== show(wouldBe)
+  return [`${name}${show(wouldBe)}${differs ? ` instead of ${show(is)}` : ''}`]
 }
 
 const shown = (text: string) => text.replaceAll('-', '\u2212')
