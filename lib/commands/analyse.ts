@@ -17,6 +17,10 @@ process.stdout.on('error', (error: NodeJS.ErrnoException) => {
   if (error.code !== 'EPIPE') throw error
 })
 
+type ReadFile = { results: AnalysisResult[]; otherMeasurands: AnalysisResult[]; bytes: Uint8Array }
+
+const NO_FILE: ReadFile = { results: [], otherMeasurands: [], bytes: new Uint8Array() }
+
 await main(process.argv.slice(2))
 
 async function main(args: readonly string[]): Promise<void> {
@@ -26,11 +30,12 @@ async function main(args: readonly string[]): Promise<void> {
   const settings = await withUnits(options)
   if (settings === null) return
 
-  const read = options.file === null ? { results: [], bytes: new Uint8Array() } : await readResults(options)
+  const read = options.file === null ? NO_FILE : await readResults(options)
   if (read === null) return
 
   const document = analyse({
     results: read.results,
+    otherMeasurands: read.otherMeasurands,
     nesting: options.nesting,
     settings,
     sha256: createHash('sha256').update(read.bytes).digest('hex'),
@@ -52,9 +57,7 @@ async function withUnits({ unit, settings }: AnalyseOptions): Promise<AnalysisSe
   }
 }
 
-async function readResults(
-  options: AnalyseOptions,
-): Promise<{ results: AnalysisResult[]; bytes: Uint8Array } | null> {
+async function readResults(options: AnalyseOptions): Promise<ReadFile | null> {
   const file = options.file!
   let bytes: Uint8Array
   try {
@@ -64,13 +67,13 @@ async function readResults(
     refuse([`${file}: the file cannot be read (${code})`])
     return null
   }
-  const { results, problems } = await readAnalysisFile(bytes, options)
+  const { results, otherMeasurands, problems } = await readAnalysisFile(bytes, options)
   const all = [...problems, ...unknownMaterials(options, results)]
   if (all.length > 0) {
     refuse(all.map((problem) => inWords(file, problem)))
     return null
   }
-  return { results, bytes }
+  return { results, otherMeasurands, bytes }
 }
 
 /** Materials that an option names and the file does not have. */

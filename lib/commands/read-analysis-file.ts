@@ -13,6 +13,8 @@ export type AnalysisFileProblem = {
 
 export type AnalysisFileReading = {
   results: AnalysisResult[]
+  /** The rest of the file where one measurand of several was chosen. */
+  otherMeasurands: AnalysisResult[]
   problems: AnalysisFileProblem[]
 }
 
@@ -39,10 +41,10 @@ export async function readAnalysisFile(
 ): Promise<AnalysisFileReading> {
   const problems: AnalysisFileProblem[] = []
   const table = await readTable(bytes, problems)
-  if (table === null) return { results: [], problems }
+  if (table === null) return { ...NOTHING, problems }
 
   const columns = findColumns(table.header, options, problems)
-  if (columns === null) return { results: [], problems }
+  if (columns === null) return { ...NOTHING, problems }
 
   const reading: Reading = { columns, options, table, problems, names: new Map() }
   const results: AnalysisResult[] = []
@@ -56,8 +58,12 @@ export async function readAnalysisFile(
   if (rows === 0) {
     problems.push({ row: null, column: null, found: 'no row below the header', expected: 'one row a result' })
   }
-  return { results: ofOneMeasurand(results, columns, options, problems), problems }
+  return { ...ofOneMeasurand(results, columns, options, problems), problems }
 }
+
+type Measurands = Omit<AnalysisFileReading, 'problems'>
+
+const NOTHING: Measurands = { results: [], otherMeasurands: [] }
 
 /** A row of texts and where it stands in the file, counted from 1. */
 type Row = { at: number; values: readonly string[] }
@@ -353,27 +359,27 @@ function ofOneMeasurand(
   columns: Columns,
   { measurand }: AnalysisFileOptions,
   problems: AnalysisFileProblem[],
-): AnalysisResult[] {
+): Measurands {
   if (columns.measurand === null) {
-    if (measurand === null) return results
+    if (measurand === null) return { results, otherMeasurands: [] }
     problems.push({
       row: 1,
       column: 'measurand',
       found: 'no such column',
       expected: `one that holds ${measurand}`,
     })
-    return []
+    return NOTHING
   }
   const names = [...new Set(results.map((result) => result.measurand))]
   if (measurand === null) {
-    if (names.length <= 1) return results
+    if (names.length <= 1) return { results, otherMeasurands: [] }
     const expected = 'one of them, chosen by --measurand'
     problems.push({ row: null, column: 'measurand', found: names.join(', '), expected })
-    return []
+    return NOTHING
   }
   const own = results.filter((result) => result.measurand === measurand)
   if (own.length === 0) {
     problems.push({ row: null, column: 'measurand', found: names.join(', '), expected: measurand })
   }
-  return own
+  return { results: own, otherMeasurands: results.filter((result) => result.measurand !== measurand) }
 }

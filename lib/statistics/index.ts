@@ -2,6 +2,8 @@
 export { analyse } from '@/lib/statistics/analyse'
 export type * from '@/lib/statistics/analysis-document'
 export type { AnalysisInput, AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
+export { equalProposals } from '@/lib/statistics/equal-proposals'
+export { flaggedCells } from '@/lib/statistics/document/flagged-cells'
 export { type LaboratoryBias, laboratoryBias } from '@/lib/statistics/laboratory-bias'
 export { type CheckedMean, type StabilityVerdict, stabilityVerdict } from '@/lib/statistics/stability'
 export { NotComputable } from '@/lib/statistics/not-computable'

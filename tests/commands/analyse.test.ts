@@ -111,6 +111,40 @@ describe('the analyse command', () => {
     expect(materials[0]!.results).toBe(4)
   })
 
+  it('looks at the other measurands of a file for an exchange, and for nothing else', async () => {
+    // A second measurand a quarter higher than glucose, but for laboratory 3 and material C, where the names changed places.
+    const [, ...lines] = (await readFile(data('e691_glucose.csv'), 'utf8')).trim().split('\n')
+    const rows = lines.map((line) => {
+      const [lab, material, , value] = line.split(',')
+      const names = lab === 'L03' && material === 'C' ? ['second', 'first'] : ['first', 'second']
+      return names.map((name, place) => {
+        const text = place === 0 ? value! : (Number(value) * 1.25).toFixed(2)
+        return [lab, material, name, text].join(',')
+      })
+    })
+    const all = rows.flat().filter((row) => row !== '')
+    const both = await file('both.csv', ['lab,material,measurand,value', ...all, ''].join('\n'))
+    const own = all.filter((row) => row.includes(',first,'))
+    const alone = await file('alone.csv', ['lab,material,measurand,value', ...own, ''].join('\n'))
+
+    const ofBoth = documentOf(await run(both, '--measurand', 'first'))
+    const ofOne = documentOf(await run(alone, '--measurand', 'first'))
+    const exchanged = ofBoth.materials[2]!.proposals![0]!
+    expect(exchanged).toMatchObject({
+      laboratory: 'L03',
+      kind: 'exchange',
+      detail: 'first ↔ second',
+      cells: ['C'],
+    })
+
+    const withoutIt = ofBoth.materials.map((one) => ({
+      ...one,
+      proposals: one.proposals!.filter(({ detail }) => detail !== exchanged.detail),
+    }))
+    const input = { ...ofBoth.input, sha256: ofOne.input.sha256 }
+    expect({ ...ofBoth, input, materials: withoutIt }).toEqual(ofOne)
+  })
+
   it('tries the other units of a study where a cell stands apart, and refuses a unit that is none', async () => {
     // Laboratory 3 writes mmol/L where mg/dL was asked for: each result over 18.016, glucose having 180.16 g/mol.
     const glucose = await readFile(data('e691_glucose.csv'), 'utf8')

@@ -2,12 +2,12 @@ import { describe, expect, it } from 'vitest'
 import { readAnalyseOptions } from '@/lib/commands/analyse-options'
 import { readAnalysisFile } from '@/lib/commands/read-analysis-file'
 
-function read(text: string, more: { nesting?: string[] } = {}) {
+function read(text: string, more: { nesting?: string[]; measurand?: string } = {}) {
   return readAnalysisFile(new TextEncoder().encode(text), {
     nesting: more.nesting ?? [],
     columns: new Map(),
     keepExcluded: false,
-    measurand: null,
+    measurand: more.measurand ?? null,
   })
 }
 
@@ -48,6 +48,27 @@ describe('reading a file of results', () => {
       ['@x', "'quoted'", "O'Hara"],
       ['\tA', 'plain', '1'],
     ])
+  })
+})
+
+describe('reading one measurand of several', () => {
+  const text = 'lab,measurand,value\nA,iron,1\nA,zinc,7\nB,iron,3\nB,lead,9\n'
+  const named = (results: readonly { measurand: string | null; text: string }[]) =>
+    results.map((one) => `${one.measurand} ${one.text}`)
+
+  it('keeps the others beside it, and a fault in them is a fault of the file', async () => {
+    const { results, otherMeasurands, problems } = await read(text, { measurand: 'iron' })
+    expect(problems).toEqual([])
+    expect(named(results)).toEqual(['iron 1', 'iron 3'])
+    expect(named(otherMeasurands)).toEqual(['zinc 7', 'lead 9'])
+    const faulty = await read(text.replace('zinc,7', 'zinc,x'), { measurand: 'iron' })
+    expect(faulty.problems.map(({ row, found }) => [row, found])).toEqual([[3, '"x"']])
+  })
+
+  it('has none beside it where the file has one alone', async () => {
+    const { results, otherMeasurands } = await read('lab,measurand,value\nA,iron,1\nB,iron,3\n')
+    expect(named(results)).toEqual(['iron 1', 'iron 3'])
+    expect(otherMeasurands).toEqual([])
   })
 })
 

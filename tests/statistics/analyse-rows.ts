@@ -5,22 +5,24 @@ export type TestRow = Partial<AnalysisResult> & { laboratory: string; text: stri
 
 export function analyseRows(
   rows: readonly TestRow[],
-  more: { nesting?: readonly string[]; settings?: Partial<AnalysisSettings> } = {},
+  more: {
+    nesting?: readonly string[]
+    settings?: Partial<AnalysisSettings>
+    otherMeasurands?: readonly TestRow[]
+  } = {},
 ): AnalysisDocument {
   return analyse({
-    results: rows.map((row) => ({
-      material: 'M',
-      measurand: null,
-      groups: [],
-      censored: null,
-      excluded: false,
-      ...row,
-    })),
+    results: rows.map(resultOf),
+    otherMeasurands: more.otherMeasurands?.map(resultOf) ?? [],
     nesting: more.nesting ?? [],
     settings: { limitFactor: 2.8, ...more.settings },
     sha256: 'digest of the test',
     version: '0.0.0',
   })
+}
+
+function resultOf(row: TestRow): AnalysisResult {
+  return { material: 'M', measurand: null, groups: [], censored: null, excluded: false, ...row }
 }
 
 /** One laboratory a line: its results, parted by spaces. */

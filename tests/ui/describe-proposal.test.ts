@@ -8,7 +8,7 @@ const proposal = (changes: Partial<Proposal>): Proposal => ({
   kind: 'digits',
   detail: '451 → 415',
   cells: ['coir'],
-  before: state,
+  before: { h: 3.25, k: null, surprise: 9.04 },
   after: state,
   price: 1,
   score: 3,
@@ -18,7 +18,7 @@ const proposal = (changes: Partial<Proposal>): Proposal => ({
 describe('an explanation in words', () => {
   test('asks a question and says what would follow', () => {
     expect(describeProposal(proposal({}), 'N')).toBe(
-      'Were two digits exchanged? Take 451 → 415. Corrected so, the cell would fit the others: h\u00a0=\u00a00.500.',
+      'Were two digits exchanged? Take 451 → 415. Corrected so, the cell would fit the others: h\u00a0=\u00a00.500 instead of 3.250, surprise\u00a01.0 instead of 9.0.',
     )
   })
 
@@ -36,8 +36,14 @@ describe('an explanation in words', () => {
     expect(describeProposal(proposal({ kind: 'oneApart', detail: '-4.1' }), 'N')).toContain('\u22124.1')
   })
 
+  test('says whether materials or measurands were exchanged', () => {
+    const exchange = { kind: 'exchange' as const, detail: 'C ↔ D' }
+    expect(describeProposal(proposal({ ...exchange, cells: ['C', 'D'] }), 'N')).toContain('two materials')
+    expect(describeProposal(proposal({ ...exchange, cells: ['coir'] }), 'N')).toContain('two measurands')
+  })
+
   test('names no figure that could not be computed', () => {
-    const words = describeProposal(proposal({ after: { h: null, k: null, surprise: 0 } }), 'N')
+    const words = describeProposal(proposal({ after: { h: null, k: null, surprise: null } }), 'N')
     expect(words).toMatch(/fit the others\.$/)
   })
 })

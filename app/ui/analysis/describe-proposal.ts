@@ -1,4 +1,4 @@
-import type { Proposal } from '@/lib/statistics/analysis-document'
+import type { Proposal, ProposalState } from '@/lib/statistics/analysis-document'
 import { formatFigure } from '../primitives/format-figure'
 import { showStatistic } from './show-quantity'
 
@@ -18,7 +18,8 @@ function guess({ kind, detail, cells }: Proposal, unit: string): string {
     case 'unitAllMaterials':
       return `Was everything given in another unit? Read it in ${detail}.`
     case 'exchange':
-      return `Were two materials exchanged? Take ${detail}.`
+      // Two materials are two cells of this measurand; two measurands are the one cell and its like in another.
+      return `Were two ${cells.length === 1 ? 'measurands' : 'materials'} exchanged? Take ${detail}.`
     case 'digits':
       return `Were two digits exchanged? Take ${shown(detail)}.`
     case 'offset':
@@ -30,12 +31,20 @@ function guess({ kind, detail, cells }: Proposal, unit: string): string {
   }
 }
 
-function consequence({ kind, after }: Proposal): string {
-  const figures = [
-    ...(after.h === null ? [] : [`h\u00a0=\u00a0${showStatistic(after.h)}`]),
-    ...(after.k === null ? [] : [`k\u00a0=\u00a0${showStatistic(after.k)}`]),
-  ]
+function consequence({ kind, before, after }: Proposal): string {
+  const figures = (['h', 'k', 'surprise'] as const).flatMap((figure) => change(figure, before, after))
   return `${kind === 'oneApart' ? 'Without it' : 'Corrected so'}, the cell would fit the others${figures.length > 0 ? `: ${figures.join(', ')}` : ''}.`
+}
+
+/** A figure as it would be and, where that shows, as it is; nothing where it would not be. */
+function change(figure: 'h' | 'k' | 'surprise', before: ProposalState, after: ProposalState): string[] {
+  const [is, wouldBe] = [before[figure], after[figure]]
+  if (wouldBe === null) return []
+  const show = (value: number) =>
+    figure === 'surprise' ? formatFigure(value.toFixed(1)) : showStatistic(value)
+  const name = figure === 'surprise' ? `surprise\u00a0` : `${figure}\u00a0=\u00a0`
+  const differs = is !== null && show(is) !== show(wouldBe)
+  return [`${name}${show(wouldBe)}${differs ? ` instead of ${show(is)}` : ''}`]
 }
 
 const shown = (text: string) => text.replaceAll('-', '\u2212')

@@ -1,12 +1,18 @@
-import { beyond } from '@/app/ui/analysis/consistency-data'
 import { describeNoticed } from '@/app/ui/analysis/describe-noticed'
 import { describeProposal } from '@/app/ui/analysis/describe-proposal'
 import { showStatistic } from '@/app/ui/analysis/show-quantity'
 import { MarginNote } from '@/app/ui/layout/margin'
 import { Tag } from '@/app/ui/primitives/tag'
 import type { MeasurandReview } from '@/lib/use-cases/reviews/read-review'
+import { type Likelihood, listCellsApart } from './list-cells-apart'
 
 const most = 4
+
+const opening: Readonly<Record<Likelihood, string>> = {
+  likeliest: 'Worth asking:',
+  equal: 'As likely as the one above:',
+  less: 'Less likely:',
+}
 
 /** The cells that lie furthest from the others, and how the figures beside them come about. */
 export function ScrutinyMargin({ measurand }: { measurand: MeasurandReview | undefined }) {
@@ -36,10 +42,11 @@ export function ScrutinyMargin({ measurand }: { measurand: MeasurandReview | und
 }
 
 function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandReview }) {
-  const apart = listApart(document)
+  const apart = listCellsApart(document)
+  const shown = apart.slice(0, most)
   return (
     <>
-      {apart.slice(0, most).map(({ material, cell, h, k, proposal }) => (
+      {shown.map(({ material, cell, h, k, explanations, isUnexplained }) => (
         <MarginNote
           key={`${cell.laboratory} ${material}`}
           title={
@@ -54,12 +61,26 @@ function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandRevi
             {h && k && ' and'}
             {k && ` k\u00a0=\u00a0${showStatistic(cell.k)}, beyond ${k}`}.
           </p>
-          {proposal && <p>Worth asking: {describeProposal(proposal, unit)}</p>}
+          {explanations.map(({ likelihood, proposal }) => (
+            <p key={`${proposal.kind} ${proposal.detail}`}>
+              {opening[likelihood]} {describeProposal(proposal, unit)}
+            </p>
+          ))}
+          {isUnexplained && <p>No simple explanation found.</p>}
         </MarginNote>
       ))}
       {apart.length > most && (
         <MarginNote title={apart.length === most + 1 ? 'One more cell' : `${apart.length - most} more cells`}>
           <p>Filled in the plots and marked in the tables.</p>
+        </MarginNote>
+      )}
+      {shown.some(({ explanations }) => explanations.length > 0) && (
+        <MarginNote title="How explanations are ordered">
+          <p>
+            Surprise counts the powers of ten by which the other laboratories would not have expected a mean
+            and a scatter, over all cells that an explanation changes. It scores what it takes away, less a
+            price for the number of others of its kind; those whose scores lie within 0.3 are equally likely.
+          </p>
         </MarginNote>
       )}
       {document.materials.flatMap(({ material, noticed }) =>
@@ -78,32 +99,4 @@ function CellNotes({ measurand: { document, unit } }: { measurand: MeasurandRevi
       )}
     </>
   )
-}
-
-/** The cells beyond a 1 % value, the furthest first; an explanation that fits several of them is told at the first. */
-function listApart({ materials }: MeasurandReview['document']) {
-  const told = new Set<string>()
-  return materials
-    .flatMap((material) =>
-      material.cells.flatMap((cell) => {
-        const h = beyond(material, cell, 'h')
-        const k = beyond(material, cell, 'k')
-        const best = material.proposals?.find(({ laboratory }) => laboratory === cell.laboratory)
-        return (h && h !== '5 %') || (k && k !== '5 %')
-          ? [{ material: material.material, cell, h, k, best, surprise: surpriseOf(cell) }]
-          : []
-      }),
-    )
-    .sort((a, b) => a.surprise - b.surprise)
-    .map(({ best, ...one }) => {
-      const key = best && `${best.laboratory} ${best.kind} ${best.detail} ${best.cells.join()}`
-      const proposal = key && !told.has(key) ? best : undefined
-      if (key) told.add(key)
-      return { ...one, proposal }
-    })
-}
-
-/** The smaller of the two p-values: the cell furthest out stands first. */
-function surpriseOf({ hPValue, kPValue }: { hPValue: number | null; kPValue: number | null }): number {
-  return Math.min(hPValue ?? 1, kPValue ?? 1)
 }
