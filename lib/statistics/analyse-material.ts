@@ -1,7 +1,7 @@
 import { nestedAnova } from '@/lib/statistics/nested-anova'
 import type { MaterialAnalysis, Reasons } from '@/lib/statistics/analysis-document'
-import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
-import { type CellSummary, summariseCells } from '@/lib/statistics/cells'
+import type { AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
+import { type CellSummary, codesOfCells, summariseCells } from '@/lib/statistics/cells'
 import { censoredMedian } from '@/lib/statistics/censored-median'
 import { decimalToNumber, parseDecimal } from '@/lib/statistics/decimal'
 import { anovaBlock } from '@/lib/statistics/document/anova-block'
@@ -17,13 +17,19 @@ import {
 } from '@/lib/statistics/document/comparison-blocks'
 import { cochranBlock, criticalBlock, nestingLevelBlocks } from '@/lib/statistics/document/consistency-blocks'
 import { grubbsBlock } from '@/lib/statistics/document/grubbs-block'
-import type { MaterialCell, MaterialData } from '@/lib/statistics/document/material-data'
+import {
+  type MaterialCells,
+  type MaterialData,
+  NO_CELLS,
+  resultsOfCell,
+} from '@/lib/statistics/document/material-data'
 import { precisionBlocks } from '@/lib/statistics/document/precision-blocks'
 import { remlBlock } from '@/lib/statistics/document/reml-block'
 import { robustBlock } from '@/lib/statistics/document/robust-block'
 import { levelSummaries } from '@/lib/statistics/laboratory-summaries'
-import { buildNestedLayout, requireReplicate } from '@/lib/statistics/nested-layout'
+import { buildNestedLayout, codeLabels, requireReplicate } from '@/lib/statistics/nested-layout'
 import { generalMeans } from '@/lib/statistics/one-way-precision'
+import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
 import { roundedPrecision } from '@/lib/statistics/rounding'
 
 /** Above this share of lost cells no figure of the material is given. */
@@ -55,11 +61,16 @@ export function analyseMaterial(
   settings: AnalysisSettings,
 ): AnalysedMaterial {
   if (data.isOutOfRange) {
-    const emptied = analyseCells({ data: { ...data, cells: [], bounds: [] }, cells: [], nesting, settings })
+    const emptied = analyseCells({
+      data: { ...data, cells: NO_CELLS, bounds: [] },
+      cells: NO_CELLS,
+      nesting,
+      settings,
+    })
     return { data, summaries: [], analysis: withOneReason(emptied.analysis, OUT_OF_RANGE, ['trueness']) }
   }
   if (data.censoredShare > MOST_CENSORED) {
-    const emptied = analyseCells({ data, cells: [], nesting, settings })
+    const emptied = analyseCells({ data, cells: NO_CELLS, nesting, settings })
     return {
       data,
       summaries: [],
@@ -71,24 +82,19 @@ export function analyseMaterial(
 
 function analyseCells(one: {
   data: MaterialData
-  cells: readonly MaterialCell[]
+  cells: MaterialCells
   nesting: readonly string[]
   settings: AnalysisSettings
 }): { summaries: CellSummary[]; analysis: MaterialAnalysis } {
   const { data, cells, nesting, settings } = one
   const { restore } = data
-  const layout = buildNestedLayout(
-    ['laboratory', ...nesting],
-    cells.flatMap(({ laboratory, results, deviations }) =>
-      results.map(({ groups }, index) => ({ path: [laboratory, ...groups], deviation: deviations[index]! })),
-    ),
-  )
+  const layout = buildNestedLayout(['laboratory', ...nesting], {
+    codes: [codesOfCells(cells), ...nesting.map((_, inner) => codesOfLevel(cells, inner))],
+    deviations: cells.deviations,
+  })
   const isNested = nesting.length > 0
   const wholes = summariseCells(cells)
-  const levels = levelSummaries(
-    layout,
-    cells.map(({ laboratory, results }) => ({ laboratory, observations: results.length })),
-  )
+  const levels = isNested ? levelSummaries(layout, cells) : []
   const summaries = isNested ? innermost(wholes, levels) : wholes
   const anova = once(() => nestedAnova(layout))
   const means = once(() => generalMeans(summaries))
@@ -107,8 +113,8 @@ function analyseCells(one: {
   const robust = robustBlock({
     cellMeans: summaries.map((summary) => summary.mean),
     cellSpreads: summaries.map(({ sd, df }) => ({ sd: sd ?? 0, df })),
-    integers: cells.map(({ integers }) => integers),
-    replicates: isNested ? cells.flatMap(innermostGroups) : cells.map(({ integers }) => integers),
+    integers: cells,
+    replicates: isNested ? innermostGroups(cells) : cells,
     isNested,
     requireReplicate: () => requireReplicate(layout),
     step: data.step,
@@ -142,7 +148,6 @@ function analyseCells(one: {
     variancesOfCellMeans,
     summaries,
   })
-  const uncertainties = new Map(cells.map((cell) => [cell.laboratory, statedUncertainty(cell)]))
 
   const analysis = withReasons((attempt): Omit<MaterialAnalysis, 'reasons'> => ({
     material: data.material,
@@ -151,14 +156,7 @@ function analyseCells(one: {
     results: layout.deviations.length,
     mean: attempt('mean', () => restore(means().weighted)),
     meanOfCellMeans: attempt('meanOfCellMeans', () => restore(means().unweighted)),
-    median: attempt('median', () =>
-      restore(
-        censoredMedian(
-          data.cells.map((cell) => meanOf(cell.deviations)),
-          data.bounds,
-        ),
-      ),
-    ),
+    median: attempt('median', () => restore(censoredMedian(meansOfCells(data.cells), data.bounds))),
     nBar: attempt('nBar', () => effectiveCellSize(summaries)),
     nHarmonic: attempt('nHarmonic', harmonic),
     ...precision,
@@ -167,14 +165,14 @@ function analyseCells(one: {
       requireReplicate: () => requireReplicate(layout),
       restore,
       reference: () => reference?.deviation ?? notAskedFor(),
-      scoresOf: (summary) =>
+      scoresOf: (summary, index) =>
         scoresBlock({
           summary,
           value: restore(summary.mean),
           assigned,
           laboratories: summaries.length,
-          sigma: () => sigma ?? Math.sqrt(variancesOfCellMeans()[summaries.indexOf(summary)]!),
-          uncertainty: uncertainties.get(summary.laboratory) ?? null,
+          sigma: () => sigma ?? Math.sqrt(variancesOfCellMeans()[index]!),
+          uncertainty: statedUncertainty(resultsOfCell(cells, index)),
         }),
     }),
     critical: criticalBlock(summaries, isNested),
@@ -222,20 +220,44 @@ function innermost(wholes: readonly CellSummary[], levels: ReturnType<typeof lev
   }))
 }
 
-/** The results of a laboratory that differ by the replicate alone, one list a group. */
-function innermostGroups({ results, integers }: MaterialCell): bigint[][] {
-  const groups = new Map<string, bigint[]>()
-  results.forEach((result, index) => {
-    const key = JSON.stringify(result.groups)
-    const known = groups.get(key)
-    if (known === undefined) groups.set(key, [integers[index]!])
-    else known.push(integers[index]!)
-  })
-  return [...groups.values()]
+/** The codes of an inner level's labels, result by result. */
+function codesOfLevel({ results }: MaterialCells, inner: number): Int32Array {
+  return codeLabels(results.map(({ groups }) => groups[inner]!)).codes
 }
 
-function meanOf(values: Float64Array): number {
-  return values.reduce((sum, value) => sum + value, 0) / values.length
+/** The results that differ by the replicate alone, group by group. */
+function innermostGroups(cells: MaterialCells): IntegerCells {
+  const { starts, units, results } = cells
+  const order: number[] = []
+  const ends = [0]
+  for (let cell = 0; cell < cells.laboratories.length; cell += 1) {
+    const groups = new Map<string, number[]>()
+    for (let at = starts[cell]!; at < starts[cell + 1]!; at += 1) {
+      const key = JSON.stringify(results[at]!.groups)
+      const known = groups.get(key)
+      if (known === undefined) groups.set(key, [at])
+      else known.push(at)
+    }
+    for (const members of groups.values()) {
+      order.push(...members)
+      ends.push(order.length)
+    }
+  }
+  return {
+    units:
+      units instanceof Float64Array
+        ? Float64Array.from(order, (at) => units[at]!)
+        : order.map((at) => units[at]!),
+    starts: Int32Array.from(ends),
+  }
+}
+
+function meansOfCells({ laboratories, starts, deviations }: MaterialCells): number[] {
+  return laboratories.map((_, cell) => {
+    let sum = 0
+    for (let at = starts[cell]!; at < starts[cell + 1]!; at += 1) sum += deviations[at]!
+    return sum / (starts[cell + 1]! - starts[cell]!)
+  })
 }
 
 function harmonicCellSize(summaries: readonly CellSummary[]): number {
@@ -251,7 +273,7 @@ function effectiveCellSize(summaries: readonly CellSummary[]): number {
 }
 
 /** A laboratory's standard uncertainty counts if it stands beside each of its results; several are joined as squares. */
-function statedUncertainty({ results }: MaterialCell): number | null {
+function statedUncertainty(results: readonly AnalysisResult[]): number | null {
   const stated = results.map(({ uncertainty }) => uncertainty ?? null)
   if (stated.some((one) => one === null)) return null
   return Math.hypot(...stated.map((one) => one!)) / Math.sqrt(stated.length)

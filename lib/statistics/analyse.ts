@@ -11,7 +11,7 @@ import { notComputable, withReasons } from '@/lib/statistics/document/attempt'
 import { explained } from '@/lib/statistics/document/explanation-blocks'
 import { homogeneityBlock } from '@/lib/statistics/document/homogeneity-block'
 import { levelRelationBlock } from '@/lib/statistics/document/level-relation-block'
-import { materialData } from '@/lib/statistics/document/material-data'
+import { materialData, type MaterialCells } from '@/lib/statistics/document/material-data'
 import { planningBlock } from '@/lib/statistics/document/planning-block'
 import { twoSampleBlock } from '@/lib/statistics/document/two-sample-blocks'
 
@@ -48,7 +48,7 @@ export function analyse(input: AnalysisInput): AnalysisDocument {
 
   const analysed = withReasons((attempt): Omit<AnalysisDocument, 'reasons'> => ({
     engine: { name: 'evenlot', version: input.version },
-    input: inputBlock(input, sum(all.flatMap(({ data }) => data.cells.map((cell) => cell.results.length)))),
+    input: inputBlock(input, sum(all.map(({ data }) => data.cells.results.length))),
     settings: { limitFactor: input.settings.limitFactor },
     materials: explainedMaterials,
     levelRelation: attempt('levelRelation', () => levelRelationOf(only ?? byMeasurand())),
@@ -168,11 +168,15 @@ function homogeneity(materials: readonly AnalysedMaterial[], settings: AnalysisS
   return materials.map(({ data, summaries }) =>
     homogeneityBlock({
       material: data.material,
-      units: data.isOutOfRange ? [] : data.cells.map(({ deviations }) => [...deviations]),
+      units: data.isOutOfRange ? [] : deviationsByCell(data.cells),
       summaries,
       target: settings.sigmas?.[data.material] ?? null,
     }),
   )
+}
+
+function deviationsByCell({ laboratories, starts, deviations }: MaterialCells): number[][] {
+  return laboratories.map((_, cell) => [...deviations.subarray(starts[cell], starts[cell + 1])])
 }
 
 function sum(counts: readonly number[]): number {

@@ -45,6 +45,13 @@ export function cellTable(cells: readonly Cell[]): CellTable {
   return { laboratories: cells.map(({ laboratory }) => laboratory), starts, deviations: all }
 }
 
+/** For each result the place of its cell. */
+export function codesOfCells({ starts, deviations }: CellTable): Int32Array {
+  const codes = new Int32Array(deviations.length)
+  for (let cell = 0; cell < starts.length - 1; cell += 1) codes.fill(cell, starts[cell], starts[cell + 1])
+  return codes
+}
+
 /**
  * Number, mean and standard deviation of each cell, in the order given; cells without a result are left out.
  *
@@ -61,7 +68,8 @@ export function cellTable(cells: readonly Cell[]): CellTable {
 export function summariseCells({ laboratories, starts, deviations }: CellTable): CellSummary[] {
   const summaries: CellSummary[] = []
   for (let index = 0; index < laboratories.length; index += 1) {
-    const [start, end] = [starts[index]!, starts[index + 1]!]
+    const start = starts[index]!
+    const end = starts[index + 1]!
     if (end > start) summaries.push(summarise(laboratories[index]!, deviations, start, end))
   }
   return summaries
@@ -70,7 +78,9 @@ export function summariseCells({ laboratories, starts, deviations }: CellTable):
 /** The cells that have a standard deviation of their own, that is ν_i ≥ 1, in their order; it may be none. */
 export function replicatedCells(summaries: readonly CellSummary[]): readonly ReplicatedCell[] {
   // Where all have one, as they mostly do, there is nothing to copy.
-  return summaries.every(isReplicated) ? (summaries as readonly ReplicatedCell[]) : summaries.filter(isReplicated)
+  return summaries.every(isReplicated)
+    ? (summaries as readonly ReplicatedCell[])
+    : summaries.filter(isReplicated)
 }
 
 function isReplicated(cell: CellSummary): cell is ReplicatedCell {

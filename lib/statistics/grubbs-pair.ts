@@ -37,7 +37,7 @@ export function grubbsPair(summaries: readonly CellSummary[], end: End): GrubbsP
   // A stable sort: of equal means the first in the order of the cells counts as the further out.
   const direction = end === 'high' ? -1 : 1
   const keys = tieKeys(centred)
-  const outwardsFirst = keys.map((_, index) => index)
+  const outwardsFirst = Array.from(keys, (_, index) => index)
   outwardsFirst.sort((a, b) => direction * ((keys[a] as number) - (keys[b] as number)))
   const [first, second, ...others] = outwardsFirst as [number, number, ...number[]]
 

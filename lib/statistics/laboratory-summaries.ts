@@ -1,4 +1,4 @@
-import type { CellSummary } from '@/lib/statistics/cells'
+import { codesOfCells, type CellSummary, type CellTable } from '@/lib/statistics/cells'
 import type { NestedLayout, Stratum } from '@/lib/statistics/nested-layout'
 import { RESIDUAL } from '@/lib/statistics/nested-layout'
 
@@ -21,21 +21,16 @@ export type LevelSummaries = {
  * What each laboratory shows at each level inside it that has degrees of freedom, outermost first. From these come h, k
  * and Cochran's test at the inner levels of a nested layout.
  *
- * Shape: `laboratories` in the order in which the layout holds their results, each with one at least. Means are deviations
- * in unit u; `sd` is √MS_l(i), in u, where the laboratory has degrees of freedom at that level.
+ * Shape: `cells` holds the results in the order of the layout, one at least of each laboratory. Means are deviations in
+ * unit u; `sd` is √MS_l(i), in u, where the laboratory has degrees of freedom at that level.
  *
  * Source: ISO 5725-3, the mean square of each level taken laboratory by laboratory.
  */
-export function levelSummaries(
-  layout: NestedLayout,
-  laboratories: readonly { laboratory: string; observations: number }[],
-): LevelSummaries[] {
-  const laboratoryOf = Int32Array.from(
-    laboratories.flatMap(({ observations }, index) => new Array<number>(observations).fill(index)),
-  )
-  const wholes = wholeLaboratories(layout, laboratories)
+export function levelSummaries(layout: NestedLayout, cells: CellTable): LevelSummaries[] {
+  const laboratoryOf = codesOfCells(cells)
+  const wholes = wholeLaboratories(cells)
   const levels: LevelSummaries[] = []
-  let above = laboratoryStratum(layout, laboratories.length, laboratoryOf, wholes)
+  let above = laboratoryStratum(layout, wholes, laboratoryOf)
   for (const stratum of layout.strata) {
     const isLaboratory = stratum.source === layout.levels[0] || layout.confounded === layout.levels[0]
     if (!isLaboratory) {
@@ -51,31 +46,22 @@ export function levelSummaries(
   return levels
 }
 
-/**
- * Number and mean of all results of each laboratory, without a scatter; each has one at least, and they come in
- * the order in which the layout holds them. The mean is a deviation in the layout's unit.
- */
-export function wholeLaboratories(
-  layout: NestedLayout,
-  laboratories: readonly { laboratory: string; observations: number }[],
-): CellSummary[] {
-  let start = 0
-  return laboratories.map(({ laboratory, observations }) => {
-    const own = layout.deviations.subarray(start, start + observations)
-    start += observations
+/** Number and mean of all results of each laboratory, without a scatter. */
+function wholeLaboratories({ laboratories, starts, deviations }: CellTable): CellSummary[] {
+  return laboratories.map((laboratory, index) => {
+    const [start, end] = [starts[index]!, starts[index + 1]!]
     let sum = 0
-    for (const deviation of own) sum += deviation
-    return { laboratory, n: observations, mean: sum / observations, sd: undefined, df: 0 }
+    for (let at = start; at < end; at += 1) sum += deviations[at]!
+    return { laboratory, n: end - start, mean: sum / (end - start), sd: undefined, df: 0 }
   })
 }
 
 function laboratoryStratum(
   layout: NestedLayout,
-  count: number,
-  laboratoryOf: Int32Array,
   wholes: readonly CellSummary[],
+  laboratoryOf: Int32Array,
 ): Stratum {
-  const firstMember = new Int32Array(count)
+  const firstMember = new Int32Array(wholes.length)
   for (let member = laboratoryOf.length - 1; member >= 0; member -= 1)
     firstMember[laboratoryOf[member]!] = member
   return {
@@ -97,14 +83,15 @@ function insideLaboratories(one: {
   const squares = new Float64Array(wholes.length)
   const groups = new Float64Array(wholes.length)
   const largest = new Float64Array(wholes.length)
-  stratum.mean.forEach((mean, group) => {
+  for (let group = 0; group < stratum.mean.length; group += 1) {
+    const mean = stratum.mean[group]!
     const member = stratum.firstMember[group]!
     const laboratory = laboratoryOf[member]!
     const distance = mean - above.mean[above.groupOf[member]!]!
     squares[laboratory]! += stratum.size[group]! * distance ** 2
     groups[laboratory]! += 1
     largest[laboratory] = Math.max(largest[laboratory]!, Math.abs(mean))
-  })
+  }
   for (const member of above.firstMember) groups[laboratoryOf[member]!]! -= 1
 
   return wholes.map((whole, index) => {

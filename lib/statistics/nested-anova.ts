@@ -146,9 +146,8 @@ function anovaRows(layout: NestedLayout): AnovaRow[] {
 /** Σ over outer groups g of (1/N_g) Σ over its inner groups d of N_d². */
 function sizeSum(outer: Stratum, inner: Stratum): number {
   let sum = 0
-  inner.size.forEach((size, group) => {
-    sum += size ** 2 / outer.size[outer.groupOf[inner.firstMember[group]!]!]!
-  })
+  for (let group = 0; group < inner.size.length; group += 1)
+    sum += inner.size[group]! ** 2 / outer.size[outer.groupOf[inner.firstMember[group]!]!]!
   return sum
 }
 
@@ -161,12 +160,13 @@ function sizeSumOfWhole(inner: Stratum, results: number): number {
 function betweenSumOfSquares(layout: NestedLayout, stratum: Stratum, above: Stratum | undefined): number {
   let ss = 0
   let largest = 0
-  stratum.mean.forEach((mean, group) => {
+  for (let group = 0; group < stratum.mean.length; group += 1) {
+    const mean = stratum.mean[group]!
     const parent =
       above === undefined ? layout.mean : above.mean[above.groupOf[stratum.firstMember[group]!]!]!
     ss += stratum.size[group]! * (mean - parent) ** 2
     largest = Math.max(largest, Math.abs(mean), Math.abs(parent))
-  })
+  }
   // Means that are equal as fractions can differ in their last bit. What is
   // left of such a difference is no scatter, and must not pass for some.
   const rounding = layout.deviations.length * (4 * Number.EPSILON * largest) ** 2

@@ -20,6 +20,12 @@ export type NestedObservation = {
   deviation: number
 }
 
+/**
+ * The same column by column: for each level the code of every observation's label, numbered from 0 in the order of
+ * their first appearance.
+ */
+export type NestedTable = { codes: readonly Int32Array[]; deviations: Float64Array }
+
 export type Stratum = {
   source: string
   /** For each observation, the group it falls in. */
@@ -61,7 +67,7 @@ export function requireReplicate({ confounded, levels }: NestedLayout): void {
 /**
  * Sorts the results of one material into the tree of its levels.
  *
- * Shape: `levels` from the laboratory inwards, without the replicate; each path holds one label for each of them.
+ * Shape: `levels` from the laboratory inwards, without the replicate; the table has one column of codes for each.
  * Means are deviations in the unit of the results. Nothing is refused: without results, or with one alone, there is
  * no stratum, and `nestedAnova` says why.
  *
@@ -69,14 +75,12 @@ export function requireReplicate({ confounded, levels }: NestedLayout): void {
  */
 export function buildNestedLayout(
   levels: readonly string[],
-  observations: readonly NestedObservation[],
+  { codes, deviations }: NestedTable,
 ): NestedLayout {
-  const deviations = Float64Array.from(observations, ({ deviation }) => deviation)
   const named: Stratum[] = []
   levels.forEach((source, level) => {
-    const outer = named.at(-1)
-    const keys = observations.map(({ path }, index) => `${outer?.groupOf[index] ?? 0} ${path[level]}`)
-    named.push(stratum(source, keys, deviations))
+    const groupOf = groupsInside(named.at(-1)?.groupOf, codes[level]!)
+    named.push(stratum(source, groupOf, deviations))
   })
   const single = stratumOfSingles(deviations)
 
@@ -94,37 +98,80 @@ export function buildNestedLayout(
   return { deviations, mean: meanOf(deviations), strata, levels, confounded }
 }
 
-function stratum(source: string, keys: readonly string[], deviations: Float64Array): Stratum {
-  const indexOf = new Map<string, number>()
-  const groupOf = new Int32Array(keys.length)
-  const first: number[] = []
-  const sums: number[] = []
-  const sizes: number[] = []
-  keys.forEach((key, observation) => {
-    let group = indexOf.get(key)
-    if (group === undefined) {
-      group = indexOf.size
-      indexOf.set(key, group)
-      first.push(observation)
-      sums.push(0)
-      sizes.push(0)
-    }
-    groupOf[observation] = group
-    sums[group]! += deviations[observation]!
-    sizes[group]! += 1
-  })
+/** Observations as columns; each path holds one label for each of `levels` levels. */
+export function nestedTable(observations: readonly NestedObservation[], levels: number): NestedTable {
   return {
-    source,
-    groupOf,
-    firstMember: Int32Array.from(first),
-    size: Float64Array.from(sizes),
-    mean: Float64Array.from(sums, (sum, group) => sum / sizes[group]!),
+    codes: Array.from(
+      { length: levels },
+      (_, level) => codeLabels(observations.map(({ path }) => path[level]!)).codes,
+    ),
+    deviations: Float64Array.from(observations, ({ deviation }) => deviation),
   }
+}
+
+/** Labels numbered from 0 in the order of their first appearance. */
+export function codeLabels(written: readonly string[]): { codes: Int32Array; labels: string[] } {
+  const known = new Map<string, number>()
+  const codes = new Int32Array(written.length)
+  const labels: string[] = []
+  for (let at = 0; at < written.length; at += 1) {
+    const label = written[at]!
+    // Results of one group mostly stand together.
+    if (at > 0 && label === written[at - 1]) {
+      codes[at] = codes[at - 1]!
+      continue
+    }
+    let code = known.get(label)
+    if (code === undefined) {
+      code = labels.length
+      known.set(label, code)
+      labels.push(label)
+    }
+    codes[at] = code
+  }
+  return { codes, labels }
+}
+
+/** Numbers the groups of a level, in the order of their first observation; labels repeat from parent to parent. */
+function groupsInside(parentOf: Int32Array | undefined, codes: Int32Array): Int32Array {
+  if (parentOf === undefined) return codes
+  let labels = 0
+  for (let at = 0; at < codes.length; at += 1) labels = Math.max(labels, codes[at]! + 1)
+  const known = new Map<number, number>()
+  const groupOf = new Int32Array(codes.length)
+  let [lastKey, lastGroup] = [-1, -1]
+  for (let at = 0; at < codes.length; at += 1) {
+    const key = parentOf[at]! * labels + codes[at]!
+    if (key !== lastKey) {
+      lastKey = key
+      lastGroup = known.get(key) ?? known.size
+      known.set(key, lastGroup)
+    }
+    groupOf[at] = lastGroup
+  }
+  return groupOf
+}
+
+function stratum(source: string, groupOf: Int32Array, deviations: Float64Array): Stratum {
+  let groups = 0
+  for (let at = 0; at < groupOf.length; at += 1) groups = Math.max(groups, groupOf[at]! + 1)
+  const firstMember = new Int32Array(groups)
+  const size = new Float64Array(groups)
+  const mean = new Float64Array(groups)
+  for (let at = 0; at < groupOf.length; at += 1) {
+    const group = groupOf[at]!
+    if (size[group] === 0) firstMember[group] = at
+    size[group]! += 1
+    mean[group]! += deviations[at]!
+  }
+  for (let group = 0; group < groups; group += 1) mean[group]! /= size[group]!
+  return { source, groupOf, firstMember, size, mean }
 }
 
 /** Every result by itself. */
 function stratumOfSingles(deviations: Float64Array): Stratum {
-  const places = Int32Array.from(deviations, (_, index) => index)
+  const places = new Int32Array(deviations.length)
+  for (let at = 0; at < places.length; at += 1) places[at] = at
   return {
     source: RESIDUAL,
     groupOf: places,

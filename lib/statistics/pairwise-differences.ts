@@ -1,5 +1,10 @@
-/** Results of one material: integers at a common decimal scale, one list a cell. */
-export type IntegerCells = readonly (readonly bigint[])[]
+import type { WholeNumbers } from '@/lib/statistics/decimal'
+
+/**
+ * Results of one material as whole numbers at a common decimal scale, the cells behind one another: cell i holds those from
+ * `starts[i]` up to, and without, `starts[i + 1]`, one at least.
+ */
+export type IntegerCells = { readonly units: WholeNumbers; readonly starts: Int32Array }
 
 /** A corner of the polygon G: halfway up a jump of the distribution of differences. */
 type Corner = { size: number; share: number }
@@ -22,7 +27,10 @@ export type Differences = {
  * Source: ISO 13528, Annex C.5, the distribution H and the polygon G.
  */
 export function differencesBetween(cells: IntegerCells): Differences {
-  return areSmall(cells) ? betweenCells(NUMBERS, asNumbers(cells)) : betweenCells(BIGINTS, cells)
+  const numbers = asNumbers(cells.units)
+  return numbers === null
+    ? betweenCells(BIGINTS, cells.units as readonly bigint[], cells.starts)
+    : betweenCells(NUMBERS, numbers, cells.starts)
 }
 
 /**
@@ -32,7 +40,10 @@ export function differencesBetween(cells: IntegerCells): Differences {
  * Source: ISO 13528, Annex C.5.
  */
 export function differencesWithin(cells: IntegerCells): Differences {
-  return areSmall(cells) ? withinCells(NUMBERS, asNumbers(cells)) : withinCells(BIGINTS, cells)
+  const numbers = asNumbers(cells.units)
+  return numbers === null
+    ? withinCells(BIGINTS, cells.units as readonly bigint[], cells.starts)
+    : withinCells(NUMBERS, numbers, cells.starts)
 }
 
 /** Whole numbers: doubles while they hold them, beyond that the slower exact ones. */
@@ -47,74 +58,95 @@ const NUMBERS: Whole<number> = {
 
 const BIGINTS: Whole<bigint> = { one: 1n, minus: (a, b) => a - b, plus: (a, b) => a + b, half: (x) => x / 2n }
 
-function areSmall(cells: IntegerCells): boolean {
-  const [least, most] = ends(cells)
-  return most - least <= BigInt(Number.MAX_SAFE_INTEGER)
-}
-
-function asNumbers(cells: IntegerCells): number[][] {
-  const [least] = ends(cells)
-  return cells.map((cell) => cell.map((number) => Number(number - least)))
-}
-
-function ends(cells: IntegerCells): [bigint, bigint] {
-  let least = cells[0]![0]!
-  let most = least
-  for (const cell of cells) {
-    for (const number of cell) {
-      if (number < least) least = number
-      if (number > most) most = number
-    }
+/** Doubles that differ as the whole numbers do, or `null` where they lie too far apart. */
+function asNumbers(units: WholeNumbers): Float64Array | null {
+  if (units instanceof Float64Array) return units
+  let [least, most] = [units[0]!, units[0]!]
+  for (const unit of units) {
+    if (unit < least) least = unit
+    if (unit > most) most = unit
   }
-  return [least, most]
+  if (most - least > BigInt(Number.MAX_SAFE_INTEGER)) return null
+  return Float64Array.from(units, (unit) => Number(unit - least))
 }
+
+/** The cells with the values of each in ascending order. */
+type SortedCells<T> = { values: ArrayLike<T>; starts: Int32Array }
 
 /** Values in ascending order, and for each the weights of those before it added up. */
-type Pool<T> = { values: readonly T[]; weights: Float64Array; before: Float64Array }
+type Pool<T> = { values: ArrayLike<T>; weights: Float64Array; before: Float64Array }
 
-function betweenCells<T>(whole: Whole<T>, cells: readonly (readonly T[])[]): Differences {
-  const pool = sortedPool(cells, ({ length }) => 1 / length)
-  // Differences inside a cell do not count; a cell of one result has none.
-  const own = cells
-    .filter(({ length }) => length > 1)
-    .map((cell) => sortedPool([cell], () => 1 / cell.length))
-  const pairsOfCells = (cells.length * (cells.length - 1)) / 2
-  const pairs = (x: T): number =>
-    own.reduce((sum, one) => sum - pairsUpTo(whole, one, x), pairsUpTo(whole, pool, x))
-  const [first] = cells
-  const isBalanced = cells.every(({ length }) => length === first!.length)
-  const allPairs = pairsOfCells * first!.length ** 2
-  const weight = (x: T): number =>
-    own.reduce((sum, one) => sum - weightUpTo(whole, one, x), weightUpTo(whole, pool, x)) / pairsOfCells
+function betweenCells<T>(whole: Whole<T>, units: ArrayLike<T>, starts: Int32Array): Differences {
+  const count = starts.length - 1
+  const cells = sortedCells(units, starts)
+  const pool = weightedPool(units, starts)
+  const pairsOfCells = (count * (count - 1)) / 2
+  // Differences inside a cell do not count.
+  const pairs = (x: T): number => {
+    let sum = pairsUpTo(whole, pool.values, { from: 0, to: pool.values.length }, x)
+    for (let cell = 0; cell < count; cell += 1)
+      sum -= pairsUpTo(whole, cells.values, { from: starts[cell]!, to: starts[cell + 1]! }, x)
+    return sum
+  }
+  const weight = (x: T): number => {
+    let sum = weightUpTo(whole, pool, x)
+    for (let cell = 0; cell < count; cell += 1) {
+      const [from, to] = [starts[cell]!, starts[cell + 1]!]
+      sum -= pairsUpTo(whole, cells.values, { from, to }, x) / (to - from) ** 2
+    }
+    return sum / pairsOfCells
+  }
+  const size = commonSize(starts)
   // Whole counts keep a share exact where every pair weighs alike.
-  return distribution({ whole, pool, pairs, share: isBalanced ? (x) => pairs(x) / allPairs : weight })
+  const share = size === null ? weight : (x: T): number => pairs(x) / (pairsOfCells * size ** 2)
+  const range = whole.minus(pool.values[pool.values.length - 1]!, pool.values[0]!)
+  return distribution({ whole, range, pairs, share })
 }
 
-function withinCells<T>(whole: Whole<T>, cells: readonly (readonly T[])[]): Differences {
-  const own = cells.map((cell) => sortedPool([cell], () => 1))
-  const sum = (of: (one: Pool<T>) => number): number => own.reduce((total, one) => total + of(one), 0)
-  const pairs = (x: T): number => sum((one) => pairsUpTo(whole, one, x))
-  const pairsIn = ({ values }: Pool<T>): number => (values.length * (values.length - 1)) / 2
-  const [first] = own
-  const isBalanced = own.every(({ values }) => values.length === first!.values.length)
-  const allPairs = sum(pairsIn)
+function withinCells<T>(whole: Whole<T>, units: ArrayLike<T>, starts: Int32Array): Differences {
+  const count = starts.length - 1
+  const { values } = sortedCells(units, starts)
+  const pairsIn = (cell: number): number => {
+    const length = starts[cell + 1]! - starts[cell]!
+    return (length * (length - 1)) / 2
+  }
+  const over = (of: (cell: number) => number): number => {
+    let sum = 0
+    for (let cell = 0; cell < count; cell += 1) sum += of(cell)
+    return sum
+  }
+  const pairsOf = (cell: number, x: T): number =>
+    pairsUpTo(whole, values, { from: starts[cell]!, to: starts[cell + 1]! }, x)
+  const pairs = (x: T): number => over((cell) => pairsOf(cell, x))
+  const isBalanced = commonSize(starts) !== null
+  const allPairs = over(pairsIn)
   const share = (x: T): number =>
-    isBalanced ? pairs(x) / allPairs : sum((one) => pairsUpTo(whole, one, x) / pairsIn(one)) / own.length
-  const widest = own.reduce((widest, one) => (rangeOf(whole, one) > rangeOf(whole, widest) ? one : widest))
-  return distribution({ whole, pool: widest, pairs, share })
+    isBalanced ? pairs(x) / allPairs : over((cell) => pairsOf(cell, x) / pairsIn(cell)) / count
+  let range = whole.minus(whole.one, whole.one)
+  for (let cell = 0; cell < count; cell += 1) {
+    const own = whole.minus(values[starts[cell + 1]! - 1]!, values[starts[cell]!]!)
+    if (own > range) range = own
+  }
+  return distribution({ whole, range, pairs, share })
+}
+
+function commonSize(starts: Int32Array): number | null {
+  const size = starts[1]! - starts[0]!
+  for (let cell = 1; cell < starts.length - 1; cell += 1)
+    if (starts[cell + 1]! - starts[cell]! !== size) return null
+  return size
 }
 
 function distribution<T>(one: {
   whole: Whole<T>
-  /** The values among which the largest difference is found. */
-  pool: Pool<T>
+  /** The largest difference. */
+  range: T
   pairs: (x: T) => number
   share: (x: T) => number
 }): Differences {
-  const { whole, pairs, share } = one
+  const { whole, range, pairs, share } = one
   const { minus, plus, half, one: unit } = whole
   const nothing = minus(unit, unit)
-  const range = rangeOf(whole, one.pool)
   const allPairs = pairs(range)
 
   /** The smallest whole number above `low` at which the claim holds; it holds at `high`. */
@@ -156,33 +188,65 @@ function distribution<T>(one: {
   }
 }
 
-function sortedPool<T>(cells: readonly (readonly T[])[], weightIn: (cell: readonly T[]) => number): Pool<T> {
-  const entries = cells.flatMap((cell) => {
-    const weight = weightIn(cell)
-    return cell.map((value) => ({ value, weight }))
-  })
-  entries.sort((one, other) => (one.value < other.value ? -1 : one.value > other.value ? 1 : 0))
-  const before = new Float64Array(entries.length)
-  let sum = 0
-  entries.forEach(({ weight }, index) => {
-    before[index] = sum
-    sum += weight
-  })
-  return {
-    values: entries.map(({ value }) => value),
-    weights: Float64Array.from(entries, ({ weight }) => weight),
-    before,
+function sortedCells<T>(units: ArrayLike<T>, starts: Int32Array): SortedCells<T> {
+  const values = units instanceof Float64Array ? (units.slice() as unknown as T[]) : Array.from(units)
+  for (let cell = 0; cell < starts.length - 1; cell += 1)
+    sortSpan(values, { from: starts[cell]!, to: starts[cell + 1]! })
+  return { values, starts }
+}
+
+/** Cells are small, and for a few values a call of the general sort costs more than the sorting. */
+const FEW = 16
+
+function sortSpan<T>(values: T[], { from, to }: Span): void {
+  if (to - from > FEW) {
+    const sorted = values.slice(from, to).sort((one, other) => (one < other ? -1 : one > other ? 1 : 0))
+    for (let at = from; at < to; at += 1) values[at] = sorted[at - from]!
+    return
+  }
+  for (let at = from + 1; at < to; at += 1) {
+    const value = values[at]!
+    let place = at
+    while (place > from && values[place - 1]! > value) {
+      values[place] = values[place - 1]!
+      place -= 1
+    }
+    values[place] = value
   }
 }
 
-function rangeOf<T>({ minus }: Whole<T>, { values }: Pool<T>): T {
-  return minus(values.at(-1)!, values[0]!)
+/** Every value weighs one over the size of its cell. */
+function weightedPool<T>(units: ArrayLike<T>, starts: Int32Array): Pool<T> {
+  const count = units.length
+  const weightOf = new Float64Array(count)
+  for (let cell = 0; cell < starts.length - 1; cell += 1)
+    weightOf.fill(1 / (starts[cell + 1]! - starts[cell]!), starts[cell], starts[cell + 1])
+  if (units instanceof Float64Array && commonSize(starts) !== null) {
+    return {
+      values: units.slice().sort() as unknown as ArrayLike<T>,
+      weights: weightOf,
+      before: sums(weightOf),
+    }
+  }
+  const order = Uint32Array.from({ length: count }, (_, at) => at)
+  order.sort((one, other) => (units[one]! < units[other]! ? -1 : units[one]! > units[other]! ? 1 : 0))
+  const weights = Float64Array.from(order, (at) => weightOf[at]!)
+  return { values: Array.from(order, (at) => units[at]!), weights, before: sums(weights) }
 }
 
-function pairsUpTo<T>({ minus }: Whole<T>, { values }: Pool<T>, x: T): number {
+/** For each value the sum of those before it. */
+function sums(values: Float64Array): Float64Array {
+  const before = new Float64Array(values.length)
+  for (let at = 1; at < values.length; at += 1) before[at] = before[at - 1]! + values[at - 1]!
+  return before
+}
+
+type Span = { from: number; to: number }
+
+function pairsUpTo<T>({ minus }: Whole<T>, values: ArrayLike<T>, { from, to }: Span, x: T): number {
   let pairs = 0
-  let low = 0
-  for (let high = 0; high < values.length; high += 1) {
+  let low = from
+  for (let high = from; high < to; high += 1) {
     while (minus(values[high]!, values[low]!) > x) low += 1
     pairs += high - low
   }

@@ -1,3 +1,4 @@
+import type { WholeNumbers } from '@/lib/statistics/decimal'
 import { normalQuantile } from '@/lib/statistics/distributions/normal'
 import { median } from '@/lib/statistics/median'
 import {
@@ -34,13 +35,13 @@ export type DecimalStep = number
  * Source: ISO 13528, Annex C.5.
  */
 export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
-  const count = cells.length
+  const count = cells.starts.length - 1
   if (count < 3) throw new NotComputable('too-few-laboratories', 'The Q method needs three laboratories.')
-  const multiple = cells.reduce((common, cell) => leastCommonMultiple(common, BigInt(cell.length)), 1n)
-  const means = cells.map((cell) => [
-    cell.reduce((sum, one) => sum + one, 0n) * (multiple / BigInt(cell.length)),
-  ])
-  const differences = differencesBetween(means)
+  const { means, multiple } = wholeCellMeans(cells)
+  const differences = differencesBetween({
+    units: means,
+    starts: Int32Array.from({ length: count + 1 }, (_, at) => at),
+  })
   return (spreadFrom(differences, BETWEEN) / Number(multiple)) * step
 }
 
@@ -53,8 +54,7 @@ export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
  * Source: ISO 13528, Annex C.5.
  */
 export function qReproducibility(cells: IntegerCells, step: DecimalStep): number {
-  const count = cells.length
-  if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
+  if (cells.starts.length < 3) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
   return spreadFrom(differencesBetween(cells), BETWEEN) * step
 }
 
@@ -67,8 +67,8 @@ export function qReproducibility(cells: IntegerCells, step: DecimalStep): number
  * Source: ISO 13528, Annex C.5.
  */
 export function qRepeatability(cells: IntegerCells, step: DecimalStep): number {
-  const replicated = cells.filter((cell) => cell.length >= 2)
-  if (replicated.length === 0) throw new NotComputable('no-replication', 'No cell holds two results.')
+  const replicated = cellsOfTwoOrMore(cells)
+  if (replicated.starts.length === 1) throw new NotComputable('no-replication', 'No cell holds two results.')
   return spreadFrom(differencesWithin(replicated), WITHIN) * step
 }
 
@@ -149,10 +149,60 @@ function spreadFrom(differences: Differences, reading: Reading): number {
   return size / (Math.SQRT2 * normalQuantile(reading.probability + reading.probabilityOfTies * shareOfTies))
 }
 
+/** The cell means times the least common multiple of the cell sizes, less what all have in common. */
+function wholeCellMeans({ units, starts }: IntegerCells): { means: WholeNumbers; multiple: bigint } {
+  let multiple = 1n
+  for (const size of new Set(starts.subarray(1).map((end, cell) => end - starts[cell]!)))
+    multiple = leastCommonMultiple(multiple, BigInt(size))
+  const count = starts.length - 1
+  if (units instanceof Float64Array) {
+    let [least, most] = [Infinity, -Infinity]
+    for (let at = 0; at < units.length; at += 1) {
+      least = Math.min(least, units[at]!)
+      most = Math.max(most, units[at]!)
+    }
+    // No sum, which stands for a mean times the multiple, leaves the whole numbers that doubles hold.
+    if ((most - least) * Number(multiple) <= Number.MAX_SAFE_INTEGER) {
+      const means = new Float64Array(count)
+      for (let cell = 0; cell < count; cell += 1) {
+        const [start, end] = [starts[cell]!, starts[cell + 1]!]
+        let sum = 0
+        for (let at = start; at < end; at += 1) sum += units[at]! - least
+        means[cell] = sum * (Number(multiple) / (end - start))
+      }
+      return { means, multiple }
+    }
+  }
+  const means = Array.from({ length: count }, (_, cell) => {
+    let sum = 0n
+    for (let at = starts[cell]!; at < starts[cell + 1]!; at += 1) sum += BigInt(units[at]!)
+    return sum * (multiple / BigInt(starts[cell + 1]! - starts[cell]!))
+  })
+  return { means, multiple }
+}
+
 function leastCommonMultiple(one: bigint, other: bigint): bigint {
   let [a, b] = [one, other]
   while (b !== 0n) [a, b] = [b, a % b]
   return (one / a) * other
+}
+
+function cellsOfTwoOrMore(cells: IntegerCells): IntegerCells {
+  const { units, starts } = cells
+  const sizes = Array.from(starts.subarray(1), (end, cell) => end - starts[cell]!)
+  if (sizes.every((size) => size >= 2)) return cells
+  const isIn = (_: unknown, at: number): boolean => inCellOfTwo[at] === 1
+  const inCellOfTwo = new Uint8Array(units.length)
+  const kept = [0]
+  sizes.forEach((size, cell) => {
+    if (size < 2) return
+    inCellOfTwo.fill(1, starts[cell], starts[cell + 1])
+    kept.push(kept.at(-1)! + size)
+  })
+  return {
+    units: units instanceof Float64Array ? units.filter(isIn) : units.filter(isIn),
+    starts: Int32Array.from(kept),
+  }
 }
 
 function remembering<Value>(compute: (index: number) => Value): (index: number) => Value {

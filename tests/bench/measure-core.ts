@@ -3,7 +3,7 @@ import { readAnalysisFile } from '@/lib/commands/read-analysis-file'
 import { analyse, type AnalysisResult } from '@/lib/statistics'
 import { algorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
-import { type CellSummary, summariseCells } from '@/lib/statistics/cells'
+import { type CellSummary, codesOfCells, summariseCells } from '@/lib/statistics/cells'
 import {
   cochran,
   cochranCritical,
@@ -13,9 +13,9 @@ import {
 import { type MaterialData, materialData } from '@/lib/statistics/document/material-data'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
 import { grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
-import { mandelH, mandelHCritical, mandelK, mandelKCritical } from '@/lib/statistics/mandel'
+import { mandelH, mandelHCritical, type MandelK, mandelK, mandelKCritical } from '@/lib/statistics/mandel'
 import { nestedAnova } from '@/lib/statistics/nested-anova'
-import { buildNestedLayout } from '@/lib/statistics/nested-layout'
+import { buildNestedLayout, codeLabels } from '@/lib/statistics/nested-layout'
 import { laboratoryFTest, oneWayPrecision } from '@/lib/statistics/one-way-precision'
 import { oneWayTerms, sdInterval } from '@/lib/statistics/precision-intervals'
 import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
@@ -94,7 +94,8 @@ function testsOf({ cells }: MaterialData, index: number): CellSummary[] {
   sdInterval(terms.betweenLaboratory, betweenLaboratories.variance)
   sdInterval(terms.reproducibility, reproducibility.variance)
   mandelH(summaries)
-  const dfs = new Map(mandelK(summaries).map((own) => [own.df, own]))
+  const dfs = new Map<number, MandelK>()
+  for (const own of mandelK(summaries)) dfs.set(own.df, own)
   for (const own of dfs.values()) for (const alpha of [0.005, 0.01, 0.05]) mandelKCritical({ ...own, alpha })
   for (const alpha of [0.005, 0.01, 0.05]) mandelHCritical(p, alpha)
   const largest = cochran(summaries)
@@ -116,12 +117,13 @@ function robustOf(summaries: readonly CellSummary[]): void {
 }
 
 function devianceOf({ cells }: MaterialData): number {
-  const layout = buildNestedLayout(
-    ['laboratory', ...nesting],
-    cells.flatMap(({ laboratory, results, deviations }) =>
-      results.map(({ groups }, index) => ({ path: [laboratory, ...groups], deviation: deviations[index]! })),
-    ),
-  )
+  const layout = buildNestedLayout(['laboratory', ...nesting], {
+    codes: [
+      codesOfCells(cells),
+      ...nesting.map((_, inner) => codeLabels(cells.results.map(({ groups }) => groups[inner]!)).codes),
+    ],
+    deviations: cells.deviations,
+  })
   const { components } = nestedAnova(layout)
   const residual = components.at(-1)!.variance
   return fitReml(
@@ -137,10 +139,9 @@ function pairsOf(summaries: readonly CellSummary[]): void {
 }
 
 function qOf({ cells, step }: MaterialData): void {
-  const integers = cells.map((cell) => cell.integers)
-  qOfCellMeans(integers, step)
-  qReproducibility(integers, step)
-  qRepeatability(integers, step)
+  qOfCellMeans(cells, step)
+  qReproducibility(cells, step)
+  qRepeatability(cells, step)
 }
 
 function lap<Value>(name: string, run: () => Value): Value {

@@ -1,7 +1,7 @@
-import { type CellSummary, summariseCells } from '@/lib/statistics/cells'
+import { cellTable, type CellSummary, summariseCells } from '@/lib/statistics/cells'
 import type { WeightedMeanSquare } from '@/lib/statistics/combination-interval'
 import { type NestedAnova, nestedAnova } from '@/lib/statistics/nested-anova'
-import { buildNestedLayout, type NestedObservation } from '@/lib/statistics/nested-layout'
+import { buildNestedLayout, nestedTable, type NestedObservation } from '@/lib/statistics/nested-layout'
 import { betweenLaboratories, repeatability, reproducibility } from '@/lib/statistics/one-way-precision'
 import { nestedTerms, oneWayTerms, sdInterval } from '@/lib/statistics/precision-intervals'
 import { type Random, randomSource } from '@/tests/statistics/random-source'
@@ -180,11 +180,13 @@ function sizes(random: Random, p: number, n: number, gaps: boolean): number[] {
 
 function oneWayDraw(random: Random, counts: readonly number[], ratio: number): CellSummary[] {
   return summariseCells(
-    counts.map((n, index) => {
-      const laboratory = Math.sqrt(ratio) * random.normal()
-      const deviations = Array.from({ length: n }, () => laboratory + random.normal())
-      return { laboratory: String(index), deviations }
-    }),
+    cellTable(
+      counts.map((n, index) => {
+        const laboratory = Math.sqrt(ratio) * random.normal()
+        const deviations = Array.from({ length: n }, () => laboratory + random.normal())
+        return { laboratory: String(index), deviations }
+      }),
+    ),
   )
 }
 
@@ -276,6 +278,6 @@ function nestedDraw(
       }
     })
   })
-  const drawn = buildNestedLayout(['laboratory', 'day'], observations)
+  const drawn = buildNestedLayout(['laboratory', 'day'], nestedTable(observations, 2))
   return drawn.strata.length === 3 ? nestedAnova(drawn) : null
 }

@@ -79,7 +79,7 @@ describe('differences and order of decimals', () => {
 
   it('brings values to the finest of their units', () => {
     const decimals = ['1e2', '0.05', '-3.0'].map(parseDecimal)
-    expect(toCommonScale(decimals)).toEqual({ units: [10000n, 5n, -300n], scale: 2 })
+    expect(toCommonScale(decimals)).toEqual({ units: Float64Array.of(10000, 5, -300), scale: 2 })
   })
 
   it('writes plain digits', () => {

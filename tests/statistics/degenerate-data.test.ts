@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { summariseCells, type CellSummary } from '@/lib/statistics/cells'
+import { cellTable, summariseCells, type CellSummary } from '@/lib/statistics/cells'
 import { cochran, cochranCritical, generalisedCochran } from '@/lib/statistics/cochran'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
 import { grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
@@ -27,7 +27,7 @@ import { cellsOf } from './reference/read-reference'
 function material(...cells: string[][]): { cells: CellSummary[]; restore: (deviation: number) => number } {
   const rows = cells.flatMap((results, index) => results.map((value) => ({ lab: `L${index + 1}`, value })))
   const { centred, cells: made } = cellsOf(rows)
-  return { cells: summariseCells(made), restore: centred.restore }
+  return { cells: summariseCells(cellTable(made)), restore: centred.restore }
 }
 
 function reason(get: () => unknown): string {
@@ -46,7 +46,7 @@ describe('no results at all', () => {
     expect(reason(() => repeatability([]))).toBe('no-replicates')
     expect(reason(() => mandelH([]))).toBe('too-few-laboratories')
     expect(reason(() => cochran([]))).toBe('too-few-replicated-cells')
-    expect(summariseCells([{ laboratory: 'L1', deviations: [] }])).toEqual([])
+    expect(summariseCells(cellTable([{ laboratory: 'L1', deviations: [] }]))).toEqual([])
   })
 })
 
@@ -242,7 +242,7 @@ describe('a relative standard deviation', () => {
 
 describe('a caller’s mistake', () => {
   it('is a RangeError and no statement about the data', () => {
-    expect(() => summariseCells([{ laboratory: 'L1', deviations: [1, NaN] }])).toThrow(RangeError)
+    expect(() => summariseCells(cellTable([{ laboratory: 'L1', deviations: [1, NaN] }]))).toThrow(RangeError)
     expect(() => mandelHCritical(8, 0)).toThrow(RangeError)
     expect(() => cochranCritical({ cells: 8, df: 2, alpha: 9 })).toThrow(RangeError)
   })

@@ -1,6 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { summariseCells, type Cell, type CellSummary } from '@/lib/statistics/cells'
+import { cellTable, summariseCells, type Cell, type CellSummary } from '@/lib/statistics/cells'
 import {
   cochran,
   cochranCritical,
@@ -48,7 +48,7 @@ function summaries(
     const deviations = centred.deviations.slice(at, (at += results.length))
     return { laboratory: name(index), deviations }
   })
-  return { centred, cells: summariseCells(cells) }
+  return { centred, cells: summariseCells(cellTable(cells)) }
 }
 
 /** Everything there is, as numbers; what does not exist as the reason. */
@@ -255,7 +255,12 @@ describe('the generalised Cochran test', () => {
     const beyond = { plain5: 0, plain1: 0, general5: 0, general1: 0 }
     for (let draw = 0; draw < draws; draw++) {
       const cells = summariseCells(
-        sizes.map((n, index) => ({ laboratory: `L${index}`, deviations: Array.from({ length: n }, random) })),
+        cellTable(
+          sizes.map((n, index) => ({
+            laboratory: `L${index}`,
+            deviations: Array.from({ length: n }, random),
+          })),
+        ),
       )
       const plain = cochran(cells).pValue
       const general = generalisedCochran(cells).pValue

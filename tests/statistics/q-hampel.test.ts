@@ -1,6 +1,8 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { normalQuantile } from '@/lib/statistics/distributions/normal'
+import { toCommonScale } from '@/lib/statistics/decimal'
+import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { hampelLocation, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
 
@@ -65,6 +67,14 @@ function orNull(compute: () => number): number | null {
   }
 }
 
+/** As doubles where they are small, as the product reads them. */
+function integerCells(cells: readonly (readonly bigint[])[]): IntegerCells {
+  const starts = new Int32Array(cells.length + 1)
+  cells.forEach((cell, index) => (starts[index + 1] = starts[index]! + cell.length))
+  const { units } = toCommonScale(cells.flat().map((unit) => ({ units: unit, scale: 0 })))
+  return { units, starts }
+}
+
 function expectSame(got: number | null, wanted: number | null): void {
   if (wanted === null) expect(got).toBeNull()
   else expect(Math.abs(got! - wanted)).toBeLessThanOrEqual(1e-12 * wanted)
@@ -82,13 +92,13 @@ describe('the Q method', () => {
         const integers = cells.map((cell) => cell.map(BigInt))
         const between = naiveSpread(betweenPairs(cells), 0.25, 0.625, 0.375)
         expectSame(
-          orNull(() => qReproducibility(integers, 1)),
+          orNull(() => qReproducibility(integerCells(integers), 1)),
           between,
         )
         if (!cells.some(({ length }) => length >= 2)) return
         const within = naiveSpread(withinPairs(cells), 0.5, 0.75, 0.25)
         expectSame(
-          orNull(() => qRepeatability(integers, 1)),
+          orNull(() => qRepeatability(integerCells(integers), 1)),
           within,
         )
       }),
@@ -100,19 +110,22 @@ describe('the Q method', () => {
     // Means 1/3, 2/3, 1, 4/3 in units: the differences of neighbours are equal, which thirds as doubles are not.
     const cells = [[0n, 0n, 1n], [1n, 0n, 1n], [1n], [1n, 1n, 2n]]
     const thirds = [1, 2, 3, 4].map((value) => [value])
-    expectSame(qOfCellMeans(cells, 1), naiveSpread(betweenPairs(thirds), 0.25, 0.625, 0.375)! / 3)
+    expectSame(
+      qOfCellMeans(integerCells(cells), 1),
+      naiveSpread(betweenPairs(thirds), 0.25, 0.625, 0.375)! / 3,
+    )
   })
 
   it('keeps its figure when the results lie further apart than doubles count', () => {
     const near = [[1n], [2n], [4n], [8n], [15n]]
     const far = near.map((cell) => cell.map((one) => one * 10n ** 20n))
-    expectSame(qReproducibility(far, 1e-20), qReproducibility(near, 1))
+    expectSame(qReproducibility(integerCells(far), 1e-20), qReproducibility(integerCells(near), 1))
   })
 
   it('does not exist where results do not differ or laboratories are too few', () => {
-    expect(() => qOfCellMeans([[1n], [1n], [1n]], 1)).toThrow('All the values are equal.')
-    expect(() => qOfCellMeans([[1n], [2n]], 1)).toThrow(NotComputable)
-    expect(() => qRepeatability([[1n], [2n], [3n]], 1)).toThrow('No cell holds two results.')
+    expect(() => qOfCellMeans(integerCells([[1n], [1n], [1n]]), 1)).toThrow('All the values are equal.')
+    expect(() => qOfCellMeans(integerCells([[1n], [2n]]), 1)).toThrow(NotComputable)
+    expect(() => qRepeatability(integerCells([[1n], [2n], [3n]]), 1)).toThrow('No cell holds two results.')
   })
 })
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { summariseCells } from '@/lib/statistics/cells'
+import { cellTable, summariseCells } from '@/lib/statistics/cells'
 import {
   cochran,
   cochranCritical,
@@ -69,7 +69,7 @@ function expectSame(
 const replicated = all.filter(([, { expected }]) => expected.precision !== null)
 
 describe.each(all)('%s', (_, { cells, centred, expected }) => {
-  const summaries = summariseCells(cells)
+  const summaries = summariseCells(cellTable(cells))
   const { counts, mandel } = expected
 
   it('has the means, numbers and cells of the reference', () => {
@@ -159,7 +159,7 @@ describe.each(all)('%s', (_, { cells, centred, expected }) => {
 })
 
 describe.each(replicated)('%s, with replicates', (_, { cells, centred, expected }) => {
-  const summaries = summariseCells(cells)
+  const summaries = summariseCells(cellTable(cells))
   const { counts, precision } = expected
 
   it('has the analysis of variance and the precision of the reference', () => {
@@ -210,7 +210,7 @@ describe.each(replicated)('%s, generalised Cochran', (_, { cells, expected }) =>
   )
 
   it('is the square of k in another scale, with the critical value of k at alpha over the number of cells', () => {
-    const summaries = summariseCells(cells)
+    const summaries = summariseCells(cellTable(cells))
     if (ks.length < 2) return expect(() => generalisedCochran(summaries)).toThrow(NotComputable)
 
     const { laboratory, statistic, df, pooledDf, cells: count } = generalisedCochran(summaries)
@@ -225,7 +225,7 @@ describe.each(replicated)('%s, generalised Cochran', (_, { cells, expected }) =>
 
 describe('chem, 24 single results', () => {
   const [{ cells, expected }] = readReference('chem') as [ReferenceMaterial]
-  const summaries = summariseCells(cells)
+  const summaries = summariseCells(cellTable(cells))
 
   it('has a reproducibility that rests on single results, and no repeatability', () => {
     const { basis, sd } = reproducibility(summaries)

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { summariseCells } from '@/lib/statistics/cells'
+import { cellTable, summariseCells } from '@/lib/statistics/cells'
 import {
   betweenLaboratories,
   generalMeans,
@@ -55,7 +55,7 @@ function generate({ base, size }: { base: bigint; size: number }) {
 
 function analyse(rows: readonly { lab: string; value: string }[]) {
   const { centred, cells } = cellsOf(rows)
-  const summaries = summariseCells(cells)
+  const summaries = summariseCells(cellTable(cells))
   const between = betweenLaboratories(summaries)
   const within = repeatability(summaries)
   const { f } = laboratoryFTest(summaries)

@@ -20,7 +20,8 @@ export function cellBlocks(one: {
   restore: (deviation: number) => number
   /** The accepted reference value as a deviation, or a failure saying that none was given. */
   reference: () => number
-  scoresOf: (summary: CellSummary) => ScoresBlock
+  /** Of the cell at this place. */
+  scoresOf: (summary: CellSummary, index: number) => ScoresBlock
 }): CellBlock[] {
   const { summaries, requireReplicate, restore } = one
   const hStatistics = once(() => new Map(mandelH(summaries).map(({ laboratory, h }) => [laboratory, h])))
@@ -29,7 +30,7 @@ export function cellBlocks(one: {
   const replicated = summaries.filter(({ df }) => df >= 1).length
   const pooledSquares = summaries.reduce((sum, { df, sd }) => sum + (sd === undefined ? 0 : df * sd ** 2), 0)
 
-  return summaries.map((summary) =>
+  return summaries.map((summary, index) =>
     withReasons((attempt) => {
       const { laboratory, n, mean, sd, df } = summary
       const hOfCell = () => hStatistics().get(laboratory)!
@@ -54,7 +55,7 @@ export function cellBlocks(one: {
         kCritical: kCriticalBlock(df, pooledDf, requireReplicate),
         bias: attempt('bias', () => mean - one.reference()),
         generalisedCochran: generalisedOf({ df, sdOfCell, kOfCell }, { replicated, pooledSquares }),
-        scores: one.scoresOf(summary),
+        scores: one.scoresOf(summary, index),
       }
     }),
   )

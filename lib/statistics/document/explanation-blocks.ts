@@ -1,10 +1,10 @@
 import type { AnalysedMaterial } from '@/lib/statistics/analyse-material'
 import type { MaterialAnalysis, Noticed, Proposal } from '@/lib/statistics/analysis-document'
-import type { AnalysisSettings } from '@/lib/statistics/analysis-input'
+import type { AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
 import { parseDecimal } from '@/lib/statistics/decimal'
 import { required, withReasons } from '@/lib/statistics/document/attempt'
 import { flaggedCells } from '@/lib/statistics/document/flagged-cells'
-import type { MaterialCell, MaterialData } from '@/lib/statistics/document/material-data'
+import { type MaterialCells, type MaterialData, resultsOfCell } from '@/lib/statistics/document/material-data'
 import { type Explanation, explanationsOf, type LaboratoryCell } from '@/lib/statistics/explanations'
 import { mandelH, mandelK } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
@@ -35,9 +35,7 @@ export function explained({
   const judged = measurands.map((materials) => materials.map(judgedMaterial))
   const inOthers = otherMeasurandsOf(judged.flat(), unreportedOf)
   return judged.flatMap((materials) => {
-    const counted = materials
-      .flatMap(({ data }) => data.cells)
-      .filter(({ results }) => results.length >= 2).length
+    const counted = materials.reduce((sum, { data }) => sum + cellsOfTwoOrMore(data.cells), 0)
     const steps = commonSteps(materials)
     // A trend is one of all materials and is told once.
     const firstJudged = materials.find(({ cells }) => cells.size > 0)
@@ -70,9 +68,8 @@ export function explained({
 
 /** A cell with what the other laboratories say of its material. */
 type JudgedCell = {
-  cell: MaterialCell
   others: Others
-  /** Its place among the material's summaries and blocks. */
+  /** Its place among the material's cells, summaries and blocks. */
   index: number
 }
 
@@ -83,7 +80,9 @@ function judgedMaterial(one: AnalysedMaterial): JudgedMaterial {
   const cells = new Map<string, JudgedCell>()
   if (one.summaries.length < 4) return { ...one, cells }
   const others = summariseOthers(one.summaries)
-  one.data.cells.forEach((cell, index) => cells.set(cell.laboratory, { cell, others: others[index]!, index }))
+  one.data.cells.laboratories.forEach((laboratory, index) =>
+    cells.set(laboratory, { others: others[index]!, index }),
+  )
   return { ...one, cells }
 }
 
@@ -122,28 +121,34 @@ function cellsOfLaboratory(laboratory: string, materials: readonly JudgedMateria
   })
 }
 
-function laboratoryCell(data: MaterialData, { cell, others }: JudgedCell): LaboratoryCell {
+function laboratoryCell(data: MaterialData, { others, index }: JudgedCell): LaboratoryCell {
+  const { starts, deviations } = data.cells
+  const results = resultsOfCell(data.cells, index)
   return {
     material: data.material,
     measurand: data.measurand,
-    values: [...cell.deviations],
+    values: [...deviations.subarray(starts[index], starts[index + 1])],
     offset: data.restore(0),
     deviationOf: data.deviationOf,
-    texts: cell.results.map(({ text }) => text),
-    groups: cell.results.map(({ groups }) => JSON.stringify(groups)),
+    texts: results.map(({ text }) => text),
+    groups: results.map(({ groups }) => JSON.stringify(groups)),
     others,
   }
 }
 
+function cellsOfTwoOrMore({ laboratories, starts }: MaterialCells): number {
+  return laboratories.filter((_, cell) => starts[cell + 1]! - starts[cell]! >= 2).length
+}
+
 /** Cells whose results agree in every digit although the others' scatter makes that unlikely. */
-function identicalCells({ cells }: JudgedMaterial, counted: number): Map<string, number> {
+function identicalCells({ data, cells }: JudgedMaterial, counted: number): Map<string, number> {
   const found = new Map<string, number>()
-  for (const [laboratory, { cell, others }] of cells) {
-    const [first, ...more] = cell.integers
-    if (more.length === 0 || more.some((one) => one !== first)) continue
+  for (const [laboratory, { others, index }] of cells) {
+    if (!areIdentical(data.cells, index)) continue
+    const results = resultsOfCell(data.cells, index)
     const probability = chanceOfIdentical({
-      results: cell.integers.length,
-      step: lastStep(cell),
+      results: results.length,
+      step: lastStep(results),
       sd: Math.sqrt(others.repeatabilityVariance),
       cells: counted,
     })
@@ -152,7 +157,15 @@ function identicalCells({ cells }: JudgedMaterial, counted: number): Map<string,
   return found
 }
 
-function lastStep({ results }: MaterialCell): number {
+function areIdentical({ units, starts }: MaterialCells, cell: number): boolean {
+  const start = starts[cell]!
+  const end = starts[cell + 1]!
+  if (end - start < 2) return false
+  for (let at = start + 1; at < end; at += 1) if (units[at] !== units[start]) return false
+  return true
+}
+
+function lastStep(results: readonly AnalysisResult[]): number {
   const scales = results.map(({ text }) => parseDecimal(text).scale)
   return Number(`1e${-Math.max(...scales)}`)
 }
@@ -163,17 +176,21 @@ const FEWEST_FOR_STEP = 4
 /** The step of which all results of a laboratory, over all materials, are multiples. */
 function commonSteps(materials: readonly AnalysedMaterial[]): Map<string, number> {
   const finest = Math.max(...materials.map(({ data }) => data.scale))
-  const numbers = new Map<string, bigint[]>()
+  const found = new Map<string, { results: number; step: bigint }>()
   for (const { data } of materials) {
     const factor = 10n ** BigInt(finest - data.scale)
-    for (const { laboratory, integers } of data.cells) {
-      const own = numbers.get(laboratory) ?? []
-      numbers.set(laboratory, own)
-      own.push(...integers.map((integer) => integer * factor))
-    }
+    const { laboratories, starts, units } = data.cells
+    laboratories.forEach((laboratory, cell) => {
+      const own = found.get(laboratory) ?? { results: 0, step: 0n }
+      found.set(laboratory, own)
+      own.results += starts[cell + 1]! - starts[cell]!
+      // Most have come down to 1 after a few results, and there is nothing further to find.
+      for (let at = starts[cell]!; at < starts[cell + 1]! && own.step !== 1n; at += 1)
+        own.step = commonStep([own.step, BigInt(units[at]!) * factor])
+    })
   }
-  const steps = [...numbers].filter(([, own]) => own.length >= FEWEST_FOR_STEP)
-  return new Map(steps.map(([laboratory, own]) => [laboratory, Number(`${commonStep(own)}e${-finest}`)]))
+  const steps = [...found].filter(([, { results }]) => results >= FEWEST_FOR_STEP)
+  return new Map(steps.map(([laboratory, { step }]) => [laboratory, Number(`${step}e${-finest}`)]))
 }
 
 function coarseSteps(
@@ -193,10 +210,10 @@ function coarseSteps(
 function trends(materials: readonly JudgedMaterial[]): Noticed[] {
   const laboratories = new Set(materials.flatMap(({ cells }) => [...cells.keys()]))
   return [...laboratories].flatMap((laboratory) => {
-    const runs = materials.flatMap(({ cells }) => {
+    const runs = materials.flatMap(({ data, cells }) => {
       const judged = cells.get(laboratory)
       const sd = Math.sqrt(judged?.others.repeatabilityVariance ?? 0)
-      return judged === undefined || sd === 0 ? [] : [runsOf(judged.cell, sd)]
+      return judged === undefined || sd === 0 ? [] : [runsOf(data.cells, judged.index, sd)]
     })
     const probability = trendPValue(runs.filter(({ length }) => length > 0))
     return probability !== null && probability < 0.01
@@ -206,9 +223,10 @@ function trends(materials: readonly JudgedMaterial[]): Noticed[] {
 }
 
 /** The results of a cell whose place in the order of runs is known, in units of `sd`. */
-function runsOf({ results, deviations }: MaterialCell, sd: number): { order: number; value: number }[] {
-  return results.flatMap(({ order }, index) =>
-    order == null ? [] : [{ order, value: deviations[index]! / sd }],
+function runsOf(cells: MaterialCells, index: number, sd: number): { order: number; value: number }[] {
+  const start = cells.starts[index]!
+  return resultsOfCell(cells, index).flatMap(({ order }, place) =>
+    order == null ? [] : [{ order, value: cells.deviations[start + place]! / sd }],
   )
 }
 
