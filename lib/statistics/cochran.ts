@@ -164,6 +164,8 @@ function requireTwoCells(cells: number): void {
 }
 
 function modalDf(cells: readonly ReplicatedCell[]): number {
+  const [first] = cells
+  if (cells.every(({ df }) => df === first!.df)) return first!.df
   const counts = new Map<number, number>()
   for (const { df } of cells) counts.set(df, (counts.get(df) ?? 0) + 1)
   const [modal] = [...counts].reduce((best, next) => {
@@ -183,15 +185,19 @@ function largestOfEachDf(
   sumsOfOthers: Float64Array,
 ): number[] {
   const places = new Map<number, number>()
+  let df = 0
+  let best = -1
   for (let at = 0; at < cells.length; at += 1) {
-    const { df } = cells[at]!
-    const best = places.get(df)
+    if (cells[at]!.df !== df || best === -1) {
+      df = cells[at]!.df
+      best = places.get(df) ?? at
+      places.set(df, best)
+    }
     // Cross-multiplied, as one cell may hold all the scatter; differences of rounding alone are ties.
-    if (
-      best === undefined ||
-      squares[at]! * sumsOfOthers[best]! > squares[best]! * sumsOfOthers[at]! * (1 + 1e-12)
-    )
-      places.set(df, at)
+    if (squares[at]! * sumsOfOthers[best]! > squares[best]! * sumsOfOthers[at]! * (1 + 1e-12)) {
+      best = at
+      places.set(df, best)
+    }
   }
   return [...places.values()].sort((one, other) => one - other)
 }

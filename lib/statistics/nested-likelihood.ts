@@ -1,4 +1,4 @@
-import type { NestedLayout } from '@/lib/statistics/nested-layout'
+import type { NestedLayout, Stratum } from '@/lib/statistics/nested-layout'
 
 /** The restricted likelihood at given variance ratios, with its first and second derivatives. */
 export type RestrictedLikelihood = {
@@ -26,62 +26,77 @@ export type RestrictedLikelihood = {
  * to A/(1 + θA) and adds log(1 + θA) to the log determinant, while m and Q stay. Working with means and not with
  * raw sums keeps the digits that a large common part would take away.
  *
- * Derivatives are carried along with each value (see `Jet`), so they are exact. The layout must have some residual
- * scatter: `fitReml` sees to it.
+ * Derivatives are carried along with each value (see `Jet`), so they are exact. `within` is the sum of squares, in u²
+ * and above 0, of the results about the means of their innermost groups.
  *
  * Source: Searle, Casella & McCulloch 1992, chapter 6; the recursion is our own working.
  */
 export function restrictedLikelihood(
   layout: NestedLayout,
+  within: number,
 ): (ratios: readonly number[]) => RestrictedLikelihood {
   const random = layout.strata.slice(0, -1)
   const count = random.length
   const results = layout.deviations.length
   const df = results - 1
-  const within = withinParts(layout)
-  const pools = poolAlike(layout, within)
+  const { levels, whole } = kindsOfGroups(layout)
   const scale = random.map(({ size }) => size.length / results)
+  const jets = jetArithmetic(count)
 
   return (ratios) => {
-    const jets = jetArithmetic(count)
-    let precision = pools.map(({ size, groups }) => jets.constant(groups * size))
-    let means = pools.map(({ mean }) => jets.constant(mean))
-    let squares = jets.constant(within.ss)
+    let squares = jets.constant(within)
     let logDeterminant = jets.constant(0)
+    /** Of one group of each kind of the level inside, its own random effect included. */
+    let precisions: readonly Jet[] = []
+    let mixedMeans: readonly Jet[] = []
 
-    if (count > 0) {
-      const ratio = jets.variable(ratios[count - 1]!, count - 1)
-      precision = pools.map(({ size, groups, ss }) => {
-        const inflated = jets.add(jets.constant(1), jets.scale(ratio, size))
-        const own = jets.divide(jets.constant(size), inflated)
-        logDeterminant = jets.add(logDeterminant, jets.scale(jets.log(inflated), groups))
-        squares = jets.add(squares, jets.scale(own, ss))
-        return jets.scale(own, groups)
-      })
-      const parentOf = pools.map(({ parent }) => parent)
-      const joined = join(jets, { precision, means, parentOf, parents: random[count - 2]?.size.length ?? 1 })
-      precision = joined.precision
-      means = joined.means
-      squares = jets.add(squares, joined.squares)
+    const join = ({ pools, mixed }: Joined): { precision: Jet; mean: Jet } => {
+      const parts = [
+        ...pools.map(({ kind, groups, mean }) => ({
+          precision: jets.scale(precisions[kind]!, groups),
+          mean: jets.constant(mean),
+        })),
+        ...mixed.map(({ kind, place }) => ({ precision: precisions[kind]!, mean: mixedMeans[place]! })),
+      ]
+      let precision = jets.constant(0)
+      let weighted = jets.constant(0)
+      for (const part of parts) {
+        precision = jets.add(precision, part.precision)
+        weighted = jets.add(weighted, jets.multiply(part.precision, part.mean))
+      }
+      const mean = jets.divide(weighted, precision)
+      for (const part of parts) {
+        const distance = jets.add(part.mean, jets.scale(mean, -1))
+        squares = jets.add(squares, jets.multiply(part.precision, jets.multiply(distance, distance)))
+      }
+      return { precision, mean }
     }
 
-    for (let level = count - 2; level >= 0; level -= 1) {
+    levels.forEach(({ kinds, mixed, squaresInside }, depth) => {
+      squaresInside.forEach((ss, kind) => {
+        squares = jets.add(squares, jets.scale(precisions[kind]!, ss))
+      })
+      const means = mixed.map((group) => join(group).mean)
+      const level = count - 1 - depth
       const ratio = jets.variable(ratios[level]!, level)
-      precision = precision.map((value) => {
-        const inflated = jets.add(jets.constant(1), jets.multiply(ratio, value))
-        logDeterminant = jets.add(logDeterminant, jets.log(inflated))
-        return jets.divide(value, inflated)
+      precisions = kinds.map(({ groups, results: ownResults, parts }) => {
+        let precision = jets.constant(ownResults)
+        for (const part of parts)
+          precision = jets.add(precision, jets.scale(precisions[part.kind]!, part.groups))
+        const inflated = jets.add(jets.constant(1), jets.multiply(ratio, precision))
+        logDeterminant = jets.add(logDeterminant, jets.scale(jets.log(inflated), groups))
+        return jets.divide(precision, inflated)
       })
-      const inner = random[level]!
-      const outer = level === 0 ? undefined : random[level - 1]!
-      const parentOf = Array.from(inner.firstMember, (member) => outer?.groupOf[member] ?? 0)
-      const joined = join(jets, { precision, means, parentOf, parents: outer?.size.length ?? 1 })
-      precision = joined.precision
-      means = joined.means
-      squares = jets.add(squares, joined.squares)
-    }
+      mixedMeans = means
+    })
 
-    const information = precision[0]!
+    whole.squaresInside.forEach((ss, kind) => {
+      squares = jets.add(squares, jets.scale(precisions[kind]!, ss))
+    })
+    const { precision: information, mean } =
+      count === 0
+        ? { precision: jets.constant(results), mean: jets.constant(layout.mean) }
+        : join(whole.joined)
     const deviance = jets.add(
       jets.add(logDeterminant, jets.log(information)),
       jets.scale(jets.log(jets.scale(squares, 1 / df)), df),
@@ -91,7 +106,7 @@ export function restrictedLikelihood(
       gradient: jets.gradient(deviance),
       curvature: jets.curvature(deviance),
       residualVariance: squares[0]! / df,
-      mean: means[0]![0]!,
+      mean: mean[0]!,
       information: information[0]!,
       df,
       scale,
@@ -99,70 +114,155 @@ export function restrictedLikelihood(
   }
 }
 
-/** The innermost groups, within which results differ by the residual alone. */
-function withinParts({ strata, deviations, mean }: NestedLayout): {
-  sizes: number[]
-  means: number[]
-  ss: number
-} {
-  const innermost = strata.at(-2)
-  let ss = 0
-  deviations.forEach((deviation, index) => {
-    ss += (deviation - (innermost === undefined ? mean : innermost.mean[innermost.groupOf[index]!]!)) ** 2
-  })
-  if (innermost === undefined) return { sizes: [deviations.length], means: [mean], ss }
-  return { sizes: Array.from(innermost.size), means: Array.from(innermost.mean), ss }
+/** Groups of one level that are built alike weigh alike, whatever the ratios are. */
+type Kind = {
+  /** How many there are. */
+  groups: number
+  /** Single results in each, in the innermost level; 0 further out. */
+  results: number
+  /** Groups of each kind of the level inside, in each. */
+  parts: readonly { kind: number; groups: number }[]
 }
 
-/** Innermost groups of one size under one parent: whatever the ratios are, they weigh alike. */
-type AlikeGroups = { parent: number; size: number; groups: number; mean: number; ss: number }
+/**
+ * What a group is joined from: groups of one kind whose means do not depend on the ratios, pooled once and not at every
+ * step, and mixed ones.
+ */
+type Joined = {
+  pools: { kind: number; groups: number; mean: number }[]
+  /** Groups of several kinds of parts, whose mean moves with the ratios: by their place among the mixed of their level. */
+  mixed: { kind: number; place: number }[]
+}
 
-/** They are joined once and not at every step; in a balanced layout one for each parent is left. */
-function poolAlike({ strata }: NestedLayout, within: { sizes: number[]; means: number[] }): AlikeGroups[] {
-  const innermost = strata.at(-2)
-  const outer = strata.at(-3)
-  const pools = new Map<number, Map<number, AlikeGroups>>()
-  within.sizes.forEach((size, group) => {
-    const parent =
-      outer === undefined || innermost === undefined ? 0 : outer.groupOf[innermost.firstMember[group]!]!
-    const ofParent = pools.get(parent) ?? new Map<number, AlikeGroups>()
-    pools.set(parent, ofParent)
-    const pool = ofParent.get(size) ?? { parent, size, groups: 0, mean: 0, ss: 0 }
-    ofParent.set(size, pool)
+type Level = {
+  kinds: readonly Kind[]
+  mixed: readonly Joined[]
+  /** By kind of the level inside: the squares of means about those of their pools. */
+  squaresInside: readonly number[]
+}
+
+/**
+ * The groups of each level sorted by kind, innermost level first, and what the whole is joined from. In a balanced layout
+ * there is one kind a level and nothing is mixed, however many groups there are.
+ */
+function kindsOfGroups({ strata }: NestedLayout): {
+  levels: Level[]
+  whole: { joined: Joined; squaresInside: readonly number[] }
+} {
+  const random = strata.slice(0, -1)
+  const levels: Level[] = []
+  let below: Groups | null = null
+  let whole: { joined: Joined; squaresInside: readonly number[] } = {
+    joined: { pools: [], mixed: [] },
+    squaresInside: [],
+  }
+  for (let level = random.length - 1; level >= 0; level -= 1) {
+    const stratum = random[level]!
+    const { groups, ...own }: Level & { groups: Groups } =
+      below === null ? innermostGroups(stratum) : joinedGroups(below, random[level + 1]!, stratum)
+    levels.push(own)
+    below = groups
+    if (level === 0) {
+      const { joined, squaresInside } = pooled(groups, new Int32Array(groups.kindOf.length), 1)
+      whole = { joined: joined[0]!, squaresInside }
+    }
+  }
+  return { levels, whole }
+}
+
+/** The groups of one level, in their order. */
+type Groups = {
+  kinds: readonly Kind[]
+  kindOf: Int32Array
+  /** Of those that are not mixed. */
+  meanOf: Float64Array
+  /** Place among the mixed of the level, -1 for others. */
+  mixedOf: Int32Array
+}
+
+function innermostGroups({ size, mean }: Stratum): Level & { groups: Groups } {
+  const kindOf = new Int32Array(size.length)
+  const known = new Map<number, number>()
+  const kinds: Kind[] = []
+  for (let group = 0; group < size.length; group += 1) {
+    let kind = known.get(size[group]!)
+    if (kind === undefined) {
+      kind = kinds.length
+      known.set(size[group]!, kind)
+      kinds.push({ groups: 0, results: size[group]!, parts: [] })
+    }
+    kinds[kind]!.groups += 1
+    kindOf[group] = kind
+  }
+  const mixedOf = new Int32Array(size.length).fill(-1)
+  return { kinds, mixed: [], squaresInside: [], groups: { kinds, kindOf, meanOf: mean, mixedOf } }
+}
+
+function joinedGroups(below: Groups, inner: Stratum, outer: Stratum): Level & { groups: Groups } {
+  const parentOf = inner.firstMember.map((member) => outer.groupOf[member]!)
+  const { joined, squaresInside } = pooled(below, parentOf, outer.size.length)
+  const known = new Map<string, number>()
+  const kinds: Kind[] = []
+  const mixed: Joined[] = []
+  const kindOf = new Int32Array(joined.length)
+  const meanOf = new Float64Array(joined.length)
+  const mixedOf = new Int32Array(joined.length).fill(-1)
+  joined.forEach((group, place) => {
+    const parts = partsOf(group)
+    const key = parts.map(({ kind, groups }) => `${kind}:${groups}`).join(' ')
+    let kind = known.get(key)
+    if (kind === undefined) {
+      kind = kinds.length
+      known.set(key, kind)
+      kinds.push({ groups: 0, results: 0, parts })
+    }
+    kinds[kind]!.groups += 1
+    kindOf[place] = kind
+    if (group.mixed.length === 0 && group.pools.length === 1) meanOf[place] = group.pools[0]!.mean
+    else mixedOf[place] = mixed.push(group) - 1
+  })
+  return { kinds, mixed, squaresInside, groups: { kinds, kindOf, meanOf, mixedOf } }
+}
+
+function partsOf({ pools, mixed }: Joined): { kind: number; groups: number }[] {
+  const groups = new Map<number, number>()
+  for (const pool of pools) groups.set(pool.kind, pool.groups)
+  for (const { kind } of mixed) groups.set(kind, (groups.get(kind) ?? 0) + 1)
+  return [...groups]
+    .map(([kind, count]) => ({ kind, groups: count }))
+    .sort((one, other) => one.kind - other.kind)
+}
+
+/** For each parent what it is joined from, and the squares that pooling has taken, by kind. */
+function pooled(
+  { kinds, kindOf, meanOf, mixedOf }: Groups,
+  parentOf: Int32Array,
+  parents: number,
+): { joined: Joined[]; squaresInside: number[] } {
+  const joined = Array.from({ length: parents }, (): Joined => ({ pools: [], mixed: [] }))
+  const squaresInside = kinds.map(() => 0)
+  const known = new Map<number, Joined['pools'][number]>()
+  for (let group = 0; group < kindOf.length; group += 1) {
+    const parent = parentOf[group]!
+    const kind = kindOf[group]!
+    if (mixedOf[group]! >= 0) {
+      joined[parent]!.mixed.push({ kind, place: mixedOf[group]! })
+      continue
+    }
+    const key = parent * kinds.length + kind
+    let pool = known.get(key)
+    if (pool === undefined) {
+      pool = { kind, groups: 0, mean: 0 }
+      known.set(key, pool)
+      joined[parent]!.pools.push(pool)
+    }
     // Welford: the sum of squares about the mean so far.
-    const apart = within.means[group]! - pool.mean
+    const apart = meanOf[group]! - pool.mean
     pool.groups += 1
     pool.mean += apart / pool.groups
-    pool.ss += apart * (within.means[group]! - pool.mean)
-  })
-  return [...pools.values()].flatMap((ofParent) => [...ofParent.values()])
-}
-
-type Groups = {
-  precision: readonly Jet[]
-  means: readonly Jet[]
-  parentOf: readonly number[]
-  parents: number
-}
-
-function join(
-  jets: JetArithmetic,
-  { precision, means, parentOf, parents }: Groups,
-): { precision: Jet[]; means: Jet[]; squares: Jet } {
-  const total = Array.from({ length: parents }, () => jets.constant(0))
-  const weighted = Array.from({ length: parents }, () => jets.constant(0))
-  precision.forEach((value, group) => {
-    const parent = parentOf[group]!
-    total[parent] = jets.add(total[parent]!, value)
-    weighted[parent] = jets.add(weighted[parent]!, jets.multiply(value, means[group]!))
-  })
-  const joined = total.map((value, parent) => jets.divide(weighted[parent]!, value))
-  let squares = jets.constant(0)
-  precision.forEach((value, group) => {
-    const distance = jets.add(means[group]!, jets.scale(joined[parentOf[group]!]!, -1))
-    squares = jets.add(squares, jets.multiply(value, jets.multiply(distance, distance)))
-  })
-  return { precision: total, means: joined, squares }
+    squaresInside[kind]! += apart * (meanOf[group]! - pool.mean)
+  }
+  return { joined, squaresInside }
 }
 
 /**

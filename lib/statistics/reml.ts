@@ -46,7 +46,7 @@ export function fitReml(layout: NestedLayout, startRatios: readonly number[]): R
   }
 
   const random = strata.slice(0, -1)
-  const evaluate = restrictedLikelihood(layout)
+  const evaluate = restrictedLikelihood(layout, within)
   // The surface can have more than one hollow: the search starts from the
   // analysis of variance and from equal components, and the lower end counts.
   const starts =
@@ -72,11 +72,12 @@ function withinSumOfSquares({ strata, deviations, mean }: NestedLayout): number 
   const innermost = strata.at(-2)
   let sum = 0
   let largest = 0
-  deviations.forEach((deviation, index) => {
-    const centre = innermost === undefined ? mean : innermost.mean[innermost.groupOf[index]!]!
+  for (let at = 0; at < deviations.length; at += 1) {
+    const deviation = deviations[at]!
+    const centre = innermost === undefined ? mean : innermost.mean[innermost.groupOf[at]!]!
     sum += (deviation - centre) ** 2
     largest = Math.max(largest, Math.abs(deviation))
-  })
+  }
   return sum <= deviations.length * (4 * Number.EPSILON * largest) ** 2 ? 0 : sum
 }
 

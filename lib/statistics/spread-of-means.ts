@@ -73,12 +73,15 @@ function extent(
 ): { range: number; largest: number; reach: number } {
   let least = Infinity
   let most = -Infinity
-  let reach = 0
-  for (const { mean, sd = 0, n } of summaries) {
+  let scatter = 0
+  let size = 0
+  for (const { mean, sd, n } of summaries) {
     if (mean < least) least = mean
     if (mean > most) most = mean
-    // No result of a cell lies further from 0 than this; the rounding of its mean is a few units in that last place.
-    reach = Math.max(reach, Math.abs(mean) + sd * Math.sqrt(n))
+    if (sd !== undefined && sd > scatter) scatter = sd
+    if (n > size) size = n
   }
+  // No result of a cell lies further from its mean than this; the rounding of a mean is a few units in that last place.
+  const reach = Math.max(Math.abs(least), Math.abs(most)) + scatter * Math.sqrt(size)
   return { range: most - least, largest: Math.max(most - first, first - least), reach }
 }
