@@ -1,13 +1,14 @@
 /** Guards shared by the distributions: what fails here is a caller's mistake, so it is a RangeError. */
 
 /**
- * Lets pass any real degrees of freedom above 0 and up to 1e9.
+ * Lets pass any real degrees of freedom from 1e-300 to 1e9. Below, a half of them would have lost its digits; above, nobody has
+ * looked.
  *
  * @throws {RangeError} for others.
  */
 export function requireDegreesOfFreedom(df: number): void {
-  if (!(df > 0 && df <= 1e9))
-    throw new RangeError(`degrees of freedom must lie above 0 and up to 1e9, got ${df}`)
+  if (!(df >= 1e-300 && df <= 1e9))
+    throw new RangeError(`degrees of freedom must lie between 1e-300 and 1e9, got ${df}`)
 }
 
 /**

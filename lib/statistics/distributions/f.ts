@@ -3,9 +3,10 @@ import {
   requireFraction,
   requireNumber,
 } from '@/lib/statistics/distributions/arguments'
-import { incompleteBeta } from '@/lib/statistics/distributions/incomplete-beta'
+import { betaQuantileLogF } from '@/lib/statistics/distributions/beta-quantile'
+import { betaShapes, FAR, incompleteBeta } from '@/lib/statistics/distributions/incomplete-beta'
 import { remembered } from '@/lib/statistics/distributions/remembered'
-import { solveTail } from '@/lib/statistics/distributions/solve-tail'
+import type { Side } from '@/lib/statistics/distributions/tails'
 
 /**
  * The share of F that lies below x, on any real degrees of freedom, df1 above and df2 below.
@@ -14,7 +15,7 @@ import { solveTail } from '@/lib/statistics/distributions/solve-tail'
  * Relative accuracy is near 1e-12. Own code because the libraries at hand overflow at one degree of freedom below, or keep
  * no more than seven digits in the tails.
  *
- * @throws {RangeError} for degrees of freedom outside 0 to 1e9; for NaN.
+ * @throws {RangeError} for degrees of freedom outside 1e-300 to 1e9; for NaN.
  *
  * Source: incomplete beta function; see `incomplete-beta.ts`.
  */
@@ -25,18 +26,17 @@ export function fLowerTail(x: number, df1: number, df2: number): number {
 /**
  * The share of F that lies above x; keeps its digits where it is small.
  *
- * @throws {RangeError} for degrees of freedom outside 0 to 1e9; for NaN.
+ * @throws {RangeError} for degrees of freedom outside 1e-300 to 1e9; for NaN.
  */
 export function fUpperTail(x: number, df1: number, df2: number): number {
   return tails({ x, df1, df2 }).upper
 }
 
 /**
- * The x below which a share p lies.
+ * The x below which a share p lies; 0 where x is below the smallest double.
  *
- * The answer and its odds must be doubles: see {@link fQuantileUpper}.
- *
- * @throws {RangeError} for p not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9.
+ * @throws {RangeError} for p not strictly between 0 and 1; for degrees of freedom outside 1e-300 to 1e9; for an x beyond the
+ *   largest double, which very few degrees of freedom below bring about.
  */
 export const fQuantileLower = remembered((p: number, df1: number, df2: number): number => {
   requireFraction(p)
@@ -44,13 +44,10 @@ export const fQuantileLower = remembered((p: number, df1: number, df2: number): 
 })
 
 /**
- * The x above which a share alpha lies.
+ * The x above which a share alpha lies; 0 where x is below the smallest double.
  *
- * The answer and its odds must be doubles, as they are at every level a test asks for. Where the odds are none (alpha of
- * 1e-160 on one degree of freedom below) the search finds no end.
- *
- * @throws {RangeError} for alpha not strictly between 0 and 1; for degrees of freedom outside 0 to 1e9; for an x that is
- *   no double although its odds are one.
+ * @throws {RangeError} for alpha not strictly between 0 and 1; for degrees of freedom outside 1e-300 to 1e9; for an x beyond the
+ *   largest double, such as that of alpha 1e-160 on one degree of freedom below.
  */
 export const fQuantileUpper = remembered((alpha: number, df1: number, df2: number): number => {
   requireFraction(alpha)
@@ -63,29 +60,23 @@ function tails({ x, df1, df2 }: { x: number; df1: number; df2: number }): { lowe
   requireDegreesOfFreedom(df1)
   requireDegreesOfFreedom(df2)
   requireNumber(x)
+  if (x <= 0) return { lower: 0, upper: 1 }
+  if (x === Infinity) return { lower: 1, upper: 0 }
+  const shapes = betaShapes(df1 / 2, df2 / 2)
   const odds = (x / df2) * df1
-  if (odds <= 0) return { lower: 0, upper: 1 }
-  if (odds === Infinity) return { lower: 1, upper: 0 }
-  return incompleteBeta(df1 / 2, df2 / 2, odds)
+  if (odds > SMALLEST && odds < LARGEST) return incompleteBeta(shapes, odds)
+  // No double, or one that has lost its digits on the way; the logarithm has them.
+  const logOdds = Math.log(x) + (Math.log(df1) - Math.log(df2))
+  return incompleteBeta(shapes, Math.exp(logOdds), logOdds)
 }
 
-interface QuantileOf {
-  side: 'lower' | 'upper'
-  p: number
-  df1: number
-  df2: number
-}
+const SMALLEST = Math.exp(-FAR)
+const LARGEST = Math.exp(FAR)
 
-function quantile({ side, p, df1, df2 }: QuantileOf): number {
+function quantile({ side, p, df1, df2 }: { side: Side; p: number; df1: number; df2: number }): number {
   requireDegreesOfFreedom(df1)
   requireDegreesOfFreedom(df2)
-  const tailAt = (u: number) => {
-    const at = incompleteBeta(df1 / 2, df2 / 2, Math.exp(u))
-    return { tail: at[side], steepness: at.slope }
-  }
-  // The median of F lies near 1, whose odds are df1/df2.
-  const u = solveTail({ tailAt, side, target: p, start: Math.log(df1) - Math.log(df2) })
-  const x = Math.exp(u + (Math.log(df2) - Math.log(df1)))
+  const x = Math.exp(betaQuantileLogF({ a: df1 / 2, b: df2 / 2, side, p }))
   if (x === Infinity)
     throw new RangeError(`the F quantile with ${side} tail ${p} on ${df1} and ${df2} df overflows`)
   return x

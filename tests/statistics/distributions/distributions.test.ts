@@ -1,5 +1,7 @@
 import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
+import tCdf from '@stdlib/stats-base-dists-t-cdf'
+import tQuantile from '@stdlib/stats-base-dists-t-quantile'
 import jstat from 'jstat'
 import { describe, expect, it } from 'vitest'
 import {
@@ -136,6 +138,18 @@ describe("Student's t", () => {
   it('agrees with the handbook table to its printed digits', () => {
     for (const row of printed.t) {
       expect(tQuantileLower(row.prob, row.df).toFixed(row.decimals)).toBe(row.published.toFixed(row.decimals))
+    }
+  })
+})
+
+describe("Student's t beside stdlib", () => {
+  it('is seconded at the levels and degrees of freedom that studies bring', () => {
+    for (const df of [1, 2, 4.7, 9, 60, 2000]) {
+      for (const alpha of [0.4, 0.05, 0.005, 1e-4, 1e-8]) {
+        const t = tQuantileUpper(alpha, df)
+        expect(t / -tQuantile(alpha, df)).toBeCloseTo(1, 12)
+        expect(tUpperTail(t, df) / tCdf(-t, df)).toBeCloseTo(1, 12)
+      }
     }
   })
 })
