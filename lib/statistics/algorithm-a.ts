@@ -37,10 +37,11 @@ export function algorithmA(values: readonly number[]): AlgorithmA {
   const count = values.length
   if (count < 3) throw new NotComputable('too-few-laboratories', 'Algorithm A needs three laboratories.')
 
-  let mean = median(values)
+  const sorted = Float64Array.from(values).sort()
+  let mean = median(sorted)
   const centre = mean
-  let sd = MAD_FACTOR * median(values.map((value) => Math.abs(value - centre)))
-  const largest = Math.max(...values.map((value) => Math.abs(value)))
+  let sd = MAD_FACTOR * median(sorted.map((value) => Math.abs(value - centre)))
+  const largest = Math.max(Math.abs(sorted[0]!), Math.abs(sorted[count - 1]!))
   if (sd <= 8 * Number.EPSILON * largest) {
     throw new NotComputable('majority-equal', 'More than half of the cell means are equal.')
   }
@@ -48,10 +49,8 @@ export function algorithmA(values: readonly number[]): AlgorithmA {
   for (let iterations = 1; iterations <= MOST_ITERATIONS; iterations += 1) {
     const low = mean - CLIP * sd
     const high = mean + CLIP * sd
-    const drawnIn = values.map((value) => Math.min(high, Math.max(low, value)))
-    const nextMean = drawnIn.reduce((sum, value) => sum + value, 0) / count
-    const squares = drawnIn.reduce((sum, value) => sum + (value - nextMean) ** 2, 0)
-    const nextSd = SPREAD_FACTOR * Math.sqrt(squares / (count - 1))
+    const nextMean = sumOf(sorted, low, high) / count
+    const nextSd = SPREAD_FACTOR * Math.sqrt(squaresAbout(sorted, nextMean, low, high) / (count - 1))
     const still =
       Math.abs(nextMean - mean) <= TOLERANCE * nextSd && Math.abs(nextSd - sd) <= TOLERANCE * nextSd
     mean = nextMean
@@ -59,4 +58,21 @@ export function algorithmA(values: readonly number[]): AlgorithmA {
     if (still) return { mean, sd, meanStandardError: (1.25 * sd) / Math.sqrt(count), iterations }
   }
   throw new NotComputable('no-convergence', 'Algorithm A did not settle.')
+}
+
+/** Of the values drawn in to between the limits. */
+function sumOf(values: Float64Array, low: number, high: number): number {
+  let sum = 0
+  for (let at = 0; at < values.length; at += 1) sum += drawnIn(values[at]!, low, high)
+  return sum
+}
+
+function squaresAbout(values: Float64Array, centre: number, low: number, high: number): number {
+  let squares = 0
+  for (let at = 0; at < values.length; at += 1) squares += (drawnIn(values[at]!, low, high) - centre) ** 2
+  return squares
+}
+
+function drawnIn(value: number, low: number, high: number): number {
+  return value < low ? low : value > high ? high : value
 }

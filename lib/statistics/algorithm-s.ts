@@ -40,18 +40,19 @@ export function algorithmS(cells: readonly { sd: number; df: number }[]): Algori
   }
 
   const constants = new Map([...new Set(replicated.map(({ df }) => df))].map((df) => [df, constantsFor(df)]))
-  const terms = replicated.map(({ sd, df }) => ({ variance: sd ** 2, df, ...constants.get(df)! }))
-  const divisor = terms.reduce((sum, { df, expectedShare }) => sum + df * expectedShare, 0)
+  const variances = Float64Array.from(replicated, ({ sd }) => sd ** 2)
+  const weights = Float64Array.from(replicated, ({ df }) => df)
+  const limits = Float64Array.from(replicated, ({ df }) => constants.get(df)!.limitSquared)
+  const divisor = replicated.reduce((sum, { df }) => sum + df * constants.get(df)!.expectedShare, 0)
 
   let variance = start ** 2
   for (let iterations = 1; iterations <= MOST_ITERATIONS; iterations += 1) {
-    const limit = variance
-    const sum = terms.reduce(
-      (total, term) => total + term.df * Math.min(term.variance, term.limitSquared * limit),
-      0,
-    )
+    const before = variance
+    let sum = 0
+    for (let at = 0; at < variances.length; at += 1)
+      sum += weights[at]! * Math.min(variances[at]!, limits[at]! * before)
     variance = sum / divisor
-    if (Math.abs(variance - limit) <= TOLERANCE * variance) {
+    if (Math.abs(variance - before) <= TOLERANCE * variance) {
       return { sd: Math.sqrt(variance), generalised: constants.size > 1, iterations }
     }
   }

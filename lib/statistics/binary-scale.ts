@@ -1,7 +1,8 @@
 /**
  * A power of two near the largest of the values, in their unit; 1 when all are 0 or there is none.
  *
- * Divided by it (exactly, as only the exponent changes) values of 1e-300 or 1e300 can be squared like any others.
+ * Divided by it, or multiplied by its inverse (exactly, as only the exponent changes), values of 1e-300 or 1e300 can be
+ * squared like any others.
  */
 export function binaryScale(values: Iterable<number>): number {
   let largest = 0

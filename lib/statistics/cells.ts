@@ -96,16 +96,17 @@ function summarise(laboratory: string, deviations: Float64Array, start: number, 
     if (!(size < Infinity)) throw new RangeError(`a deviation of ${laboratory} is no finite number`)
     if (size > largest) largest = size
   }
-  // Within these bounds squares stay doubles as they are.
+  // Within these bounds squares stay doubles as they are. Of a power of two the inverse is exact, and quicker to apply.
   const scale = largest > 1e-100 && largest < 1e100 ? 1 : binaryScaleOf(largest)
+  const inverse = 1 / scale
   let sum = 0
-  for (let at = start; at < end; at += 1) sum += (deviations[at]! - first) / scale
+  for (let at = start; at < end; at += 1) sum += (deviations[at]! - first) * inverse
   const middle = sum / n
 
   let squares = 0
   let left = 0
   for (let at = start; at < end; at += 1) {
-    const residual = (deviations[at]! - first) / scale - middle
+    const residual = (deviations[at]! - first) * inverse - middle
     squares += residual * residual
     left += residual
   }

@@ -152,9 +152,9 @@ function comparableCells(summaries: readonly CellSummary[]): readonly Replicated
 function variancesOf(cells: readonly ReplicatedCell[]): Float64Array {
   let largest = 0
   for (const { sd } of cells) if (sd > largest) largest = sd
-  const scale = binaryScaleOf(largest)
+  const inverse = 1 / binaryScaleOf(largest)
   const variances = new Float64Array(cells.length)
-  for (let at = 0; at < cells.length; at += 1) variances[at] = (cells[at]!.sd / scale) ** 2
+  for (let at = 0; at < cells.length; at += 1) variances[at] = (cells[at]!.sd * inverse) ** 2
   return variances
 }
 

@@ -88,8 +88,9 @@ export function mandelK(summaries: readonly CellSummary[]): MandelK[] {
   const { sumOfSquares, df: pooledDf, scale } = pooledSquares(cells)
   if (pooledDf === 0) throw new NotComputable('no-replicates', 'No laboratory has a second result.')
   if (sumOfSquares === 0) throw noScatter()
+  const inverse = 1 / scale
   const pooled = Math.sqrt(sumOfSquares / pooledDf)
-  return cells.map(({ laboratory, sd, df }) => ({ laboratory, k: sd / scale / pooled, df, pooledDf }))
+  return cells.map(({ laboratory, sd, df }) => ({ laboratory, k: (sd * inverse) / pooled, df, pooledDf }))
 }
 
 export interface KOf {

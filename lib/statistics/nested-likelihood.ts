@@ -145,30 +145,23 @@ type Level = {
  * The groups of each level sorted by kind, innermost level first, and what the whole is joined from. In a balanced layout
  * there is one kind a level and nothing is mixed, however many groups there are.
  */
-function kindsOfGroups({ strata }: NestedLayout): {
-  levels: Level[]
-  whole: { joined: Joined; squaresInside: readonly number[] }
-} {
-  const random = strata.slice(0, -1)
-  const levels: Level[] = []
-  let below: Groups | null = null
-  let whole: { joined: Joined; squaresInside: readonly number[] } = {
-    joined: { pools: [], mixed: [] },
-    squaresInside: [],
+function kindsOfGroups({ strata }: NestedLayout): { levels: readonly Level[]; whole: Whole } {
+  const innermostFirst = strata.slice(0, -1).reverse()
+  const levels: SortedLevel[] = []
+  for (const stratum of innermostFirst) {
+    const inside = levels.at(-1)
+    levels.push(inside === undefined ? innermostLevel(stratum) : joinedLevel(inside.groups, stratum))
   }
-  for (let level = random.length - 1; level >= 0; level -= 1) {
-    const stratum = random[level]!
-    const { groups, ...own }: Level & { groups: Groups } =
-      below === null ? innermostGroups(stratum) : joinedGroups(below, random[level + 1]!, stratum)
-    levels.push(own)
-    below = groups
-    if (level === 0) {
-      const { joined, squaresInside } = pooled(groups, new Int32Array(groups.kindOf.length), 1)
-      whole = { joined: joined[0]!, squaresInside }
-    }
-  }
-  return { levels, whole }
+  const outermost = levels.at(-1)?.groups
+  if (outermost === undefined)
+    return { levels, whole: { joined: { pools: [], mixed: [] }, squaresInside: [] } }
+  const { joined, squaresInside } = pooled(outermost, new Int32Array(outermost.kindOf.length), 1)
+  return { levels, whole: { joined: joined[0]!, squaresInside } }
 }
+
+type Whole = { joined: Joined; squaresInside: readonly number[] }
+
+type SortedLevel = Level & { groups: Groups }
 
 /** The groups of one level, in their order. */
 type Groups = {
@@ -178,9 +171,11 @@ type Groups = {
   meanOf: Float64Array
   /** Place among the mixed of the level, -1 for others. */
   mixedOf: Int32Array
+  /** One observation of each. */
+  firstMember: Int32Array
 }
 
-function innermostGroups({ size, mean }: Stratum): Level & { groups: Groups } {
+function innermostLevel({ size, mean, firstMember }: Stratum): SortedLevel {
   const kindOf = new Int32Array(size.length)
   const known = new Map<number, number>()
   const kinds: Kind[] = []
@@ -195,12 +190,17 @@ function innermostGroups({ size, mean }: Stratum): Level & { groups: Groups } {
     kindOf[group] = kind
   }
   const mixedOf = new Int32Array(size.length).fill(-1)
-  return { kinds, mixed: [], squaresInside: [], groups: { kinds, kindOf, meanOf: mean, mixedOf } }
+  return {
+    kinds,
+    mixed: [],
+    squaresInside: [],
+    groups: { kinds, kindOf, meanOf: mean, mixedOf, firstMember },
+  }
 }
 
-function joinedGroups(below: Groups, inner: Stratum, outer: Stratum): Level & { groups: Groups } {
-  const parentOf = inner.firstMember.map((member) => outer.groupOf[member]!)
-  const { joined, squaresInside } = pooled(below, parentOf, outer.size.length)
+function joinedLevel(inside: Groups, { groupOf, size, firstMember }: Stratum): SortedLevel {
+  const parentOf = inside.firstMember.map((member) => groupOf[member]!)
+  const { joined, squaresInside } = pooled(inside, parentOf, size.length)
   const known = new Map<string, number>()
   const kinds: Kind[] = []
   const mixed: Joined[] = []
@@ -221,7 +221,7 @@ function joinedGroups(below: Groups, inner: Stratum, outer: Stratum): Level & { 
     if (group.mixed.length === 0 && group.pools.length === 1) meanOf[place] = group.pools[0]!.mean
     else mixedOf[place] = mixed.push(group) - 1
   })
-  return { kinds, mixed, squaresInside, groups: { kinds, kindOf, meanOf, mixedOf } }
+  return { kinds, mixed, squaresInside, groups: { kinds, kindOf, meanOf, mixedOf, firstMember } }
 }
 
 function partsOf({ pools, mixed }: Joined): { kind: number; groups: number }[] {

@@ -143,10 +143,11 @@ export function pooledSquares(summaries: readonly CellSummary[]): PooledSquares 
     df += cell.df
   }
   const scale = binaryScaleOf(largest)
+  const inverse = 1 / scale
   let sumOfSquares = 0
   for (const cell of summaries) {
     if (cell.df < 1 || cell.sd === undefined) continue
-    const sd = cell.sd / scale
+    const sd = cell.sd * inverse
     sumOfSquares += cell.df * (sd * sd)
   }
   return { sumOfSquares, df, scale }
@@ -290,11 +291,12 @@ interface SquaresOf {
 
 /** Σ w (ȳ - centre)² in units of `scale` squared, less what rounding left in the centre. */
 function squaresAbout(summaries: readonly CellSummary[], { centre, scale, isWeighted }: SquaresOf): number {
+  const inverse = 1 / scale
   let squares = 0
   let left = 0
   let weights = 0
   for (const { n, mean } of summaries) {
-    const residual = (mean - centre) / scale
+    const residual = (mean - centre) * inverse
     const weight = isWeighted ? n : 1
     squares += weight * residual * residual
     left += weight * residual

@@ -33,10 +33,11 @@ export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): S
   if (range <= 8 * Number.EPSILON * reach) throw new NotComputable('equal-means', 'All cell means are equal.')
 
   const scale = binaryScaleOf(largest)
+  const inverse = 1 / scale
   const centred = new Float64Array(p)
   let sum = 0
   for (let at = 0; at < p; at += 1) {
-    const shifted = (summaries[at]!.mean - first) / scale
+    const shifted = (summaries[at]!.mean - first) * inverse
     centred[at] = shifted
     sum += shifted
   }
