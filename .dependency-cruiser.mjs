@@ -48,17 +48,17 @@ const config = {
     },
     {
       name: 'statistics-few-packages',
-      comment: 'The core uses jstat, mathjs and @stdlib alone.',
+      comment: 'The core uses jstat, mathjs, pure-rand and @stdlib alone.',
       severity: 'error',
       from: { path: '^lib/statistics/' },
-      to: { path: 'node_modules/', pathNot: npm('jstat', 'mathjs', '@stdlib/[^/]+') },
+      to: { path: 'node_modules/', pathNot: npm('jstat', 'mathjs', 'pure-rand', '@stdlib/[^/]+') },
     },
     {
       name: 'distributions-behind-one-door',
       comment: 'Call lib/statistics/distributions, which knows where each library is accurate.',
       severity: 'error',
       from: { pathNot: '^(lib/statistics/distributions/|tests/)' },
-      to: { path: npm('jstat', '@stdlib/[^/]+') },
+      to: { path: npm('jstat', 'pure-rand', '@stdlib/[^/]+') },
     },
     {
       name: 'mathjs-behind-two-doors',

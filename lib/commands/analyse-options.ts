@@ -1,4 +1,6 @@
 import { parseArgs } from 'node:util'
+import { isReservedLevel } from '@/lib/commands/reserved-levels'
+import { readPlanOption } from '@/lib/commands/read-plan-option'
 import { type AnalysisSettings, decimalToNumber, parseDecimal } from '@/lib/statistics'
 
 /** What the command line of `analyse` asks for. */
@@ -17,7 +19,7 @@ export type AnalyseOptions = {
 export const ANALYSE_USAGE =
   'usage: analyse FILE [--nest operator,day] [--factor 2.8] [--columns laboratory=Lab,value=Conc] [--all] ' +
   '[--measurand NAME] [--reference A=41.5:0.05] [--sigma A=0.6] [--pairs A:B,C:D] [--decimals A=2] ' +
-  '[--no-true-zero] [--homogeneity] | --plan p=8..30,n=2,gamma=2'
+  '[--no-true-zero] [--homogeneity] | --plan p=8..30,n=2,gamma=2 | --plan p=8..30,day=2,n=2,gamma=2,share=0.4,within=0.3'
 
 /** Reads the arguments; each thing that is wrong is one line of `problems`. */
 export function readAnalyseOptions(
@@ -36,13 +38,16 @@ export function readAnalyseOptions(
     problems.push(`option --${option}: found ${JSON.stringify(found)}, expected ${expected}`)
   }
 
-  const plan = values.plan === undefined ? undefined : readPlan(values.plan, fault)
+  const plan =
+    values.plan === undefined
+      ? undefined
+      : readPlanOption(values.plan, (found, expected) => fault('plan', found, expected))
   if (plan === undefined && positionals.length !== 1) {
     problems.push(`found ${positionals.length} files, expected one`, ANALYSE_USAGE)
   }
   const nesting = list(values.nest)
   if (new Set(nesting).size !== nesting.length) fault('nest', values.nest!, 'each level once')
-  if (nesting.some((level) => RESERVED.includes(level.toLowerCase()))) {
+  if (nesting.some(isReservedLevel)) {
     fault('nest', values.nest!, 'inner levels only, neither laboratory nor replicate')
   }
 
@@ -82,9 +87,6 @@ export function readAnalyseOptions(
 }
 
 type Fault = (option: string, found: string, expected: string) => void
-
-/** Names that a level of the nesting must not take: they stand for the outermost and the innermost, or for other rooms of the file. */
-const RESERVED = ['laboratory', 'lab', 'replicate', 'residual', 'material', 'value', 'result', 'measurand']
 
 function parseGiven(args: readonly string[]) {
   return parseArgs({
@@ -181,17 +183,4 @@ function readPairs(text: string, fault: Fault): [string, string][] {
     }
     return [[x, y]]
   })
-}
-
-function readPlan(text: string, fault: Fault): AnalysisSettings['plan'] | null {
-  const found = /^p=(\d+)(?:\.\.(\d+))?,n=(\d+),gamma=([\d.]+)$/.exec(text.replaceAll(' ', ''))
-  const from = Number(found?.[1])
-  const to = Number(found?.[2] ?? found?.[1])
-  const n = Number(found?.[3])
-  const gamma = Number(found?.[4])
-  if (found === null || !(from >= 2 && to >= from && to <= 10_000 && n >= 1 && gamma >= 1)) {
-    fault('plan', text, 'p=8..30,n=2,gamma=2 with p from 2, n from 1 and gamma from 1')
-    return null
-  }
-  return { from, to, n, gamma }
 }

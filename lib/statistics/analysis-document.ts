@@ -361,8 +361,39 @@ export type HomogeneityCheck = {
 export type Planning = {
   n: number
   gamma: number
-  points: ({ p: number; repeatability: Quantity; reproducibility: Quantity; bias: Quantity } & Reasons)[]
-  /** With γ below 1.5 `reasons` says, of `reproducibility`, how far the figures are off. */
+  /** With γ below 1.5 `reasons` says, of `reproducibility`, how far the figures of a one-way plan are off. */
+  points: PlanningPoint[]
+  /** A nested plan alone has this and `least`, which is `null` where no half-width was wished for. */
+  nested?: NestedPlanning
+  least?: LeastPlan | null
+} & Reasons
+
+/** Half-widths of 95 % intervals with p laboratories, by `planning.ts` or, nested, by `nested-planning.ts`. */
+export type PlanningPoint = {
+  p: number
+  repeatability: Quantity
+  reproducibility: Quantity
+  bias: Quantity
+  /** A nested plan alone, in the order of a material's `intermediate`. */
+  intermediate?: { varies: string[]; halfWidth: number }[]
+} & Reasons
+
+/** What was assumed and drawn. The laboratories hold the share that the inner levels leave. */
+export type NestedPlanning = {
+  inner: { source: string; groups: number; share: number }[]
+  laboratoryShare: number
+  draws: number
+  seed: number
+}
+
+/** The least numbers of laboratories that bring each half-width down to the wished one. */
+export type LeastPlan = {
+  wished: number
+  /** As far as was looked. */
+  limit: number
+  repeatability: Quantity
+  intermediate: ({ varies: string[]; p: Quantity } & Reasons)[]
+  reproducibility: Quantity
 } & Reasons
 
 export type MeasurandAnalysis = {

@@ -48,5 +48,17 @@ export type AnalysisSettings = {
   units?: readonly { name: string; factor: number }[]
   /** The laboratories are units of a material before shipping. */
   homogeneity?: boolean
-  plan?: { from: number; to: number; n: number; gamma: number }
+  plan?: AskedPlan
+}
+
+/** A curve over numbers of laboratories, both ends included. */
+export type AskedPlan = {
+  from: number
+  to: number
+  n: number
+  gamma: number
+  /** Levels between laboratory and replicate, outermost first, with the share of γ² − 1 that each holds. */
+  inner?: readonly { source: string; groups: number; share: number }[]
+  /** With inner levels: the half-width for which the least number of laboratories is asked. */
+  wished?: number
 }

@@ -1,7 +1,12 @@
 /** The published face of the numerical core. */
 export { analyse } from '@/lib/statistics/analyse'
 export type * from '@/lib/statistics/analysis-document'
-export type { AnalysisInput, AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
+export type {
+  AnalysisInput,
+  AnalysisResult,
+  AnalysisSettings,
+  AskedPlan,
+} from '@/lib/statistics/analysis-input'
 export { equalProposals } from '@/lib/statistics/equal-proposals'
 export { flaggedCells } from '@/lib/statistics/document/flagged-cells'
 export { type LaboratoryBias, laboratoryBias } from '@/lib/statistics/laboratory-bias'

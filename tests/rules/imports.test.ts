@@ -27,6 +27,7 @@ const PLANTED: Record<string, [file: string, line: string][]> = {
   'statistics-few-packages': [['lib/statistics/planted-package.ts', "import 'luxon'"]],
   'distributions-behind-one-door': [
     ['lib/statistics/planted-jstat.ts', "import 'jstat'"],
+    ['lib/statistics/planted-random.ts', "import 'pure-rand/generator/mersenne'"],
     ['lib/use-cases/planted-stdlib.ts', "import '@stdlib/stats-base-dists-t-cdf'"],
   ],
   'mathjs-behind-two-doors': [['lib/statistics/planted-mathjs.ts', "import 'mathjs'"]],

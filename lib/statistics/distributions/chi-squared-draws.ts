@@ -1,10 +1,11 @@
-import { normalQuantile } from '@/lib/statistics/distributions/normal'
 import { uniformFloat64 } from 'pure-rand/distribution/uniformFloat64'
 import { xoroshiro128plus } from 'pure-rand/generator/xoroshiro128plus'
 import type { RandomGenerator } from 'pure-rand/types/RandomGenerator'
+import { normalQuantile } from '@/lib/statistics/distributions/normal'
 
 /** Chance drawn once and kept, from which draws on any degrees of freedom are made. */
 export type KeptChance = {
+  /** Spread as evenly as so many normal numbers can be, in an order left to chance. */
   normals: Float64Array
   /** Above 0 and up to 1, one beside each normal number. */
   uniforms: Float64Array
@@ -16,6 +17,9 @@ export type KeptChance = {
  * `streams` independent lots of chance, each for `draws` draws, from one whole seed. The streams lie 2^64 numbers apart
  * in one sequence (xoroshiro128+), so they share none.
  *
+ * The normal numbers of a lot are the quantiles in the middle of `draws` equal slices, shuffled. What is drawn from them
+ * lies nearer to its distribution than independent draws would; chance is only in what meets what.
+ *
  * @throws {RangeError} for a seed that is no 32-bit whole number; for fewer than 1 draw.
  */
 export function keptChances(chance: { seed: number; draws: number; streams: number }): KeptChance[] {
@@ -25,25 +29,20 @@ export function keptChances(chance: { seed: number; draws: number; streams: numb
   if (!Number.isInteger(draws) || draws < 1)
     throw new RangeError(`draws must be a whole number from 1, got ${draws}`)
   const first = xoroshiro128plus(seed)
+  const evenly = Float64Array.from({ length: draws }, (_, slice) => normalQuantile((slice + 0.5) / draws))
   return Array.from({ length: streams }, () => {
     // The jump also takes the sequence away from its thin beginning, where seeds that are near give numbers that are near.
     first.jump()
     const own = first.clone()
-    const normals = new Float64Array(draws)
-    const uniforms = new Float64Array(draws)
-    for (let draw = 0; draw < draws; draw += 1) {
-      uniforms[draw] = uniformFrom(own)
-      // Each draw comes from its own slice of the normal distribution; shuffled in on the way.
-      const other = Math.floor(uniformFloat64(own) * (draw + 1))
-      normals[draw] = normals[other]!
-      normals[other] = normalQuantile((draw + 1 - uniformFrom(own)*0.999999999) / draws)
-    }
+    const normals = shuffled(evenly, own)
+    const uniforms = evenly.map(() => uniformFrom(own))
     return { normals, uniforms, beyond: () => own.clone() }
   })
 }
 
 /**
- * One chi-squared draw on `df` degrees of freedom for each kept pair of numbers, exactly of that distribution.
+ * One chi-squared draw on `df` degrees of freedom for each kept pair of numbers, by a method that is exact: no
+ * approximation of the distribution is in it.
  *
  * Draws made of the same chance on other degrees of freedom come of the same normal numbers, so that a curve over the
  * degrees of freedom runs smoothly, and a value does not depend on which others were asked for. The few pairs that are
@@ -80,6 +79,18 @@ export function chiSquaredDraws(chance: KeptChance, df: number): Float64Array {
     const root = 1 + spread * normal
     return 2 * scale * root * root * root
   })
+}
+
+/** Fisher and Yates, from the end. */
+function shuffled(values: Float64Array, generator: RandomGenerator): Float64Array {
+  const order = values.slice()
+  for (let last = order.length - 1; last > 0; last -= 1) {
+    const other = Math.floor(uniformFloat64(generator) * (last + 1))
+    const moved = order[last]!
+    order[last] = order[other]!
+    order[other] = moved
+  }
+  return order
 }
 
 /** Box and Muller 1958; one of the pair is enough here. */
