@@ -271,8 +271,6 @@ function pooled(
  */
 type Jet = Float64Array
 
-type JetArithmetic = ReturnType<typeof jetArithmetic>
-
 function jetArithmetic(variables: number) {
   const length = 1 + variables + (variables * (variables + 1)) / 2
 
