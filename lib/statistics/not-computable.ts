@@ -8,7 +8,11 @@ export class NotComputable extends Error {
   readonly reason: string
 
   constructor(reason: string, words: string) {
+    // Thrown for every cell that lacks a figure, and never by mistake: where from, which is dear to find out, tells nobody.
+    const limit = Error.stackTraceLimit
+    Error.stackTraceLimit = 0
     super(words)
+    Error.stackTraceLimit = limit
     this.name = 'NotComputable'
     this.reason = reason
   }

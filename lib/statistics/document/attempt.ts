@@ -12,26 +12,30 @@ export const OUT_OF_RANGE = 'The results are too large or too small to be square
  * statistic that does not exist turns into `null` and words.
  */
 export function withReasons<Block extends object>(build: (attempt: Attempt) => Block): Block & Reasons {
-  const reasons: Record<string, string> = {}
-  const block = build((key, compute) => {
+  let reasons: Record<string, string> | undefined
+  const block: Block & Reasons = build((key, compute) => {
     try {
       return compute()
     } catch (error) {
       if (!(error instanceof NotComputable)) throw error
+      reasons ??= {}
       reasons[key] = error.message
       return null
     }
   })
-  for (const [key, value] of Object.entries(block)) {
+  for (const key in block) {
+    const value: unknown = block[key as keyof Block]
     if (typeof value !== 'number' || Number.isFinite(value)) continue
+    reasons ??= {}
     reasons[key] = OUT_OF_RANGE
     Object.assign(block, { [key]: null })
   }
-  const first = Object.values(reasons)[0]
-  if (first === undefined) return block
+  if (reasons === undefined) return block
   // One computation often gives several keys; they are missing for one reason.
-  for (const [key, value] of Object.entries(block)) if (value === null) reasons[key] ??= first
-  return { ...block, reasons }
+  const [first] = Object.values(reasons)
+  for (const key in block) if (block[key as keyof Block] === null) reasons[key] ??= first!
+  block.reasons = reasons
+  return block
 }
 
 /**
