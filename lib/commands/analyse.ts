@@ -1,6 +1,9 @@
 import { createHash } from 'node:crypto'
 import { readFile } from 'node:fs/promises'
+import { Readable } from 'node:stream'
+import { pipeline } from 'node:stream/promises'
 import { type AnalyseOptions, readAnalyseOptions } from '@/lib/commands/analyse-options'
+import { documentPieces } from '@/lib/commands/document-pieces'
 import { type AnalysisFileProblem, readAnalysisFile } from '@/lib/commands/read-analysis-file'
 import { analyse, type AnalysisResult, type AnalysisSettings } from '@/lib/statistics'
 
@@ -11,11 +14,6 @@ import { analyse, type AnalysisResult, type AnalysisSettings } from '@/lib/stati
  */
 
 const MOST_PROBLEMS = 50
-
-// A reader such as `head` may stop reading early; that is no fault of the analysis.
-process.stdout.on('error', (error: NodeJS.ErrnoException) => {
-  if (error.code !== 'EPIPE') throw error
-})
 
 type ReadFile = { results: AnalysisResult[]; otherMeasurands: AnalysisResult[]; bytes: Uint8Array }
 
@@ -41,7 +39,16 @@ async function main(args: readonly string[]): Promise<void> {
     sha256: createHash('sha256').update(read.bytes).digest('hex'),
     version: await ownVersion(),
   })
-  process.stdout.write(`${JSON.stringify(document, null, 2)}\n`)
+  await writeOut(Readable.from(documentPieces(document)))
+}
+
+async function writeOut(pieces: Readable): Promise<void> {
+  try {
+    await pipeline(pieces, process.stdout, { end: false })
+  } catch (error) {
+    // A reader such as `head` may stop reading early; that is no fault of the analysis.
+    if (!(error instanceof Error && 'code' in error && error.code === 'EPIPE')) throw error
+  }
 }
 
 /** The tables of units are large, so they are loaded only for those who name one. */

@@ -84,13 +84,18 @@ export function qRepeatability(cells: IntegerCells, step: DecimalStep): number {
  * Source: ISO 13528, Annex C.5; Hampel's three-part ψ with corners at 1.5, 3 and 4.5.
  */
 export function hampelLocation(values: readonly number[], spread: number): number {
-  const nodes = [...new Set(values.flatMap((value) => CORNERS.map((corner) => value + corner * spread)))]
-  nodes.sort((one, other) => one - other)
-  const sumAt = remembering((node: number) =>
-    values.reduce((sum, value) => sum + influence((value - nodes[node]!) / spread), 0),
-  )
+  const middle = median(values)
+  const nodes = cornersOf(values, spread)
+  const sumAt = remembering((node: number) => {
+    let sum = 0
+    for (const value of values) sum += influence((value - nodes[node]!) / spread)
+    return sum
+  })
+  const signAt = signsOfSum(values, { middle, spread, nodes })
   /** Where the sum is 0 at a node or between it and the one before. */
   const rootAt = (node: number): number | null => {
+    const sign = signAt(node)
+    if (sign !== 0 && (node === 0 || sign === signAt(node - 1))) return null
     const here = sumAt(node)
     if (Math.abs(here) < ZERO) return nodes[node]!
     if (node === 0 || !(here * sumAt(node - 1) < 0) || Math.abs(sumAt(node - 1)) < ZERO) return null
@@ -98,8 +103,7 @@ export function hampelLocation(values: readonly number[], spread: number): numbe
     return before + ((nodes[node]! - before) * sumAt(node - 1)) / (sumAt(node - 1) - here)
   }
 
-  // Each sum goes through all values, so nodes are visited outwards from the median, and no further than needed.
-  const middle = median(values)
+  // Nodes are visited outwards from the median, and no further than needed.
   const roots: number[] = []
   let nearest = Infinity
   const take = (node: number): void => {
@@ -118,6 +122,60 @@ export function hampelLocation(values: readonly number[], spread: number): numbe
   const near = roots.filter((root) => Math.abs(root - middle) - nearest <= 1e-12 * spread)
   const [lowest, highest] = [Math.min(...near), Math.max(...near)]
   return highest - lowest > 1e-12 * spread ? middle : near[0]!
+}
+
+/** Where the sum of influences bends, in ascending order and each once. */
+function cornersOf(values: readonly number[], spread: number): Float64Array {
+  const corners = new Float64Array(values.length * CORNERS.length)
+  values.forEach((value, index) =>
+    CORNERS.forEach((corner, place) => (corners[index * CORNERS.length + place] = value + corner * spread)),
+  )
+  return corners.sort().filter((corner, place, all) => place === 0 || corner !== all[place - 1])
+}
+
+/**
+ * The sign of the sum of influences at a node, 0 where rounding could have turned it. From sums of the sorted values it
+ * costs a few searches and not a walk through all of them.
+ */
+function signsOfSum(
+  values: readonly number[],
+  { middle, spread, nodes }: { middle: number; spread: number; nodes: Float64Array },
+): (node: number) => number {
+  const sorted = Float64Array.from(values, (value) => (value - middle) / spread).sort()
+  const sums = new Float64Array(sorted.length + 1)
+  let size = 0
+  for (let at = 0; at < sorted.length; at += 1) {
+    sums[at + 1] = sums[at]! + sorted[at]!
+    size += Math.abs(sorted[at]!)
+  }
+  return remembering((node: number) => {
+    const x = (nodes[node]! - middle) / spread
+    const [a, b, c, d, e, f] = CORNERS.map((corner) => placeOf(sorted, x + corner)) as Six
+    const distances = (from: number, to: number): number => sums[to]! - sums[from]! - x * (to - from)
+    const pull =
+      -4.5 * (b - a) -
+      distances(a, b) -
+      1.5 * (c - b) +
+      distances(c, d) +
+      1.5 * (e - d) +
+      4.5 * (f - e) -
+      distances(e, f)
+    const doubt = 1e-9 + 1e-12 * (size + Math.abs(x) * sorted.length)
+    return Math.abs(pull) <= doubt ? 0 : Math.sign(pull)
+  })
+}
+
+type Six = [number, number, number, number, number, number]
+
+/** How many of the sorted values lie below the bound. */
+function placeOf(sorted: Float64Array, bound: number): number {
+  let [from, to] = [0, sorted.length]
+  while (from < to) {
+    const middle = (from + to) >> 1
+    if (sorted[middle]! < bound) from = middle + 1
+    else to = middle
+  }
+  return from
 }
 
 const CORNERS = [-4.5, -3, -1.5, 1.5, 3, 4.5]
