@@ -38,8 +38,10 @@ describe('what a plan will know, on its screen', () => {
     expect(words).toContain(
       'Of the variance beyond repeatability, 40 % lies between days and 60 % between laboratories.',
     )
-    expect(words).toContain('From 10000 simulated studies of each size')
-    expect(textOf(pageOf([{ name: 'replicate', count: 2 }]))).toContain('From the formulas of ISO 5725-1.')
+    expect(words).toContain('From 10\u202f000 simulated studies of each size')
+    const oneWay = textOf(pageOf([{ name: 'replicate', count: 2 }], { ratio: '1' }))
+    expect(oneWay).toContain('standard deviation is no larger than that of repeatability')
+    expect(oneWay).toContain('From the formulas of ISO 5725-1. With the two so near, the formulas make')
   })
 
   it('draws a curve for each figure and lists the same figures in a table', () => {

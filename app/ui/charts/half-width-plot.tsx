@@ -29,7 +29,8 @@ export function HalfWidthPlot({ svgId, names, points, within, description }: Hal
   const x = (laboratories: number) =>
     margin.left + ((laboratories - first) / Math.max(1, last - first)) * innerWidth
   const y = (halfWidth: number) => margin.top + (1 - halfWidth / high) * innerHeight
-  const ends = spread(names.map((_, series) => y(points.at(-1)?.halfWidths[series] ?? 0)))
+  const curveEnds = names.map((_, series) => y(points.at(-1)?.halfWidths[series] ?? 0))
+  const [wishedAt = 0, ...namesAt] = spread([y(within), ...curveEnds])
 
   return (
     <div
@@ -58,7 +59,7 @@ export function HalfWidthPlot({ svgId, names, points, within, description }: Hal
           stroke="var(--ink)"
           strokeWidth="0.8"
         />
-        <text x={margin.left + 6} y={y(within) - 5} fontSize="12" fill="var(--ink)">
+        <text x={margin.left + innerWidth + 12} y={wishedAt + 4} fontSize="12" fill="var(--ink)">
           {`wished: ${percent(within)}`}
         </text>
         {names.map((name, series) => (
@@ -86,9 +87,15 @@ export function HalfWidthPlot({ svgId, names, points, within, description }: Hal
                   radius={3.8}
                 />
               ))}
+            <SeriesMark
+              series={series}
+              x={margin.left + innerWidth + 20}
+              y={namesAt[series] ?? 0}
+              radius={3.8}
+            />
             <text
-              x={margin.left + innerWidth + 12}
-              y={(ends[series] ?? 0) + 4}
+              x={margin.left + innerWidth + 32}
+              y={(namesAt[series] ?? 0) + 4}
               fontSize="13"
               fill="var(--ink)"
               fontFamily="var(--font-sans)"

@@ -40,18 +40,19 @@ export function AssumptionsForm({ studyId, levels, texts, errors }: AssumptionsF
       data-screen-only
     >
       {asked.map(({ name, label, unit }) => (
-        <Field key={name} name={name} label={label} {...(errors[name] ? { error: errors[name] } : {})}>
-          {(wiring) => (
-            <TextInput
-              {...wiring}
-              {...(unit ? { unit } : {})}
-              isFigure
-              inputMode="decimal"
-              defaultValue={texts[name]}
-              className="max-w-36"
-            />
-          )}
-        </Field>
+        <div key={name} className="w-44">
+          <Field name={name} label={label} {...(errors[name] ? { error: errors[name] } : {})}>
+            {(wiring) => (
+              <TextInput
+                {...wiring}
+                {...(unit ? { unit } : {})}
+                isFigure
+                inputMode="decimal"
+                defaultValue={texts[name]}
+              />
+            )}
+          </Field>
+        </div>
       ))}
       <Button type="submit">Show the curve</Button>
     </form>

@@ -3,8 +3,12 @@ import { ChartFrame } from '@/app/ui/charts/chart-frame'
 import { HalfWidthPlot } from '@/app/ui/charts/half-width-plot'
 import { Section } from '@/app/ui/layout/section'
 import { DataTable } from '@/app/ui/primitives/data-table'
-import { type ForeseenFigure, foreseePrecision, innerLevelsOf } from '@/lib/domain/foresee-precision'
 import { readPlanAssumptions } from '@/lib/domain/read-plan-assumptions'
+import {
+  type ForeseenFigure,
+  foreseePrecision,
+  innerLevelsOf,
+} from '@/lib/use-cases/studies/foresee-precision'
 import type { StudyView } from '@/lib/use-cases/studies/read-study'
 import { AssumptionsForm } from './assumptions-form'
 import { sayAssumed } from './say-assumed'
@@ -47,7 +51,8 @@ export function ForeseenPrecision({ view, query }: ForeseenPrecisionProps) {
                 ': not even with 1000 laboratories.'
               ) : (
                 <>
-                  : you need <strong className="font-semibold">p ≥ {figure.least}</strong> laboratories.
+                  : you need <strong className="whitespace-nowrap font-semibold">p ≥ {figure.least}</strong>{' '}
+                  laboratories.
                 </>
               )}
             </li>
@@ -107,7 +112,7 @@ export function ForeseenPrecision({ view, query }: ForeseenPrecisionProps) {
 }
 
 function nameOf({ kind, varies }: ForeseenFigure): string {
-  return kind === 'intermediate' ? `${varies.join(', ')} varying` : kind
+  return kind === 'intermediate' ? `${varies.join(' and ')} varying` : kind
 }
 
 function symbolOf({ kind, varies }: ForeseenFigure): ReactNode {

@@ -1,6 +1,7 @@
-import type { ForeseenPrecision } from '@/lib/domain/foresee-precision'
+import { formatFigure } from '@/app/ui/primitives/format-figure'
 import { plural } from '@/lib/domain/plural'
 import type { PlanAssumptions } from '@/lib/domain/read-plan-assumptions'
+import type { ForeseenPrecision } from '@/lib/use-cases/studies/foresee-precision'
 
 interface Assumed {
   assumptions: PlanAssumptions
@@ -22,12 +23,12 @@ export function sayAssumed({ assumptions, inner, foreseen }: Assumed): string {
   const made =
     foreseen.draws === null
       ? 'From the formulas of ISO 5725-1.'
-      : `From ${foreseen.draws} simulated studies of each size, good to about one part in a hundred.`
+      : `From ${formatFigure(String(foreseen.draws))} simulated studies of each size, good to about one part in a hundred.`
   const poor = foreseen.isFirstOrderPoor
     ? ' With the two so near, the formulas make the half-width of reproducibility too small, by 6 to 14 % of itself where they are equal.'
     : ''
   return (
-    `Assumed: the reproducibility standard deviation is ${ratio} times that of repeatability, every laboratory returns all its results, none is set aside, and results scatter ` +
+    `Assumed: the reproducibility standard deviation is ${ratio === 1 ? 'no larger than' : `${ratio} times`} that of repeatability, every laboratory returns all its results, none is set aside, and results scatter ` +
     `normally.${split} ${made}${poor} The true ratio is known only when the study is done.`
   )
 }

@@ -1,5 +1,5 @@
+import type { PlanAssumptions } from '@/lib/domain/read-plan-assumptions'
 import { type AskedPlan, planningBlock } from '@/lib/statistics'
-import type { PlanAssumptions } from './read-plan-assumptions'
 
 type Levels = readonly { readonly name: string; readonly count: number }[]
 
