@@ -66,7 +66,7 @@ export function grubbsPairCritical(laboratories: number, alpha: number): number 
 
 function requireAtMost(laboratories: number): void {
   if (laboratories <= largestPairCount) return
-  const words = `The pair tests are made for up to ${largestPairCount} laboratories.`
+  const words = `The exact distribution behind the pair tests is made for up to ${largestPairCount} laboratories; these are ${laboratories}.`
   throw new NotComputable('too-many-laboratories', words)
 }
 

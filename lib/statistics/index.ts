@@ -8,6 +8,7 @@ export type {
   AskedPlan,
 } from '@/lib/statistics/analysis-input'
 export { equalProposals } from '@/lib/statistics/equal-proposals'
+export { planningBlock } from '@/lib/statistics/document/planning-block'
 export { flaggedCells } from '@/lib/statistics/document/flagged-cells'
 export { type LaboratoryBias, laboratoryBias } from '@/lib/statistics/laboratory-bias'
 export { type CheckedMean, type StabilityVerdict, stabilityVerdict } from '@/lib/statistics/stability'

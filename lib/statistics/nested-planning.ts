@@ -5,6 +5,7 @@ import {
   keptChances,
 } from '@/lib/statistics/distributions/chi-squared-draws'
 import { NotComputable } from '@/lib/statistics/not-computable'
+import { orderStatistic } from '@/lib/statistics/order-statistic'
 
 /**
  * How well a nested study of p laboratories will know its standard deviations.
@@ -32,8 +33,8 @@ export type InnerLevel = { source: string; groups: number; share: number }
 
 export type NestedPrecision = {
   /** One for each set of inner levels that may vary, the innermost alone first, then it and the one around it, … */
-  intermediate: number[]
-  reproducibility: number
+  readonly intermediate: readonly number[]
+  readonly reproducibility: number
 }
 
 /**
@@ -57,16 +58,22 @@ export function nestedStudies(
   requireDesign(design)
   const strata = strataOf(design)
   const chances = keptChances({ ...chance, streams: strata.length })
+  // A search for the least number comes by the same numbers for each of its figures, and by those of the curve.
+  const known = new Map<number, NestedPrecision>()
 
   return (laboratories) => {
     requireLaboratories(laboratories)
+    const answered = known.get(laboratories)
+    if (answered !== undefined) return answered
     const meanSquares = strata.map((stratum, level) =>
       drawnMeanSquares(stratum, laboratories, chances[level]!),
     )
     const [ofResidual, ...outer] = halfWidthsFromInside(strata, meanSquares)
     // With replicates the residual is repeatability, which is known exactly; without, it is the first of those asked for.
     const asked = design.n > 1 ? outer : [ofResidual!, ...outer]
-    return { intermediate: asked.slice(0, -1), reproducibility: asked.at(-1)! }
+    const answer = { intermediate: asked.slice(0, -1), reproducibility: asked.at(-1)! }
+    known.set(laboratories, answer)
+    return answer
   }
 }
 
@@ -188,17 +195,12 @@ function halfWidthsFromInside(strata: readonly Stratum[], meanSquares: readonly 
 }
 
 function halfWidth(variances: Float64Array, truth: number): number {
-  const sorted = variances.toSorted()
-  const at = (share: number) => Math.sqrt(pointOf(sorted, share) / truth)
+  const values = variances.slice()
+  const at = (share: number) => {
+    const rank = Math.round(share * (values.length - 1))
+    return Math.sqrt(orderStatistic(values, rank) / truth)
+  }
   return (at(0.975) - at(0.025)) / 2
-}
-
-/** The point below which a share lies, straight between neighbours. */
-function pointOf(sorted: Float64Array, share: number): number {
-  const place = share * (sorted.length - 1)
-  const below = Math.floor(place)
-  const above = Math.min(below + 1, sorted.length - 1)
-  return sorted[below]! + (place - below) * (sorted[above]! - sorted[below]!)
 }
 
 function groupsInLaboratory({ inner }: NestedDesign): number {

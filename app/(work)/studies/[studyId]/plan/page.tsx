@@ -1,17 +1,23 @@
 import type { Metadata } from 'next'
-import { MarginNote } from '@/app/ui/layout/margin'
 import { beginPlan } from '@/lib/domain/begin-plan'
 import { listZones } from '@/lib/domain/list-zones'
 import { PlanForm } from '../../forms/plan-form'
 import { loadStudy } from '../load-study'
 import { StudyFrame } from '../study-frame'
 import { planStudyAction } from './actions'
+import { ForeseenPrecision } from './foreseen-precision'
 import { MoveDeadline } from './move-deadline'
+import { PlanMargin } from './plan-margin'
 import { SettledPlan } from './settled-plan'
 
 export const metadata: Metadata = { title: 'Plan' }
 
-export default async function PlanPage({ params }: { params: Promise<{ studyId: string }> }) {
+interface PlanPageProps {
+  params: Promise<{ studyId: string }>
+  searchParams: Promise<Record<string, string | string[] | undefined>>
+}
+
+export default async function PlanPage({ params, searchParams }: PlanPageProps) {
   const { studyId } = await params
   const { actor, view } = await loadStudy(studyId)
   const { study, layout } = view
@@ -24,29 +30,7 @@ export default async function PlanPage({ params }: { params: Promise<{ studyId: 
       station="plan"
       title={isDraft ? 'Plan' : study.title}
       lead={isDraft ? 'Everything can be changed until the invitations are sent.' : undefined}
-      margin={
-        <>
-          <MarginNote title="What happens next">
-            <p>
-              {isDraft
-                ? 'Name the laboratories, then send the invitations. From then on the plan stands.'
-                : 'The plan stands since the invitations were sent: what a laboratory was asked does not change under its hands.'}
-            </p>
-          </MarginNote>
-          <MarginNote title="Limits">
-            <p>
-              r = f·s<sub>r</sub> and R = f·s<sub>R</sub>, with f the factor chosen here. 2.8 is 1.96·√2
-              rounded.
-            </p>
-          </MarginNote>
-          <MarginNote title="Deadline">
-            <p>
-              Kept as meant: the day and hour in the zone you chose. Clock changes are settled here, not
-              guessed later.
-            </p>
-          </MarginNote>
-        </>
-      }
+      margin={<PlanMargin isDraft={isDraft} />}
     >
       {isDraft ? (
         <PlanForm
@@ -62,6 +46,7 @@ export default async function PlanPage({ params }: { params: Promise<{ studyId: 
           {study.state === 'open' && <MoveDeadline study={study} zones={listZones()} />}
         </>
       )}
+      {(isDraft || study.state === 'open') && <ForeseenPrecision view={view} query={await searchParams} />}
     </StudyFrame>
   )
 }
