@@ -1,7 +1,7 @@
 import type { CellSummary } from '@/lib/statistics/cells'
 import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
 import { NotComputable } from '@/lib/statistics/not-computable'
-import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
+import { type SpreadOfMeans, spreadOfMeans } from '@/lib/statistics/spread-of-means'
 import { placeOfLargest, placeOfSmallest } from '@/lib/statistics/tie-keys'
 
 export type End = 'high' | 'low'
@@ -27,8 +27,11 @@ export interface GrubbsSingle {
  *
  * Source: ISO 5725-2:1994, 7.3.4 and table 5; F. E. Grubbs, Technometrics 11 (1969) 1.
  */
-export function grubbsSingle(summaries: readonly CellSummary[], end: End): GrubbsSingle {
-  const { centred, sumOfSquares } = spreadOfMeans(summaries, 3)
+export function grubbsSingle(
+  summaries: readonly CellSummary[],
+  end: End,
+  { centred, sumOfSquares }: SpreadOfMeans = spreadOfMeans(summaries, 3),
+): GrubbsSingle {
   const p = summaries.length
   const index = end === 'high' ? placeOfLargest(centred) : placeOfSmallest(centred)
   return {

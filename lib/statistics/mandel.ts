@@ -1,10 +1,10 @@
-import { replicatedCells, type CellSummary } from '@/lib/statistics/cells'
+import { type CellSummary, replicatedCells, type ReplicatedCell } from '@/lib/statistics/cells'
 import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
 import { tQuantileUpper, tUpperTail } from '@/lib/statistics/distributions/students-t'
 import { leaveOneOut } from '@/lib/statistics/leave-one-out'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import { noScatter, pooledSquares } from '@/lib/statistics/one-way-precision'
-import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
+import { type SpreadOfMeans, spreadOfMeans } from '@/lib/statistics/spread-of-means'
 
 /**
  * Mandel's consistency statistics, h between and k within laboratories.
@@ -17,17 +17,12 @@ import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
  *
  * Source: ASTM E691, section 15; P.-Th. Wilrich, AStA Adv. Stat. Anal. 97 (2013) 1.
  */
-export interface MandelH {
-  readonly laboratory: string
-  readonly h: number
-}
-
 export interface MandelK {
-  readonly laboratory: string
-  readonly k: number
-  /** ν_i, degrees of freedom of this cell. */
-  readonly df: number
-  /** ν, those of all cells together. */
+  /** The cells that have a standard deviation, in their order. */
+  readonly cells: readonly ReplicatedCell[]
+  /** k of each of them. */
+  readonly k: Float64Array
+  /** ν, degrees of freedom of all of them together. */
   readonly pooledDf: number
 }
 
@@ -39,10 +34,12 @@ export interface MandelK {
  *
  * Source: ASTM E691, section 15.
  */
-export function mandelH(summaries: readonly CellSummary[]): MandelH[] {
-  const { centred, sumOfSquares } = spreadOfMeans(summaries)
+export function mandelH(
+  summaries: readonly CellSummary[],
+  { centred, sumOfSquares }: SpreadOfMeans = spreadOfMeans(summaries),
+): Float64Array {
   const sd = Math.sqrt(sumOfSquares / (summaries.length - 1))
-  return summaries.map(({ laboratory }, index) => ({ laboratory, h: centred[index]! / sd }))
+  return centred.map((distance) => distance / sd)
 }
 
 /**
@@ -83,14 +80,16 @@ export function mandelHPValue(h: number, laboratories: number): number {
  *
  * Source: ASTM E691, section 15.
  */
-export function mandelK(summaries: readonly CellSummary[]): MandelK[] {
+export function mandelK(summaries: readonly CellSummary[]): MandelK {
   const cells = replicatedCells(summaries)
   const { sumOfSquares, df: pooledDf, scale } = pooledSquares(cells)
   if (pooledDf === 0) throw new NotComputable('no-replicates', 'No laboratory has a second result.')
   if (sumOfSquares === 0) throw noScatter()
   const inverse = 1 / scale
   const pooled = Math.sqrt(sumOfSquares / pooledDf)
-  return cells.map(({ laboratory, sd, df }) => ({ laboratory, k: (sd * inverse) / pooled, df, pooledDf }))
+  const k = new Float64Array(cells.length)
+  for (let at = 0; at < k.length; at += 1) k[at] = (cells[at]!.sd * inverse) / pooled
+  return { cells, k, pooledDf }
 }
 
 export interface KOf {

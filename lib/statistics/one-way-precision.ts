@@ -202,7 +202,15 @@ export interface LaboratoryFTest {
 export function laboratoryFTest(summaries: readonly CellSummary[]): LaboratoryFTest {
   requireLaboratories(summaries, 2)
   const within = repeatability(summaries)
-  const between = betweenFrom(summaries, generalMeans(summaries), within)
+  return fTestFrom(betweenFrom(summaries, generalMeans(summaries), within), within)
+}
+
+/**
+ * {@link laboratoryFTest} from what was computed of the same cells.
+ *
+ * @throws {NotComputable} `no-scatter` when all replicates are equal.
+ */
+export function fTestFrom(between: BetweenLaboratories, within: Repeatability): LaboratoryFTest {
   if (within.variance === 0) throw noScatter()
   const f = between.meanSquare / within.variance
   return { f, df1: between.df, df2: within.df, pValue: fUpperTail(f, between.df, within.df) }

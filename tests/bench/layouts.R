@@ -1,12 +1,16 @@
 # The same list of statistics by R, as a statistician would script it without loops over cells, timed part by part.
-# Usage: Rscript layouts.R FILE [LEVEL] [noreml]; columns lab, material, value and, where given, the inner level.
+# Usage: Rscript layouts.R FILE LEVEL|- TURNS; columns lab, material, value and, where given, the inner level.
+# All is done TURNS times in one process, and each part prints the seconds of every turn.
 args <- commandArgs(trailingOnly = TRUE)
-level <- if (length(args) > 1 && args[2] != "-") args[2] else NULL
+level <- if (args[2] != "-") args[2] else NULL
 suppressMessages(library(lme4))
-clock <- function() proc.time()[["elapsed"]]
-parts <- c(); last <- clock()
-lap <- function(name) { now <- clock(); parts[name] <<- now - last; last <<- clock() }
+clock <- function() as.numeric(Sys.time())
+parts <- list()
+lap <- function(name) { now <- clock(); parts[[name]] <<- c(parts[[name]], now - last); last <<- clock() }
+alphas <- c(.005, .01, .05)
 
+for (turn in seq_len(as.integer(args[3]))) {
+last <- clock()
 names <- strsplit(readLines(args[1], 1), ",")[[1]]
 d <- read.csv(args[1], colClasses = ifelse(names == "value", "numeric", "character"))
 d <- d[!is.na(d$value), ]
@@ -25,7 +29,6 @@ sr2 <- total(ss, of) / NU; msl <- total(n * (y - grand[of])^2, of) / (p - 1)
 nbar <- (N - total(n^2, of) / N) / (p - 1); raw <- (msl - sr2) / nbar; sR2 <- pmax(0, raw) + sr2
 limits <- 2.8 * sqrt(cbind(sr2, sR2))
 sy <- sqrt(total((y - plain[of])^2, of) / (p - 1)); h <- (y - plain[of]) / sy[of]; k <- s / sqrt(sr2)[of]
-alphas <- c(.005, .01, .05)
 h.critical <- sapply(alphas, function(a) { t <- qt(a / 2, p - 2, lower.tail = FALSE); (p - 1) * t / sqrt(p * (t^2 + p - 2)) })
 # One quantile for each pair of degrees of freedom, not one a cell.
 key <- nu + NU[of] * (max(nu) + 1); known <- !duplicated(key); place <- match(key, key[known]); pairs <- cbind(nu, NU[of])[known, , drop = FALSE]
@@ -57,12 +60,11 @@ for (j in seq_along(means)) {
 }
 lap("robust")
 
-deviance <- 0
-if (!("noreml" %in% args)) {
-  form <- if (is.null(level)) value ~ 1 + (1 | lab) else as.formula(sprintf("value ~ 1 + (1 | lab/%s)", level))
-  fits <- lapply(split(d, m), function(x) suppressMessages(lmer(form, data = x)))
-  deviance <- sum(sapply(fits, REMLcrit))
-  lap("reml")
+form <- if (is.null(level)) value ~ 1 + (1 | lab) else as.formula(sprintf("value ~ 1 + (1 | lab/%s)", level))
+fits <- lapply(split(d, m), function(x) suppressMessages(lmer(form, data = x)))
+deviance <- sum(sapply(fits, REMLcrit))
+lap("reml")
 }
 peak <- as.numeric(sub("[^0-9]*([0-9]+).*", "\\1", grep("VmHWM", readLines("/proc/self/status"), value = TRUE))) / 1024
-cat(paste(names(parts), sprintf("%.4f", parts)), sprintf("peak %.0f", peak), sprintf("deviance %.10f", deviance), sprintf("check %.12g", sum(sR2) + sum(C) + sum(G)), sep = "\n")
+for (name in names(parts)) cat(name, sprintf("%.5f", parts[[name]]), "\n")
+cat(sprintf("peak %.0f", peak), sprintf("deviance %.10f", deviance), sprintf("check %.12g", sum(sR2) + sum(C) + sum(G)), sep = "\n")

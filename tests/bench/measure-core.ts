@@ -13,13 +13,14 @@ import {
 import { type MaterialData, materialData } from '@/lib/statistics/document/material-data'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
 import { grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
-import { mandelH, mandelHCritical, type MandelK, mandelK, mandelKCritical } from '@/lib/statistics/mandel'
+import { mandelH, mandelHCritical, mandelK, mandelKCritical } from '@/lib/statistics/mandel'
 import { nestedAnova } from '@/lib/statistics/nested-anova'
 import { buildNestedLayout, codeLabels } from '@/lib/statistics/nested-layout'
-import { laboratoryFTest, oneWayPrecision } from '@/lib/statistics/one-way-precision'
+import { fTestFrom, oneWayPrecision } from '@/lib/statistics/one-way-precision'
 import { oneWayTerms, sdInterval } from '@/lib/statistics/precision-intervals'
 import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
 import { fitReml } from '@/lib/statistics/reml'
+import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
 
 /*
  * One file through the core, timed part by part. Usage: measure-core.ts FILE LEVEL|- PART,PART,…; prints one line of JSON:
@@ -93,20 +94,22 @@ function testsOf({ cells }: MaterialData, index: number): CellSummary[] {
   sdInterval([{ weight: 1, ms: repeatability.variance, df: repeatability.df }], repeatability.variance)
   sdInterval(terms.betweenLaboratory, betweenLaboratories.variance)
   sdInterval(terms.reproducibility, reproducibility.variance)
-  mandelH(summaries)
-  const dfs = new Map<number, MandelK>()
-  for (const own of mandelK(summaries)) dfs.set(own.df, own)
-  for (const own of dfs.values()) for (const alpha of [0.005, 0.01, 0.05]) mandelKCritical({ ...own, alpha })
+  const spread = spreadOfMeans(summaries)
+  mandelH(summaries, spread)
+  const { cells: replicated, pooledDf } = mandelK(summaries)
+  const dfs = new Set<number>()
+  for (const { df } of replicated) dfs.add(df)
+  for (const df of dfs) for (const alpha of [0.005, 0.01, 0.05]) mandelKCritical({ df, pooledDf, alpha })
   for (const alpha of [0.005, 0.01, 0.05]) mandelHCritical(p, alpha)
   const largest = cochran(summaries)
   const general = generalisedCochran(summaries)
-  const ends = (['high', 'low'] as const).map((end) => grubbsSingle(summaries, end))
+  const ends = (['high', 'low'] as const).map((end) => grubbsSingle(summaries, end, spread))
   for (const alpha of [0.05, 0.01]) {
     cochranCritical({ ...largest, alpha })
     generalisedCochranCritical({ ...general, alpha })
     grubbsSingleCritical(p, alpha)
   }
-  laboratoryFTest(summaries)
+  fTestFrom(betweenLaboratories, repeatability)
   check += reproducibility.variance + largest.statistic + ends[0]!.statistic + ends[1]!.statistic
   return summaries
 }

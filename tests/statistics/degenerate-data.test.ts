@@ -10,7 +10,6 @@ import {
   mandelK,
   mandelKCritical,
   mandelKPValue,
-  type MandelK,
 } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
 import {
@@ -57,7 +56,8 @@ describe('one laboratory', () => {
     expect(restore(generalMeans(cells).weighted)).toBe(5.2)
     // Two results 0.2 apart: s = 0.2/√2.
     expect(repeatability(cells).sd).toBeCloseTo(0.2 / Math.SQRT2, 15)
-    for (const get of [betweenLaboratories, reproducibility, mandelH, laboratoryFTest, oneWayPrecision]) {
+    expect(reason(() => mandelH(cells))).toBe('too-few-laboratories')
+    for (const get of [betweenLaboratories, reproducibility, laboratoryFTest, oneWayPrecision]) {
       expect(reason(() => get(cells))).toBe('too-few-laboratories')
     }
     expect(reason(() => cochran(cells))).toBe('too-few-replicated-cells')
@@ -65,10 +65,10 @@ describe('one laboratory', () => {
   })
 
   it('has k = 1 by definition, which cannot be judged', () => {
-    const only = mandelK(cells)[0] as MandelK
-    expect(only.k).toBe(1)
-    expect(reason(() => mandelKCritical({ ...only, alpha: 0.01 }))).toBe('too-few-replicated-cells')
-    expect(reason(() => mandelKPValue(only))).toBe('too-few-replicated-cells')
+    const { k, pooledDf } = mandelK(cells)
+    expect([...k]).toEqual([1])
+    expect(reason(() => mandelKCritical({ df: 1, pooledDf, alpha: 0.01 }))).toBe('too-few-replicated-cells')
+    expect(reason(() => mandelKPValue({ k: 1, df: 1, pooledDf }))).toBe('too-few-replicated-cells')
   })
 })
 
@@ -76,9 +76,7 @@ describe('two laboratories', () => {
   const { cells } = material(['1', '2'], ['3', '5'])
 
   it('have an h of ±1/√2 that cannot be judged, and no Grubbs test', () => {
-    expect(mandelH(cells).map(({ h }) => h)).toEqual(
-      [-Math.SQRT1_2, Math.SQRT1_2].map((h) => expect.closeTo(h, 15)),
-    )
+    expect([...mandelH(cells)]).toEqual([-Math.SQRT1_2, Math.SQRT1_2].map((h) => expect.closeTo(h, 15)))
     expect(reason(() => mandelHCritical(2, 0.01))).toBe('too-few-laboratories')
     expect(reason(() => mandelHPValue(0.7, 2))).toBe('too-few-laboratories')
     expect(reason(() => grubbsSingle(cells, 'low'))).toBe('too-few-laboratories')
@@ -119,7 +117,7 @@ describe('one result a laboratory', () => {
   it('is taken with replicated cells for the means and gives no k of its own', () => {
     const { cells: mixed } = material(['1'], ['2', '3'], ['4', '8'])
     expect(mandelH(mixed)).toHaveLength(3)
-    expect(mandelK(mixed).map(({ laboratory }) => laboratory)).toEqual(['L2', 'L3'])
+    expect(mandelK(mixed).cells.map(({ laboratory }) => laboratory)).toEqual(['L2', 'L3'])
     expect(reproducibility(mixed).basis).toBe('components')
     expect(cochran(mixed).cells).toBe(2)
   })
@@ -161,12 +159,13 @@ describe('one laboratory apart from others that agree exactly', () => {
   const { cells } = material(['2', '2'], ['2', '2'], ['2', '2'], ['3', '3.2'])
 
   it('has its statistics at their bounds and p-values of 0, not of nothing', () => {
-    const h = mandelH(cells).at(-1)?.h as number
+    const h = mandelH(cells).at(-1)!
     expect(h).toBeCloseTo(3 / 2, 14) // (p - 1)/√p at p = 4
     expect(mandelHPValue(h, 4)).toBe(0)
-    const k = mandelK(cells).at(-1) as MandelK
-    expect(k.k).toBeCloseTo(2, 14) // √(ν/ν_i) = √(4/1)
-    expect(mandelKPValue(k)).toBe(0)
+    const { k: all, pooledDf } = mandelK(cells)
+    const k = all.at(-1)!
+    expect(k).toBeCloseTo(2, 14) // √(ν/ν_i) = √(4/1)
+    expect(mandelKPValue({ k, df: 1, pooledDf })).toBe(0)
     expect([cochran(cells).statistic, cochran(cells).pValue]).toEqual([1, 0])
     expect([generalisedCochran(cells).statistic, generalisedCochran(cells).pValue]).toEqual([1, 0])
     expect(grubbsSingle(cells, 'high').pValue).toBe(0)
@@ -205,8 +204,8 @@ describe.each([
   it('have means and pure numbers like any others', () => {
     expect(restore(generalMeans(cells).weighted) / size).toBeCloseTo(3.75, 14)
     const pure = (of: CellSummary[]) => [
-      ...mandelH(of).map(({ h }) => h),
-      ...mandelK(of).map(({ k }) => k),
+      ...mandelH(of),
+      ...mandelK(of).k,
       cochran(of).statistic,
       generalisedCochran(of).pValue,
       grubbsSingle(of, 'high').pValue,
@@ -227,7 +226,7 @@ describe('very large and very small results together', () => {
     const { cells } = material(['1e140', '2e140'], ['1e-300', '0'], ['-1e140', '3'])
     expect(Number.isFinite(repeatability(cells).variance)).toBe(true)
     expect(Number.isFinite(reproducibility(cells).sd)).toBe(true)
-    for (const { h } of mandelH(cells)) expect(Number.isFinite(h)).toBe(true)
+    for (const h of mandelH(cells)) expect(Number.isFinite(h)).toBe(true)
   })
 })
 

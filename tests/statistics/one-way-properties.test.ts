@@ -68,7 +68,7 @@ function everything(cells: readonly CellSummary[]): Record<string, number | stri
     pairLow: () => grubbsPair(cells, 'low').statistic,
   }
   for (const [index, { laboratory }] of cells.entries()) {
-    figures[`h ${laboratory}`] = () => (mandelH(cells)[index] as { h: number }).h
+    figures[`h ${laboratory}`] = () => mandelH(cells)[index]!
   }
   return Object.fromEntries(
     Object.entries(figures).map(([name, get]) => {

@@ -1,6 +1,6 @@
 import type { CellBlock, ScoresBlock } from '@/lib/statistics/analysis-document'
 import type { CellSummary } from '@/lib/statistics/cells'
-import { type JudgedK, kByLaboratory, kCriticalBlock } from '@/lib/statistics/document/consistency-blocks'
+import { type JudgedK, kCriticalBlock, kOfCells } from '@/lib/statistics/document/consistency-blocks'
 import { once, required, withReasons } from '@/lib/statistics/document/attempt'
 import { mandelH, mandelHPValue, mandelKPValue } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
@@ -24,8 +24,8 @@ export function cellBlocks(one: {
   scoresOf: (summary: CellSummary, index: number) => ScoresBlock
 }): CellBlock[] {
   const { summaries, requireReplicate, restore } = one
-  const hStatistics = once(() => new Map(mandelH(summaries).map(({ laboratory, h }) => [laboratory, h])))
-  const kStatistics = kByLaboratory(summaries)
+  const hStatistics = once(() => mandelH(summaries))
+  const kStatistics = kOfCells(summaries)
   const pooledDf = summaries.reduce((sum, { df }) => sum + df, 0)
   const replicated = summaries.filter(({ df }) => df >= 1).length
   const pooledSquares = summaries.reduce((sum, { df, sd }) => sum + (sd === undefined ? 0 : df * sd ** 2), 0)
@@ -33,14 +33,14 @@ export function cellBlocks(one: {
   return summaries.map((summary, index) =>
     withReasons((attempt) => {
       const { laboratory, n, mean, sd, df } = summary
-      const hOfCell = () => hStatistics().get(laboratory)!
+      const hOfCell = () => hStatistics()[index]!
       const sdOfCell = () => {
         requireReplicate()
         return required(sd ?? null, ONE_RESULT)
       }
       const kOfCell = () => {
         requireReplicate()
-        return required(kStatistics().get(laboratory) ?? null, ONE_RESULT)
+        return required(kStatistics()[index]!, ONE_RESULT)
       }
       return {
         laboratory,

@@ -19,8 +19,8 @@ import { notComputable, once, required, withReasons } from '@/lib/statistics/doc
 import type { LevelSummaries } from '@/lib/statistics/laboratory-summaries'
 import { type NestedLayout, requireReplicate } from '@/lib/statistics/nested-layout'
 import {
+  type KOf,
   mandelHCritical,
-  type MandelK,
   mandelK,
   mandelKCritical,
   mandelKPValue,
@@ -65,19 +65,23 @@ export function kCriticalBlock(df: number, pooledDf: number, requireReplicate = 
   }))
 }
 
-/** k of each laboratory that has one, computed when first asked for; fails as `mandelK` does. */
-export function kByLaboratory(summaries: readonly CellSummary[]): () => ReadonlyMap<string, JudgedK> {
+/** k of the cells in their order, `null` where one has none, computed when first asked for; fails as `mandelK` does. */
+export function kOfCells(summaries: readonly CellSummary[]): () => readonly (JudgedK | null)[] {
   return once(() => {
-    const statistics = mandelK(summaries)
+    const { cells, k, pooledDf } = mandelK(summaries)
     const shares = sharesOfOthers(summaries)
-    return new Map(
-      statistics.map((own, index) => [own.laboratory, { ...own, shareOfOthers: shares[index]! }]),
-    )
+    let place = 0
+    return summaries.map((summary) => {
+      if (summary !== cells[place]) return null
+      const judged = { k: k[place]!, df: summary.df, pooledDf, shareOfOthers: shares[place]! }
+      place += 1
+      return judged
+    })
   })
 }
 
 /** k with what its p-value needs besides. */
-export type JudgedK = MandelK & { readonly shareOfOthers: number }
+export type JudgedK = KOf & { readonly k: number; readonly shareOfOthers: number }
 
 /**
  * Cochran's test of the cells' scatter, in both forms. With equal degrees of freedom the standard's C sets the level,
@@ -162,8 +166,8 @@ export function outlierLevel(pValue: number): OutlierLevel {
 }
 
 function levelCells(laboratories: readonly CellSummary[]): NestingLevelBlock['cells'] {
-  const kStatistics = kByLaboratory(laboratories)
-  return laboratories.map((summary) => levelCell(summary, kStatistics))
+  const kStatistics = kOfCells(laboratories)
+  return laboratories.map((summary, index) => levelCell(summary, () => kStatistics()[index]!))
 }
 
 function hCriticalBlock(laboratories: number): Critical {
@@ -182,12 +186,9 @@ function criticalValues(atLevel: (alpha: number) => number): OutlierCriticalValu
   }))
 }
 
-function levelCell(
-  summary: CellSummary,
-  kStatistics: () => ReadonlyMap<string, JudgedK>,
-): NestingLevelBlock['cells'][number] {
+function levelCell(summary: CellSummary, kOfCell: () => JudgedK | null): NestingLevelBlock['cells'][number] {
   return withReasons((attempt) => {
-    const own = attempt('k', () => required(kStatistics().get(summary.laboratory) ?? null, NO_SCATTER_HERE))
+    const own = attempt('k', () => required(kOfCell(), NO_SCATTER_HERE))
     return {
       laboratory: summary.laboratory,
       df: summary.df,

@@ -1,6 +1,7 @@
 import type { AnalysedMaterial } from '@/lib/statistics/analyse-material'
 import type { MaterialAnalysis, Noticed, Proposal } from '@/lib/statistics/analysis-document'
 import type { AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
+import type { ReplicatedCell } from '@/lib/statistics/cells'
 import { parseDecimal } from '@/lib/statistics/decimal'
 import { required, withReasons } from '@/lib/statistics/document/attempt'
 import { flaggedCells } from '@/lib/statistics/document/flagged-cells'
@@ -266,11 +267,12 @@ function proposalBlock(one: JudgedMaterial, laboratory: string, found: Explanati
       surprise: found.surpriseBefore,
     })),
     after: withReasons((attempt) => ({
-      h: attempt('h', () => mandelH(after)[index]!.h),
+      h: attempt('h', () => mandelH(after)[index]!),
       k: attempt('k', () => {
-        const k = mandelK(after).find((cell) => cell.laboratory === laboratory)?.k
-        if (k === undefined) throw new NotComputable('no-replicates', 'The laboratory has no second result.')
-        return k
+        const { cells, k } = mandelK(after)
+        const place = cells.indexOf(after[index] as ReplicatedCell)
+        if (place === -1) throw new NotComputable('no-replicates', 'The laboratory has no second result.')
+        return k[place]!
       }),
       surprise: found.surpriseAfter,
     })),
