@@ -5,10 +5,10 @@ import { ForeseenPrecision } from '@/app/(work)/studies/[studyId]/plan/foreseen-
 import type { StudyView } from '@/lib/use-cases/studies/read-study'
 import { parseMarkup } from './parse-markup'
 
-function pageOf(levels: { name: string; count: number }[], query: Record<string, string> = {}, invited = 12) {
+function pageOf(levels: { name: string; count: number }[], query: Record<string, string> = {}, invited = 13) {
   const view = {
     layout: { measurands: [], materials: [], levels },
-    counts: { invited, accepted: 0, declined: 0, returned: 0, committee: 0 },
+    counts: { invited, accepted: 0, declined: 1, returned: 0, committee: 0 },
     study: { studyId: '00000000-0000-4000-8000-000000000001' },
   } as unknown as StudyView
   return parseMarkup(renderToStaticMarkup(<ForeseenPrecision view={view} query={query} />)).body
@@ -21,14 +21,14 @@ const nested = [
 ]
 
 describe('what a plan will know, on its screen', () => {
-  it('says how many laboratories each figure needs, and what the twelve invited will do', () => {
+  it('says how many laboratories each figure needs, and what the twelve that have not declined will do', () => {
     const items = Array.from(pageOf(nested).querySelectorAll('li'), textOf)
     expect(items).toHaveLength(4)
     expect(items[0]).toMatch(/^Repeatability, sr, to ±30 %: you need p ≥ \d+ laboratories\.$/)
     expect(items[1]).toMatch(/^Intermediate precision, sI with day varying, to ±30 %: you need p ≥ \d+/)
     expect(items[2]).toMatch(/^Reproducibility, sR, to ±30 %: you need p ≥ \d+/)
     expect(items[3]).toMatch(
-      /^With the 12 laboratories invited: repeatability ±\d+ %, day varying ±\d+ %, reproducibility/,
+      /^With the 12 laboratories that are named and have not declined: repeatability ±\d+ %, day varying ±\d+ %, reproducibility/,
     )
   })
 
@@ -74,7 +74,7 @@ describe('what a plan will know, on its screen', () => {
     expect(pageOf(nested).innerHTML).toBe(pageOf(nested).innerHTML)
   })
 
-  it('says nothing of laboratories invited where there are none', () => {
-    expect(textOf(pageOf(nested, {}, 0))).not.toContain('invited')
+  it('says nothing of laboratories expected where there are none', () => {
+    expect(textOf(pageOf(nested, {}, 1))).not.toContain('declined')
   })
 })

@@ -32,15 +32,15 @@ export function innerLevelsOf(levels: Levels): Levels {
 }
 
 /**
- * How well a plan will know its standard deviations, for 4 laboratories up to 30, or as many as are invited. Levels as a
+ * How well a plan will know its standard deviations, for 4 laboratories up to 30, or as many as are expected. Levels as a
  * plan names them, from the outermost, the last one the single results.
  */
 export function foreseePrecision(asked: {
   levels: Levels
-  invited: number
+  expected: number
   assumptions: PlanAssumptions
 }): ForeseenPrecision {
-  const { levels, invited, assumptions } = asked
+  const { levels, expected, assumptions } = asked
   const inner = innerLevelsOf(levels).map(({ name, count }, index) => ({
     source: name,
     groups: count,
@@ -48,7 +48,7 @@ export function foreseePrecision(asked: {
   }))
   const plan: AskedPlan = {
     from: fewest,
-    to: Math.min(Math.max(30, invited), most.drawn),
+    to: Math.min(Math.max(30, expected), most.drawn),
     n: levels.at(-1)?.count ?? 1,
     gamma: assumptions.ratio,
     inner,

@@ -24,10 +24,11 @@ export function ForeseenPrecision({ view, query }: ForeseenPrecisionProps) {
   const inner = innerLevelsOf(levels)
   const read = readPlanAssumptions(query, inner.length)
   const { assumptions } = read
-  const foreseen = foreseePrecision({ levels, invited: view.counts.invited, assumptions })
+  const expected = view.counts.invited - view.counts.declined
+  const foreseen = foreseePrecision({ levels, expected, assumptions })
   const { figures, points, draws } = foreseen
   const names = figures.map(nameOf)
-  const withInvited = points.find(({ laboratories }) => laboratories === view.counts.invited)
+  const withExpected = points.find(({ laboratories }) => laboratories === expected)
   const wish = percent(assumptions.within)
 
   return (
@@ -57,11 +58,11 @@ export function ForeseenPrecision({ view, query }: ForeseenPrecisionProps) {
               )}
             </li>
           ))}
-          {withInvited && (
+          {withExpected && (
             <li className="text-ink-soft">
-              With the {view.counts.invited} laboratories invited:{' '}
+              With the {expected} laboratories that are named and have not declined:{' '}
               {names
-                .map((name, series) => `${name} ±${wholePercent(withInvited.halfWidths[series] ?? 0)}`)
+                .map((name, series) => `${name} ±${wholePercent(withExpected.halfWidths[series] ?? 0)}`)
                 .join(', ')}
               .
             </li>
