@@ -5,17 +5,18 @@ import type { Arrival, ArrivalKind } from './deadline-arrivals'
 import { timeOutMs, type Latencies } from './latencies'
 import { askTimed, type Asking, type TimedAnswer } from './timed-request'
 
-export const seriesNames = {
-  'sheet, first byte': 'sheet',
-  'sheet, whole': 'sheet',
-  'draft kept': 'draft',
-  'check page': 'check',
-  'submit, receipt shown': 'submit',
-  'receipt page': 'submit',
-  'file taken': 'upload',
-  'file to preview': 'upload',
-} as const satisfies Record<string, ArrivalKind>
-export type Series = keyof typeof seriesNames
+export const seriesNames = [
+  'sheet, first byte',
+  'sheet, whole',
+  'draft kept',
+  'check page',
+  'submit, acknowledged',
+  'receipt page',
+  'submit, receipt drawn',
+  'file taken',
+  'file to preview',
+] as const
+export type Series = (typeof seriesNames)[number]
 
 /** A contact of a laboratory at the sheet, with what the page in front of that person would know. */
 export interface Sitter {
@@ -38,56 +39,67 @@ interface Desk {
   readonly latencies: Latencies<Series>
 }
 
+interface Acting {
+  readonly sitter: Sitter
+  readonly plannedMs: number
+  readonly laboratory: number
+}
+
+type Fields = Readonly<Record<string, string>>
+
 /** Not what was hoped for: counted among the errors under these words. */
 class Failed extends Error {}
 
 /** What each arrival asks of the product: the very requests that its pages send. */
 export function createLaboratoryRequests(desk: Desk): (arrival: Arrival, plannedMs: number) => Promise<void> {
   const { studyId, latencies } = desk
-  const acts: Record<ArrivalKind, (sitter: Sitter, plannedMs: number, laboratory: number) => Promise<void>> =
-    {
-      sheet: (sitter, plannedMs) => openSheet(desk, sitter, plannedMs),
-      draft: (sitter, plannedMs) => inTurn(sitter, () => keepDraft(desk, sitter, plannedMs)),
-      check: (sitter, plannedMs) => inTurn(sitter, () => openCheck(desk, sitter, plannedMs)),
-      submit: (sitter, plannedMs) => inTurn(sitter, () => submit(desk, sitter, plannedMs)),
-      upload: (sitter, plannedMs, laboratory) => upload(desk, { sitter, plannedMs, laboratory }),
-    }
+  const acts: Record<ArrivalKind, (acting: Acting) => Promise<void>> = {
+    sheet: (acting) => openSheet(desk, acting),
+    draft: (acting) => inTurn(acting, () => keepDraft(desk, acting)),
+    check: (acting) => inTurn(acting, () => openCheck(desk, acting)),
+    submit: (acting) => inTurn(acting, () => submit(desk, acting)),
+    upload: (acting) => upload(desk, acting),
+  }
   return async ({ kind, laboratory }, plannedMs) => {
     const sitter = desk.sitters[laboratory]
     if (!sitter) throw new RangeError(`The study ${studyId} has no laboratory ${laboratory}.`)
     try {
-      await acts[kind](sitter, plannedMs, laboratory)
+      await acts[kind]({ sitter, plannedMs, laboratory })
     } catch (failure) {
-      for (const series of unfinished(kind)) latencies.fail(series, wordsOf(failure))
+      for (const series of seriesAtEnd(kind, laboratory)) latencies.fail(series, wordsOf(failure))
     }
   }
 }
 
-/** A failed arrival counts once, in the series that its end would have gone to. */
-function unfinished(kind: ArrivalKind): Series[] {
-  const last: Record<ArrivalKind, Series> = {
-    sheet: 'sheet, whole',
-    draft: 'draft kept',
-    check: 'check page',
-    submit: 'submit, receipt shown',
-    upload: 'file to preview',
+/** Where an arrival that failed is counted: once, and where its success would have been. */
+function seriesAtEnd(kind: ArrivalKind, laboratory: number): Series[] {
+  switch (kind) {
+    case 'sheet':
+      return ['sheet, first byte', 'sheet, whole']
+    case 'draft':
+      return ['draft kept']
+    case 'check':
+      return ['check page']
+    case 'submit':
+      return [isByScript(laboratory) ? 'submit, receipt drawn' : 'submit, acknowledged']
+    case 'upload':
+      return ['file to preview']
   }
-  return kind === 'sheet' ? ['sheet, first byte', last.sheet] : [last[kind]]
 }
 
-async function inTurn(sitter: Sitter, act: () => Promise<void>): Promise<void> {
+async function inTurn({ sitter }: Acting, act: () => Promise<void>): Promise<void> {
   const mine = sitter.turn.then(act)
   sitter.turn = mine.catch(() => undefined)
   await mine
 }
 
-async function openSheet({ base, studyId, latencies }: Desk, { cookie }: Sitter, plannedMs: number) {
+async function openSheet({ base, studyId, latencies }: Desk, { sitter: { cookie }, plannedMs }: Acting) {
   const answer = await ask({ base, cookie, path: paths.resultSheet(studyId) }, 200)
   latencies.add('sheet, first byte', answer.firstByteMs - plannedMs)
   latencies.add('sheet, whole', answer.lastByteMs - plannedMs)
 }
 
-async function keepDraft({ base, studyId, latencies }: Desk, sitter: Sitter, plannedMs: number) {
+async function keepDraft({ base, studyId, latencies }: Desk, { sitter, plannedMs }: Acting) {
   changeOneEntry(sitter.entries, plannedMs)
   const answer = await ask(
     {
@@ -111,7 +123,7 @@ function changeOneEntry(entries: Record<string, string>, plannedMs: number): voi
   entries[key] = (Number(entries[key]) + 0.1).toFixed(1)
 }
 
-async function openCheck({ base, studyId, latencies }: Desk, sitter: Sitter, plannedMs: number) {
+async function openCheck({ base, studyId, latencies }: Desk, { sitter, plannedMs }: Acting) {
   sitter.checked = null
   const answer = await ask({ base, cookie: sitter.cookie, path: participationPaths.check(studyId) }, 200)
   latencies.add('check page', answer.lastByteMs - plannedMs)
@@ -129,36 +141,62 @@ function hiddenField(page: string, name: string): string {
   return value.replaceAll(/&(quot|#x27|lt|gt|amp);/g, (found, sign: string) => signs[sign] ?? found)
 }
 
-/** Returns what the check page showed, by the page's own action, and opens the receipt to which that leads. */
-async function submit(desk: Desk, sitter: Sitter, plannedMs: number) {
-  const { base, studyId, submitActionId, latencies } = desk
+/**
+ * Returns what the check page showed. Every second laboratory does it as the page's script does, which draws the receipt
+ * from the same answer; the others as a page without scripts, which is led to the receipt once the return is stored.
+ */
+async function submit(desk: Desk, { sitter, plannedMs, laboratory }: Acting) {
+  const { studyId, latencies } = desk
   if (!sitter.checked) throw new Failed('the check page had not come')
   const fields = { studyId, ...sitter.checked, remark: '' }
-  const form = multipart([
-    ...Object.entries(fields).map(([name, value]) => [`_1_${name}`, value] as const),
-    ['0', '[{"errors":{},"values":{}},"$K1"]'],
-  ])
-  const answer = await ask(
-    {
-      base,
-      cookie: sitter.cookie,
-      method: 'POST',
-      path: participationPaths.check(studyId),
-      headers: { ...form.headers, 'next-action': submitActionId, accept: 'text/x-component' },
-      body: form.body,
-    },
-    303,
-  )
-  const [receipt] = String(answer.headers['x-action-redirect'] ?? '').split(';')
+  const byScript = isByScript(laboratory)
+  const answer = await (byScript ? postByScript : postPlainly)(desk, sitter, fields)
+  const [receipt] = String(answer.headers['x-action-redirect'] ?? answer.headers.location ?? '').split(';')
   if (!receipt?.includes('/receipts/')) throw new Failed('the answer leads to no receipt')
-  latencies.add('submit, receipt shown', answer.lastByteMs - plannedMs)
+  latencies.add(byScript ? 'submit, receipt drawn' : 'submit, acknowledged', answer.lastByteMs - plannedMs)
   sitter.draftVersion = 0
   sitter.checked = null
-  // Nobody can ask for a receipt before its number came: this one counts from when it can be asked for.
+  if (!byScript) await openReceipt(desk, sitter, receipt)
+}
+
+function isByScript(laboratory: number): boolean {
+  return laboratory % 2 === 1
+}
+
+function postByScript({ base, studyId, submitActionId }: Desk, { cookie }: Sitter, fields: Fields) {
+  const { headers, body } = multipart([
+    ...Object.entries(fields).map(([name, value]) => [`_1_${name}`, value] as const),
+    ['0', `[${untouched},"$K1"]`],
+  ])
+  return askTimed({
+    base,
+    cookie,
+    method: 'POST',
+    path: participationPaths.check(studyId),
+    headers: { ...headers, 'next-action': submitActionId, accept: 'text/x-component' },
+    body,
+  })
+}
+
+function postPlainly({ base, studyId, submitActionId }: Desk, { cookie }: Sitter, fields: Fields) {
+  const form = multipart([
+    ['$ACTION_REF_1', ''],
+    ['$ACTION_1:0', JSON.stringify({ id: submitActionId, bound: '$@1' })],
+    ['$ACTION_1:1', `[${untouched}]`],
+    ['$ACTION_KEY', 'k1'],
+    ...Object.entries(fields),
+  ])
+  return askTimed({ base, cookie, method: 'POST', path: participationPaths.check(studyId), ...form })
+}
+
+/** The state of a form that was not sent before. */
+const untouched = '{"errors":{},"values":{}}'
+
+/** Nobody can ask for a receipt before its number came: this one counts from when it can be asked for. */
+async function openReceipt({ base, latencies }: Desk, { cookie }: Sitter, path: string) {
   const askedMs = performance.now()
   try {
-    const shown = await ask({ base, cookie: sitter.cookie, path: receipt }, 200)
-    latencies.add('receipt page', shown.lastByteMs - askedMs)
+    latencies.add('receipt page', (await ask({ base, cookie, path }, 200)).lastByteMs - askedMs)
   } catch (failure) {
     latencies.fail('receipt page', wordsOf(failure))
   }
@@ -168,10 +206,7 @@ async function submit(desk: Desk, sitter: Sitter, plannedMs: number) {
 const lookEveryMs = 1200
 
 /** Sends a file as the form does, and follows the preview as the page does until it shows what was read. */
-async function upload(
-  desk: Desk,
-  { sitter: { cookie }, plannedMs, laboratory }: { sitter: Sitter; plannedMs: number; laboratory: number },
-) {
+async function upload(desk: Desk, { sitter: { cookie }, plannedMs, laboratory }: Acting) {
   const { base, studyId, files, latencies } = desk
   const form = multipart([], files[laboratory % files.length])
   const path = participationPaths.uploadsHandler(studyId)

@@ -1,5 +1,4 @@
 import { randomBytes } from 'node:crypto'
-import { readdirSync, readFileSync } from 'node:fs'
 import { migrateDatabase } from '@/db/commands/migrate-database'
 import { Children } from '@/lib/commands/children'
 import { asClusterAdmin, clusterUrl, type ClusterAccess } from '@/lib/commands/cluster-access'
@@ -9,6 +8,7 @@ import { privateEnvironment } from '@/lib/commands/private-run'
 import { ensureBuild } from '@/lib/commands/product-build'
 import { startFakeMail, startProduct } from '@/lib/commands/product-processes'
 import type { TestRun } from '@/lib/commands/test-run'
+import { childrenOf, commandOf, memoryOf, parentOf } from './machine-use'
 
 const DATABASE = 'load'
 
@@ -17,8 +17,10 @@ export interface LoadProduct {
   readonly access: Readonly<Record<'DATABASE_URL' | 'DATABASE_OWNER_URL' | 'AUTH_SECRET', string>>
   /** Which child ended though nobody asked it to, once one does. */
   readonly unexpectedEnd: Children['unexpectedEnd']
-  /** Of the web process, in bytes. */
+  /** What the web process holds in memory, in bytes. */
   webMemory(): number
+  /** By the name that is printed. */
+  readonly processes: Readonly<Record<string, number>>
 }
 
 /** The built product with an empty database of its own, its worker and its mail service; all end with the run. */
@@ -43,12 +45,13 @@ export async function startLoadProduct(run: TestRun): Promise<LoadProduct> {
   await startFakeMail({ root, children, folder: `${folder}/mail`, ports })
   const env = privateEnvironment(world)
   await startProduct({ root, children, env, port: ports.web })
-  const web = pidOfWeb()
+  const processes = await findProcesses(access)
   return {
     base: env.BASE_URL,
     access: { ...env, DATABASE_OWNER_URL: ownerUrl },
     unexpectedEnd: children.unexpectedEnd,
-    webMemory: () => memoryOf(web),
+    processes,
+    webMemory: () => memoryOf(processes.web ?? 0),
   }
 }
 
@@ -61,21 +64,23 @@ async function keepPromises(access: ClusterAccess): Promise<void> {
   })
 }
 
-/** Among our own children, which the web process calls by a title of its own. */
-function pidOfWeb(): number {
-  const found = readFileSync(`/proc/${process.pid}/task/${process.pid}/children`, 'utf8')
-    .trim()
-    .split(' ')
-    .filter((pid) => /next-server|next start|bin\/next/.test(readFileSync(`/proc/${pid}/cmdline`, 'utf8')))
-  if (found.length !== 1) throw new Error('the web process was not found among the children')
-  return Number(found[0])
-}
-
-/** What the process holds in memory, with any that it has started. */
-function memoryOf(pid: number): number {
-  const own = /^VmRSS:\s+(\d+) kB$/m.exec(readFileSync(`/proc/${pid}/status`, 'utf8'))?.[1]
-  const children = readdirSync(`/proc/${pid}/task`).flatMap((thread) =>
-    readFileSync(`/proc/${pid}/task/${thread}/children`, 'utf8').split(' ').filter(Boolean).map(Number),
-  )
-  return children.reduce((sum, child) => sum + memoryOf(child), Number(own ?? 0) * 1024)
+/** Which process is which, among our own children and above a connection to the database. */
+async function findProcesses(access: ClusterAccess): Promise<Record<string, number>> {
+  const ours = childrenOf(process.pid)
+  const named = (name: string, pattern: RegExp) => {
+    const found = ours.filter((pid) => pattern.test(commandOf(pid)))
+    if (found.length !== 1) throw new Error(`the ${name} process was not found among the children`)
+    return Number(found[0])
+  }
+  const backend = await asClusterAdmin(access, async (client) => {
+    const { rows } = await client.query<{ pid: number }>('select pg_backend_pid() as pid')
+    return parentOf(rows[0]?.pid ?? 0)
+  })
+  return {
+    // The framework gives its process a title of its own once it runs.
+    web: named('web', /next-server|bin\/next/),
+    worker: named('worker', /jobs\/worker/),
+    PostgreSQL: backend,
+    mail: named('mail', /fakes\/mail/),
+  }
 }

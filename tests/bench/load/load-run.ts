@@ -1,3 +1,4 @@
+import { setPriority } from 'node:os'
 import { setTimeout as pause } from 'node:timers/promises'
 import { randomNumbers } from '@/db/seed/random-numbers'
 import type { TestRun } from '@/lib/commands/test-run'
@@ -15,6 +16,7 @@ import {
   seatContacts,
   stageReturnedStudy,
 } from './load-world'
+import { watchUse, type Use } from './machine-use'
 import { measureAnalysis, measureInvitations, probeWhile, type Probed } from './measure-worker'
 import { playArrivals } from './play-arrivals'
 
@@ -31,6 +33,8 @@ export interface LoadFigures {
   readonly probedQuiet: Probed
   readonly probedAnalysing: Probed
   readonly memory: Readonly<Record<'started' | 'warm' | 'after', number>>
+  /** Over the counted arrivals. */
+  readonly use: Use
 }
 
 /** One deadline against the real product: its world, its invitations, its last minutes, its analysis. */
@@ -42,6 +46,7 @@ export async function runLoad(
   void product.unexpectedEnd.then(({ name, outcome, tail }) =>
     run.say(`The ${name} ended by itself (${outcome}). Its last words:\n${tail.join('\n')}`),
   )
+  comeFirst()
   const started = product.webMemory()
   const world = openAttackWorld(product.access)
   run.onClose(() => world.destroy())
@@ -71,6 +76,15 @@ export async function runLoad(
     probedQuiet,
     probedAnalysing,
     memory: { started, ...load.memory },
+  }
+}
+
+/** A generator that waits for the product it drives would measure both; only an administrator may put it first. */
+function comeFirst(): void {
+  try {
+    setPriority(-5)
+  } catch {
+    // The lag that is printed tells whether it mattered.
   }
 }
 
@@ -104,6 +118,7 @@ async function playDeadline({ run, product, world, study, contacts, seconds, see
   const warm = product.webMemory()
   run.say(`Playing the last ${seconds} s before the deadline`)
   const requests = new Latencies<Series>()
+  const readUse = watchUse({ roots: product.processes })
   const played = await play(seconds, requests)
-  return { requests, ...played, memory: { warm, after: product.webMemory() } }
+  return { requests, ...played, use: readUse(), memory: { warm, after: product.webMemory() } }
 }

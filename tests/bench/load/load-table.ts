@@ -104,3 +104,7 @@ export function showMiB(bytes: number): string {
 export function showCount(count: number): string {
   return count.toLocaleString('en-GB')
 }
+
+export function showShare(share: number): string {
+  return `${Math.round(share * 100)} %`
+}
