@@ -2,7 +2,7 @@ import { writeFileSync } from 'node:fs'
 import { parseArgs } from 'node:util'
 import { TestRun } from '@/lib/commands/test-run'
 import { deadlineModel } from './load/deadline-arrivals'
-import { runLoad } from './load/load-run'
+import { runLoad, type LoadFigures } from './load/load-run'
 import { isValid, printHead, printLoad } from './load/print-load'
 
 /*
@@ -34,7 +34,15 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const)
 printHead({ seconds, full: deadlineModel.seconds, seed }, say)
 try {
   const figures = await runLoad(run, { seconds, seed })
-  if (run.isClosing) await new Promise(() => undefined)
+  if (!run.isClosing) report(figures)
+} catch (failure) {
+  // A run that is being ended loses its connections on the way, which is no news.
+  if (!run.isClosing) throw failure
+} finally {
+  await run.close()
+}
+
+function report(figures: LoadFigures): void {
   printLoad(figures, say)
   if (values.raw) {
     const { probedQuiet, probedAnalysing } = figures
@@ -42,6 +50,4 @@ try {
     writeFileSync(values.raw, JSON.stringify({ seconds, seed, raw }))
   }
   process.exitCode = isValid(figures) ? 0 : 1
-} finally {
-  await run.close()
 }
