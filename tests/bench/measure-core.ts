@@ -103,8 +103,8 @@ function testsOf({ cells }: MaterialData, index: number): CellSummary[] {
   const general = generalisedCochran(summaries)
   const ends = (['high', 'low'] as const).map((end) => grubbsSingle(summaries, end, spread))
   for (const alpha of [0.05, 0.01]) {
-    cochranCritical({ ...largest, alpha })
-    generalisedCochranCritical({ ...general, alpha })
+    cochranCritical({ cells: largest.cells, df: largest.df, alpha })
+    generalisedCochranCritical({ cells: general.cells, df: general.df, pooledDf, alpha })
     grubbsSingleCritical(p, alpha)
   }
   fTestFrom(betweenLaboratories, repeatability)
