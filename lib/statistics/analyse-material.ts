@@ -103,7 +103,7 @@ function analyseCells(one: {
   const uncertaintyOfMean = (): number => varianceOfMean(layout, anova())
   const harmonic = (): number => harmonicCellSize(summaries)
 
-  const mean = summaries.length === 0 ? null : restore(means().weighted)
+  const mean = summaries.length === 0 ? null : finiteOrNull(restore(means().weighted))
   const precision = precisionBlocks({
     summaries,
     layout,
@@ -261,6 +261,11 @@ function innermostGroups(cells: MaterialCells): IntegerCells {
         : order.map((at) => units[at]!),
     starts: Int32Array.from(ends),
   }
+}
+
+/** A mean beyond every double is none, though the deviations from it may well be in range. */
+function finiteOrNull(value: number): number | null {
+  return Number.isFinite(value) ? value : null
 }
 
 function meansOfCells({ laboratories, starts, deviations }: MaterialCells): number[] {

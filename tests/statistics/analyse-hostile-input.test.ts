@@ -143,3 +143,42 @@ describe('a denominator of hardly any degrees of freedom', () => {
     expect(one!.reproducibility.sd).toBeGreaterThan(0)
   })
 })
+
+describe('results that are equal, many times over', () => {
+  it.each(['10.123', '0.1', '9.937'])('show no scatter at any inner level: %s', (first) => {
+    // Unequal numbers of days and results, so that every mean is a sum of its own length.
+    const rows = ['3.7', first, '8.219', '11.003'].flatMap((text, laboratory) =>
+      Array.from({ length: 60 + 37 * laboratory }, (_, index) => ({
+        laboratory: `L${laboratory}`,
+        groups: [String(index % (2 + laboratory)), String(index % 7)],
+        text,
+      })),
+    )
+    const [one] = analyseRows(rows, { nesting: ['operator', 'day'] }).materials
+    expect(one!.anova.rows.slice(1).map(({ ss }) => ss)).toEqual([0, 0, 0])
+    expect(one!.anova.rows[0]!.f).toBeNull()
+    for (const { cells } of one!.levels) expect(cells.every(({ ms, k }) => ms === 0 && k === null)).toBe(true)
+  })
+
+  it('in their means have no correlation with another material', () => {
+    const equal = rowsOf({ A: '9.9 10.1 10.0', B: '10 10', C: '9.7 10.2 10.1', D: '9.8 10.1 10.1' }, 'M')
+    const other = rowsOf({ A: '1.1', B: '1.4', C: '1.2', D: '1.9' }, 'N')
+    const [plot] = analyseRows([...equal, ...other]).youden!
+    expect(plot!.sd[0]).toBe(0)
+    expect(plot!.correlation).toBeNull()
+    expect(plot!.reasons!['correlation']).toContain('all equal')
+  })
+})
+
+describe('a mean above every double', () => {
+  it('is no figure of its own, and neither is anything that is told in parts of it', () => {
+    const far = `7${'0'.repeat(400)}`
+    const rows = rowsOf({ A: `${far}1 ${far}4`, B: `${far}2 ${far}7`, C: `${far}8 ${far}3` })
+    const [one] = analyseRows(rows).materials
+    expect(one!.mean).toBeNull()
+    expect(one!.repeatability.relative).toBeNull()
+    expect(one!.rounded.mean).toBeNull()
+    // Deviations -1.5 and 1.5, -2.5 and 2.5, 2.5 and -2.5: squares 4.5 + 12.5 + 12.5 over 3.
+    expect(one!.repeatability.variance).toBeCloseTo(29.5 / 3, 12)
+  })
+})

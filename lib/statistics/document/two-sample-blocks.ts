@@ -8,6 +8,7 @@ import {
   withReasons,
 } from '@/lib/statistics/document/attempt'
 import { median } from '@/lib/statistics/median'
+import { areMeansEqual } from '@/lib/statistics/spread-of-means'
 import {
   correlation,
   ellipse,
@@ -32,10 +33,11 @@ export type PlottedMaterial = {
  * What too few laboratories do not give is `null`. Source: Youden 1959; `two-sample-plot.ts`.
  */
 export function twoSampleBlock(x: PlottedMaterial, y: PlottedMaterial): TwoSamplePlot {
-  const onY = new Map(y.summaries.map(({ laboratory, mean }) => [laboratory, mean]))
-  const common = x.summaries
-    .filter(({ laboratory }) => onY.has(laboratory))
-    .map(({ laboratory, mean }) => ({ laboratory, x: mean, y: onY.get(laboratory)! }))
+  const onY = new Map(y.summaries.map((summary) => [summary.laboratory, summary]))
+  const ofX = x.summaries.filter(({ laboratory }) => onY.has(laboratory))
+  const xs = meansToPlot(ofX)
+  const ys = meansToPlot(ofX.map(({ laboratory }) => onY.get(laboratory)!))
+  const common = ofX.map(({ laboratory }, index) => ({ laboratory, x: xs[index]!, y: ys[index]! }))
 
   return withReasons((attempt) => {
     const spread = attempt('covariance', () => plotSpread(common))
@@ -76,6 +78,12 @@ export function twoSampleBlock(x: PlottedMaterial, y: PlottedMaterial): TwoSampl
 }
 
 const TOO_FEW = 'Too few laboratories have both materials.'
+
+/** The means in their order; one and the same where they differ by rounding alone, which has no correlation with anything. */
+function meansToPlot(summaries: readonly CellSummary[]): number[] {
+  const first = summaries[0]?.mean ?? 0
+  return areMeansEqual(summaries) ? summaries.map(() => first) : summaries.map(({ mean }) => mean)
+}
 
 /** A figure of each material under one key, which has the reason where either is missing. */
 function pairOf(
