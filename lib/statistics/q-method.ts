@@ -5,6 +5,7 @@ import {
   differencesBetween,
   differencesWithin,
   type IntegerCells,
+  tooManyPlaces,
 } from '@/lib/statistics/pairwise-differences'
 import { NotComputable } from '@/lib/statistics/not-computable'
 
@@ -29,7 +30,8 @@ export type DecimalStep = number
  *
  * Variant: no small-sample factor; the mean of s* / σ for normal data is 1.15 at 6 laboratories, 1.06 at 12.
  *
- * @throws {NotComputable} `too-few-laboratories` below 3; `all-equal`, also when too many differences are 0 to tell.
+ * @throws {NotComputable} `too-few-laboratories` below 3; `all-equal`, also when too many differences are 0 to tell;
+ *   `out-of-range` for differences of more than 10^200 steps, or a step that no double holds in full.
  *
  * Source: ISO 13528, Annex C.5.
  */
@@ -41,34 +43,44 @@ export function qOfCellMeans(cells: IntegerCells, step: DecimalStep): number {
     units: means,
     starts: Int32Array.from({ length: count + 1 }, (_, at) => at),
   })
-  return (spreadFrom(differences, BETWEEN) / Number(multiple)) * step
+  return (spreadFrom(differences, BETWEEN) / Number(multiple)) * requireStep(step)
 }
 
 /**
  * Q method for reproducibility on single results: the pairs of different cells, every pair of cells counted alike.
  * Integers in steps, the answer in the unit of the results.
  *
- * @throws {NotComputable} `too-few-laboratories` below 2; `all-equal`, also when too many differences are 0 to tell.
+ * @throws {NotComputable} `too-few-laboratories` below 2; `all-equal`, also when too many differences are 0 to tell;
+ *   `out-of-range` for differences of more than 10^200 steps, or a step that no double holds in full.
  *
  * Source: ISO 13528, Annex C.5.
  */
 export function qReproducibility(cells: IntegerCells, step: DecimalStep): number {
   if (cells.starts.length < 3) throw new NotComputable('too-few-laboratories', 'Two laboratories are needed.')
-  return spreadFrom(differencesBetween(cells), BETWEEN) * step
+  return spreadFrom(differencesBetween(cells), BETWEEN) * requireStep(step)
 }
 
 /**
  * Q method for repeatability on single results: the pairs inside a cell, every cell of two or more results counted
  * alike. Integers in steps, the answer in the unit of the results.
  *
- * @throws {NotComputable} `no-replication`; `all-equal`, also when too many differences are 0 to tell.
+ * @throws {NotComputable} `no-replication`; `all-equal`, also when too many differences are 0 to tell;
+ *   `out-of-range` for differences of more than 10^200 steps, or a step that no double holds in full.
  *
  * Source: ISO 13528, Annex C.5.
  */
 export function qRepeatability(cells: IntegerCells, step: DecimalStep): number {
   const replicated = cellsOfTwoOrMore(cells)
   if (replicated.starts.length === 1) throw new NotComputable('no-replication', 'No cell holds two results.')
-  return spreadFrom(differencesWithin(replicated), WITHIN) * step
+  return spreadFrom(differencesWithin(replicated), WITHIN) * requireStep(step)
+}
+
+/** A double loses digits below 1e-307; the estimate, some of these steps, must not. */
+const SMALLEST_STEP = 1e-290
+
+function requireStep(step: DecimalStep): DecimalStep {
+  if (!(step >= SMALLEST_STEP)) throw tooManyPlaces()
+  return step
 }
 
 /** Which quantile of the differences is read, and what it is in a normal distribution. */

@@ -1,4 +1,4 @@
-import { algorithmA } from '@/lib/statistics/algorithm-a'
+import type { AlgorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
 import type { RobustBlock } from '@/lib/statistics/analysis-document'
 import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
@@ -9,6 +9,8 @@ import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics
 /** What the robust estimates are made from: one entry a laboratory, all in the same order. */
 export type RobustInput = {
   cellMeans: readonly number[]
+  /** Algorithm A of the cell means. */
+  algorithmA: () => AlgorithmA
   cellSpreads: readonly { sd: number; df: number }[]
   integers: IntegerCells
   /** The results that differ by the replicate alone: the cells, or in a nested layout their innermost groups. */
@@ -64,9 +66,9 @@ export function robustBlock(input: RobustInput): RobustBlock {
   }
 }
 
-function algorithmABlock({ cellMeans, restore }: RobustInput): RobustBlock['algorithmA'] {
+function algorithmABlock({ algorithmA, restore }: RobustInput): RobustBlock['algorithmA'] {
   return withReasons((attempt) => {
-    const found = attempt('sd', () => algorithmA(cellMeans))
+    const found = attempt('sd', algorithmA)
     return {
       mean: found === null ? null : restore(found.mean),
       sd: found?.sd ?? null,
