@@ -1,3 +1,4 @@
+import { algorithmA } from '@/lib/statistics/algorithm-a'
 import { nestedAnova } from '@/lib/statistics/nested-anova'
 import type { MaterialAnalysis, Reasons } from '@/lib/statistics/analysis-document'
 import type { AnalysisResult, AnalysisSettings } from '@/lib/statistics/analysis-input'
@@ -29,6 +30,7 @@ import { robustBlock } from '@/lib/statistics/document/robust-block'
 import { levelSummaries } from '@/lib/statistics/laboratory-summaries'
 import { buildNestedLayout, codeLabels, requireReplicate } from '@/lib/statistics/nested-layout'
 import { generalMeans } from '@/lib/statistics/one-way-precision'
+import { ownSetting } from '@/lib/statistics/own-setting'
 import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
 import { roundedPrecision } from '@/lib/statistics/rounding'
 
@@ -101,7 +103,7 @@ function analyseCells(one: {
   const uncertaintyOfMean = (): number => varianceOfMean(layout, anova())
   const harmonic = (): number => harmonicCellSize(summaries)
 
-  const mean = summaries.length === 0 ? null : restore(means().weighted)
+  const mean = summaries.length === 0 ? null : finiteOrNull(restore(means().weighted))
   const precision = precisionBlocks({
     summaries,
     layout,
@@ -110,8 +112,11 @@ function analyseCells(one: {
     limitFactor: settings.limitFactor,
     trueZero: settings.trueZero ?? true,
   })
+  const cellMeans = summaries.map((summary) => summary.mean)
+  const robustMean = once(() => algorithmA(cellMeans))
   const robust = robustBlock({
-    cellMeans: summaries.map((summary) => summary.mean),
+    cellMeans,
+    algorithmA: robustMean,
     cellSpreads: summaries.map(({ sd, df }) => ({ sd: sd ?? 0, df })),
     integers: cells,
     replicates: isNested ? innermostGroups(cells) : cells,
@@ -122,7 +127,7 @@ function analyseCells(one: {
     restore,
   })
 
-  const given = settings.references?.[data.material] ?? null
+  const given = ownSetting(settings.references, data.material)
   const reference =
     given === null
       ? null
@@ -131,7 +136,7 @@ function analyseCells(one: {
           value: decimalToNumber(parseDecimal(given.value)),
           uncertainty: given.uncertainty,
         }
-  const sigma = settings.sigmas?.[data.material] ?? null
+  const sigma = ownSetting(settings.sigmas, data.material)
   const variancesOfCellMeans = once((): number[] => {
     const between = required(precision.betweenLaboratory.variance, 'There is no laboratory component.')
     const sizes = summaries.map(({ n }) => n)
@@ -148,6 +153,12 @@ function analyseCells(one: {
     variancesOfCellMeans,
     summaries,
   })
+  const assignedDeviation = (): number =>
+    assigned.source === 'reference'
+      ? reference!.deviation
+      : assigned.source === 'algorithmA'
+        ? robustMean().mean
+        : means().weighted
 
   const analysis = withReasons((attempt): Omit<MaterialAnalysis, 'reasons'> => ({
     material: data.material,
@@ -168,8 +179,8 @@ function analyseCells(one: {
       scoresOf: (summary, index) =>
         scoresBlock({
           summary,
-          value: restore(summary.mean),
           assigned,
+          assignedDeviation,
           laboratories: summaries.length,
           sigma: () => sigma ?? Math.sqrt(variancesOfCellMeans()[index]!),
           uncertainty: statedUncertainty(resultsOfCell(cells, index)),
@@ -239,7 +250,7 @@ function innermostGroups(cells: MaterialCells): IntegerCells {
       else known.push(at)
     }
     for (const members of groups.values()) {
-      order.push(...members)
+      for (const at of members) order.push(at)
       ends.push(order.length)
     }
   }
@@ -250,6 +261,11 @@ function innermostGroups(cells: MaterialCells): IntegerCells {
         : order.map((at) => units[at]!),
     starts: Int32Array.from(ends),
   }
+}
+
+/** A mean beyond every double is none, though the deviations from it may well be in range. */
+function finiteOrNull(value: number): number | null {
+  return Number.isFinite(value) ? value : null
 }
 
 function meansOfCells({ laboratories, starts, deviations }: MaterialCells): number[] {
@@ -276,7 +292,8 @@ function effectiveCellSize(summaries: readonly CellSummary[]): number {
 function statedUncertainty(results: readonly AnalysisResult[]): number | null {
   const stated = results.map(({ uncertainty }) => uncertainty ?? null)
   if (stated.some((one) => one === null)) return null
-  return Math.hypot(...stated.map((one) => one!)) / Math.sqrt(stated.length)
+  // Two by two: a call takes no hundred thousand arguments.
+  return stated.reduce((sum: number, one) => Math.hypot(sum, one!), 0) / Math.sqrt(stated.length)
 }
 
 function roundedBlock(

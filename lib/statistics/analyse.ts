@@ -14,6 +14,7 @@ import { levelRelationBlock } from '@/lib/statistics/document/level-relation-blo
 import { materialData, type MaterialCells } from '@/lib/statistics/document/material-data'
 import { planningBlock } from '@/lib/statistics/document/planning-block'
 import { twoSampleBlock } from '@/lib/statistics/document/two-sample-blocks'
+import { ownSetting } from '@/lib/statistics/own-setting'
 
 /**
  * Analyses an interlaboratory study: the one function behind the server, the
@@ -170,7 +171,7 @@ function homogeneity(materials: readonly AnalysedMaterial[], settings: AnalysisS
       material: data.material,
       units: data.isOutOfRange ? [] : deviationsByCell(data.cells),
       summaries,
-      target: settings.sigmas?.[data.material] ?? null,
+      target: ownSetting(settings.sigmas, data.material),
     }),
   )
 }

@@ -1,4 +1,4 @@
-import { binaryScale } from '@/lib/statistics/binary-scale'
+import { binaryScaleOf } from '@/lib/statistics/binary-scale'
 import { chiSquaredQuantileLower, chiSquaredQuantileUpper } from '@/lib/statistics/distributions/chi-squared'
 import { fQuantileLower, fQuantileUpper } from '@/lib/statistics/distributions/f'
 import { NotComputable } from '@/lib/statistics/not-computable'
@@ -30,25 +30,38 @@ const SMALLEST_USEFUL_DF = 0.05
  * Source: Ting et al. 1990; Burdick & Graybill 1992, section 3.3; without negative terms it is Graybill & Wang 1980.
  */
 export function combinationInterval(terms: readonly WeightedMeanSquare[]): CombinationInterval {
-  const { scale, scaled } = nearOne(terms)
-  const { estimate, lower, upper } = intervalOf(scaled)
+  const scale = scaleOf(terms)
+  const positive: Term[] = []
+  const negative: Term[] = []
+  for (const { weight, ms, df } of terms) {
+    if (weight > 0) positive.push(limitFactors(weight * (ms / scale), df))
+    if (weight < 0) negative.push(limitFactors(-weight * (ms / scale), df))
+  }
+  const { estimate, lower, upper } = intervalOf(positive, negative)
   return { estimate: estimate * scale, lower: lower * scale, upper: upper * scale }
 }
 
-/** The same mean squares in a unit in which they can be squared once more. */
-function nearOne(terms: readonly WeightedMeanSquare[]): { scale: number; scaled: WeightedMeanSquare[] } {
-  const scale = binaryScale(terms.map(({ weight, ms }) => weight * ms))
-  return { scale, scaled: terms.map((term) => ({ ...term, ms: term.ms / scale })) }
+/** A unit in which the mean squares can be squared once more. */
+function scaleOf(terms: readonly WeightedMeanSquare[]): number {
+  let largest = 0
+  for (const { weight, ms } of terms) largest = Math.max(largest, Math.abs(weight * ms))
+  return binaryScaleOf(largest)
 }
 
-function intervalOf(terms: readonly WeightedMeanSquare[]): CombinationInterval {
-  const positive = terms.filter(({ weight }) => weight > 0).map(limitFactors)
-  const negative = terms.filter(({ weight }) => weight < 0).map(limitFactors)
-  const estimate =
-    positive.reduce((sum, { part }) => sum + part, 0) - negative.reduce((sum, { part }) => sum + part, 0)
-
-  let below = squares(positive, 'g') + squares(negative, 'h')
-  let above = squares(positive, 'h') + squares(negative, 'g')
+function intervalOf(positive: readonly Term[], negative: readonly Term[]): CombinationInterval {
+  let estimate = 0
+  let below = 0
+  let above = 0
+  for (const { part, g, h } of positive) {
+    estimate += part
+    below += (g * part) ** 2
+    above += (h * part) ** 2
+  }
+  for (const { part, g, h } of negative) {
+    estimate -= part
+    below += (h * part) ** 2
+    above += (g * part) ** 2
+  }
   for (const plus of positive) {
     for (const minus of negative) {
       below += lowerCross(plus, minus) * plus.part * minus.part
@@ -78,12 +91,13 @@ function intervalOf(terms: readonly WeightedMeanSquare[]): CombinationInterval {
  * Source: Burdick & Graybill 1992.
  */
 export function satterthwaiteInterval(terms: readonly WeightedMeanSquare[]): SatterthwaiteLimits {
-  const { scale, scaled } = nearOne(terms)
+  const scale = scaleOf(terms)
   let estimate = 0
   let spread = 0
-  for (const { weight, ms, df } of scaled) {
-    estimate += weight * ms
-    spread += (weight * ms) ** 2 / df
+  for (const { weight, ms, df } of terms) {
+    const part = weight * (ms / scale)
+    estimate += part
+    spread += part ** 2 / df
   }
   if (!(estimate > 0)) {
     throw new NotComputable('not-positive', 'The estimated variance is not above 0.')
@@ -99,16 +113,12 @@ export function satterthwaiteInterval(terms: readonly WeightedMeanSquare[]): Sat
 
 type Term = { part: number; df: number; g: number; h: number }
 
-function limitFactors({ weight, ms, df }: WeightedMeanSquare): Term {
-  return { part: Math.abs(weight) * ms, df, g: upperShare(df), h: df / chiSquaredQuantileLower(TAIL, df) - 1 }
+function limitFactors(part: number, df: number): Term {
+  return { part, df, g: upperShare(df), h: df / chiSquaredQuantileLower(TAIL, df) - 1 }
 }
 
 function upperShare(df: number): number {
   return 1 - df / chiSquaredQuantileUpper(TAIL, df)
-}
-
-function squares(terms: readonly Term[], factor: 'g' | 'h'): number {
-  return terms.reduce((sum, term) => sum + (term[factor] * term.part) ** 2, 0)
 }
 
 function lowerCross(plus: Term, minus: Term): number {

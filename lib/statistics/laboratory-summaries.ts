@@ -1,6 +1,5 @@
 import { codesOfCells, type CellSummary, type CellTable } from '@/lib/statistics/cells'
-import type { NestedLayout, Stratum } from '@/lib/statistics/nested-layout'
-import { RESIDUAL } from '@/lib/statistics/nested-layout'
+import { meanOf, type NestedLayout, RESIDUAL, type Stratum } from '@/lib/statistics/nested-layout'
 
 /**
  * What each laboratory contributes to one level of a nested layout: the
@@ -50,9 +49,7 @@ export function levelSummaries(layout: NestedLayout, cells: CellTable): LevelSum
 function wholeLaboratories({ laboratories, starts, deviations }: CellTable): CellSummary[] {
   return laboratories.map((laboratory, index) => {
     const [start, end] = [starts[index]!, starts[index + 1]!]
-    let sum = 0
-    for (let at = start; at < end; at += 1) sum += deviations[at]!
-    return { laboratory, n: end - start, mean: sum / (end - start), sd: undefined, df: 0 }
+    return { laboratory, n: end - start, mean: meanOf(deviations.subarray(start, end)), sd: undefined, df: 0 }
   })
 }
 

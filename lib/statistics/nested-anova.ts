@@ -67,7 +67,7 @@ export function nestedAnova(layout: NestedLayout): NestedAnova {
 export function weightsFor(rows: readonly AnovaRow[], wanted: Record<string, number>): number[] {
   const weights: number[] = []
   rows.forEach((row, level) => {
-    let remaining = wanted[row.source] ?? 0
+    let remaining = Object.hasOwn(wanted, row.source) ? wanted[row.source]! : 0
     for (let above = 0; above < level; above += 1)
       remaining -= weights[above]! * rows[above]!.ems[row.source]!
     const weight = remaining / row.ems[row.source]!
@@ -133,12 +133,12 @@ function anovaRows(layout: NestedLayout): AnovaRow[] {
     const above = level === 0 ? undefined : strata[level - 1]!
     const df = stratum.size.length - (above?.size.length ?? 1)
     const ss = betweenSumOfSquares(layout, stratum, above)
-    const ems: Record<string, number> = {}
-    strata.forEach((component, inner) => {
+    const coefficients = strata.map((_, inner) => {
       const outside = above === undefined ? wholeSums[inner]! : sums[inner]![level - 1]!
-      ems[component.source] =
-        inner < level ? 0 : inner === strata.length - 1 ? 1 : (sums[inner]![level]! - outside) / df
+      return inner < level ? 0 : inner === strata.length - 1 ? 1 : (sums[inner]![level]! - outside) / df
     })
+    // A level may be called __proto__: made from entries it is a key like any other.
+    const ems = Object.fromEntries(strata.map(({ source }, inner) => [source, coefficients[inner]!]))
     return { source: stratum.source, df, ss, ms: ss / df, ems }
   })
 }
@@ -174,17 +174,21 @@ function betweenSumOfSquares(layout: NestedLayout, stratum: Stratum, above: Stra
 }
 
 function varianceComponents(rows: readonly AnovaRow[]): VarianceComponent[] {
-  const raw: Record<string, number> = {}
+  const raw = new Map<string, number>()
   for (let level = rows.length - 1; level >= 0; level -= 1) {
     const row = rows[level]!
     let rest = row.ms
     for (let inner = level + 1; inner < rows.length; inner += 1) {
       const source = rows[inner]!.source
-      rest -= row.ems[source]! * raw[source]!
+      rest -= row.ems[source]! * raw.get(source)!
     }
-    raw[row.source] = rest / row.ems[row.source]!
+    raw.set(row.source, rest / row.ems[row.source]!)
   }
-  return rows.map(({ source }) => ({ source, raw: raw[source]!, variance: Math.max(0, raw[source]!) }))
+  return rows.map(({ source }) => ({
+    source,
+    raw: raw.get(source)!,
+    variance: Math.max(0, raw.get(source)!),
+  }))
 }
 
 /** A weight that is 0 or 1 but for its last bits is 0 or 1: balance must be recognised as such. */

@@ -157,15 +157,35 @@ function stratum(source: string, groupOf: Int32Array, deviations: Float64Array):
   for (let at = 0; at < groupOf.length; at += 1) groups = Math.max(groups, groupOf[at]! + 1)
   const firstMember = new Int32Array(groups)
   const size = new Float64Array(groups)
-  const mean = new Float64Array(groups)
   for (let at = 0; at < groupOf.length; at += 1) {
     const group = groupOf[at]!
     if (size[group] === 0) firstMember[group] = at
     size[group]! += 1
-    mean[group]! += deviations[at]!
   }
-  for (let group = 0; group < groups; group += 1) mean[group]! /= size[group]!
+  const mean = meansOfGroups({ groupOf, firstMember, size, deviations })
   return { source, groupOf, firstMember, size, mean }
+}
+
+/**
+ * Reckoned from a result of each group and put right once, so that the mean of equal results is that result, and any other
+ * off by no more than its last bits, however many there are: what rounding leaves must not pass for scatter.
+ */
+function meansOfGroups(one: {
+  groupOf: Int32Array
+  firstMember: Int32Array
+  size: Float64Array
+  deviations: Float64Array
+}): Float64Array {
+  const { groupOf, firstMember, size, deviations } = one
+  const mean = Float64Array.from(firstMember, (member) => deviations[member]!)
+  const rest = new Float64Array(mean.length)
+  for (let pass = 0; pass < 2; pass += 1) {
+    rest.fill(0)
+    for (let at = 0; at < groupOf.length; at += 1)
+      rest[groupOf[at]!]! += deviations[at]! - mean[groupOf[at]!]!
+    for (let group = 0; group < mean.length; group += 1) mean[group]! += rest[group]! / size[group]!
+  }
+  return mean
 }
 
 /** Every result by itself. */
@@ -181,8 +201,13 @@ function stratumOfSingles(deviations: Float64Array): Stratum {
   }
 }
 
-function meanOf(values: Float64Array): number {
-  let sum = 0
-  for (const value of values) sum += value
-  return values.length === 0 ? 0 : sum / values.length
+/** 0 of nothing; reckoned as the means of groups are. */
+export function meanOf(values: Float64Array): number {
+  let mean = values[0] ?? 0
+  for (let pass = 0; pass < 2 && values.length > 0; pass += 1) {
+    let rest = 0
+    for (const value of values) rest += value - mean
+    mean += rest / values.length
+  }
+  return mean
 }

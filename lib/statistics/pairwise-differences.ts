@@ -1,4 +1,5 @@
 import type { WholeNumbers } from '@/lib/statistics/decimal'
+import { NotComputable } from '@/lib/statistics/not-computable'
 
 /**
  * Results of one material as whole numbers at a common decimal scale, the cells behind one another: cell i holds those from
@@ -11,7 +12,7 @@ type Corner = { size: number; share: number }
 
 /**
  * The sizes of many differences, seen through their distribution. There are as many as the square of the results, so they
- * are counted along the sorted values and never listed.
+ * are counted along the sorted values and never listed. More than 10^200 steps are refused (`out-of-range`).
  */
 export type Differences = {
   shareOfTies: number
@@ -58,6 +59,20 @@ const NUMBERS: Whole<number> = {
 
 const BIGINTS: Whole<bigint> = { one: 1n, minus: (a, b) => a - b, plus: (a, b) => a + b, half: (x) => x / 2n }
 
+/**
+ * Differences of more steps are not looked at: a search among them goes through every binary digit, and of one result
+ * such as 1e-2000 among ordinary ones there are thousands.
+ */
+const MOST_STEPS = 10n ** 200n
+
+/** `out-of-range`, for results that are written to more places than their differences can be compared in. */
+export function tooManyPlaces(): NotComputable {
+  return new NotComputable(
+    'out-of-range',
+    'The results have too many places for their differences to be compared.',
+  )
+}
+
 /** Doubles that differ as the whole numbers do, or `null` where they lie too far apart. */
 function asNumbers(units: WholeNumbers): Float64Array | null {
   if (units instanceof Float64Array) return units
@@ -66,6 +81,7 @@ function asNumbers(units: WholeNumbers): Float64Array | null {
     if (unit < least) least = unit
     if (unit > most) most = unit
   }
+  if (most - least > MOST_STEPS) throw tooManyPlaces()
   if (most - least > BigInt(Number.MAX_SAFE_INTEGER)) return null
   return Float64Array.from(units, (unit) => Number(unit - least))
 }

@@ -75,10 +75,14 @@ export function oneWayTerms(one: {
     ms: one.harmonicCellSize * one.varianceOfCellMeans,
     df: one.laboratories - 1,
   }
-  const within = { ms: one.repeatabilityVariance, df: one.repeatabilityDf }
+  const within = (weight: number): WeightedMeanSquare => ({
+    weight,
+    ms: one.repeatabilityVariance,
+    df: one.repeatabilityDf,
+  })
   return {
-    betweenLaboratory: [between, { ...within, weight: -share }],
-    reproducibility: [between, { ...within, weight: 1 - share }],
+    betweenLaboratory: [between, within(-share)],
+    reproducibility: [between, within(1 - share)],
   }
 }
 

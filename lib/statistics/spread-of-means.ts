@@ -29,8 +29,8 @@ export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): S
   requireLaboratories(summaries, atLeast)
   const p = summaries.length
   const first = summaries[0]!.mean
-  const { range, largest, reach } = extent(summaries, first)
-  if (range <= 8 * Number.EPSILON * reach) throw new NotComputable('equal-means', 'All cell means are equal.')
+  const { largest } = extent(summaries, first)
+  if (areMeansEqual(summaries)) throw new NotComputable('equal-means', 'All cell means are equal.')
 
   const scale = binaryScaleOf(largest)
   const inverse = 1 / scale
@@ -50,6 +50,12 @@ export function spreadOfMeans(summaries: readonly CellSummary[], atLeast = 2): S
   }
   const sd = Math.sqrt(sumOfSquares / (p - 1)) * scale
   return { mean: first + middle * scale, sd, centred, sumOfSquares, scale }
+}
+
+/** Whether means differ by no more than the rounding of their own computation; those of one laboratory, or none, do not. */
+export function areMeansEqual(summaries: readonly CellSummary[]): boolean {
+  const { range, reach } = extent(summaries, 0)
+  return !(range > 8 * Number.EPSILON * reach)
 }
 
 /**

@@ -28,10 +28,12 @@ export type PlotSpread = {
 export function plotSpread(points: readonly PlotPoint[]): PlotSpread {
   const count = points.length
   if (count < 2) throw new NotComputable('too-few-laboratories', 'Two laboratories must have both materials.')
-  const mean: [number, number] = [0, 0]
+  // From the first point, so that the mean of equal values is that value.
+  const first = points[0]!
+  const mean: [number, number] = [first.x, first.y]
   for (const { x, y } of points) {
-    mean[0] += x / count
-    mean[1] += y / count
+    mean[0] += (x - first.x) / count
+    mean[1] += (y - first.y) / count
   }
   let xx = 0
   let yy = 0

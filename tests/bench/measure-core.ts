@@ -18,29 +18,27 @@ import { nestedAnova } from '@/lib/statistics/nested-anova'
 import { buildNestedLayout, codeLabels } from '@/lib/statistics/nested-layout'
 import { fTestFrom, oneWayPrecision } from '@/lib/statistics/one-way-precision'
 import { oneWayTerms, sdInterval } from '@/lib/statistics/precision-intervals'
-import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-method'
 import { fitReml } from '@/lib/statistics/reml'
 import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
 
 /*
- * One file through the core, timed part by part. Usage: measure-core.ts FILE LEVEL|- PART,PART,…; prints one line of JSON:
- * seconds by part (the median of three runs in one process), peak memory in MiB, the sum of the REML deviances, and a sum
- * that R prints too, so that both are known to have computed the same.
+ * One file through the core, timed part by part. Usage: measure-core.ts FILE LEVEL|- PART,PART,… TURNS; prints one line of
+ * JSON: the seconds of every turn by part, peak memory in MiB, the sum of the REML deviances, and a sum that R prints too,
+ * so that both are known to have computed the same. All turns run in one process: the first meets code that the engine has
+ * not yet compiled and quantiles that nobody has asked for, the later ones what a server meets.
  */
-const REPEATS = 3
-
-const [path, level, asked] = process.argv.slice(2) as [string, string, string]
+const [path, level, asked, turns] = process.argv.slice(2) as [string, string, string, string]
 const parts = asked.split(',')
 const nesting = level === '-' ? [] : [level]
 
 const laps = new Map<string, number[]>()
 let deviance = 0
 let check = 0
-for (let repeat = 0; repeat < REPEATS; repeat += 1) await once()
+for (let turn = 0; turn < Number(turns); turn += 1) await once()
 
-const seconds = Object.fromEntries([...laps].map(([name, values]) => [name, median(values)]))
 const peak = process.resourceUsage().maxRSS / 1024
-process.stdout.write(`${JSON.stringify({ seconds, peak, deviance, check })}\n`)
+process.stdout.write(`${JSON.stringify({ seconds: Object.fromEntries(laps), peak, deviance, check })}\n`)
 
 async function once(): Promise<void> {
   const bytes = readFileSync(path)
@@ -105,8 +103,8 @@ function testsOf({ cells }: MaterialData, index: number): CellSummary[] {
   const general = generalisedCochran(summaries)
   const ends = (['high', 'low'] as const).map((end) => grubbsSingle(summaries, end, spread))
   for (const alpha of [0.05, 0.01]) {
-    cochranCritical({ ...largest, alpha })
-    generalisedCochranCritical({ ...general, alpha })
+    cochranCritical({ cells: largest.cells, df: largest.df, alpha })
+    generalisedCochranCritical({ cells: general.cells, df: general.df, pooledDf, alpha })
     grubbsSingleCritical(p, alpha)
   }
   fTestFrom(betweenLaboratories, repeatability)
@@ -163,8 +161,4 @@ async function lapAsync<Value>(name: string, run: () => Promise<Value>): Promise
 
 function record(name: string, began: number): void {
   laps.set(name, [...(laps.get(name) ?? []), (performance.now() - began) / 1000])
-}
-
-function median(values: readonly number[]): number {
-  return [...values].sort((one, other) => one - other)[Math.floor(values.length / 2)]!
 }

@@ -6,6 +6,7 @@ import {
   decimalToNumber,
   decimalToText,
   parseDecimal,
+  parseDecimals,
   roundHalfEvenAtPlace,
   subtractDecimals,
   toCommonScale,
@@ -13,6 +14,16 @@ import {
 import { NotComputable } from '@/lib/statistics/not-computable'
 
 const seed = 20261201
+
+/** All the digits of a double, which are finitely many. */
+function decimalOfDouble(x: number): string {
+  let [mantissa, halvings] = [x, 0]
+  while (!Number.isInteger(mantissa)) {
+    mantissa *= 2
+    halvings += 1
+  }
+  return decimalToText({ units: BigInt(mantissa) * 5n ** BigInt(halvings), scale: halvings })
+}
 
 describe('parseDecimal', () => {
   it.each([
@@ -142,9 +153,68 @@ describe('centreExactly', () => {
     expect(centreExactly(['0.1']).restore(0.2)).toBe(0.3)
   })
 
+  it('restores any sum as exact decimals would, by the quick way and the slow', () => {
+    const offset = fc.tuple(
+      fc.bigInt({ min: -(10n ** 17n), max: 10n ** 17n }),
+      fc.integer({ min: -3, max: 24 }),
+    )
+    // Half a last place of a number about as large as the offset, give or take a little: ties and all but ties.
+    const deviation = fc.oneof(
+      fc.double({ noNaN: true, noDefaultInfinity: true }),
+      fc
+        .tuple(
+          fc.integer({ min: -3, max: 3 }),
+          fc.integer({ min: -60, max: 60 }),
+          fc.double({ min: -1, max: 1, noNaN: true }),
+        )
+        .map(([halves, power, rest]) => halves * 2 ** power + rest * 2 ** (power - 50)),
+    )
+    fc.assert(
+      fc.property(offset, deviation, ([units, scale], x) => {
+        const { restore } = centreExactly([decimalToText({ units, scale })])
+        const exact = subtractDecimals({ units, scale }, parseDecimal(decimalOfDouble(-x)))
+        expect(restore(x)).toBe(decimalToNumber(exact))
+      }),
+      { seed, numRuns: 2000 },
+    )
+  })
+
   it('refuses no results, and differences that no double holds', () => {
     expect(() => centreExactly([])).toThrow(NotComputable)
     expect(() => centreExactly(['1.7e308', '-1.7e308'])).toThrow(NotComputable)
+  })
+})
+
+describe('parseDecimals', () => {
+  it('reads many texts as one by one, the short and plain ones as any others', () => {
+    const plain = fc
+      .tuple(fc.integer({ min: -99999, max: 99999 }), fc.integer({ min: 0, max: 9 }))
+      .map(([units, scale]) => decimalToText({ units: BigInt(units), scale }))
+    const wild = fc.constantFrom(
+      '+.5',
+      '5.',
+      '-0.0',
+      '-0',
+      '1e3',
+      '\u22121.25',
+      '123456789012345678',
+      '1e-30',
+      '007.10',
+    )
+    fc.assert(
+      fc.property(fc.array(fc.oneof({ weight: 9, arbitrary: plain }, wild), { maxLength: 8 }), (texts) => {
+        const { units, scale } = parseDecimals(texts)
+        const one = toCommonScale(texts.map(parseDecimal))
+        expect(scale).toBe(one.scale)
+        expect(Array.from(units, String)).toEqual(Array.from(one.units, String))
+        expect([...units].some((unit) => Object.is(unit, -0))).toBe(false)
+      }),
+      { seed, numRuns: 500 },
+    )
+  })
+
+  it.each(['', '1,5', '.', '-', '1.2.3', '--1'])('refuses "%s" among others', (text) => {
+    expect(() => parseDecimals(['1.5', text])).toThrow(RangeError)
   })
 })
 

@@ -8,7 +8,7 @@ import {
   generalisedCochranCritical,
 } from '@/lib/statistics/cochran'
 import { centreExactly, decimalToText } from '@/lib/statistics/decimal'
-import { fQuantileUpper } from '@/lib/statistics/distributions/f'
+import { fQuantileUpper, fUpperTail } from '@/lib/statistics/distributions/f'
 import { grubbsPair, grubbsPairCritical } from '@/lib/statistics/grubbs-pair'
 import { grubbsSingle, grubbsSingleCritical } from '@/lib/statistics/grubbs-single'
 import {
@@ -249,6 +249,43 @@ describe('the generalised Cochran test', () => {
   // 2.3 % for the plain statistic at its nominal 5 % and 1 % (standard errors 0.2 % and 0.1 %).
   const sizes = [3, 3, 3, 3, 3, 3, 2, 2]
   const draws = 20_000
+
+  it('names the cell with the smallest p-value of all, the first of equals', () => {
+    const cell = fc.record({ df: fc.integer({ min: 1, max: 4 }), sd: fc.integer({ min: 0, max: 6 }) })
+    fc.assert(
+      fc.property(fc.array(cell, { minLength: 2, maxLength: 12 }), (drawn) => {
+        const cells = drawn.map(({ df, sd }, index) => ({
+          laboratory: `L${index}`,
+          n: df + 1,
+          mean: 0,
+          sd,
+          df,
+        }))
+        if (drawn.every(({ sd }) => sd === 0)) return
+        const pooledDf = drawn.reduce((sum, { df }) => sum + df, 0)
+        const total = drawn.reduce((sum, { df, sd }) => sum + df * sd ** 2, 0)
+        const each = drawn.map(({ df, sd }) => {
+          const own = df * sd ** 2
+          const f = own / df / ((total - own) / (pooledDf - df))
+          return {
+            statistic: own / total,
+            pValue: Math.min(1, drawn.length * fUpperTail(f, df, pooledDf - df)),
+          }
+        })
+        const best = each.reduce((one, other) =>
+          other.pValue < one.pValue * (1 - 1e-9) ||
+          (other.pValue <= one.pValue * (1 + 1e-9) && other.statistic > one.statistic * (1 + 1e-12))
+            ? other
+            : one,
+        )
+        const { laboratory, statistic, pValue } = generalisedCochran(cells)
+        expect(laboratory).toBe(`L${each.indexOf(best)}`)
+        expect(statistic).toBeCloseTo(best.statistic, 12)
+        expect(pValue).toBeCloseTo(best.pValue, 12)
+      }),
+      { ...options, numRuns: 1000 },
+    )
+  })
 
   it('keeps its level with unequal cells, where the plain one is beyond it', () => {
     const random = normalNumbers(20261201)

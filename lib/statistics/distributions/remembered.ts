@@ -10,10 +10,11 @@ const MOST = 20_000
 export function remembered(
   compute: (share: number, df1: number, df2: number) => number,
 ): (share: number, df1: number, df2: number) => number {
-  let known = new Map<number, Map<number, Map<number, number>>>()
+  let known = new Map<number, Map<number | string, number>>()
   let size = 0
   return (share, df1, df2) => {
-    const found = known.get(share)?.get(df1)?.get(df2)
+    const key = keyOf(df1, df2)
+    const found = known.get(share)?.get(key)
     if (found !== undefined) return found
     const value = compute(share, df1, df2)
     if (size >= MOST) {
@@ -21,9 +22,17 @@ export function remembered(
       size = 0
     }
     size += 1
-    const ofShare = known.get(share) ?? new Map<number, Map<number, number>>()
-    const ofBoth = ofShare.get(df1) ?? new Map<number, number>()
-    known.set(share, ofShare.set(df1, ofBoth.set(df2, value)))
+    const ofShare = known.get(share) ?? new Map<number | string, number>()
+    known.set(share, ofShare.set(key, value))
     return value
   }
+}
+
+const BEYOND_COUNTS = 2 ** 26
+
+/** Degrees of freedom are mostly counts, two of which fit into one whole number. */
+function keyOf(df1: number, df2: number): number | string {
+  return Number.isInteger(df1) && Number.isInteger(df2) && df1 < BEYOND_COUNTS && df2 < BEYOND_COUNTS
+    ? df1 * BEYOND_COUNTS + df2
+    : `${df1} ${df2}`
 }

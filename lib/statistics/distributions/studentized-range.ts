@@ -1,6 +1,6 @@
 import { requireDegreesOfFreedom, requireNumber } from '@/lib/statistics/distributions/arguments'
 import { incompleteGamma } from '@/lib/statistics/distributions/incomplete-gamma'
-import { normalLowerTail } from '@/lib/statistics/distributions/normal'
+import { normalLowerTail, normalQuantile } from '@/lib/statistics/distributions/normal'
 import { stirlingRemainder } from '@/lib/statistics/distributions/saddle-point'
 
 /**
@@ -28,7 +28,7 @@ export function studentizedRangeUpperTail(q: number, means: number, df: number):
 /** Over v, the logarithm of the estimated over the true standard deviation; its density peaks at 0 with spread 1/√(2 df). */
 function overDeviation(q: number, means: number, df: number): number {
   // The more means, the more sudden the range's own tail: at 300 it falls within an eighth of v.
-  const step = Math.min(Math.max(0.02, 0.25 / Math.cbrt(means)), 0.13, 0.4 / Math.sqrt(2 * df))
+  const step = Math.min(Math.max(0.02, 0.25 / Math.cbrt(means)), 0.13, 0.45 / Math.sqrt(2 * df))
   const scale = Math.sqrt(df / Math.PI) * Math.exp(-stirlingRemainder(df / 2))
   // Where the integrand of a far range is largest, its own tail being as e^(-w²/4): a start at 0 would find nothing there.
   const logSquares = 2 * Math.log(q) - Math.log(2 * df)
@@ -75,10 +75,10 @@ function bothWays(start: number, step: number, integrand: (at: number) => number
 function rangeUpperTail(w: number, means: number): number {
   const step = stepFor(means)
   let sum = 0
-  // Beyond 9 either side of w/2 the integrand is below 1e-35 of its peak.
-  for (let z = w / 2 - 9; z <= w / 2 + 9; z += step) {
-    // Nor is there any density left beyond the last double of its tail.
-    if (z > 39) break
+  // The integrand peaks at w/2 or, of a narrow range, where the largest is to be expected, and 7 further it is below 1e-20
+  // of that; nor is there any density beyond 39, the last double of its tail.
+  const end = Math.min(39, 7 + Math.max(w / 2, Math.sqrt(2 * Math.log(means))))
+  for (let z = Math.max(w / 2 - 7, leastLargest(means)); z <= end; z += step) {
     const beyond = z > 0 ? normalLowerTail(-z) : 1
     const below = z > 0 ? 1 - beyond : normalLowerTail(z)
     if (below === 0) continue
@@ -90,6 +90,11 @@ function rangeUpperTail(w: number, means: number): number {
     sum += Math.exp((means - 1) * logBelow - 0.5 * z * z) * excess
   }
   return Math.min(1, (means * step * sum) / Math.sqrt(2 * Math.PI))
+}
+
+/** Below this the largest lies with a chance under 1e-70, beside which every tail of so low a position is large. */
+function leastLargest(means: number): number {
+  return means < 4 ? -Infinity : normalQuantile(Math.exp(-160 / (means - 1)))
 }
 
 /** Density of the same range, over the position z of the largest, which is as likely as far above w/2 as below it. */

@@ -6,7 +6,7 @@ import type {
 } from '@/lib/statistics/analysis-document'
 import type { CellSummary } from '@/lib/statistics/cells'
 import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
-import { averageRange, referenceCurve } from '@/lib/statistics/equality'
+import { averageRange, halfWidth95, referenceCurve } from '@/lib/statistics/equality'
 import { type NestedAnova, nestedTest } from '@/lib/statistics/nested-anova'
 import type { NestedLayout } from '@/lib/statistics/nested-layout'
 import { laboratoryFTest, repeatability } from '@/lib/statistics/one-way-precision'
@@ -132,8 +132,8 @@ export function equalityBlock(one: {
       range: range?.range ?? null,
       rangePValue: range?.pValue ?? null,
       reference: withReasons((inner) => {
-        const { df = null, scale = null, n = null, halfWidth95 = null } = inner('scale', curve) ?? {}
-        return { df, scale, n, halfWidth95 }
+        const { df = null, scale = null, n = null } = inner('scale', curve) ?? {}
+        return { df, scale, n, halfWidth95: inner('halfWidth95', () => halfWidth95(curve())) }
       }),
     }
   })
@@ -179,15 +179,17 @@ export function assignedBlock(one: {
  */
 export function scoresBlock(one: {
   summary: CellSummary
-  value: number
   assigned: AssignedBlock
+  /** The assigned value as a deviation, so that no digit is lost where results have much in common. */
+  assignedDeviation: () => number
   laboratories: number
   sigma: () => number
   /** The laboratory's own standard uncertainty; `null` where it gave none. */
   uncertainty: number | null
 }): ScoresBlock {
+  const { mean } = one.summary
   const assigned = () => ({
-    value: required(one.assigned.value, 'There is no assigned value.'),
+    value: one.assignedDeviation(),
     uncertainty: required(one.assigned.uncertainty, 'The assigned value has no uncertainty.'),
   })
   const own = (): number => {
@@ -200,10 +202,10 @@ export function scoresBlock(one: {
     return required(one.uncertainty, 'The laboratory gave no uncertainty.')
   }
   return withReasons((attempt) => ({
-    z: attempt('z', () => zScore(one.value, { ...assigned(), uncertainty: 0 }, one.sigma())),
-    zPrime: attempt('zPrime', () => zPrimeScore(one.value, assigned(), one.sigma())),
-    zeta: attempt('zeta', () => zetaScore(one.value, assigned(), own())),
-    en: attempt('en', () => enScore(one.value, assigned(), own())),
+    z: attempt('z', () => zScore(mean, { ...assigned(), uncertainty: 0 }, one.sigma())),
+    zPrime: attempt('zPrime', () => zPrimeScore(mean, assigned(), one.sigma())),
+    zeta: attempt('zeta', () => zetaScore(mean, assigned(), own())),
+    en: attempt('en', () => enScore(mean, assigned(), own())),
   }))
 }
 

@@ -101,7 +101,10 @@ export function cochranBlock(summaries: readonly CellSummary[], layout: NestedLa
     return {
       laboratory: test?.laboratory ?? null,
       statistic: test?.statistic ?? null,
-      critical: criticalValues((alpha) => cochranCritical({ ...tested(), alpha })),
+      critical: criticalValues((alpha) => {
+        const { cells, df } = tested()
+        return cochranCritical({ cells, df, alpha })
+      }),
       pValue: test?.pValue ?? null,
       // With unequal cells the standard's statistic is only approximate; the generalised one decides.
       level: test === null ? null : test.isBalanced ? outlierLevel(test.pValue) : generalised.level,
@@ -134,7 +137,10 @@ export function generalisedCochranBlock(
     return {
       laboratory: test?.laboratory ?? null,
       statistic: test?.statistic ?? null,
-      critical: criticalValues((alpha) => generalisedCochranCritical({ ...tested(), alpha })),
+      critical: criticalValues((alpha) => {
+        const { cells, df, pooledDf } = tested()
+        return generalisedCochranCritical({ cells, df, pooledDf, alpha })
+      }),
       pValue: test?.pValue ?? null,
       level: test === null ? null : outlierLevel(test.pValue),
     }

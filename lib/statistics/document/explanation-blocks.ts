@@ -9,6 +9,7 @@ import { type MaterialCells, type MaterialData, resultsOfCell } from '@/lib/stat
 import { type Explanation, explanationsOf, type LaboratoryCell } from '@/lib/statistics/explanations'
 import { mandelH, mandelK } from '@/lib/statistics/mandel'
 import { NotComputable } from '@/lib/statistics/not-computable'
+import { ownSetting } from '@/lib/statistics/own-setting'
 import { chanceOfIdentical, commonStep, trendPValue } from '@/lib/statistics/noticed'
 import { type Others, summariseOthers } from '@/lib/statistics/surprise'
 
@@ -167,8 +168,8 @@ function areIdentical({ units, starts }: MaterialCells, cell: number): boolean {
 }
 
 function lastStep(results: readonly AnalysisResult[]): number {
-  const scales = results.map(({ text }) => parseDecimal(text).scale)
-  return Number(`1e${-Math.max(...scales)}`)
+  const scale = results.reduce((finest, { text }) => Math.max(finest, parseDecimal(text).scale), -Infinity)
+  return Number(`1e${-scale}`)
 }
 
 /** A laboratory needs this many results before a common step is no accident. */
@@ -199,7 +200,7 @@ function coarseSteps(
   steps: ReadonlyMap<string, number>,
   { decimals }: AnalysisSettings,
 ): Noticed[] {
-  const asked = Number(`1e${-(decimals?.[data.material] ?? data.scale)}`)
+  const asked = Number(`1e${-(ownSetting(decimals, data.material) ?? data.scale)}`)
   return [...cells].flatMap(([laboratory, { others }]): Noticed[] => {
     const step = steps.get(laboratory) ?? 0
     const sd = Math.sqrt(others.repeatabilityVariance)

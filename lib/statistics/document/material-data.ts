@@ -190,7 +190,9 @@ function centreWithinRange(values: ScaledDecimals): ExactlyCentred & { isOutOfRa
     const centred = centreUnits(values)
     let reach = 0
     for (const deviation of centred.deviations) reach = Math.max(reach, Math.abs(deviation))
-    const isOutOfRange = reach !== 0 && !(reach >= SMALLEST_DEVIATION && reach <= LARGEST_DEVIATION)
+    // A difference below every double has become 0, but the results are not equal.
+    const areEqual = reach === 0 && values.units.every((unit: number | bigint) => unit === values.units[0])
+    const isOutOfRange = !areEqual && !(reach >= SMALLEST_DEVIATION && reach <= LARGEST_DEVIATION)
     return { ...centred, isOutOfRange }
   } catch (error) {
     if (!(error instanceof NotComputable)) throw error

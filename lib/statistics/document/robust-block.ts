@@ -1,13 +1,16 @@
-import { algorithmA } from '@/lib/statistics/algorithm-a'
+import type { AlgorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
 import type { RobustBlock } from '@/lib/statistics/analysis-document'
 import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
+import { hampelLocation } from '@/lib/statistics/hampel-location'
 import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
-import { hampelLocation, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-method'
 
 /** What the robust estimates are made from: one entry a laboratory, all in the same order. */
 export type RobustInput = {
   cellMeans: readonly number[]
+  /** Algorithm A of the cell means. */
+  algorithmA: () => AlgorithmA
   cellSpreads: readonly { sd: number; df: number }[]
   integers: IntegerCells
   /** The results that differ by the replicate alone: the cells, or in a nested layout their innermost groups. */
@@ -63,9 +66,9 @@ export function robustBlock(input: RobustInput): RobustBlock {
   }
 }
 
-function algorithmABlock({ cellMeans, restore }: RobustInput): RobustBlock['algorithmA'] {
+function algorithmABlock({ algorithmA, restore }: RobustInput): RobustBlock['algorithmA'] {
   return withReasons((attempt) => {
-    const found = attempt('sd', () => algorithmA(cellMeans))
+    const found = attempt('sd', algorithmA)
     return {
       mean: found === null ? null : restore(found.mean),
       sd: found?.sd ?? null,

@@ -1,7 +1,14 @@
 import type { MaterialAnalysis, TwoSamplePlot } from '@/lib/statistics/analysis-document'
 import type { CellSummary } from '@/lib/statistics/cells'
-import { required, withReasons } from '@/lib/statistics/document/attempt'
+import {
+  type Attempt,
+  notComputable,
+  OUT_OF_RANGE,
+  required,
+  withReasons,
+} from '@/lib/statistics/document/attempt'
 import { median } from '@/lib/statistics/median'
+import { areMeansEqual } from '@/lib/statistics/spread-of-means'
 import {
   correlation,
   ellipse,
@@ -26,27 +33,33 @@ export type PlottedMaterial = {
  * What too few laboratories do not give is `null`. Source: Youden 1959; `two-sample-plot.ts`.
  */
 export function twoSampleBlock(x: PlottedMaterial, y: PlottedMaterial): TwoSamplePlot {
-  const onY = new Map(y.summaries.map(({ laboratory, mean }) => [laboratory, mean]))
-  const common = x.summaries
-    .filter(({ laboratory }) => onY.has(laboratory))
-    .map(({ laboratory, mean }) => ({ laboratory, x: mean, y: onY.get(laboratory)! }))
+  const onY = new Map(y.summaries.map((summary) => [summary.laboratory, summary]))
+  const ofX = x.summaries.filter(({ laboratory }) => onY.has(laboratory))
+  const xs = meansToPlot(ofX)
+  const ys = meansToPlot(ofX.map(({ laboratory }) => onY.get(laboratory)!))
+  const common = ofX.map(({ laboratory }, index) => ({ laboratory, x: xs[index]!, y: ys[index]! }))
 
   return withReasons((attempt) => {
     const spread = attempt('covariance', () => plotSpread(common))
     const factor = attempt('factor', () => predictionFactor(common.length))
     const shape = attempt('angle', () => ellipse(required(spread, TOO_FEW), required(factor, TOO_FEW)))
-    const medians = common.length === 0 ? null : medianPoint(common)
     return {
       x: x.material,
       y: y.material,
       laboratories: common.length,
-      mean: [restored(x, spread?.mean[0]), restored(y, spread?.mean[1])],
-      median: [restored(x, medians?.x), restored(y, medians?.y)],
-      sd: [spread?.sd[0] ?? null, spread?.sd[1] ?? null],
+      mean: pairOf(attempt, 'mean', () => {
+        const { mean } = required(spread, TOO_FEW)
+        return [x.restore(mean[0]), y.restore(mean[1])]
+      }),
+      median: pairOf(attempt, 'median', () => {
+        const middle = medianPoint(common)
+        return [x.restore(middle.x), y.restore(middle.y)]
+      }),
+      sd: pairOf(attempt, 'sd', () => required(spread, TOO_FEW).sd),
       covariance: spread?.covariance ?? null,
       correlation: attempt('correlation', () => correlation(required(spread, TOO_FEW))),
       factor,
-      semiAxes: shape?.semiAxes ?? [null, null],
+      semiAxes: pairOf(attempt, 'semiAxes', () => required(shape, TOO_FEW).semiAxes),
       angle: shape?.angle ?? null,
       points: common.map((point) =>
         withReasons((inner) => {
@@ -66,10 +79,27 @@ export function twoSampleBlock(x: PlottedMaterial, y: PlottedMaterial): TwoSampl
 
 const TOO_FEW = 'Too few laboratories have both materials.'
 
-function restored({ restore }: PlottedMaterial, deviation: number | undefined): number | null {
-  return deviation === undefined ? null : restore(deviation)
+/** The means in their order; one and the same where they differ by rounding alone, which has no correlation with anything. */
+function meansToPlot(summaries: readonly CellSummary[]): number[] {
+  const first = summaries[0]?.mean ?? 0
+  return areMeansEqual(summaries) ? summaries.map(() => first) : summaries.map(({ mean }) => mean)
+}
+
+/** A figure of each material under one key, which has the reason where either is missing. */
+function pairOf(
+  attempt: Attempt,
+  key: string,
+  compute: () => [number, number],
+): [number | null, number | null] {
+  const found = attempt(key, compute) ?? [null, null]
+  const inRange = found.map((one) => (one !== null && Number.isFinite(one) ? one : null))
+  if (found[0] !== null && inRange.includes(null)) {
+    attempt(key, () => notComputable('out-of-range', OUT_OF_RANGE))
+  }
+  return [inRange[0]!, inRange[1]!]
 }
 
 function medianPoint(points: readonly PlotPoint[]): PlotPoint {
+  if (points.length === 0) notComputable('too-few-laboratories', TOO_FEW)
   return { x: median(points.map(({ x }) => x)), y: median(points.map(({ y }) => y)) }
 }

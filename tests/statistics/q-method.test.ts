@@ -4,7 +4,7 @@ import { normalQuantile } from '@/lib/statistics/distributions/normal'
 import { toCommonScale } from '@/lib/statistics/decimal'
 import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
 import { NotComputable } from '@/lib/statistics/not-computable'
-import { hampelLocation, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-method'
 
 const seed = 20261203
 
@@ -126,20 +126,5 @@ describe('the Q method', () => {
     expect(() => qOfCellMeans(integerCells([[1n], [1n], [1n]]), 1)).toThrow('All the values are equal.')
     expect(() => qOfCellMeans(integerCells([[1n], [2n]]), 1)).toThrow(NotComputable)
     expect(() => qRepeatability(integerCells([[1n], [2n], [3n]]), 1)).toThrow('No cell holds two results.')
-  })
-})
-
-describe("Hampel's location", () => {
-  it('is the mean where nothing lies far out', () => {
-    expect(hampelLocation([1, 2, 3, 4, 6], 10)).toBeCloseTo(3.2, 12)
-  })
-
-  it('leaves a value beyond four and a half spreads out altogether', () => {
-    expect(hampelLocation([1, 2, 3, 1000], 2)).toBeCloseTo(2, 12)
-  })
-
-  it('takes the median where two solutions lie equally near', () => {
-    // Two clusters ten spreads apart: each is a solution, and neither is the nearer.
-    expect(hampelLocation([0, 0, 10, 10], 1)).toBe(5)
   })
 })
