@@ -1,4 +1,3 @@
-import { setPriority } from 'node:os'
 import { setTimeout as pause } from 'node:timers/promises'
 import { randomNumbers } from '@/db/seed/random-numbers'
 import type { TestRun } from '@/lib/commands/test-run'
@@ -18,7 +17,7 @@ import {
 } from './load-world'
 import { watchUse, type Use } from './machine-use'
 import { measureAnalysis, measureInvitations, probeWhile, type Probed } from './measure-worker'
-import { playArrivals } from './play-arrivals'
+import { playArrivals, type Punctuality } from './play-arrivals'
 
 /** Settled before any run was looked at. */
 export const warmUpSeconds = 20
@@ -27,7 +26,7 @@ const quietSeconds = 10
 export interface LoadFigures {
   readonly requests: Latencies<Series>
   readonly arrivals: number
-  readonly worstLagMs: number
+  readonly punctuality: Punctuality
   readonly invitations: { sent: number; ms: number }
   readonly analysis: { ms: number; done: boolean; results: number }
   readonly probedQuiet: Probed
@@ -46,7 +45,6 @@ export async function runLoad(
   void product.unexpectedEnd.then(({ name, outcome, tail }) =>
     run.say(`The ${name} ended by itself (${outcome}). Its last words:\n${tail.join('\n')}`),
   )
-  comeFirst()
   const started = product.webMemory()
   const world = openAttackWorld(product.access)
   run.onClose(() => world.destroy())
@@ -79,15 +77,6 @@ export async function runLoad(
   }
 }
 
-/** A generator that waits for the product it drives would measure both; only an administrator may put it first. */
-function comeFirst(): void {
-  try {
-    setPriority(-15)
-  } catch {
-    // The lag that is printed tells whether it mattered.
-  }
-}
-
 interface Deadline {
   readonly run: TestRun
   readonly product: LoadProduct
@@ -110,8 +99,8 @@ async function playDeadline({ run, product, world, study, contacts, seconds, see
     await keepAllDrafts(world, { studyId, contacts, sitters })
     const arrivals = drawArrivals({ seconds: length, random })
     const act = createLaboratoryRequests({ base, studyId, submitActionId, sitters, files, latencies })
-    const { worstLagMs } = await playArrivals({ arrivals, act, isStopped: () => run.isClosing })
-    return { worstLagMs, arrivals: arrivals.length }
+    const punctuality = await playArrivals({ arrivals, act, isStopped: () => run.isClosing })
+    return { punctuality, arrivals: arrivals.length }
   }
   run.say(`Warming up for ${warmUpSeconds} s, of which nothing is counted`)
   await play(warmUpSeconds, new Latencies())

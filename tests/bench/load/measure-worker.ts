@@ -5,7 +5,7 @@ import { openStudy } from '@/lib/use-cases/studies/open-study'
 import { requestAnalysis } from '@/lib/use-cases/analyses/request-analysis'
 import type { AttackWorld } from '@/tests/e2e/trust/support/attack-world'
 import { timeOutMs } from './latencies'
-import { playArrivals } from './play-arrivals'
+import { playArrivals, type Punctuality } from './play-arrivals'
 import { askTimed } from './timed-request'
 
 const lookEveryMs = 200
@@ -56,7 +56,7 @@ const probeEveryMs = 50
 
 export interface Probed {
   readonly answers: readonly number[]
-  readonly worstLagMs: number
+  readonly punctuality: Punctuality
 }
 
 /** Asks the web process every 50 ms for next to nothing: what that takes is how long its event loop was busy elsewhere. */
@@ -78,6 +78,5 @@ export async function probeWhile(base: string, work: () => Promise<unknown>): Pr
   } finally {
     isOver = true
   }
-  const { worstLagMs } = await probing
-  return { answers, worstLagMs }
+  return { answers, punctuality: await probing }
 }

@@ -58,7 +58,7 @@ describe('arrivals that wait for nobody', () => {
 
   it('say how far they fell behind, and count the delay in', async () => {
     const samples: number[] = []
-    const { worstLagMs } = await playArrivals({
+    const { worstLagMs, late } = await playArrivals({
       arrivals: [{ atMs: 0 }, { atMs: 10 }, { atMs: 20 }],
       clock,
       act: (_, plannedMs) => {
@@ -71,6 +71,7 @@ describe('arrivals that wait for nobody', () => {
     expect(samples).toEqual([0, 140, 280])
     expect(worstLagMs).toBe(280)
     expect(worstLagMs).toBeGreaterThan(mostLagMs)
+    expect(late).toBe(2)
   })
 
   it('end early when they are stopped', async () => {

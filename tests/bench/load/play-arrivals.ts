@@ -17,10 +17,15 @@ export const realClock: Clock = {
 /** Beyond this, what is measured is the generator and not the product. */
 export const mostLagMs = 100
 
+export interface Punctuality {
+  readonly worstLagMs: number
+  readonly late: number
+}
+
 /**
  * Lets every arrival come at its planned moment, whether earlier ones were answered or not. What an arrival does gets
  * that planned moment, and counts from it: a server that stalls would else make its own arrivals late and look quick.
- * @returns how late the latest arrival was let go; more than `mostLagMs` makes the run invalid
+ * @returns how late the latest arrival was let go, and how many later than `mostLagMs`: one of them makes the run invalid
  */
 export async function playArrivals<Planned extends { readonly atMs: number }>({
   arrivals,
@@ -32,17 +37,19 @@ export async function playArrivals<Planned extends { readonly atMs: number }>({
   act: (arrival: Planned, plannedMs: number) => Promise<void>
   clock?: Clock
   isStopped?: () => boolean
-}): Promise<{ worstLagMs: number }> {
+}): Promise<Punctuality> {
   const beganMs = clock.now()
   const underWay: Promise<void>[] = []
-  let worstLagMs = 0
+  let [worstLagMs, late] = [0, 0]
   for (const arrival of arrivals) {
     const plannedMs = beganMs + arrival.atMs
     await clock.until(plannedMs)
     if (isStopped()) break
-    worstLagMs = Math.max(worstLagMs, clock.now() - plannedMs)
+    const lagMs = clock.now() - plannedMs
+    worstLagMs = Math.max(worstLagMs, lagMs)
+    if (lagMs > mostLagMs) late += 1
     underWay.push(act(arrival, plannedMs))
   }
   await Promise.all(underWay)
-  return { worstLagMs }
+  return { worstLagMs, late }
 }
