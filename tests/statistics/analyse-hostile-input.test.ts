@@ -206,3 +206,23 @@ describe('a trend in the order of the runs', () => {
     expect(trendPValue(cell([1e308, 1e308, 1e308, 1e308, 1e308], values))).toBeNull()
   })
 })
+
+describe('REML', () => {
+  it('finds the same maximum in any unit', () => {
+    const rows = ['5 5 6 5', '5 5', '5 7 4', '9 8'].flatMap((texts, laboratory) =>
+      texts.split(' ').map((text) => ({ laboratory: `L${laboratory}`, text })),
+    )
+    const plain = analyseRows(rows).materials[0]!.reml
+    expect(plain.converged).toBe(true)
+    for (const power of [-120, -70, -31, 31, 70, 120]) {
+      const far = analyseRows(rows.map((row) => ({ ...row, text: `${row.text}e${power}` }))).materials[0]!
+        .reml
+      expect(far.converged).toBe(true)
+      far.components.forEach(({ variance }, index) =>
+        expect(variance! / 10 ** (2 * power) / plain.components[index]!.variance!).toBeCloseTo(1, 8),
+      )
+      // Ten contrasts among eleven results.
+      expect(far.deviance! - 20 * power * Math.LN10).toBeCloseTo(plain.deviance!, 8)
+    }
+  })
+})
