@@ -3,7 +3,8 @@
 # All is done TURNS times in one process, and each part prints the seconds of every turn.
 args <- commandArgs(trailingOnly = TRUE)
 level <- if (args[2] != "-") args[2] else NULL
-suppressMessages(library(lme4))
+columns <- c(lab = "character", material = "character", value = "numeric")
+if (!is.null(level)) columns[level] <- "character"
 clock <- function() as.numeric(Sys.time())
 parts <- list()
 lap <- function(name) { now <- clock(); parts[[name]] <<- c(parts[[name]], now - last); last <<- clock() }
@@ -11,9 +12,8 @@ alphas <- c(.005, .01, .05)
 
 for (turn in seq_len(as.integer(args[3]))) {
   last <- clock()
-  names <- strsplit(readLines(args[1], 1), ",")[[1]]
-  d <- read.csv(args[1], colClasses = ifelse(names == "value", "numeric", "character"))
-  d <- d[!is.na(d$value), ]
+  d <- read.csv(args[1], colClasses = columns)
+  if (anyNA(d$value)) d <- d[!is.na(d$value), ]
   lap("reading")
 
   m <- match(d$material, unique(d$material)); l <- match(d$lab, unique(d$lab)); labs <- max(l)
@@ -60,6 +60,7 @@ for (turn in seq_len(as.integer(args[3]))) {
   }
   lap("robust")
 
+  suppressMessages(library(lme4)); last <- clock()
   form <- if (is.null(level)) value ~ 1 + (1 | lab) else as.formula(sprintf("value ~ 1 + (1 | lab/%s)", level))
   fits <- lapply(split(d, m), function(x) suppressMessages(lmer(form, data = x)))
   deviance <- sum(sapply(fits, REMLcrit))

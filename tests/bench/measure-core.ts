@@ -18,7 +18,7 @@ import { nestedAnova } from '@/lib/statistics/nested-anova'
 import { buildNestedLayout, codeLabels } from '@/lib/statistics/nested-layout'
 import { fTestFrom, oneWayPrecision } from '@/lib/statistics/one-way-precision'
 import { oneWayTerms, sdInterval } from '@/lib/statistics/precision-intervals'
-import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-method'
 import { fitReml } from '@/lib/statistics/reml'
 import { spreadOfMeans } from '@/lib/statistics/spread-of-means'
 

@@ -2,8 +2,9 @@ import type { AlgorithmA } from '@/lib/statistics/algorithm-a'
 import { algorithmS } from '@/lib/statistics/algorithm-s'
 import type { RobustBlock } from '@/lib/statistics/analysis-document'
 import { notComputable, required, withReasons } from '@/lib/statistics/document/attempt'
+import { hampelLocation } from '@/lib/statistics/hampel-location'
 import type { IntegerCells } from '@/lib/statistics/pairwise-differences'
-import { hampelLocation, qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-hampel'
+import { qOfCellMeans, qRepeatability, qReproducibility } from '@/lib/statistics/q-method'
 
 /** What the robust estimates are made from: one entry a laboratory, all in the same order. */
 export type RobustInput = {
