@@ -150,14 +150,15 @@ function entries<Value>(
   fault: Fault,
   read: (text: string) => Value | null,
 ): Record<string, Value> {
-  const found: Record<string, Value> = {}
+  const found: [string, Value][] = []
   for (const text of texts ?? []) {
     const cut = text.lastIndexOf('=')
     const value = cut < 1 ? null : read(text.slice(cut + 1).trim())
     if (value === null) fault(option, text, `NAME=${EXPECTED[option] ?? 'VALUE'}`)
-    else found[text.slice(0, cut).trim()] = value
+    else found.push([text.slice(0, cut).trim(), value])
   }
-  return found
+  // From entries, so that a name such as __proto__ is one like any other.
+  return Object.fromEntries(found)
 }
 
 const EXPECTED: Readonly<Record<string, string>> = {

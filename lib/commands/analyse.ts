@@ -112,8 +112,17 @@ function inWords(file: string, { row, column, found, expected }: AnalysisFilePro
   return `${file}: ${where === '' ? '' : `${where}: `}found ${found}, expected ${expected}`
 }
 
+/** A problem is one line, whatever a heading or a name holds; a terminal is to show it and not to obey it. */
+function asOneLine(words: string): string {
+  return words.replace(/\p{Cc}/gu, toEscape)
+}
+
+function toEscape(character: string): string {
+  return `\\u${character.charCodeAt(0).toString(16).padStart(4, '0')}`
+}
+
 function refuse(lines: readonly string[]): void {
-  const shown = lines.slice(0, MOST_PROBLEMS)
+  const shown = lines.slice(0, MOST_PROBLEMS).map(asOneLine)
   if (lines.length > MOST_PROBLEMS) shown.push(`and ${lines.length - MOST_PROBLEMS} more`)
   process.stderr.write(`${shown.join('\n')}\n`)
   process.exitCode = 2

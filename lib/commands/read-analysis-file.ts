@@ -190,10 +190,10 @@ async function readFirstSheet(bytes: Uint8Array, problems: AnalysisFileProblem[]
 }
 
 /** Names a column may go by when `--columns` does not say otherwise. */
-const ALIASES: Readonly<Record<string, readonly string[]>> = {
-  laboratory: ['laboratory', 'lab'],
-  value: ['value', 'result'],
-}
+const ALIASES: ReadonlyMap<string, readonly string[]> = new Map([
+  ['laboratory', ['laboratory', 'lab']],
+  ['value', ['value', 'result']],
+])
 
 function findColumns(
   header: readonly string[],
@@ -204,7 +204,7 @@ function findColumns(
   const headings = header.map((heading) => withoutGuard(heading).toLowerCase())
 
   const find = (role: string): number | null => {
-    const names = renamed.has(role) ? [renamed.get(role)!] : (ALIASES[role] ?? [role])
+    const names = renamed.has(role) ? [renamed.get(role)!] : (ALIASES.get(role) ?? [role])
     for (const name of names) {
       const first = headings.indexOf(name.toLowerCase())
       if (first === -1) continue

@@ -1,5 +1,6 @@
 import type { ProposalKind } from '@/lib/statistics/analysis-document'
 import { decimalToNumber, parseDecimal, subtractDecimals } from '@/lib/statistics/decimal'
+import { oneResultChanged } from '@/lib/statistics/one-result-changed'
 import { type CellFigures, type Others, surprise } from '@/lib/statistics/surprise'
 
 /**
@@ -74,13 +75,13 @@ export function explanationsOf({
   if (own === undefined) throw new RangeError(`the laboratory has no cell of ${flagged}`)
   return [
     ...wholeCellFactors(own),
-    ...singleResultFactors(own),
+    ...promising(own, singleResultFactors(own)),
     ...otherUnits(own, cells, units),
     ...exchangedMaterials(own, cells),
     ...exchangedMeasurands(own, inOtherMeasurands),
-    ...exchangedDigits(own),
+    ...promising(own, exchangedDigits(own)),
     ...commonShift(cells),
-    ...oneApart(own),
+    ...promising(own, oneApart(own)),
   ]
     .map((candidate) => scored(candidate, own))
     .filter((candidate) => candidate !== null)
@@ -162,19 +163,47 @@ function wholeCellFactors(cell: LaboratoryCell): Candidate[] {
   }))
 }
 
-function singleResultFactors(cell: LaboratoryCell): Candidate[] {
-  if (cell.values.length < 2) return []
-  return cell.values.flatMap((value, index) =>
-    POWERS.map((power): Candidate => {
+/** A result that is replaced, or left out (`null`). */
+type OneResult = Pick<Candidate, 'kind' | 'detail' | 'price'> & { index: number; to: number | null }
+
+/** Figures from sums lie this near to those from results, relative to them; what is passed over is passed over for sure. */
+const NEAR = 1e-4
+
+/**
+ * The changes of one result that may explain the cell. In a cell of thousands of results nearly all can be told from
+ * sums to explain nothing, and no list of the results as they would be is made for them.
+ */
+function promising(cell: LaboratoryCell, tried: Iterable<OneResult>): Candidate[] {
+  const before = surprise(cellFigures(cell.values, cell.groups), cell.others).total
+  const figuresAfter = oneResultChanged(cell.values, cell.groups)
+  const isPromising = ({ index, to, price }: OneResult): boolean => {
+    if (!(before - price >= LEAST_SCORE - NEAR)) return false
+    const figures = figuresAfter(index, to)
+    if (figures === null) return true
+    const { pMean, pScatter, total } = surprise(figures, cell.others)
+    const least = PLAUSIBLE * (1 - NEAR)
+    return pMean >= least && pScatter >= least && before - total - price >= LEAST_SCORE - NEAR
+  }
+  const found: Candidate[] = []
+  for (const one of tried) {
+    if (!isPromising(one)) continue
+    const { kind, detail, price, index, to } = one
+    const changes = [to === null ? leftOut(cell, index) : replaced(cell, index, to)]
+    found.push({ kind, detail, price, changes })
+  }
+  return found
+}
+
+function* singleResultFactors(cell: LaboratoryCell): Generator<OneResult> {
+  if (cell.values.length < 2) return
+  const price = Math.log10(6 * cell.values.length)
+  for (const [index, value] of cell.values.entries()) {
+    for (const power of POWERS) {
       const factor = Number(`1e${power}`)
-      return {
-        kind: 'factorOneResult',
-        detail: `${factor} × ${cell.texts[index]}`,
-        price: Math.log10(6 * cell.values.length),
-        changes: [replaced(cell, index, value + (factor - 1) * (cell.offset + value))],
-      }
-    }),
-  )
+      const to = value + (factor - 1) * (cell.offset + value)
+      yield { kind: 'factorOneResult', detail: `${factor} × ${cell.texts[index]}`, price, index, to }
+    }
+  }
 }
 
 function otherUnits(
@@ -227,17 +256,15 @@ function withResultsOf(cell: LaboratoryCell, { texts, groups }: LaboratoryCell):
   return { ...cell, values: texts.map((text) => cell.deviationOf(text)), texts, groups }
 }
 
-function exchangedDigits(cell: LaboratoryCell): Candidate[] {
+function* exchangedDigits(cell: LaboratoryCell): Generator<OneResult> {
   const ways = cell.texts.flatMap((text, index) =>
     digitExchanges(text).map((other) => ({ index, text, other })),
   )
   const price = Math.log10(ways.length)
-  return ways.map(({ index, text, other }) => ({
-    kind: 'digits',
-    detail: `${text} → ${other}`,
-    price,
-    changes: [replaced(cell, index, cell.values[index]! + differenceAsNumber(other, text))],
-  }))
+  for (const { index, text, other } of ways) {
+    const to = cell.values[index]! + differenceAsNumber(other, text)
+    yield { kind: 'digits', detail: `${text} → ${other}`, price, index, to }
+  }
 }
 
 /** Every number that comes of exchanging two neighbouring, different digits; a decimal point between them stays. */
@@ -293,21 +320,12 @@ function commonShift(cells: readonly LaboratoryCell[]): Candidate[] {
   ]
 }
 
-function oneApart(cell: LaboratoryCell): Candidate[] {
+function* oneApart(cell: LaboratoryCell): Generator<OneResult> {
   const n = cell.values.length
-  if (n < 3) return []
-  return cell.values.map((_, index) => ({
-    kind: 'oneApart',
-    detail: cell.texts[index]!,
-    price: 1 + Math.log10(n),
-    changes: [
-      {
-        cell,
-        values: cell.values.filter((_, place) => place !== index),
-        groups: cell.groups.filter((_, place) => place !== index),
-      },
-    ],
-  }))
+  if (n < 3) return
+  const price = 1 + Math.log10(n)
+  for (let index = 0; index < n; index += 1)
+    yield { kind: 'oneApart', detail: cell.texts[index]!, price, index, to: null }
 }
 
 function change(cell: LaboratoryCell): Change {
@@ -322,6 +340,14 @@ function multiplied(cell: LaboratoryCell, factor: number): Change {
 
 function replaced(cell: LaboratoryCell, index: number, value: number): Change {
   return { ...change(cell), values: cell.values.map((own, place) => (place === index ? value : own)) }
+}
+
+function leftOut(cell: LaboratoryCell, index: number): Change {
+  return {
+    cell,
+    values: cell.values.filter((_, place) => place !== index),
+    groups: cell.groups.filter((_, place) => place !== index),
+  }
 }
 
 /** The results of one material put in the place of another's. */

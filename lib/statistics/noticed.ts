@@ -46,17 +46,21 @@ export function commonStep(numbers: readonly bigint[]): bigint {
  * Source: our own; Student's t of a slope.
  */
 export function trendPValue(cells: readonly (readonly { order: number; value: number }[])[]): number | null {
+  // In parts of the largest, so that no square leaves the doubles; a slope's t has no unit.
+  const ofOrder = largestOf(cells, ({ order }) => order)
+  const ofValue = largestOf(cells, ({ value }) => value)
   let orders = 0
   let products = 0
   let squares = 0
   let results = 0
   for (const cell of cells) {
-    const order = cell.reduce((sum, one) => sum + one.order, 0) / cell.length
-    const value = cell.reduce((sum, one) => sum + one.value, 0) / cell.length
+    const order = cell.reduce((sum, one) => sum + one.order / ofOrder, 0) / cell.length
+    const value = cell.reduce((sum, one) => sum + one.value / ofValue, 0) / cell.length
     for (const one of cell) {
-      orders += (one.order - order) ** 2
-      products += (one.order - order) * (one.value - value)
-      squares += (one.value - value) ** 2
+      const [x, y] = [one.order / ofOrder - order, one.value / ofValue - value]
+      orders += x ** 2
+      products += x * y
+      squares += y ** 2
       results += 1
     }
   }
@@ -66,6 +70,13 @@ export function trendPValue(cells: readonly (readonly { order: number; value: nu
   if (rest <= squares * 1e-14) return 0
   const t = Math.abs(products) / Math.sqrt((orders * rest) / df)
   return Math.min(1, 2 * tUpperTail(t, df))
+}
+
+/** 1 where all are 0. */
+function largestOf<One>(cells: readonly (readonly One[])[], sizeOf: (one: One) => number): number {
+  let largest = 0
+  for (const cell of cells) for (const one of cell) largest = Math.max(largest, Math.abs(sizeOf(one)))
+  return largest === 0 ? 1 : largest
 }
 
 function greatestCommonDivisor(one: bigint, other: bigint): bigint {

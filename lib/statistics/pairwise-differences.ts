@@ -184,6 +184,14 @@ function distribution<T>(one: {
     const upTo = pairs(x)
     return smallest(x, range, (y) => pairs(y) > upTo)
   }
+  /**
+   * The largest difference up to x, above 0. Where the distribution stands at the target over a stretch, the rounding of a
+   * sum of weights can let it pass there at a number that is no difference.
+   */
+  const difference = (x: T): T => {
+    const upTo = pairs(x)
+    return pairs(minus(x, unit)) === upTo ? smallest(nothing, x, (y) => pairs(y) === upTo) : x
+  }
   const corner = (x: T | null): Corner => {
     if (x === null || x === nothing) return { size: 0, share: 0 }
     const lower = below(x)
@@ -195,7 +203,7 @@ function distribution<T>(one: {
     areAllEqual: pairs(nothing) === allPairs,
     crossing: (target) => {
       // G halves each jump: where the distribution passes the target G is there too, or at the next difference.
-      const passing = smallest(nothing, range, (x) => share(x) >= target)
+      const passing = difference(smallest(nothing, range, (x) => share(x) >= target))
       const at = corner(passing)
       if (at.share >= target) return { from: corner(below(passing)), to: at }
       if (pairs(passing) === allPairs) return null

@@ -1,3 +1,4 @@
+import { binaryScaleOf } from '@/lib/statistics/binary-scale'
 import type { NestedLayout } from '@/lib/statistics/nested-layout'
 import { RESIDUAL } from '@/lib/statistics/nested-layout'
 import { type RestrictedLikelihood, restrictedLikelihood } from '@/lib/statistics/nested-likelihood'
@@ -34,6 +35,41 @@ const MOST_STEPS = 200
  * Source: Searle, Casella & McCulloch 1992, Variance Components, chapter 6.
  */
 export function fitReml(layout: NestedLayout, startRatios: readonly number[]): RemlFit {
+  const unit = unitOf(layout)
+  if (unit === 1) return fitInUnit(layout, startRatios)
+  const fit = fitInUnit(inUnit(layout, unit), startRatios)
+  return {
+    ...fit,
+    components: fit.components.map(({ source, variance }) => ({ source, variance: variance * unit ** 2 })),
+    // Each of the N - 1 contrasts is larger by the unit.
+    deviance: fit.deviance + 2 * (layout.deviations.length - 1) * Math.log(unit),
+    mean: fit.mean * unit,
+    meanStandardError: fit.meanStandardError * unit,
+  }
+}
+
+/** The curvature holds fourth powers of the results, and its sums more: only between these are they sure to be doubles. */
+const LARGEST_PLAIN = 1e30
+const SMALLEST_PLAIN = 1e-30
+
+/** 1 where the results can be searched as they are, otherwise a power of two near the largest of them. */
+function unitOf({ deviations }: NestedLayout): number {
+  let largest = 0
+  for (const deviation of deviations) largest = Math.max(largest, Math.abs(deviation))
+  return largest > SMALLEST_PLAIN && largest < LARGEST_PLAIN ? 1 : binaryScaleOf(largest)
+}
+
+function inUnit(layout: NestedLayout, unit: number): NestedLayout {
+  const divided = (values: Float64Array): Float64Array => values.map((value) => value / unit)
+  return {
+    ...layout,
+    deviations: divided(layout.deviations),
+    mean: layout.mean / unit,
+    strata: layout.strata.map((stratum) => ({ ...stratum, mean: divided(stratum.mean) })),
+  }
+}
+
+function fitInUnit(layout: NestedLayout, startRatios: readonly number[]): RemlFit {
   const { strata } = layout
   const residual = strata.at(-1)
   if (residual === undefined) throw new NotComputable('too-few-results', 'Two results are needed.')

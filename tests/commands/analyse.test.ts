@@ -241,6 +241,27 @@ describe('the analyse command', () => {
     expect(stdout).toBe('')
   })
 
+  it('says each problem in one line, whatever a heading holds', async () => {
+    const { status, stderr } = await run(await file('lines.csv', 'lab,"va\nlue","\u001b[2J"\nA,1,2\n'))
+    expect(status).toBe(2)
+    expect(stderr.trim().split('\n')).toHaveLength(1)
+    expect(stderr).toContain('found the columns lab, va\\u000alue, \\u001b[2J, expected a column value')
+  })
+
+  it('takes names that every object has already for names', async () => {
+    const rows = Array.from(
+      { length: 24 },
+      (_, index) => `L${index >> 2},__proto__,${(index >> 1) % 2},${(index * index) % 7}`,
+    )
+    const path = await file('names.csv', `lab,material,constructor,value\n${rows.join('\n')}\n`)
+    const [one] = documentOf(
+      await run(path, '--nest', 'constructor', '--reference', '__proto__=4:0.1', '--sigma', '__proto__=2'),
+    ).materials
+    expect(one!.anova.rows.map(({ source }) => source)).toEqual(['laboratory', 'constructor', 'residual'])
+    expect(one!.trueness!.reference).toBe(4)
+    expect(one!.assigned.sigma).toBe(2)
+  })
+
   it('refuses a file that is not there and one that is not text', async () => {
     const absent = await run(join(folder, 'absent.csv'))
     expect(absent.status).toBe(2)

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { trendPValue } from '@/lib/statistics/noticed'
 import { averageRange } from '@/lib/statistics/equality'
 import { analyseRows, rowsOf, type TestRow } from './analyse-rows'
 
@@ -180,5 +181,48 @@ describe('a mean above every double', () => {
     expect(one!.rounded.mean).toBeNull()
     // Deviations -1.5 and 1.5, -2.5 and 2.5, 2.5 and -2.5: squares 4.5 + 12.5 + 12.5 over 3.
     expect(one!.repeatability.variance).toBeCloseTo(29.5 / 3, 12)
+  })
+})
+
+describe('a trend in the order of the runs', () => {
+  const cell = (orders: readonly number[], values: readonly number[]) => [
+    orders.map((order, index) => ({ order, value: values[index]! })),
+  ]
+  const values = [0.1, 0.4, 0.3, 0.9, 0.8]
+
+  it('is the same in orders and values of any size', () => {
+    const plain = trendPValue(cell([1, 2, 3, 4, 5], values))!
+    expect(plain).toBeGreaterThan(0)
+    for (const unit of [1e300, 1e-300]) {
+      const far = cell(
+        [1, 2, 3, 4, 5].map((order) => order * unit),
+        values.map((value) => value / unit),
+      )
+      expect(Math.abs(trendPValue(far)! / plain - 1)).toBeLessThan(1e-12)
+    }
+  })
+
+  it('is none where all runs have one place, however late', () => {
+    expect(trendPValue(cell([1e308, 1e308, 1e308, 1e308, 1e308], values))).toBeNull()
+  })
+})
+
+describe('REML', () => {
+  it('finds the same maximum in any unit', () => {
+    const rows = ['5 5 6 5', '5 5', '5 7 4', '9 8'].flatMap((texts, laboratory) =>
+      texts.split(' ').map((text) => ({ laboratory: `L${laboratory}`, text })),
+    )
+    const plain = analyseRows(rows).materials[0]!.reml
+    expect(plain.converged).toBe(true)
+    for (const power of [-120, -70, -31, 31, 70, 120]) {
+      const far = analyseRows(rows.map((row) => ({ ...row, text: `${row.text}e${power}` }))).materials[0]!
+        .reml
+      expect(far.converged).toBe(true)
+      far.components.forEach(({ variance }, index) =>
+        expect(variance! / 10 ** (2 * power) / plain.components[index]!.variance!).toBeCloseTo(1, 8),
+      )
+      // Ten contrasts among eleven results.
+      expect(far.deviance! - 20 * power * Math.LN10).toBeCloseTo(plain.deviance!, 8)
+    }
   })
 })

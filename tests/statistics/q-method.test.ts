@@ -46,6 +46,34 @@ function betweenPairs(cells: readonly (readonly number[])[]): Pair[] {
   )
 }
 
+/** The definition once more, every weight a whole number (60 is a multiple of all sizes up to 6), so that none is rounded. */
+function exactBetween(cells: readonly (readonly number[])[]): number | null {
+  const pairs = betweenPairs(cells)
+  const unit = (cells.length * (cells.length - 1)) / 2
+  return naiveWhole(
+    pairs.map(({ size, weight }) => ({ size, weight: Math.round(weight * unit * 3600) })),
+    unit * 3600,
+  )
+}
+
+function naiveWhole(pairs: readonly Pair[], all: number): number | null {
+  const weights = new Map<number, number>()
+  for (const { size, weight } of pairs) weights.set(size, (weights.get(size) ?? 0) + weight)
+  const ties = weights.get(0) ?? 0
+  const target = (all + 3 * ties) / 4
+  let [x, g, sum] = [0, 0, ties]
+  for (const size of [...weights.keys()].filter((one) => one > 0).sort((one, other) => one - other)) {
+    const next = sum + weights.get(size)! / 2
+    if (next >= target) {
+      const at = x + ((size - x) * (target - g)) / (next - g)
+      return at / (Math.SQRT2 * normalQuantile(0.625 + (0.375 * ties) / all))
+    }
+    sum += weights.get(size)!
+    ;[x, g] = [size, next]
+  }
+  return null
+}
+
 function withinPairs(cells: readonly (readonly number[])[]): Pair[] {
   const replicated = cells.filter(({ length }) => length >= 2)
   return replicated.flatMap((cell) =>
@@ -103,6 +131,38 @@ describe('the Q method', () => {
         )
       }),
       { seed, numRuns: 300 },
+    )
+  })
+
+  it.each([
+    // Of the five differences one is 0 and one is 1: the distribution stands at 0.4, its target, from 1 up to 7.
+    [[[13], [6, 12, 3, 6, 13]]],
+    [[[12], [12, 11, 2, 0, 3]]],
+    [
+      [
+        [7, 42],
+        [25, 44, 21, 34, 14, 23],
+      ],
+    ],
+    [[[39, 39, 46, 4, 8], [10, 12, 23, 18], [27]]],
+  ])('reads the target at a difference, where the distribution stands still at it: %j', (cells) => {
+    expectSame(qReproducibility(integerCells(cells.map((cell) => cell.map(BigInt))), 1), exactBetween(cells))
+  })
+
+  it('equals its definition in whole numbers, cells of any two to four laboratories', () => {
+    const few = fc.array(fc.array(fc.integer({ min: 0, max: 30 }), { minLength: 1, maxLength: 6 }), {
+      minLength: 2,
+      maxLength: 4,
+    })
+    fc.assert(
+      fc.property(few, (cells) => {
+        const integers = integerCells(cells.map((cell) => cell.map(BigInt)))
+        expectSame(
+          orNull(() => qReproducibility(integers, 1)),
+          exactBetween(cells),
+        )
+      }),
+      { seed, numRuns: 4000 },
     )
   })
 

@@ -30,7 +30,8 @@ export type PlottedMaterial = {
  * The two-sample plot of a pair of materials over the laboratories that have both: points, medians, ellipse, and each
  * point's own p-value. Lengths are in the unit of the results, restored from deviations.
  *
- * What too few laboratories do not give is `null`. Source: Youden 1959; `two-sample-plot.ts`.
+ * What too few laboratories do not give is `null` (`too-few-laboratories`), and so is what no double holds
+ * (`out-of-range`). Source: Youden 1959; `two-sample-plot.ts`.
  */
 export function twoSampleBlock(x: PlottedMaterial, y: PlottedMaterial): TwoSamplePlot {
   const onY = new Map(y.summaries.map((summary) => [summary.laboratory, summary]))
