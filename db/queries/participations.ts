@@ -13,19 +13,27 @@ export interface ParticipationRecord {
 /** The laboratory for which a person acts in a study: its own code and zone. */
 export async function findParticipation(
   db: Kysely<DB>,
-  { studyId, personId }: { studyId: string; personId: string },
+  place: { studyId: string; personId: string },
 ): Promise<ParticipationRecord | undefined> {
+  return participationOf(db, place).executeTakeFirst()
+}
+
+/**
+ * The statement of {@link findParticipation}, whose plan a test looks at.
+ *
+ * The participant is found first, and its other rows by their full keys. Joined by the study alone, as the planner did
+ * while it did not know how many laboratories a new study has, this took ten seconds with 500 of them.
+ */
+export function participationOf(
+  db: Kysely<DB>,
+  { studyId, personId }: { studyId: string; personId: string },
+) {
   return db
-    .selectFrom('vault.contact as contact')
-    .innerJoin('participant', (join) =>
-      join
-        .onRef('participant.study_id', '=', 'contact.study_id')
-        .onRef('participant.participant_id', '=', 'contact.participant_id'),
-    )
+    .selectFrom('participant')
     .innerJoin('vault.identity as identity', (join) =>
       join
-        .onRef('identity.study_id', '=', 'contact.study_id')
-        .onRef('identity.participant_id', '=', 'contact.participant_id'),
+        .onRef('identity.study_id', '=', 'participant.study_id')
+        .onRef('identity.participant_id', '=', 'participant.participant_id'),
     )
     .innerJoin('vault.invitation as invitation', (join) =>
       join
@@ -37,19 +45,25 @@ export async function findParticipation(
         .onRef('laboratory.organisation_id', '=', 'invitation.organisation_id')
         .onRef('laboratory.laboratory_id', '=', 'invitation.laboratory_id'),
     )
-    .where('contact.study_id', '=', studyId)
-    .where('contact.person_id', '=', personId)
+    .where('participant.study_id', '=', studyId)
+    .where('participant.participant_id', '=', ({ selectFrom }) =>
+      selectFrom('vault.contact')
+        .select('participant_id')
+        .where('study_id', '=', studyId)
+        .where('person_id', '=', personId)
+        .orderBy('participant_id')
+        .limit(1),
+    )
     .select([
-      'contact.study_id as studyId',
-      'contact.participant_id as participantId',
+      'participant.study_id as studyId',
+      'participant.participant_id as participantId',
       'participant.code',
       'laboratory.name as laboratory',
       'invitation.zone',
-      sql<Date | null>`(select max(due_at) from vault.extension e where e.study_id = contact.study_id and e.participant_id = contact.participant_id)`.as(
+      sql<Date | null>`(select max(due_at) from vault.extension e where e.study_id = participant.study_id and e.participant_id = participant.participant_id)`.as(
         'extendedTo',
       ),
     ])
-    .executeTakeFirst()
 }
 
 export interface DraftRecord {
