@@ -111,6 +111,18 @@ async function storeReturn(
     }),
   })
   await deleteDraft(trx, { studyId, participantId })
+  for (const { address, personId } of await listContactAddresses(trx, { studyId, participantId })) {
+    await queueMail(trx, context.jobs, {
+      kind: 'receipt',
+      studyId,
+      recipient: address,
+      ids: { studyId, returnId, participantId },
+      dedupeKey: `receipt.${returnId}.${personId}`,
+    })
+  }
+  const receipt = await findReceiptByKey(trx, { studyId, participantId, submissionKey })
+  if (!receipt) throw new Error('a return just stored was not found')
+  // Last, because from here on every other change of the study waits for its chain.
   await recordAudit(trx, {
     actor: context.actor,
     role: own.role,
@@ -125,17 +137,6 @@ async function storeReturn(
       bodyDigest,
     },
   })
-  for (const { address, personId } of await listContactAddresses(trx, { studyId, participantId })) {
-    await queueMail(trx, context.jobs, {
-      kind: 'receipt',
-      studyId,
-      recipient: address,
-      ids: { studyId, returnId, participantId },
-      dedupeKey: `receipt.${returnId}.${personId}`,
-    })
-  }
-  const receipt = await findReceiptByKey(trx, { studyId, participantId, submissionKey })
-  if (!receipt) throw new Error('a return just stored was not found')
   return { outcome: 'received', number, receiptNumber, receivedAt: receipt.receivedAt, repeated: false }
 }
 

@@ -1,4 +1,3 @@
-import { sql } from 'kysely'
 import {
   draftStudy,
   invitationToken,
@@ -65,15 +64,6 @@ export async function acceptAll(
     const token = await invitationToken(world, { studyId, invitationId })
     await answerInvitation(world.system, { token, answer: 'accepted' })
   }
-  await countRows(world)
-}
-
-/**
- * Has the database count its rows. Laboratories answer over weeks, and PostgreSQL has counted by itself long before any
- * of them returns; here it took seconds, and plans would still be made for studies with nobody in them.
- */
-async function countRows({ owner }: AttackWorld): Promise<void> {
-  await sql`analyze`.execute(owner)
 }
 
 /** A signed-in contact for every laboratory, each with the sheet filled to the last place but not returned. */
@@ -137,7 +127,6 @@ export async function stageReturnedStudy(
   })
   const answers = invitationIds.map((invitationId) => ({ invitationId, answer: 'accepted' as const }))
   await openAndAnswer(quiet, { coordinator, studyId, answers })
-  await countRows(world)
   const layout = await layoutOf(quiet, { studyId, shortName: 'LOAD-2' })
   const random = randomNumbers(seed)
   await inParallel(contacts, (contact) =>
