@@ -2,21 +2,62 @@ import { sql, type Kysely, type Transaction } from 'kysely'
 import type { DB } from '@/db/tables'
 import type { CodedResult } from '@/lib/domain/coded-results'
 
-/** The results of each laboratory's latest return for one measurand, with the cells set aside marked. */
+/**
+ * The results of each laboratory's latest return for one measurand, with the cells set aside marked, by code, material and
+ * place.
+ *
+ * Returns, results and cells set aside are read by themselves: joined by the study, as the planner joins them before it
+ * has counted the rows of a large one, they took half a minute with 500 laboratories.
+ */
 export async function listCodedResults(
   db: Kysely<DB>,
-  { studyId, measurandId }: { studyId: string; measurandId: string },
+  place: { studyId: string; measurandId: string },
 ): Promise<CodedResult[]> {
+  const returns = await listLatestReturns(db, place.studyId)
+  const excluded = await listCellsSetAside(db, place)
+  const results = await listResults(db, place)
+  const byReturn = new Map<string, (typeof results)[number][]>()
+  for (const result of results) {
+    const own = byReturn.get(result.returnId)
+    if (own === undefined) byReturn.set(result.returnId, [result])
+    else own.push(result)
+  }
+  return returns.flatMap(({ returnId, participantId, code }) =>
+    (byReturn.get(returnId) ?? []).map(({ material, materialId, groups, value, censored }) => ({
+      code,
+      material,
+      groups,
+      value,
+      censored: censored as CodedResult['censored'],
+      excluded: excluded.has(cellKey({ participantId, materialId })),
+    })),
+  )
+}
+
+/** One a laboratory that has returned, in the order of the codes. */
+async function listLatestReturns(db: Kysely<DB>, studyId: string) {
   const rows = await db
-    .selectFrom('test_result as result')
-    .innerJoin('result_return as each', (join) =>
-      join.onRef('each.study_id', '=', 'result.study_id').onRef('each.return_id', '=', 'result.return_id'),
-    )
+    .selectFrom('result_return as each')
     .innerJoin('participant', (join) =>
       join
         .onRef('participant.study_id', '=', 'each.study_id')
         .onRef('participant.participant_id', '=', 'each.participant_id'),
     )
+    .where('each.study_id', '=', studyId)
+    .select(['each.return_id as returnId', 'each.participant_id as participantId', 'participant.code'])
+    .orderBy('participant.code')
+    .orderBy('each.number', 'desc')
+    .execute()
+  return rows.filter(({ participantId }, index) => participantId !== rows[index - 1]?.participantId)
+}
+
+/** By material and place; of every return, whether or not a later one took its stead. */
+async function listResults(
+  db: Kysely<DB>,
+  { studyId, measurandId }: { studyId: string; measurandId: string },
+) {
+  return db
+    .selectFrom('test_result as result')
     .innerJoin('material', (join) =>
       join
         .onRef('material.study_id', '=', 'result.study_id')
@@ -24,51 +65,40 @@ export async function listCodedResults(
     )
     .where('result.study_id', '=', studyId)
     .where('result.measurand_id', '=', measurandId)
-    .where((where) =>
-      where.not(
-        where.exists(
-          where
-            .selectFrom('result_return as later')
-            .whereRef('later.study_id', '=', 'each.study_id')
-            .whereRef('later.participant_id', '=', 'each.participant_id')
-            .whereRef('later.number', '>', 'each.number')
-            .select('later.number'),
-        ),
-      ),
-    )
-    .select((select) => [
-      'participant.code',
+    .select([
+      'result.return_id as returnId',
+      'result.material_id as materialId',
       'material.name as material',
       'result.place as groups',
       sql<string>`result.value::text`.as('value'),
       'result.censored',
-      select
-        .exists(
-          select
-            .selectFrom('exclusion')
-            .leftJoin('exclusion_lifted as lifted', (join) =>
-              join
-                .onRef('lifted.study_id', '=', 'exclusion.study_id')
-                .onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
-            )
-            .whereRef('exclusion.study_id', '=', 'result.study_id')
-            .whereRef('exclusion.participant_id', '=', 'each.participant_id')
-            .whereRef('exclusion.measurand_id', '=', 'result.measurand_id')
-            .whereRef('exclusion.material_id', '=', 'result.material_id')
-            .where('lifted.exclusion_id', 'is', null)
-            .select('exclusion.exclusion_id'),
-        )
-        .as('excluded'),
     ])
-    .orderBy('participant.code')
     .orderBy('material.position')
     .orderBy('result.place')
     .execute()
-  return rows.map((row) => ({
-    ...row,
-    censored: row.censored as CodedResult['censored'],
-    excluded: Boolean(row.excluded),
-  }))
+}
+
+async function listCellsSetAside(
+  db: Kysely<DB>,
+  { studyId, measurandId }: { studyId: string; measurandId: string },
+): Promise<ReadonlySet<string>> {
+  const rows = await db
+    .selectFrom('exclusion')
+    .leftJoin('exclusion_lifted as lifted', (join) =>
+      join
+        .onRef('lifted.study_id', '=', 'exclusion.study_id')
+        .onRef('lifted.exclusion_id', '=', 'exclusion.exclusion_id'),
+    )
+    .where('exclusion.study_id', '=', studyId)
+    .where('exclusion.measurand_id', '=', measurandId)
+    .where('lifted.exclusion_id', 'is', null)
+    .select(['exclusion.participant_id as participantId', 'exclusion.material_id as materialId'])
+    .execute()
+  return new Set(rows.map(cellKey))
+}
+
+function cellKey({ participantId, materialId }: { participantId: string; materialId: string }): string {
+  return `${participantId} ${materialId}`
 }
 
 export async function insertAnalysisRequest(
