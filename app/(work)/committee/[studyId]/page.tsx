@@ -1,4 +1,5 @@
 import type { Metadata } from 'next'
+import { CodedDownloads } from '@/app/ui/analysis/coded-downloads'
 import { ConsistencyPlots } from '@/app/ui/analysis/consistency-plots'
 import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
 import { OutlierTests } from '@/app/ui/analysis/outlier-tests'
@@ -10,7 +11,6 @@ import { MarginNote } from '@/app/ui/layout/margin'
 import { PageShell } from '@/app/ui/layout/page-shell'
 import { Section } from '@/app/ui/layout/section'
 import { ButtonLink } from '@/app/ui/primitives/button'
-import { DownloadLink } from '@/app/ui/primitives/download-link'
 import { EmptyState } from '@/app/ui/primitives/empty-state'
 import { permittedRole } from '@/lib/domain/permissions'
 import { readReview } from '@/lib/use-cases/reviews/read-review'
@@ -81,15 +81,7 @@ export default async function CommitteePage({ params, searchParams }: PageProps<
             note={`Analysis ${analysis.number}, engine ${analysis.engineVersion}, digest ${analysis.digest.slice(0, 16)}…`}
           >
             <p className="flex flex-wrap gap-5">
-              <DownloadLink href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`} format="CSV">
-                Coded results
-              </DownloadLink>
-              <DownloadLink
-                href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`}
-                format="JSON"
-              >
-                The analysis
-              </DownloadLink>
+              <CodedDownloads studyId={studyId} measurandId={measurand.measurandId} />
             </p>
           </Section>
         </>

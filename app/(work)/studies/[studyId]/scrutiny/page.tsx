@@ -1,9 +1,9 @@
 import type { Metadata } from 'next'
+import { CodedDownloads } from '@/app/ui/analysis/coded-downloads'
 import { ConsistencyPlots } from '@/app/ui/analysis/consistency-plots'
 import { MeasurandTabs } from '@/app/ui/analysis/measurand-tabs'
 import { OutlierTests } from '@/app/ui/analysis/outlier-tests'
 import { Section } from '@/app/ui/layout/section'
-import { DownloadLink } from '@/app/ui/primitives/download-link'
 import { readReview } from '@/lib/use-cases/reviews/read-review'
 import { readerContext } from '@/lib/web/reader-context'
 import { chooseMeasurand } from '../choose-measurand'
@@ -41,22 +41,7 @@ export default async function ScrutinyPage({
           <Section
             title="Outlier tests"
             note="A test proposes; a person decides. Pairs are consulted only where neither end alone is an outlier."
-            actions={
-              <>
-                <DownloadLink
-                  href={`/api/studies/${studyId}/coded/${measurand.measurandId}.csv`}
-                  format="CSV"
-                >
-                  Coded results
-                </DownloadLink>
-                <DownloadLink
-                  href={`/api/studies/${studyId}/coded/${measurand.measurandId}.json`}
-                  format="JSON"
-                >
-                  The analysis
-                </DownloadLink>
-              </>
-            }
+            actions={<CodedDownloads studyId={studyId} measurandId={measurand.measurandId} />}
           >
             <OutlierTests document={measurand.document} />
           </Section>
